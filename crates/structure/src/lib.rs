@@ -1,0 +1,1 @@
+//! orbend-structure
