@@ -1,1 +1,19 @@
-//! orbend-structure
+//! Elements, units, atoms; reading and writing geometries; internal
+//! coordinates and paths; ideal geometries from a formula.
+//!
+//! What it is not for: anything that needs orbitals or energies. Lengths are in
+//! Å and angles in degrees throughout; conversions stand in one file.
+
+mod element;
+mod element_table;
+mod molecule;
+mod neighbours;
+mod units;
+mod vector;
+
+pub use element::{BondOrder, Element, OccupiedShell};
+pub use molecule::{LARGEST_COORDINATE, Molecule, MoleculeError, SMALLEST_DISTANCE};
+pub use units::{
+    Angstrom, BOHR_IN_ANGSTROM, Bohr, DEGREE_IN_RADIANS, Degrees, ElectronVolt, HARTREE_IN_EV,
+    Hartree, Radians,
+};
