@@ -1,0 +1,518 @@
+//! Blocks of overlaps between the shells of two atoms.
+
+use crate::OverlapError;
+use crate::angular::{solid_harmonics, tangential_gradient};
+use crate::coupling::Coupling;
+use crate::lanes::{Lanes, accumulate};
+use crate::polynomial::Quantum;
+use crate::radial::RadialKernel;
+use crate::shell::Shell;
+
+/// Largest number of diatomic integrals of a pair.
+const MOST_INTEGRALS: usize = 256;
+/// Below this distance (bohr) the direction is taken as z and S_L/R as its limit.
+const TOUCHING_BOHR: f64 = 1.0e-8;
+/// A contraction farther from ⟨χ|χ⟩ = 1 than this is refused.
+const NORM_TOLERANCE: f64 = 1.0e-6;
+
+/// Two shells and their place in the block.
+#[derive(Clone)]
+struct ShellPair {
+    row: usize,
+    column: usize,
+    rows: usize,
+    columns: usize,
+    /// First of its diatomic integrals; they follow with rising m.
+    first: usize,
+    coupling: &'static Coupling,
+}
+
+/// Everything about a pair of atoms that does not depend on the geometry.
+///
+/// Rows of a block are the functions of A in the order of its shells, columns those of B, row-major;
+/// within a shell the order of [`crate::harmonics`]. Displacements are R_B − R_A in bohr.
+///
+/// The distance itself is not judged here: atoms on top of each other give the one-centre overlaps.
+#[derive(Clone)]
+pub struct PairKernel {
+    radial: RadialKernel,
+    pairs: Vec<ShellPair>,
+    rows: usize,
+    columns: usize,
+    /// Highest degree of the harmonics of the direction.
+    degree: usize,
+    size: Size,
+    arch: pulp::Arch,
+}
+
+/// Which compiled workspace size is large enough.
+#[derive(Copy, Clone, Debug, PartialEq)]
+enum Size {
+    Small,
+    Medium,
+    Large,
+}
+
+impl core::fmt::Debug for PairKernel {
+    fn fmt(&self, f: &mut core::fmt::Formatter<'_>) -> core::fmt::Result {
+        f.debug_struct("PairKernel")
+            .field("rows", &self.rows)
+            .field("columns", &self.columns)
+            .field("integrals", &self.radial.integrals)
+            .finish_non_exhaustive()
+    }
+}
+
+impl PairKernel {
+    /// Tables for the shells of atom A and atom B.
+    ///
+    /// # Errors
+    /// Quantum numbers, exponents or coefficients out of range; a contraction that is not
+    /// normalised; more shells than the workspace holds.
+    pub fn new(a: &[Shell], b: &[Shell]) -> Result<Self, OverlapError> {
+        for shell in a.iter().chain(b) {
+            shell.check()?;
+            let norm_squared = shell.norm_squared();
+            if norm_squared.is_nan() || (norm_squared - 1.0).abs() > NORM_TOLERANCE {
+                return Err(OverlapError::Norm {
+                    n: shell.n,
+                    l: shell.l,
+                    norm_squared,
+                });
+            }
+        }
+        let mut radial = RadialKernel::default();
+        let mut pairs = Vec::with_capacity(a.len() * b.len());
+        let (mut row, mut first, mut degree) = (0, 0, 0);
+        for left in a {
+            let mut column = 0;
+            for right in b {
+                let coupling = Coupling::of(usize::from(left.l), usize::from(right.l));
+                let (rows, columns) = (left.functions(), right.functions());
+                pairs.push(ShellPair {
+                    row,
+                    column,
+                    rows,
+                    columns,
+                    first,
+                    coupling,
+                });
+                push_integrals(&mut radial, left, right, first);
+                first += coupling.count;
+                column += columns;
+                degree = degree.max(usize::from(left.l + right.l));
+            }
+            row += left.functions();
+        }
+        if first > MOST_INTEGRALS {
+            return Err(OverlapError::TooManyShells(first));
+        }
+        let size = match (radial.widest, first, degree) {
+            (0..=32, 0..=8, 0..=2) => Size::Small,
+            (0..=64, 0..=16, 0..=4) => Size::Medium,
+            _ => Size::Large,
+        };
+        let columns = b.iter().map(Shell::functions).sum();
+        let arch = pulp::Arch::new();
+        Ok(Self {
+            radial,
+            pairs,
+            rows: row,
+            columns,
+            degree,
+            size,
+            arch,
+        })
+    }
+
+    /// Number of functions of A.
+    pub fn rows(&self) -> usize {
+        self.rows
+    }
+
+    /// Number of functions of B.
+    pub fn columns(&self) -> usize {
+        self.columns
+    }
+
+    /// Overlaps of one geometry: `out` holds rows × columns numbers, row-major (more are left
+    /// alone; with fewer nothing is written, which debug builds report).
+    pub fn block(&self, displacement_bohr: [f64; 3], out: &mut [f64]) {
+        let displacement = displacement_bohr.map(|c| [c]);
+        self.arch.dispatch(
+            #[inline(always)]
+            || self.run::<1, false>(&displacement, out.as_chunks_mut::<1>().0, &mut []),
+        );
+    }
+
+    /// Overlaps of [`crate::LANES`] geometries at once, each with the bits of [`Self::block`].
+    pub fn block_lanes(&self, displacement_bohr: &[Lanes; 3], out: &mut [Lanes]) {
+        self.arch.dispatch(
+            #[inline(always)]
+            || self.run::<8, false>(displacement_bohr, out, &mut []),
+        );
+    }
+
+    /// Overlaps and their derivatives with respect to the displacement (bohr⁻¹): `gradient` holds
+    /// three blocks, ∂/∂x, ∂/∂y, ∂/∂z.
+    ///
+    /// Closed form: the derivative of the diatomic integrals along the bond and of the harmonics
+    /// of its direction across it.
+    pub fn gradient(&self, displacement_bohr: [f64; 3], out: &mut [f64], gradient: &mut [f64]) {
+        let displacement = displacement_bohr.map(|c| [c]);
+        self.arch.dispatch(
+            #[inline(always)]
+            || {
+                let gradient = gradient.as_chunks_mut::<1>().0;
+                self.run::<1, true>(&displacement, out.as_chunks_mut::<1>().0, gradient);
+            },
+        );
+    }
+
+    /// As [`Self::gradient`] for [`crate::LANES`] geometries at once, with the same bits.
+    pub fn gradient_lanes(
+        &self,
+        displacement_bohr: &[Lanes; 3],
+        out: &mut [Lanes],
+        gradient: &mut [Lanes],
+    ) {
+        self.arch.dispatch(
+            #[inline(always)]
+            || self.run::<8, true>(displacement_bohr, out, gradient),
+        );
+    }
+
+    #[inline(always)]
+    fn run<const N: usize, const DERIVATIVE: bool>(
+        &self,
+        displacement: &[[f64; N]; 3],
+        out: &mut [[f64; N]],
+        gradient: &mut [[f64; N]],
+    ) {
+        let needed = self.rows * self.columns;
+        let enough = out.len() >= needed && (!DERIVATIVE || gradient.len() >= 3 * needed);
+        debug_assert!(enough, "a block of this pair has {needed} numbers");
+        if !enough {
+            return;
+        }
+        match self.size {
+            Size::Small => self.fill::<N, 32, 8, 9, DERIVATIVE>(displacement, out, gradient),
+            Size::Medium => self.fill::<N, 64, 16, 25, DERIVATIVE>(displacement, out, gradient),
+            Size::Large => self.fill::<N, 256, 256, 49, DERIVATIVE>(displacement, out, gradient),
+        }
+    }
+
+    #[inline(always)]
+    fn fill<
+        const N: usize,
+        const P: usize,
+        const T: usize,
+        const Y: usize,
+        const DERIVATIVE: bool,
+    >(
+        &self,
+        displacement: &[[f64; N]; 3],
+        out: &mut [[f64; N]],
+        gradient: &mut [[f64; N]],
+    ) {
+        let mut distance = [0.0; N];
+        let mut inverse = [0.0; N];
+        let mut unit = [[0.0; N]; 3];
+        for lane in 0..N {
+            let [x, y, z] = [
+                displacement[0][lane],
+                displacement[1][lane],
+                displacement[2][lane],
+            ];
+            let length = (x * x + y * y + z * z).sqrt();
+            let touching = length < TOUCHING_BOHR;
+            distance[lane] = length;
+            inverse[lane] = if touching { 0.0 } else { 1.0 / length };
+            unit[0][lane] = x * inverse[lane];
+            unit[1][lane] = y * inverse[lane];
+            unit[2][lane] = if touching { 1.0 } else { z * inverse[lane] };
+        }
+        let mut values = [[0.0; N]; T];
+        let mut slopes = [[0.0; N]; T];
+        self.radial
+            .evaluate::<N, P, T, DERIVATIVE>(&distance, &mut values, &mut slopes);
+        let mut harmonics = [[0.0; N]; Y];
+        solid_harmonics(&unit, self.degree, &mut harmonics);
+        for pair in &self.pairs {
+            pair.spread(&values, &harmonics, self.columns, out);
+        }
+        if DERIVATIVE {
+            let mut tangential = [[[0.0; N]; Y]; 3];
+            tangential_gradient(&unit, self.degree, &harmonics, &mut tangential);
+            let size = self.rows * self.columns;
+            for (axis, block) in gradient.chunks_exact_mut(size).take(3).enumerate() {
+                for pair in &self.pairs {
+                    pair.spread_slope(
+                        &values,
+                        &slopes,
+                        (&harmonics, &tangential[axis]),
+                        (&unit[axis], &inverse),
+                        self.columns,
+                        block,
+                    );
+                }
+            }
+        }
+    }
+}
+
+/// The integrals of two shells, contracted, from number `first` on.
+fn push_integrals(radial: &mut RadialKernel, a: &Shell, b: &Shell, first: usize) {
+    for m in 0..=a.l.min(b.l) {
+        let quantum = Quantum {
+            n_a: a.n,
+            l_a: a.l,
+            n_b: b.n,
+            l_b: b.l,
+            m,
+        };
+        for s in &a.terms {
+            for t in &b.terms {
+                let coefficient = s.coefficient * t.coefficient;
+                radial.push(quantum, s.zeta, t.zeta, coefficient, first + usize::from(m));
+            }
+        }
+    }
+}
+
+impl ShellPair {
+    /// κ_L from the diatomic integrals.
+    #[inline(always)]
+    fn reduced<const N: usize, const T: usize>(&self, values: &[[f64; N]; T]) -> [[f64; N]; 4] {
+        let mut out = [[0.0; N]; 4];
+        for (row, target) in self
+            .coupling
+            .reduce
+            .iter()
+            .zip(&mut out)
+            .take(self.coupling.count)
+        {
+            for (m, &factor) in row.iter().enumerate().take(self.coupling.count) {
+                accumulate(target, factor, &values[(self.first + m) & (T - 1)]);
+            }
+        }
+        out
+    }
+
+    #[inline(always)]
+    fn spread<const N: usize, const T: usize, const Y: usize>(
+        &self,
+        values: &[[f64; N]; T],
+        harmonics: &[[f64; N]; Y],
+        stride: usize,
+        out: &mut [[f64; N]],
+    ) {
+        let reduced = self.reduced(values);
+        let mut components = [[0.0; N]; Y];
+        for (component, &(d, at)) in components.iter_mut().zip(&self.coupling.components) {
+            for lane in 0..N {
+                component[lane] = reduced[d & 3][lane] * harmonics[at][lane];
+            }
+        }
+        self.write(&components, stride, out);
+    }
+
+    #[inline(always)]
+    fn spread_slope<const N: usize, const T: usize, const Y: usize>(
+        &self,
+        values: &[[f64; N]; T],
+        slopes: &[[f64; N]; T],
+        (harmonics, tangential): (&[[f64; N]; Y], &[[f64; N]; Y]),
+        (unit, inverse): (&[f64; N], &[f64; N]),
+        stride: usize,
+        out: &mut [[f64; N]],
+    ) {
+        let (mut along, mut across) = (self.reduced(slopes), self.reduced(values));
+        for (d, (along, across)) in along.iter_mut().zip(&mut across).enumerate() {
+            // At R = 0 the harmonics of degree 1 grow linearly: κ/R there is the slope.
+            let linear = self.rows.abs_diff(self.columns) == 2 && d == 0;
+            for lane in 0..N {
+                let limit = if linear { along[lane] } else { 0.0 };
+                let touching = inverse[lane] == 0.0;
+                across[lane] = if touching {
+                    limit
+                } else {
+                    across[lane] * inverse[lane]
+                };
+                along[lane] *= unit[lane];
+            }
+        }
+        let mut components = [[0.0; N]; Y];
+        for (component, &(d, at)) in components.iter_mut().zip(&self.coupling.components) {
+            for lane in 0..N {
+                component[lane] = along[d & 3][lane] * harmonics[at][lane]
+                    + across[d & 3][lane] * tangential[at][lane];
+            }
+        }
+        self.write(&components, stride, out);
+    }
+
+    #[inline(always)]
+    fn write<const N: usize, const Y: usize>(
+        &self,
+        components: &[[f64; N]; Y],
+        stride: usize,
+        out: &mut [[f64; N]],
+    ) {
+        let mut start = 0;
+        let mut ends = self.coupling.starts.iter().skip(1);
+        for i in 0..self.rows {
+            let begin = (self.row + i) * stride + self.column;
+            for (target, &end) in out[begin..begin + self.columns].iter_mut().zip(&mut ends) {
+                let mut sum = [0.0; N];
+                for &(component, weight) in &self.coupling.terms[start..end] {
+                    accumulate(&mut sum, weight, &components[component]);
+                }
+                *target = sum;
+                start = end;
+            }
+        }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::{Primitive, Term, slater_overlap};
+
+    fn metal() -> Vec<Shell> {
+        let d = vec![
+            Term {
+                zeta: 5.95,
+                coefficient: 0.55,
+            },
+            Term {
+                zeta: 2.3,
+                coefficient: 0.62,
+            },
+        ];
+        let d = Shell {
+            n: 3,
+            l: 2,
+            terms: d,
+        };
+        vec![
+            Shell::single(4, 0, 2.1),
+            Shell::single(4, 1, 2.1),
+            d.normalised().unwrap(),
+            Shell::single(4, 3, 7.0),
+        ]
+    }
+
+    fn light() -> Vec<Shell> {
+        vec![Shell::single(2, 0, 1.625), Shell::single(2, 1, 1.625)]
+    }
+
+    /// Displacements that take every branch, a touching pair among them.
+    const PLACES: [[f64; 8]; 3] = [
+        [0.0, 0.0, 1.0, -2.2, 0.3, 9.0, -30.0, 0.01],
+        [0.0, 0.0, -0.5, 1.1, 0.2, -3.0, 1.0, 0.02],
+        [0.0, 1.5, 0.7, 0.4, -0.1, 5.0, 0.5, 0.0],
+    ];
+
+    #[test]
+    fn p_block_is_the_textbook_form() {
+        // S_ij = S_π δ_ij + (S_σ − S_π) e_i e_j.
+        let kernel = PairKernel::new(&light(), &light()).unwrap();
+        let vector = [1.0, -0.4, 2.0];
+        let r = vector.iter().map(|c| c * c).sum::<f64>().sqrt();
+        let p = Primitive {
+            n: 2,
+            l: 1,
+            zeta: 1.625,
+        };
+        let sigma = slater_overlap(p, p, 0, r).unwrap();
+        let pi = slater_overlap(p, p, 1, r).unwrap();
+        let mut block = [0.0; 16];
+        kernel.block(vector, &mut block);
+        let axes = [2, 0, 1];
+        for i in 0..3 {
+            for j in 0..3 {
+                let isotropic = if i == j { pi } else { 0.0 };
+                let product = vector[axes[i]] * vector[axes[j]] / (r * r);
+                let expected = isotropic + (sigma - pi) * product;
+                assert!((block[(i + 1) * 4 + j + 1] - expected).abs() < 1e-15);
+            }
+        }
+    }
+
+    #[test]
+    fn lanes_have_the_bits_of_single_geometries() {
+        for (a, b) in [(light(), light()), (metal(), light()), (metal(), metal())] {
+            let kernel = PairKernel::new(&a, &b).unwrap();
+            let size = kernel.rows() * kernel.columns();
+            let mut lanes = vec![[0.0; 8]; size];
+            let mut slopes = vec![[0.0; 8]; 3 * size];
+            kernel.block_lanes(&PLACES, &mut lanes);
+            let (mut value, mut slope) = (vec![0.0; size], vec![0.0; 3 * size]);
+            for lane in 0..8 {
+                let place = PLACES.map(|axis| axis[lane]);
+                kernel.block(place, &mut value);
+                for (one, many) in value.iter().zip(&lanes) {
+                    assert_eq!(one.to_bits(), many[lane].to_bits());
+                }
+                kernel.gradient_lanes(&PLACES, &mut lanes, &mut slopes);
+                kernel.gradient(place, &mut value, &mut slope);
+                for (one, many) in value.iter().zip(&lanes).chain(slope.iter().zip(&slopes)) {
+                    assert_eq!(one.to_bits(), many[lane].to_bits());
+                    assert!(one.is_finite());
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn exchange_is_the_transpose() {
+        let forth = PairKernel::new(&metal(), &light()).unwrap();
+        let back = PairKernel::new(&light(), &metal()).unwrap();
+        let (mut s, mut t) = (vec![0.0; 64], vec![0.0; 64]);
+        forth.block([0.9, 1.4, -0.8], &mut s);
+        back.block([-0.9, -1.4, 0.8], &mut t);
+        for i in 0..16 {
+            for j in 0..4 {
+                assert!((s[i * 4 + j] - t[j * 16 + i]).abs() < 2e-15);
+            }
+        }
+    }
+
+    #[test]
+    fn touching_atoms_give_one_centre_overlaps() {
+        let kernel = PairKernel::new(&metal(), &metal()).unwrap();
+        let mut block = vec![0.0; 256];
+        for place in [[0.0; 3], [0.0, 1e-200, 0.0], [1e-9, 0.0, 0.0]] {
+            kernel.block(place, &mut block);
+            for i in 0..16 {
+                for j in 0..16 {
+                    let expected = if i == j { 1.0 } else { 0.0 };
+                    assert!((block[i * 16 + j] - expected).abs() < 1e-7, "{i} {j}");
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn refusals() {
+        let wide = Shell {
+            n: 2,
+            l: 0,
+            terms: vec![Term {
+                zeta: 1.0,
+                coefficient: 1.1,
+            }],
+        };
+        assert!(matches!(
+            PairKernel::new(&[wide], &light()),
+            Err(OverlapError::Norm { .. })
+        ));
+        let many = vec![Shell::single(4, 3, 1.0); 9];
+        assert!(matches!(
+            PairKernel::new(&many, &many),
+            Err(OverlapError::TooManyShells(324))
+        ));
+    }
+}
