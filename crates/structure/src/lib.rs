@@ -4,15 +4,25 @@
 //! What it is not for: anything that needs orbitals or energies. Lengths are in
 //! Å and angles in degrees throughout; conversions stand in one file.
 
+mod bonds;
+mod coordinate;
 mod element;
 mod element_table;
 mod molecule;
 mod neighbours;
+mod path;
+mod range;
+#[cfg(test)]
+mod test_molecules;
 mod units;
 mod vector;
 
+pub use bonds::BondGraph;
+pub use coordinate::{Coordinate, CoordinateError, CoordinateKind, measure};
 pub use element::{BondOrder, Element, OccupiedShell};
 pub use molecule::{LARGEST_COORDINATE, Molecule, MoleculeError, SMALLEST_DISTANCE};
+pub use path::{Alignment, Axis, FrameValues, PathError, PathPlan, align};
+pub use range::{LARGEST_POINT_COUNT, Range, RangeError};
 pub use units::{
     Angstrom, BOHR_IN_ANGSTROM, Bohr, DEGREE_IN_RADIANS, Degrees, ElectronVolt, HARTREE_IN_EV,
     Hartree, Radians,
