@@ -10,14 +10,21 @@
 //!
 //! Units: eV for energies, bohr⁻¹ for exponents, Å for positions.
 
+mod basis;
 mod contraction;
 mod coupling;
+mod cusachs;
+mod fill;
+mod gradient;
 mod method;
 mod nearest;
 mod parameters;
+mod plan;
 
+pub use basis::{AtomFunctions, Basis, BasisError, BasisFunction, BasisShell};
 pub use contraction::{contraction_norm, most_probable_radius};
 pub use coupling::{distance_dependent_k, weighted_k};
+pub use gradient::PairGradient;
 pub use method::{
     Coupling, Method, MethodError, POLARISED_HYDROGEN_HII_EV, POLARISED_HYDROGEN_ZETA,
 };
@@ -25,3 +32,4 @@ pub use parameters::{
     Checked, Confidence, DEFAULT_SET, ElementParameters, FileProblems, ParameterError,
     ParameterSet, Problem, SET_NAMES, ShellName, ShellParameters, Variant,
 };
+pub use plan::{AtomPair, HamiltonianPlan, PlanError};

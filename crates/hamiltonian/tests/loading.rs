@@ -1,5 +1,8 @@
 //! Reading, overlaying and choosing parameter sets; every kind of fault is reported at its place.
 
+// A failed expectation is the message of a test.
+#![allow(clippy::unwrap_used, clippy::panic)]
+
 use orbend_hamiltonian::{DEFAULT_SET, ParameterError, ParameterSet, SET_NAMES, ShellName};
 use orbend_structure::Element;
 
