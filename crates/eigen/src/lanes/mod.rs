@@ -1,0 +1,9 @@
+//! Eight problems of one size at once.
+
+pub(crate) mod assemble;
+pub(crate) mod chain;
+mod reduce;
+mod tridiagonal;
+mod workspace;
+
+pub use workspace::{LaneStatus, LaneWorkspace, SmallestOverlap};
