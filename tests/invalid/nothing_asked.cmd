@@ -1,0 +1,5 @@
+# no command at all
+args: 
+exit: 2
+says: usage | levels
+fix: levels | --help | usage

@@ -1,0 +1,6 @@
+# six electrons where eight are
+args: levels H2O --occupy "1a1:2 1b2:2 1b1:2"
+exit: 2
+says: 6
+says: 8
+fix: 8 | electrons | charge

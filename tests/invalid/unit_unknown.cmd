@@ -1,0 +1,6 @@
+# no such unit
+args: levels water.xyz --unit nm
+exit: 2
+says: nm
+fix: angstrom
+with: water.xyz
