@@ -1,1 +1,28 @@
-//! orbend-report
+//! What a calculation hands over: result documents, figures and terminal text.
+//!
+//! Everything here is drawn from one document; nothing is computed that the document does not hold.
+//!
+//! - [`LevelsDocument`], [`SweepDocument`], [`ShapeDocument`], [`ParamsDocument`]: versioned JSON
+//!   ([`to_json`], [`read_document`]) with a generated JSON Schema ([`schemas`]).
+//! - [`CsvWriter`]: one row per point and level (RFC 4180).
+//! - [`sweep_figure`], [`levels_figure`]: SVG with real text.
+//! - [`levels_text`], [`sweep_text`], [`params_text`]: text for a person at a terminal.
+//!
+//! It is not for: physics, symmetry, following lines, or writing to files and streams.
+
+mod csv_table;
+mod document;
+mod draw;
+mod figure;
+mod lettering;
+#[cfg(test)]
+mod synthetic;
+mod text;
+
+pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
+pub use document::*;
+pub use figure::{
+    ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering, Theme,
+    levels_figure, sweep_figure,
+};
+pub use text::{TextOptions, levels_text, params_text, sweep_text};

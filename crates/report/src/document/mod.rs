@@ -1,0 +1,31 @@
+//! The result documents and how they are written, read and described.
+
+mod common;
+mod levels;
+mod number;
+mod params;
+mod read;
+mod schema;
+mod shape;
+mod sweep;
+mod write;
+
+pub use common::{
+    AtomPosition, BasisFunction, BondLength, Checked, Geometry, Method, Missing, MoleculeRecord,
+    Program, ShellValues, Units, Warning,
+};
+pub use levels::{
+    AtomCharge, LevelRecord, LevelsDocument, NearMiss, OverlapPopulation, Point, ShellPopulation,
+    SymmetryRecord,
+};
+pub use number::{NotFinite, Number};
+pub use params::{ParamsDocument, Variant};
+pub use read::{Document, DocumentError, read_document};
+pub use schema::{LevelsSchema, ParamsSchema, ShapeSchema, SweepSchema, schemas};
+pub use shape::{Argument, Case, Curve, Ensemble, Flip, ShapeDocument};
+pub use sweep::{
+    Certificate, CertificateInterval, CertificateKind, CoordinateRecord, CoordinateUnit,
+    CrossingKind, CrossingRecord, LineRecord, MotionKind, Passport, SpecialLabel, SumMinimum,
+    SweepDocument,
+};
+pub use write::to_json;

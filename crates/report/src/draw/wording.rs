@@ -1,0 +1,76 @@
+//! The same words for the same things in figures and text.
+
+use crate::document::{CoordinateRecord, CoordinateUnit, MoleculeRecord, MotionKind, SweepDocument};
+
+use super::ticks;
+
+/// What the coordinate is, as in `H–S–H angle` (`dash` joins the atoms).
+pub(crate) fn coordinate_name(
+    coordinate: &CoordinateRecord,
+    molecule: &MoleculeRecord,
+    dash: &str,
+) -> String {
+    let symbol = |atom: &u32| -> String {
+        let index = (*atom as usize).checked_sub(1);
+        let element = index.and_then(|index| molecule.elements.get(index));
+        element.cloned().unwrap_or_else(|| atom.to_string())
+    };
+    let chain: Vec<String> = coordinate.atoms.iter().map(symbol).collect();
+    let chain = chain.join(dash);
+    match coordinate.kind {
+        MotionKind::Bend => format!("{chain} angle"),
+        MotionKind::Stretch => format!("{chain} distance"),
+        MotionKind::Twist => format!("{chain} torsion"),
+        MotionKind::Pyramid => format!("ligand{dash}{chain}{dash}ligand angle"),
+        MotionKind::Toward => "share of the path".to_owned(),
+    }
+}
+
+/// Symbol of a coordinate's unit.
+pub(crate) fn unit_symbol(unit: CoordinateUnit) -> &'static str {
+    match unit {
+        CoordinateUnit::Degree => "°",
+        CoordinateUnit::Angstrom => "Å",
+        CoordinateUnit::Share => "",
+    }
+}
+
+/// A value with its unit, as in `104°` or `1.59 Å`.
+pub(crate) fn value_with_unit(value: f64, unit: CoordinateUnit) -> String {
+    match unit {
+        CoordinateUnit::Degree => format!("{}°", ticks::short(value, 1)),
+        CoordinateUnit::Angstrom => format!("{} Å", ticks::short(value, 3)),
+        CoordinateUnit::Share => ticks::short(value, 3),
+    }
+}
+
+/// The sum's lowest place: as stated by the document, else its lowest point. Coordinate, sum, and
+/// whether it lies inside the range. None where all sums agree within 10⁻⁶ eV.
+pub(crate) fn lowest_sum(document: &SweepDocument) -> Option<(f64, f64, bool)> {
+    let known: Vec<(f64, f64)> = document
+        .points
+        .iter()
+        .filter_map(|point| Some((point.at.first()?.get(), point.sum?.get())))
+        .collect();
+    let low = known.iter().copied().min_by(|a, b| a.1.total_cmp(&b.1))?;
+    let high = known.iter().copied().max_by(|a, b| a.1.total_cmp(&b.1))?;
+    if high.1 - low.1 < 1e-6 {
+        return None;
+    }
+    if let Some(minimum) = &document.minimum {
+        return Some((minimum.at.get(), minimum.sum.get(), minimum.inside));
+    }
+    let ends = [known.first()?.0, known.last()?.0];
+    let inside = ends.iter().all(|end| (end - low.0).abs() > 1e-9);
+    Some((low.0, low.1, inside))
+}
+
+/// Charge as a superscript: `+`, `2−`; empty for none.
+pub(crate) fn charge(charge: i32) -> String {
+    let sign = if charge > 0 { "+" } else { "\u{2212}" };
+    match charge.unsigned_abs() {
+        0 => String::new(),
+        1 => sign.to_owned(),
+        more => format!("{more}{sign}"),
+    }
+}

@@ -1,0 +1,25 @@
+//! Figures as SVG with real text: the correlation diagram of a sweep, the ladder of one geometry.
+
+mod axes;
+mod canvas;
+mod key;
+mod labels;
+mod ladder;
+mod measure;
+mod metadata;
+mod options;
+mod panel;
+pub(crate) mod scale;
+mod sheet;
+mod sum;
+mod sweep;
+#[cfg(test)]
+mod tests;
+mod theme;
+mod xml;
+
+pub use ladder::levels_figure;
+pub use options::{
+    ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering, Theme,
+};
+pub use sweep::sweep_figure;
