@@ -4,23 +4,40 @@
 //! everything else (classes, characters, irreps, adapted combinations, descent) follows from them.
 //! The crate knows nothing of energies.
 
+mod adapt;
 mod axes;
+mod block;
 mod characters;
 mod closure;
+mod descent;
 mod element;
 mod error;
 mod find;
 mod group;
+mod label;
 mod linear;
 mod matrix;
 mod multiplication;
 mod names;
 mod nucleus;
+mod numbering;
+mod path;
+mod representation;
+mod screen;
 mod search;
+mod shells;
 
+pub use adapt::AdaptedBasis;
 pub use axes::Frame;
+pub use block::Block;
+pub use descent::Descent;
 pub use error::SymmetryError;
 pub use find::{NearMiss, Symmetry, find, symmetrize};
 pub use group::{Class, Irrep, Operation, PointGroup};
+pub use label::{Label, degenerate_sets};
 pub use matrix::{Matrix3, Vector3};
 pub use nucleus::Nucleus;
+pub use numbering::Numbering;
+pub use path::{PathGroup, path_group};
+pub use screen::GroupScreen;
+pub use shells::OrbitalShell;

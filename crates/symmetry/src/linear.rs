@@ -133,10 +133,6 @@ pub(crate) fn linear_character(parts: &Parts, axis: Vector3, matrix: &Matrix3) -
     Some(sign * 2.0 * cos_multiple(cos, waves))
 }
 
-/// Character of any orthogonal matrix in the irrep `l` of the group of an atom.
-pub(crate) fn atom_character(l: usize, matrix: &Matrix3) -> f64 {
-    shell_character(l, matrix)
-}
 
 /// Trace of an orthogonal matrix on the functions of angular momentum `l`:
 /// Σ cos mθ over m = −l … l, times (−1)^l if improper.
