@@ -16,6 +16,7 @@ mod range;
 mod test_molecules;
 mod units;
 mod vector;
+mod xyz;
 
 pub use bonds::BondGraph;
 pub use coordinate::{Coordinate, CoordinateError, CoordinateKind, measure};
@@ -27,3 +28,4 @@ pub use units::{
     Angstrom, BOHR_IN_ANGSTROM, Bohr, DEGREE_IN_RADIANS, Degrees, ElectronVolt, HARTREE_IN_EV,
     Hartree, Radians,
 };
+pub use xyz::{Frame, LengthUnit, XyzError, XyzOptions, read_xyz, read_xyz_bytes, write_xyz};

@@ -370,11 +370,13 @@ fn values_outside_are_refused() {
 
 #[test]
 fn clash_between_two_points_is_found() {
-    // Two separate atoms pass through each other half way between the points.
+    // The far H passes through He; both ends of the two-point range are clear.
     let start = build("He 0 0 0; H 0.75 0 0; H -3.25 0 0");
-    let line = coordinate(Stretch, "2-3=4..2:2").alone();
-    let clear = PathPlan::new(&start, &[line], &[]);
-    assert!(matches!(clear, Err(PathError::Clash { .. })) || clear.is_ok());
+    let line = coordinate(Stretch, "2-3=4..0.5:3.5").alone();
+    let error = PathPlan::new(&start, &[line], &[]).unwrap_err();
+    assert!(error.to_string().starts_with("He1 and H3 come to 0."), "{error}");
+    let apart = coordinate(Stretch, "2-3=4..1:3").alone();
+    assert!(PathPlan::new(&start, &[apart], &[]).is_ok());
     let frames = [
         build("He 0 0 0; H 1 0.01 0"),
         build("He 0 0 0; H -1 0.01 0"),
