@@ -18,6 +18,18 @@ pub(crate) struct Run {
     pub(crate) shift: Shift,
 }
 
+impl Run {
+    /// Whether this is a prime, whose glyph is raised already.
+    pub(crate) fn is_prime(&self) -> bool {
+        self.text.starts_with(['′', '″'])
+    }
+
+    /// Size relative to the text.
+    pub(crate) fn scale(&self) -> f64 {
+        if self.shift == Shift::None || self.is_prime() { 1.0 } else { SMALL }
+    }
+}
+
 /// A whole label.
 #[derive(Clone, Debug, Default, PartialEq, Eq)]
 pub(crate) struct Lettering {
@@ -107,7 +119,7 @@ impl Lettering {
                     below = own * SMALL;
                 }
                 Shift::Super => {
-                    width += f64::max(below, own * SMALL);
+                    width += f64::max(below, own * run.scale());
                     below = 0.0;
                 }
             }

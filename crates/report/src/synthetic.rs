@@ -304,7 +304,9 @@ pub(crate) fn silicon_difluoride() -> SweepDocument {
         sketch(("9a1", "5a1", "a1"), ("9a1", "7sigma_g+"), shape(&xs, &[1.8, 5.0, 7.0])),
         sketch(("6b2", "4b2", "b2"), ("6b2", "6sigma_u+"), shape(&xs, &[4.0, 9.0, 12.0])),
     ];
-    sweep(&frame, &xs, &lines)
+    let mut document = sweep(&frame, &xs, &lines);
+    document.molecule.title = "SiF2".into();
+    document
 }
 
 /// Pyramidal to planar AX3 with degenerate sets.

@@ -8,6 +8,8 @@ mod read;
 mod schema;
 mod shape;
 mod sweep;
+#[cfg(test)]
+mod tests;
 mod write;
 
 pub use common::{

@@ -12,18 +12,19 @@ pub(crate) struct Ticks {
 }
 
 /// Steps in degrees that divide a turn as a chemist would, with the small step between.
-const DEGREE_STEPS: [(f64, f64); 11] = [
+const DEGREE_STEPS: [(f64, f64); 12] = [
     (0.5, 0.1),
     (1.0, 0.5),
     (2.0, 1.0),
     (5.0, 1.0),
     (10.0, 5.0),
     (15.0, 5.0),
-    (20.0, 10.0),
     (30.0, 10.0),
     (45.0, 15.0),
     (60.0, 30.0),
     (90.0, 30.0),
+    (180.0, 90.0),
+    (360.0, 180.0),
 ];
 
 /// Ticks on an angle axis, at most `most` of them.
@@ -35,7 +36,7 @@ pub(crate) fn degree_ticks(from: f64, to: f64, most: usize) -> Ticks {
     let (step, small) = DEGREE_STEPS
         .into_iter()
         .find(|(step, _)| count(low, high, *step) <= most)
-        .unwrap_or((90.0, 30.0));
+        .unwrap_or((720.0, 360.0));
     build(low, high, step, small, usize::from(step < 1.0))
 }
 
@@ -130,7 +131,7 @@ mod tests {
     fn angles_get_the_numbers_a_chemist_expects() {
         assert_eq!(degree_ticks(90.0, 180.0, 6).major, [90.0, 120.0, 150.0, 180.0].to_vec());
         assert_eq!(degree_ticks(60.0, 180.0, 6).major, [60.0, 90.0, 120.0, 150.0, 180.0].to_vec());
-        assert_eq!(degree_ticks(0.0, 90.0, 6).major, [0.0, 20.0, 40.0, 60.0, 80.0].to_vec());
+        assert_eq!(degree_ticks(0.0, 90.0, 6).major, [0.0, 30.0, 60.0, 90.0].to_vec());
     }
 
     #[test]

@@ -21,9 +21,46 @@ pub(crate) fn coordinate_name(
         MotionKind::Bend => format!("{chain} angle"),
         MotionKind::Stretch => format!("{chain} distance"),
         MotionKind::Twist => format!("{chain} torsion"),
-        MotionKind::Pyramid => format!("ligand{dash}{chain}{dash}ligand angle"),
+        MotionKind::Pyramid => {
+            let ligand = only_ligand(coordinate, molecule).unwrap_or("ligand");
+            format!("{ligand}{dash}{chain}{dash}{ligand} angle")
+        }
         MotionKind::Toward => "share of the path".to_owned(),
     }
+}
+
+/// The ligands' element where a four-atom molecule leaves no doubt.
+fn only_ligand<'a>(coordinate: &CoordinateRecord, molecule: &'a MoleculeRecord) -> Option<&'a str> {
+    let centre = (*coordinate.atoms.first()? as usize).checked_sub(1)?;
+    let mut others = molecule.elements.iter().enumerate().filter(|(k, _)| *k != centre);
+    let first = others.next()?.1;
+    let alike = others.all(|(_, element)| element == first);
+    (molecule.elements.len() == 4 && alike).then_some(first.as_str())
+}
+
+/// The formula for a heading: as the user wrote it where the title is a formula of the same atoms
+/// (`SiF2`), else in Hill order (`F2Si`).
+pub(crate) fn heading_formula(molecule: &MoleculeRecord) -> &str {
+    let counts = |formula: &str| -> Option<Vec<(String, u32)>> {
+        let mut found: Vec<(String, u32)> = Vec::new();
+        let mut rest = formula;
+        while !rest.is_empty() {
+            let mut end = rest.chars().next().filter(char::is_ascii_uppercase)?.len_utf8();
+            end += rest[end..].chars().take_while(char::is_ascii_lowercase).count();
+            let digits = rest[end..].chars().take_while(char::is_ascii_digit).count();
+            let number = if digits == 0 { 1 } else { rest[end..end + digits].parse().ok()? };
+            match found.iter_mut().find(|(element, _)| *element == rest[..end]) {
+                Some((_, count)) => *count += number,
+                None => found.push((rest[..end].to_owned(), number)),
+            }
+            rest = &rest[end + digits..];
+        }
+        found.sort();
+        Some(found)
+    };
+    let title = molecule.title.trim();
+    let same = !title.is_empty() && counts(title).is_some_and(|t| counts(&molecule.formula) == Some(t));
+    if same { title } else { &molecule.formula }
 }
 
 /// Symbol of a coordinate's unit.
@@ -72,5 +109,30 @@ pub(crate) fn charge(charge: i32) -> String {
         0 => String::new(),
         1 => sign.to_owned(),
         more => format!("{more}{sign}"),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic;
+
+    #[test]
+    fn a_heading_keeps_the_users_formula_of_the_same_atoms() {
+        let mut molecule = synthetic::silicon_difluoride().molecule;
+        assert_eq!(heading_formula(&molecule), "SiF2");
+        for other in ["SiF4", "my molecule", "sif2", "SiF99999999999"] {
+            molecule.title = other.into();
+            assert_eq!(heading_formula(&molecule), "F2Si");
+        }
+    }
+
+    #[test]
+    fn coordinates_are_named_by_their_atoms() {
+        let document = synthetic::boron_trifluoride();
+        let name = coordinate_name(&document.coordinates[0], &document.molecule, "-");
+        assert_eq!(name, "F-B-F angle");
+        assert_eq!(charge(-2), "2\u{2212}");
+        assert_eq!(value_with_unit(1.590, CoordinateUnit::Angstrom), "1.59 Å");
     }
 }

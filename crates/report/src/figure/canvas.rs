@@ -235,6 +235,7 @@ fn markup(lettering: &Lettering, size: f64) -> String {
         let wanted = match run.shift {
             Shift::None => 0.0,
             Shift::Sub => 0.18 * size,
+            Shift::Super if run.is_prime() => -0.1 * size,
             Shift::Super => -0.36 * size,
         };
         let content = escape(&run.text);
@@ -242,7 +243,7 @@ fn markup(lettering: &Lettering, size: f64) -> String {
             text.push_str(&content);
         } else {
             let back = if run.shift == Shift::Super { below } else { 0.0 };
-            let font = if run.shift == Shift::None { 1.0 } else { SMALL };
+            let font = run.scale();
             let _ = write!(text, "<tspan dy=\"{}\"", length(wanted - height));
             if back > 0.0 {
                 let _ = write!(text, " dx=\"{}\"", length(-back));

@@ -4,7 +4,7 @@ use crate::document::{LevelRecord, LevelsDocument};
 use crate::draw::nearest::nearest;
 use crate::draw::spread::{room as label_room, spread};
 use crate::draw::ticks::{ascii_number, number};
-use crate::draw::wording::charge;
+use crate::draw::wording::{charge, heading_formula};
 use crate::lettering::Lettering;
 
 use super::axes;
@@ -91,13 +91,16 @@ pub(crate) fn compose(document: &LevelsDocument, options: &FigureOptions) -> Res
     let title = format!("orbital energy / {}", options.energy_unit.symbol());
     axes::energy_axis(&mut canvas, style, (&scale, &ticks), options.energy_unit, axis, &title);
 
-    draw_rungs(&mut canvas, &shown, &scale, &measure, colours, (left, right), &colour);
+    let mut edges = draw_rungs(&mut canvas, &shown, &scale, &measure, colours, (left, right), &colour);
+    edges.reverse();
     let targets: Vec<f64> = shown.iter().rev().map(|rung| scale.y(rung.energy)).collect();
     let half = 0.5 * (ASCENT + DESCENT) * size;
     let places = spread(&targets, measure.label_distance(), top + half, bottom - half);
     canvas.xml.open("g", &[("class", "labels")]);
-    for ((rung, target), place) in shown.iter().rev().zip(&targets).zip(&places) {
-        let (near, far) = (right + 0.2 * measure.leader(), labels - 0.35 * measure.leader());
+    for (((rung, target), place), edge) in
+        shown.iter().rev().zip(&targets).zip(&places).zip(&edges)
+    {
+        let (near, far) = (edge + 0.3 * measure.leader(), labels - 0.35 * measure.leader());
         let bend = labels - 1.2 * measure.leader();
         let path = format!(
             "M{} {}L{} {1}L{} {}",
@@ -107,7 +110,7 @@ pub(crate) fn compose(document: &LevelsDocument, options: &FigureOptions) -> Res
             length(far),
             length(*place)
         );
-        canvas.stroke(&path, colours.faint, 0.3 * measure.stroke, &[]);
+        canvas.stroke(&path, colours.soft, 0.25 * measure.stroke, &[]);
         let base = place + 0.34 * size;
         canvas.text((labels, base), Anchor::Start, size, colour(rung), &Lettering::level(&rung.label));
         canvas.text((values, base), Anchor::End, measure.tick, colours.soft, &energy_text(rung));
@@ -118,7 +121,7 @@ pub(crate) fn compose(document: &LevelsDocument, options: &FigureOptions) -> Res
     let group = Lettering::group(&point.point_group);
     canvas.text((middle, top - 0.75 * size), Anchor::Middle, size, colours.soft, &group);
     if options.title {
-        let formula = &document.molecule.formula;
+        let formula = heading_formula(&document.molecule);
         let heading = Lettering::formula(formula, &charge(document.molecule.charge));
         if heading.width(measure.heading) < measure.page - 2.0 * measure.pad {
             let at = (0.5 * measure.page, measure.pad + measure.heading);
@@ -193,7 +196,7 @@ fn shade(
     true
 }
 
-/// Bars; those too close to be told apart share a row.
+/// Bars; those too close to be told apart share a row. Returns the right edge of each rung's row.
 fn draw_rungs<'a>(
     canvas: &mut Canvas,
     shown: &[&'a Rung],
@@ -202,7 +205,7 @@ fn draw_rungs<'a>(
     colours: &Colours,
     (left, right): (f64, f64),
     colour: &impl Fn(&Rung) -> &'static str,
-) {
+) -> Vec<f64> {
     let mut rows: Vec<Vec<&'a Rung>> = Vec::new();
     for rung in shown {
         let near = |row: &Vec<&Rung>| {
@@ -213,12 +216,14 @@ fn draw_rungs<'a>(
             None => rows.push(vec![rung]),
         }
     }
+    let mut edges = Vec::new();
     canvas.xml.open("g", &[("class", "levels")]);
     for row in rows {
         let bars: Vec<(&Rung, f64)> =
             row.iter().flat_map(|rung| rung.electrons.iter().map(move |e| (*rung, *e))).collect();
         let slot = ((right - left) / bars.len() as f64).min(4.4 * measure.label);
         let start = 0.5 * (left + right) - 0.5 * slot * bars.len() as f64;
+        edges.extend(row.iter().map(|_| start + (bars.len() as f64 - 0.08) * slot));
         for (k, (rung, electrons)) in bars.iter().enumerate() {
             let (from, to) = (start + (k as f64 + 0.08) * slot, start + (k as f64 + 0.92) * slot);
             let y = scale.y(rung.energy);
@@ -231,6 +236,7 @@ fn draw_rungs<'a>(
         }
     }
     canvas.xml.close();
+    edges
 }
 
 fn frame(
@@ -241,7 +247,7 @@ fn frame(
     height: f64,
 ) -> Result<Canvas, FigureError> {
     let prefix = &options.id_prefix;
-    let formula = format!("{}{}", document.molecule.formula, charge(document.molecule.charge));
+    let formula = format!("{}{}", heading_formula(&document.molecule), charge(document.molecule.charge));
     let mut xml = open_page(options, Measure::of(options.width).page, height);
     let title = format!("Orbital levels of {formula}");
     xml.text("title", &[("id", &format!("{prefix}-title"))], &title);

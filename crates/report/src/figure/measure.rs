@@ -64,9 +64,9 @@ impl Measure {
             FigureWidth::Slide => Self {
                 page: 960.0,
                 least_height: 540.0,
-                main: 316.0,
-                sum: 72.0,
-                pad: 14.0,
+                main: 290.0,
+                sum: 70.0,
+                pad: 12.0,
                 label: 17.0,
                 tick: 14.0,
                 title: 15.0,

@@ -201,6 +201,10 @@ pub(crate) fn mark_crossings(canvas: &mut Canvas, sheet: &Sheet<'_>) -> (bool, b
         }
         marked.push((x, y));
         let size = 1.9 * sheet.measure.stroke;
+        // Lines that meet at an end have one label there, which says it.
+        if x - sheet.left < size || sheet.right - x < size {
+            continue;
+        }
         let thin = 0.5 * sheet.measure.stroke;
         match crossing.kind {
             CrossingKind::Crossing => {

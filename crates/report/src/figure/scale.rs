@@ -22,9 +22,9 @@ pub(crate) struct EnergyScale {
 }
 
 /// An empty stretch is left out when it is longer than this, in eV, and than [`BREAK_SHARE`].
-const BREAK_EV: f64 = 5.0;
+const BREAK_EV: f64 = 8.0;
 /// The same as a share of the whole range.
-const BREAK_SHARE: f64 = 0.22;
+const BREAK_SHARE: f64 = 0.25;
 /// Empty lines this far above the highest occupied energy are left out of the automatic range, in eV.
 const EMPTY_REACH_EV: f64 = 12.0;
 
@@ -59,14 +59,14 @@ pub(crate) fn check_window(window: (f64, f64), extents: &[(f64, f64, bool)]) -> 
     Err(FigureError::EmptyWindow { from, to, lowest, highest })
 }
 
-/// Energy ranges to show: one, or several where wide empty stretches are left out. The stretch
-/// between highest occupied and lowest empty line is never left out.
+/// Energy ranges to show: one, or several where wide empty stretches between occupied lines are left
+/// out (deep levels far below the rest).
 pub(crate) fn ranges(window: (f64, f64), padded: bool, extents: &[(f64, f64, bool)]) -> Vec<(f64, f64)> {
     let span = (window.1 - window.0).max(1e-3);
     if !padded {
         return vec![window];
     }
-    let pad = (0.025 * span).max(0.25);
+    let pad = (0.04 * span).max(0.25);
     let mut inside: Vec<(f64, f64, bool)> =
         extents.iter().copied().filter(|e| e.1 >= window.0 && e.0 <= window.1).collect();
     inside.sort_by(|a, b| a.0.total_cmp(&b.0));
@@ -76,15 +76,14 @@ pub(crate) fn ranges(window: (f64, f64), padded: bool, extents: &[(f64, f64, boo
     let mut filled = true;
     for (low, high, occupied) in inside {
         let empty = low - end;
-        let frontier = filled != occupied;
-        if end.is_finite() && empty > BREAK_EV && empty > BREAK_SHARE * span && !frontier {
+        filled = filled && occupied;
+        if end.is_finite() && empty > BREAK_EV && empty > BREAK_SHARE * span && filled {
             found.push((start - pad, end + pad));
             start = low;
         }
         if high > end {
             end = high;
         }
-        filled = filled && occupied;
     }
     found.push((start - pad, window.1 + pad));
     found

@@ -5,7 +5,7 @@ use crate::draw::wording::{lowest_sum, value_with_unit};
 use crate::lettering::Lettering;
 
 use super::axes::energy_axis;
-use super::canvas::{Anchor, Canvas, path};
+use super::canvas::{ASCENT, Anchor, Canvas, path};
 use super::scale::EnergyScale;
 use super::sheet::Sheet;
 use super::xml::length;
@@ -45,17 +45,36 @@ pub(crate) fn draw(canvas: &mut Canvas, sheet: &Sheet<'_>, top: f64, bottom: f64
     if let Some((at, sum, _)) = lowest {
         let place = (sheet.x(at), scale.y(sum - zero));
         canvas.disc(place, 1.4 * measure.stroke, colours.ink, (colours.ground, 0.5 * measure.stroke));
-        mark(canvas, sheet, at, place);
+        let height = |x: f64| {
+            let found = curves(&sheet.xs, &relative).iter().find_map(|curve| curve.value(x));
+            found.map(|energy| scale.y(energy))
+        };
+        mark(canvas, sheet, at, place, top, &height);
     }
     canvas.xml.close();
 }
 
-fn mark(canvas: &mut Canvas, sheet: &Sheet<'_>, at: f64, (x, y): (f64, f64)) {
+/// Writes the place of the lowest sum above the curve, clear of it where the panel has room.
+fn mark(
+    canvas: &mut Canvas,
+    sheet: &Sheet<'_>,
+    at: f64,
+    (x, y): (f64, f64),
+    top: f64,
+    height: &impl Fn(f64) -> Option<f64>,
+) {
     let Some(coordinate) = sheet.document.coordinates.first() else { return };
     let size = sheet.measure.tick;
     let text = Lettering::plain(value_with_unit(at, coordinate.unit));
     let half = 0.5 * text.width(size);
     let middle = x.clamp(sheet.left + half + 2.0, sheet.right - half - 2.0);
+    let (from, to) = sheet.span();
+    let highest = (0..=8)
+        .map(|k| middle + (f64::from(k) / 4.0 - 1.0) * (half + 0.3 * size))
+        .map(|x| from + (x - sheet.left) / (sheet.right - sheet.left) * (to - from))
+        .filter_map(height)
+        .fold(y, f64::min);
+    let base = (highest.min(y - 0.4 * size) - 0.4 * size).max(top + ASCENT * size);
     let colours = sheet.colours;
     let halo = length(0.3 * size);
     let more = [
@@ -64,7 +83,7 @@ fn mark(canvas: &mut Canvas, sheet: &Sheet<'_>, at: f64, (x, y): (f64, f64)) {
         ("stroke-width", &halo),
         ("stroke-linejoin", "round"),
     ];
-    canvas.styled_text((middle, y - 0.75 * size), Anchor::Middle, size, colours.ink, &text, &more);
+    canvas.styled_text((middle, base), Anchor::Middle, size, colours.ink, &text, &more);
 }
 
 /// A dotted line through the main panel where the sum is lowest inside the range.

@@ -2,7 +2,7 @@
 
 use crate::document::SweepDocument;
 use crate::draw::spread::room as label_room;
-use crate::draw::wording::{charge, value_with_unit};
+use crate::draw::wording::{charge, heading_formula, value_with_unit};
 use crate::lettering::Lettering;
 
 use super::canvas::{ASCENT, Anchor, Canvas, DESCENT};
@@ -39,7 +39,7 @@ pub(crate) fn compose(document: &SweepDocument, options: &FigureOptions) -> Resu
 
     // Downwards: heading, groups, main panel, sum, axis, key.
     let size = measure.label;
-    let heading = Lettering::formula(&document.molecule.formula, &charge(document.molecule.charge));
+    let heading = Lettering::formula(heading_formula(&document.molecule), &charge(document.molecule.charge));
     let titled = options.title && heading.width(measure.heading) < measure.page - 2.0 * measure.pad;
     let crowd = starts.len().max(ends.len());
     let needed = label_room(crowd, measure.label_distance()) + (ASCENT + DESCENT) * size;

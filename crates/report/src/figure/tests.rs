@@ -157,6 +157,28 @@ fn a_missing_energy_breaks_the_line() {
     assert_eq!(line.matches("<path").count(), 2);
 }
 
+/// The committed figures, byte for byte: a change shows in review.
+#[test]
+fn committed_figures_are_current() {
+    let directory = concat!(env!("CARGO_MANIFEST_DIR"), "/golden");
+    let documents = [
+        ("h2s", synthetic::hydrogen_sulfide()),
+        ("sif2", synthetic::silicon_difluoride()),
+        ("bf3", synthetic::boron_trifluoride()),
+    ];
+    for (name, document) in documents {
+        let svg = sweep::sweep_figure(&document, &FigureOptions::default()).unwrap();
+        let file = format!("{directory}/{name}.svg");
+        if std::env::var_os("ORBEND_UPDATE").is_some() {
+            std::fs::write(&file, &svg).unwrap();
+        }
+        assert!(
+            std::fs::read_to_string(&file).unwrap_or_default() == svg,
+            "{file} differs; after a look refresh it with: ORBEND_UPDATE=1 cargo test -p orbend-report"
+        );
+    }
+}
+
 /// With ORBEND_FIGURES=DIRECTORY the figures are written there, to be looked at.
 #[test]
 fn figures_to_look_at() {

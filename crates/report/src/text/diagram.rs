@@ -54,6 +54,7 @@ pub(crate) fn draw(document: &SweepDocument, all: &[Bundle], options: &TextOptio
     let mut out = format!("{:>axis_width$}\n", "eV");
     for (row, cell_row) in cells.iter_mut().enumerate() {
         let line: String = cell_row.iter().collect();
+        let bar = if left_out(&scale, row) { '~' } else { bar };
         let text = format!(
             "{:>axis_width$} {bar}{:>left$} {line} {}",
             axis[row],
@@ -74,6 +75,12 @@ pub(crate) fn draw(document: &SweepDocument, all: &[Bundle], options: &TextOptio
         out.push_str(&format!("{}{from}{}{to}\n", " ".repeat(indent), " ".repeat(space)));
     }
     out
+}
+
+/// Whether a stretch of the axis is left out at this row.
+fn left_out(scale: &EnergyScale, row: usize) -> bool {
+    let middle = (row as f64 + 0.5) * DOWN as f64;
+    scale.segments.windows(2).any(|pair| pair[1].bottom <= middle && middle <= pair[0].top + 0.5 * DOWN as f64)
 }
 
 fn at_row(labels: &Labels, row: usize) -> &str {

@@ -12,7 +12,7 @@ pub use sweep::sweep_text;
 
 use crate::document::{Method, MoleculeRecord, Warning};
 use crate::draw::ticks::short;
-use crate::draw::wording::charge;
+use crate::draw::wording::{charge, heading_formula};
 use crate::figure::Numbering;
 use crate::lettering::Lettering;
 
@@ -80,7 +80,7 @@ fn heading(out: &mut String, options: &TextOptions, molecule: &MoleculeRecord, m
         out,
         &format!(
             "{}{}: {} valence electrons, {unpaired}",
-            molecule.formula,
+            heading_formula(molecule),
             charge(molecule.charge),
             molecule.valence_electrons
         ),
