@@ -79,7 +79,8 @@ impl Block {
             }
         }
         for i in (0..m).rev() {
-            for j in 0..=i {
+            // The diagonal first: it reads column i, which the mirrored writes then overwrite.
+            for j in (0..=i).rev() {
                 let mut total = [0.0; N];
                 for &(k, factor) in &self.factors[i] {
                     let x = &out[k * m + j];
@@ -88,7 +89,6 @@ impl Block {
                     }
                 }
                 out[i * m + j] = total;
-                // Column i of the rows above is not read again.
                 out[j * m + i] = total;
             }
         }

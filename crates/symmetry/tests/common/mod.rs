@@ -1,6 +1,8 @@
 //! Molecules and groups that the checks share.
 #![allow(dead_code, missing_docs, unreachable_pub)]
 
+pub mod molecules;
+
 use orbend_symmetry::{Nucleus, PointGroup, find};
 
 pub type Matrix3 = [[f64; 3]; 3];
