@@ -20,7 +20,7 @@ pub struct Primitive {
 ///
 /// Positive where the functions are positive on the same sides, so ⟨2pσ|2pσ⟩ is +1 at R = 0 and
 /// negative far away. In the convention of Mulliken, Rieke, Orloff & Orloff, J. Chem. Phys. 17,
-/// 1248 (1949), where the axes face each other, the value has the extra factor (−1)^l′.
+/// 1248 (1949), where the axes face each other, the value has the extra factor (−1)^(l′+m).
 ///
 /// The tables are made anew for each call: use a [`crate::PairKernel`] where speed matters.
 ///

@@ -11,7 +11,7 @@
 //!   (see [`harmonics`]).
 //! - A diatomic integral ([`slater_overlap`]) has both local z axes along A→B. Mulliken, Rieke,
 //!   Orloff & Orloff, J. Chem. Phys. 17, 1248 (1949) let the axes face each other instead; their
-//!   value is ours times (−1)^l of the second function.
+//!   value is ours times (−1)^(l+m) of the second function.
 //!
 //! # Method
 //! Prolate spheroidal coordinates (ξ, η) turn a diatomic integral into a sum of products of the
