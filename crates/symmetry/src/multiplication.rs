@@ -1,6 +1,6 @@
 //! The multiplication table of a group, and the exact matrices behind approximate ones.
 
-use crate::matrix::{IDENTITY, Matrix3, largest_difference, orthogonal_factor, product};
+use crate::matrix::{IDENTITY, Matrix3, largest_difference, orthogonal_factor, product, transpose};
 
 /// Which operation follows from two: `times(i, j)` is "first j, then i". Operation 0 is the
 /// identity.
@@ -92,8 +92,8 @@ impl Multiplication {
     }
 
     /// Matrices that obey the table exactly, next to approximate ones: each is replaced by the
-    /// orthogonal factor of the mean of R(h) R(h⁻¹g) over all h, until nothing moves (the error
-    /// is squared every time).
+    /// orthogonal factor of the mean of R(h)ᵀ R(hg) over all h, until nothing moves; the error is
+    /// squared every time (Grove, Karcher & Ruh, Math. Ann. 211, 7 (1974)).
     pub(crate) fn exact(&self, approximate: &[Matrix3]) -> Vec<Matrix3> {
         let mut current = approximate.to_vec();
         for _ in 0..6 {
@@ -104,7 +104,7 @@ impl Multiplication {
             for g in 0..self.order {
                 let mut mean = [[0.0; 3]; 3];
                 for h in 0..self.order {
-                    let m = product(&current[h], &current[self.times(self.inverse(h), g)]);
+                    let m = product(&transpose(&current[h]), &current[self.times(h, g)]);
                     for i in 0..3 {
                         for j in 0..3 {
                             mean[i][j] += m[i][j];
