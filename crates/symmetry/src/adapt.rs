@@ -181,7 +181,7 @@ impl PointGroup {
         columns.sort_by_key(|column| column.row);
         let irrep = &self.irreps[k];
         let rows: Vec<usize> = columns.iter().map(|column| column.row).collect();
-        let factors = columns
+        let factors: Vec<Vec<(usize, f64)>> = columns
             .iter()
             .map(|column| {
                 let mut list: Vec<(usize, f64)> = column
@@ -194,6 +194,12 @@ impl PointGroup {
                 list
             })
             .collect();
+        let mut reach = vec![0; rows.len()];
+        for (i, list) in factors.iter().enumerate() {
+            for &(place, _) in list {
+                reach[place] = i + 1;
+            }
+        }
         let partners = if irrep.paired { 0 } else { irrep.dimension - 1 };
         let vectors = |row: usize| columns.iter().map(|c| c.vectors[row].clone()).collect();
         Block {
@@ -204,6 +210,7 @@ impl PointGroup {
             partners: (1..=partners).map(vectors).collect(),
             rows,
             factors,
+            reach,
         }
     }
 

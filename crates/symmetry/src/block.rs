@@ -23,6 +23,8 @@ pub struct Block {
     pub(crate) rows: Vec<usize>,
     /// Adapted function i is the projection of Σ factor × function `rows[k]`, k ≤ i.
     pub(crate) factors: Vec<Vec<(usize, f64)>>,
+    /// One more than the last adapted function whose factors use row k.
+    pub(crate) reach: Vec<usize>,
 }
 
 impl Block {
@@ -74,7 +76,9 @@ impl Block {
         let m = self.size();
         for (k, &row) in self.rows.iter().enumerate() {
             let line = &full[row * functions..(row + 1) * functions];
-            for (target, column) in out[k * m..(k + 1) * m].iter_mut().zip(&self.first) {
+            // Only the lower triangle is made, so later columns are not wanted.
+            let wanted = &mut out[k * m..k * m + self.reach[k]];
+            for (target, column) in wanted.iter_mut().zip(&self.first) {
                 *target = combination(line, column);
             }
         }

@@ -61,10 +61,16 @@ pub fn find(nuclei: &[Nucleus], tolerance_angstrom: f64) -> Result<Symmetry, Sym
     let sets = chain(&found);
     let (within, beyond): (Vec<ClosedSet>, Vec<ClosedSet>) =
         sets.into_iter().partition(|set| set.deviation <= tolerance_angstrom);
-    let set = within
-        .last()
-        .ok_or(SymmetryError::Inconsistent("the identity was not found"))?;
-    let raw = exact_operations(&found, set)?;
+    // A set at the very edge of the tolerance may close without being a group; the one before it
+    // then counts.
+    let mut raw = Err(SymmetryError::Inconsistent("the identity was not found"));
+    for set in within.iter().rev() {
+        raw = exact_operations(&found, set);
+        if raw.is_ok() {
+            break;
+        }
+    }
+    let raw = raw?;
     let deviation = raw
         .iter()
         .map(|op| deviation_of(&atoms.positions, &op.matrix, &op.permutation))
@@ -73,11 +79,8 @@ pub fn find(nuclei: &[Nucleus], tolerance_angstrom: f64) -> Result<Symmetry, Sym
     for (k, set) in beyond.iter().enumerate() {
         // Sets that appear together count as the largest of them.
         let last = beyond.get(k + 1).is_none_or(|next| next.deviation > set.deviation + 1e-6);
-        if last {
-            near_misses.push(NearMiss {
-                name: name_of(&found, set)?,
-                tolerance_angstrom: set.deviation,
-            });
+        if last && let Ok(name) = name_of(&found, set) {
+            near_misses.push(NearMiss { name, tolerance_angstrom: set.deviation });
         }
     }
     if off <= limit {

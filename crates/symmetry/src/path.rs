@@ -5,9 +5,9 @@ use crate::error::SymmetryError;
 use crate::find::exact_operations;
 use crate::group::PointGroup;
 use crate::linear::{atom_group, end_for_end, linear_group};
-use crate::matrix::{Vector3, any_perpendicular, dot};
+use crate::matrix::{Vector3, any_perpendicular, determinant, dot};
 use crate::nucleus::{Centred, Nucleus};
-use crate::search::{common_line, deviation_of, mappings};
+use crate::search::{Mapping, common_line, deviation_of, mappings};
 
 /// The path group of a list of geometries.
 #[derive(Clone, Debug)]
@@ -73,25 +73,32 @@ pub fn path_group<G: AsRef<[[f64; 3]]>>(
     let set = sets
         .last()
         .ok_or(SymmetryError::Inconsistent("the identity was not found"))?;
-    let mut kept = exact_operations(&found, set)?;
-    for atoms in &all {
-        kept.retain(|op| {
-            deviation_of(&atoms.positions, &op.matrix, &op.permutation) <= tolerance_angstrom
-        });
-    }
-    let mut deviation = 0.0_f64;
-    for atoms in &all {
-        for op in &kept {
+    let mut kept: Vec<Mapping> = exact_operations(&found, set)?
+        .into_iter()
+        .map(|op| Mapping {
+            proper: determinant(&op.matrix) > 0.0,
+            matrix: op.matrix,
+            permutation: op.permutation,
+            deviation: 0.0,
+        })
+        .collect();
+    for op in &mut kept {
+        for atoms in &all {
             let d = deviation_of(&atoms.positions, &op.matrix, &op.permutation);
-            deviation = deviation.max(d);
+            op.deviation = op.deviation.max(d);
         }
     }
+    kept.retain(|op| op.deviation <= tolerance_angstrom);
+    let set = chain(&kept)
+        .pop()
+        .ok_or(SymmetryError::Inconsistent("the identity was not found"))?;
+    let raw = exact_operations(&kept, &set)?;
     let generic = |k: &usize| {
         let (atoms, (_, off)) = (&all[*k], &lines[*k]);
         *off > tolerance_angstrom
             && chain(&mappings(atoms, tolerance_angstrom))
                 .last()
-                .is_some_and(|set| set.elements.len() == kept.len())
+                .is_some_and(|set| set.elements.len() == raw.len())
     };
     let axes_from = (0..all.len()).find(generic).unwrap_or(if lines[0].1 > tolerance_angstrom {
         0
@@ -99,9 +106,9 @@ pub fn path_group<G: AsRef<[[f64; 3]]>>(
         start
     });
     Ok(PathGroup {
-        group: PointGroup::finite(kept, &all[axes_from], tolerance_angstrom)?,
+        group: PointGroup::finite(raw, &all[axes_from], tolerance_angstrom)?,
         axes_from,
-        deviation_angstrom: deviation,
+        deviation_angstrom: set.deviation,
     })
 }
 

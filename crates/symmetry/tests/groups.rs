@@ -23,7 +23,6 @@ fn every_family_is_found_in_any_position() {
         let mut unique = plain.clone();
         unique.sort_unstable();
         unique.dedup();
-        println!("{name}: {} | {}", plain.join(" "), found.group.classes.iter().map(|c| c.label.as_str()).collect::<Vec<_>>().join(" "));
         assert_eq!(unique.len(), plain.len(), "{name}: {plain:?}");
         assert_eq!(plain, second.iter().map(|(n, _)| n.as_str()).collect::<Vec<_>>());
     }
