@@ -14,7 +14,11 @@ of an overlap on enlarging the grid, and of an eigenvalue on repeating the probl
 
 Formulas: H_ij = K' S_ij (H_ii + H_jj)/2 between atoms, zero between different functions of one atom; `constant` K' = K
 (Hoffmann, J. Chem. Phys. 39, 1397 (1963)), `weighted` K' = K + D^2 + D^4 (1 - K), D = (H_ii - H_jj)/(H_ii + H_jj)
-(Ammeter, Buergi, Thibeault, Hoffmann, J. Am. Chem. Soc. 100, 3686 (1978)).
+(Ammeter, Buergi, Thibeault, Hoffmann, J. Am. Chem. Soc. 100, 3686 (1978)). Further forms, on the smaller s,p molecules:
+`geometric-mean` H_ij = -K S_ij sqrt(H_ii H_jj) (Ballhausen, Gray, Inorg. Chem. 1, 111 (1962)); `cusachs` S (2 - |S|)
+(H_ii + H_jj)/2 on the sigma and pi overlaps of each pair (Cusachs, J. Chem. Phys. 43, S157 (1965)); `distance-dependent`
+K(R) = 1 + (K - 1 + D^2 - D^4 (K - 1)) exp(-delta (R - d0)), d0 = n/zeta + n'/zeta', delta = 0.35 per angstrom (Calzaferri,
+Forss, Kamber, J. Phys. Chem. 93, 5366 (1989)); `anderson` K = 2.25 exp(-0.13 R/angstrom) (J. Chem. Phys. 62, 1187 (1975)).
 """
 
 import json
@@ -55,6 +59,8 @@ HYDROGEN_2P = (2, 1, -3.4, [(1.3, 1.0)])
 
 FORMS = ("constant", "weighted")
 KS = (1.5, 1.75, 2.0)
+# Forms with the K that goes with them; K is not used by the second and the last.
+FURTHER = (("geometric-mean", 2.0), ("cusachs", 1.75), ("distance-dependent", 1.75), ("anderson", 1.75))
 
 
 # ---------------------------------------------------------------- quadrature
@@ -174,7 +180,7 @@ def overlap_matrix(elements, positions, polarised, size):
             s[ia:ia + 2 * la + 1, ib:ib + 2 * lb + 1] = block
             s[ib:ib + 2 * lb + 1, ia:ia + 2 * la + 1] = block.T
     owner = np.concatenate([[a] * (2 * l + 1) for a, _, l, _, _ in layout])
-    return s, np.array(diagonal), owner
+    return s, np.array(diagonal), owner, layout
 
 
 def hamiltonian(s, diagonal, owner, form, k):
@@ -186,6 +192,37 @@ def hamiltonian(s, diagonal, owner, form, k):
     h = factor * s * (hi + hj) / 2
     h[owner[:, None] == owner[None, :]] = 0.0
     np.fill_diagonal(h, diagonal)
+    return h
+
+
+def further_hamiltonian(s, diagonal, layout, positions, form, k):
+    """The other published forms, for bases of s and p functions with one exponent each."""
+    h = np.diag(diagonal)
+    for a, na, la, ta, ia in layout:
+        for b, nb, lb, tb, ib in layout:
+            if a == b:
+                continue
+            rows, columns = slice(ia, ia + 2 * la + 1), slice(ib, ib + 2 * lb + 1)
+            block, hi, hj = s[rows, columns], diagonal[ia], diagonal[ib]
+            axis = np.array(positions[b]) - np.array(positions[a])
+            distance = np.linalg.norm(axis)
+            if form == "geometric-mean":
+                h[rows, columns] = -k * block * math.sqrt(hi * hj)
+            elif form == "anderson":
+                h[rows, columns] = 2.25 * math.exp(-0.13 * distance) * block * (hi + hj) / 2
+            elif form == "distance-dependent":
+                d = (hi - hj) / (hi + hj)
+                at = (na / ta[0][0] + nb / tb[0][0]) * BOHR
+                kappa = k - 1 + d ** 2 - d ** 4 * (k - 1)
+                h[rows, columns] = (1 + kappa * math.exp(-0.35 * (distance - at))) * block * (hi + hj) / 2
+            else:  # cusachs: local z along the pair, order z x y on both atoms
+                z = axis / distance
+                x = np.cross(z, np.eye(3)[np.argmin(np.abs(z))])
+                x /= np.linalg.norm(x)
+                local = np.array([z, x, np.cross(z, x)])
+                turn = [np.eye(1), local[:, [2, 0, 1]].T]
+                inner = turn[la].T @ block @ turn[lb]
+                h[rows, columns] = turn[la] @ (inner * (2 - np.abs(inner))) @ turn[lb].T * (hi + hj) / 2
     return h
 
 
@@ -270,8 +307,8 @@ def names(elements, polarised):
 def record(name, elements, positions, source, charge, polarised, generator, worst, want_overlap):
     positions = positions @ random_rotation(generator).T + generator.uniform(-1, 1, 3)
     positions = [[float(v) for v in row] for row in positions]
-    s, diagonal, owner = overlap_matrix(elements, positions, polarised, (12, 48, 12))
-    larger, _, _ = overlap_matrix(elements, positions, polarised, (16, 64, 14)) if len(elements) <= 9 else (s, None, None)
+    s, diagonal, owner, layout = overlap_matrix(elements, positions, polarised, (12, 48, 12))
+    larger, _, _, _ = overlap_matrix(elements, positions, polarised, (16, 64, 14)) if len(elements) <= 9 else (s, None, None, None)
     worst["overlap_change_on_larger_grid"] = max(worst["overlap_change_on_larger_grid"], float(np.abs(s - larger).max()))
     s = s.astype(float)
     cases = []
@@ -283,6 +320,11 @@ def record(name, elements, positions, source, charge, polarised, generator, wors
                 worst["eigenvalue_change_ev_with_40_digits"] = max(
                     worst["eigenvalue_change_ev_with_40_digits"], float(np.abs(values - np.array(many_digits(h, s))).max())
                 )
+            cases.append({"form": form, "k": k, "eigenvalues_ev": [float(v) for v in values]})
+    if all(len(terms) == 1 and l < 2 for _, _, l, terms, _ in layout) and len(diagonal) <= 17:
+        for form, k in FURTHER:
+            h = further_hamiltonian(s, diagonal, layout, positions, form, k)
+            values = scipy.linalg.eigh(h, s, eigvals_only=True)
             cases.append({"form": form, "k": k, "eigenvalues_ev": [float(v) for v in values]})
     result = {
         "name": name, "elements": elements, "charge": charge, "polarised_hydrogen": polarised, "geometry_source": source,
