@@ -1,1 +1,30 @@
-//! orbend-scan
+//! Points → lines → crossings → shapes, in parallel.
+//!
+//! A [`Request`] is checked into a [`SweepPlan`]: path, path group and axes are
+//! fixed once, basis, pair list and symmetry-adapted combinations laid out
+//! once. [`Sweep::run`] solves the points eight at a time on the caller's rayon
+//! pool and joins them to lines. The result does not depend on the number of
+//! threads.
+//!
+//! Not for: reading or writing files, printing, or drawing.
+
+mod error;
+mod filling;
+mod line;
+mod naming;
+mod orbitals;
+mod plan;
+mod request;
+mod solve;
+mod special;
+mod sweep;
+
+pub use error::{FillingError, ScanError};
+pub use filling::{Configuration, DEGENERACY_EV, Electrons, Filling};
+pub use line::LineHead;
+pub use naming::Name;
+pub use orbitals::{Orbitals, Populations};
+pub use plan::{Notice, SweepPlan};
+pub use request::{Numbering, Request};
+pub use special::SpecialPoint;
+pub use sweep::{Level, Point, Sweep};

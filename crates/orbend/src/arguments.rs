@@ -1,0 +1,208 @@
+//! The words of the command line. Each flag is defined here once; help, man
+//! page and completions are made from these definitions.
+
+use std::path::PathBuf;
+
+use clap::{Args, Parser, Subcommand, ValueEnum};
+
+const EXAMPLES: &str = "\
+Examples:
+  orbend sweep SiF2 --bend 2-1-3=80..180:2 --out sif2.svg
+  orbend levels PF3
+  orbend params Si F
+
+";
+
+/// Which way does this molecule bend, which orbitals trade places on the way,
+/// and how far can that be trusted?
+#[derive(Debug, Parser)]
+#[command(name = "orbend", version, long_version = None, before_help = EXAMPLES, max_term_width = 96)]
+pub(crate) struct Arguments {
+    #[command(subcommand)]
+    pub(crate) command: Command,
+}
+
+#[derive(Debug, Subcommand)]
+pub(crate) enum Command {
+    /// One geometry: energies, labels, occupations, populations
+    Levels(LevelsArguments),
+    /// The correlation (Walsh) diagram along a coordinate, or a grid over two
+    Sweep(SweepArguments),
+    /// The parameter values in use, each with its source
+    Params(ParamsArguments),
+    /// Print a completion script for a shell
+    Completions {
+        /// The shell
+        shell: clap_complete::Shell,
+    },
+    /// Print the manual page (roff)
+    Man,
+}
+
+#[derive(Debug, Args)]
+pub(crate) struct LevelsArguments {
+    /// A file (XYZ, extended XYZ), `-` for standard input, or a formula
+    pub(crate) geometry: String,
+    #[command(flatten)]
+    pub(crate) model: ModelArguments,
+    #[command(flatten)]
+    pub(crate) output: OutputArguments,
+}
+
+#[derive(Debug, Args)]
+pub(crate) struct SweepArguments {
+    /// A file (XYZ, extended XYZ), `-` for standard input, or a formula
+    pub(crate) geometry: String,
+    #[command(flatten)]
+    pub(crate) coordinates: CoordinateArguments,
+    #[command(flatten)]
+    pub(crate) model: ModelArguments,
+    #[command(flatten)]
+    pub(crate) output: OutputArguments,
+    #[command(flatten)]
+    pub(crate) figure: FigureArguments,
+    /// Threads; the output is the same bytes for every number
+    #[arg(long, value_name = "N")]
+    pub(crate) jobs: Option<usize>,
+}
+
+#[derive(Debug, Args)]
+#[command(next_help_heading = "Coordinates")]
+pub(crate) struct CoordinateArguments {
+    /// Angle at the middle atom, degrees: 2-1-3=90..180:2 (from..to:step)
+    #[arg(long, value_name = "A-B-C=FROM..TO:STEP", allow_hyphen_values = true)]
+    pub(crate) bend: Vec<String>,
+    /// Distance, Å: 1-2=0.8..1.6:0.05
+    #[arg(long, value_name = "A-B=FROM..TO:STEP", allow_hyphen_values = true)]
+    pub(crate) stretch: Vec<String>,
+    /// Torsion, degrees: 3-1-2-4=0..180:5
+    #[arg(long, value_name = "A-B-C-D=FROM..TO:STEP", allow_hyphen_values = true)]
+    pub(crate) twist: Vec<String>,
+    /// Common ligand–centre–ligand angle at a three-coordinate atom, degrees: 1=90..120:1
+    #[arg(long, value_name = "A=FROM..TO:STEP", allow_hyphen_values = true)]
+    pub(crate) pyramid: Vec<String>,
+    /// Move the named atoms only, not their partners by symmetry
+    #[arg(long)]
+    pub(crate) alone: bool,
+}
+
+#[derive(Debug, Args)]
+#[command(next_help_heading = "Model")]
+pub(crate) struct ModelArguments {
+    /// Charge of the molecule
+    #[arg(long, value_name = "Q", allow_hyphen_values = true)]
+    pub(crate) charge: Option<i32>,
+    /// Unpaired electrons [default: the lowest possible]
+    #[arg(long, value_name = "N")]
+    pub(crate) unpaired: Option<u32>,
+    /// An explicit configuration of valence levels: "1b2:2 3a1:1 1b1:1"
+    #[arg(long, value_name = "CONFIGURATION")]
+    pub(crate) occupy: Option<String>,
+    /// Parameter set, or a TOML file that overlays the default set
+    #[arg(long, value_name = "SET|FILE")]
+    pub(crate) params: Option<String>,
+    /// A named variant of one element's values: S:B (may be repeated)
+    #[arg(long, value_name = "ELEMENT:VARIANT")]
+    pub(crate) variant: Vec<String>,
+    /// Form of the off-diagonal elements
+    #[arg(long, value_enum, default_value_t = CouplingChoice::Constant)]
+    pub(crate) coupling: CouplingChoice,
+    /// Wolfsberg–Helmholz constant K
+    #[arg(long, value_name = "K", default_value_t = 1.75)]
+    pub(crate) k: f64,
+    /// Bond length in an ideal geometry, Å: Si-F=1.59 (may be repeated)
+    #[arg(long, value_name = "A-B=LENGTH")]
+    pub(crate) bond: Vec<String>,
+    /// Unit of the numbers in a geometry file
+    #[arg(long, value_enum, default_value_t = UnitChoice::Angstrom)]
+    pub(crate) unit: UnitChoice,
+    /// How far atoms may be from a symmetry operation, Å
+    #[arg(long, value_name = "Å", default_value_t = 0.001)]
+    pub(crate) tolerance: f64,
+}
+
+#[derive(Debug, Args)]
+#[command(next_help_heading = "Output")]
+pub(crate) struct OutputArguments {
+    /// The result document on standard output, alone
+    #[arg(long)]
+    pub(crate) json: bool,
+    /// Write a file; the ending chooses .json, .csv, .svg or .xyz (may be repeated)
+    #[arg(long, value_name = "FILE")]
+    pub(crate) out: Vec<PathBuf>,
+    /// Which numbering labels show first; the document always has both
+    #[arg(long, value_enum, default_value_t = NumberingChoice::Core)]
+    pub(crate) numbering: NumberingChoice,
+}
+
+#[derive(Debug, Args)]
+#[command(next_help_heading = "Figure")]
+pub(crate) struct FigureArguments {
+    /// Width of the figure
+    #[arg(long, value_enum, default_value_t = WidthChoice::Column)]
+    pub(crate) width: WidthChoice,
+    /// Colours of the figure
+    #[arg(long, value_enum, default_value_t = ThemeChoice::Light)]
+    pub(crate) theme: ThemeChoice,
+    /// Energy window of the figure, eV: -20..0
+    #[arg(long, value_name = "FROM..TO", allow_hyphen_values = true)]
+    pub(crate) energies: Option<String>,
+    /// Only these lines in the figure, by label: 4a1,2b2
+    #[arg(long, value_name = "LABELS", value_delimiter = ',')]
+    pub(crate) lines: Vec<String>,
+}
+
+#[derive(Debug, Args)]
+pub(crate) struct ParamsArguments {
+    /// Elements to show [default: all of the set]
+    pub(crate) elements: Vec<String>,
+    /// Parameter set, or a TOML file that overlays the default set
+    #[arg(long, value_name = "SET|FILE")]
+    pub(crate) params: Option<String>,
+    /// A named variant of one element's values: S:B (may be repeated)
+    #[arg(long, value_name = "ELEMENT:VARIANT")]
+    pub(crate) variant: Vec<String>,
+    /// The document on standard output
+    #[arg(long)]
+    pub(crate) json: bool,
+    /// Write a file (.json; may be repeated)
+    #[arg(long, value_name = "FILE")]
+    pub(crate) out: Vec<PathBuf>,
+}
+
+#[derive(Clone, Copy, Debug, ValueEnum)]
+pub(crate) enum CouplingChoice {
+    /// K S (Hii + Hjj)/2 (Hoffmann 1963)
+    Constant,
+    /// K' with the difference of Hii and Hjj (Ammeter et al. 1978)
+    Weighted,
+}
+
+#[derive(Clone, Copy, Debug, ValueEnum)]
+pub(crate) enum UnitChoice {
+    Angstrom,
+    Bohr,
+}
+
+#[derive(Clone, Copy, Debug, PartialEq, Eq, ValueEnum)]
+pub(crate) enum NumberingChoice {
+    Core,
+    Valence,
+}
+
+#[derive(Clone, Copy, Debug, ValueEnum)]
+pub(crate) enum WidthChoice {
+    /// 84 mm, one column of a journal
+    Column,
+    /// 174 mm, a whole page width
+    Page,
+    /// for a talk
+    Slide,
+}
+
+#[derive(Clone, Copy, Debug, ValueEnum)]
+pub(crate) enum ThemeChoice {
+    Light,
+    Dark,
+    Grey,
+}

@@ -1,0 +1,147 @@
+//! One file per command; what several need stands here.
+
+pub(crate) mod levels;
+pub(crate) mod params;
+pub(crate) mod sweep;
+
+use std::path::Path;
+
+use orbend_hamiltonian::{Coupling, Method, ParameterError, ParameterSet};
+use orbend_report::{FigureOptions, FigureWidth, Numbering, Provenance, TextOptions, Theme};
+use orbend_scan::{Configuration, Request};
+use orbend_structure::{Angstrom, Coordinate};
+
+use crate::arguments::{
+    CouplingChoice, FigureArguments, ModelArguments, NumberingChoice, ThemeChoice, WidthChoice,
+};
+use crate::failure::Failure;
+use crate::geometry::{self, Geometry};
+
+/// The request and where its geometry came from.
+pub(crate) struct Resolved {
+    pub(crate) request: Request,
+    pub(crate) geometry: Geometry,
+}
+
+/// Reads the geometry and the model; nothing has been computed then.
+pub(crate) fn resolve(
+    geometry: &str,
+    coordinates: Vec<Coordinate>,
+    model: &ModelArguments,
+    numbering: NumberingChoice,
+) -> Result<Resolved, Failure> {
+    let geometry = geometry::read(geometry, model)?;
+    if !(1e-8..=0.5).contains(&model.tolerance) {
+        return Err(Failure::request(format!("--tolerance {}: not a usable distance", model.tolerance))
+            .fix("give a distance from 1e-8 to 0.5 Å; 0.001 is the default"));
+    }
+    if !(model.k.is_finite() && (0.5..=4.0).contains(&model.k)) {
+        return Err(Failure::request(format!("--k {}: not a usable constant", model.k))
+            .fix("give a number from 0.5 to 4; 1.75 is customary"));
+    }
+    let method = Method {
+        coupling: match model.coupling {
+            CouplingChoice::Constant => Coupling::Constant,
+            CouplingChoice::Weighted => Coupling::Weighted,
+        },
+        k: model.k,
+        ..Method::default()
+    };
+    let configuration = model
+        .occupy
+        .as_deref()
+        .map(Configuration::parse)
+        .transpose()
+        .map_err(|error| Failure::request(format!("--occupy: {error}")))?;
+    let request = Request {
+        molecule: geometry.molecule.clone(),
+        coordinates,
+        parameters: parameter_set(model.params.as_deref(), &model.variant)?,
+        method,
+        configuration,
+        numbering: match numbering {
+            NumberingChoice::Core => orbend_scan::Numbering::Core,
+            NumberingChoice::Valence => orbend_scan::Numbering::Valence,
+        },
+        tolerance: Angstrom(model.tolerance),
+    };
+    Ok(Resolved { request, geometry })
+}
+
+/// A built-in set by name, or the default set overlaid by a file.
+pub(crate) fn parameter_set(name: Option<&str>, variants: &[String]) -> Result<ParameterSet, Failure> {
+    let set = match name {
+        None => ParameterSet::default(),
+        Some(name) if Path::new(name).extension().is_some() || name.contains(['/', '\\']) => {
+            let text = std::fs::read_to_string(name).map_err(|cause| {
+                Failure::request(format!("cannot read the parameter file {name}: {cause}"))
+                    .fix("name a TOML file that exists, or a built-in set")
+            })?;
+            ParameterSet::default().overlay(&text, name).map_err(|error| parameter_failure(&error))?
+        }
+        Some(name) => ParameterSet::builtin(name).map_err(|error| parameter_failure(&error))?,
+    };
+    set.choose(variants).map_err(|error| parameter_failure(&error))
+}
+
+fn parameter_failure(error: &ParameterError) -> Failure {
+    match error {
+        ParameterError::InFile(problems) => Failure::request(problems.render(false)),
+        other => Failure::request(other.to_string()),
+    }
+}
+
+/// What the documents say about the input.
+pub(crate) fn provenance(geometry: &Geometry, numbering: NumberingChoice) -> Provenance {
+    Provenance {
+        geometry: geometry.record.clone(),
+        valence_numbering: numbering == NumberingChoice::Valence,
+        warnings: geometry.warnings.clone(),
+    }
+}
+
+/// The figure's options.
+pub(crate) fn figure_options(
+    arguments: &FigureArguments,
+    numbering: NumberingChoice,
+) -> Result<FigureOptions, Failure> {
+    let energies = arguments.energies.as_deref().map(energy_window).transpose()?;
+    Ok(FigureOptions {
+        width: match arguments.width {
+            WidthChoice::Column => FigureWidth::Column,
+            WidthChoice::Page => FigureWidth::Page,
+            WidthChoice::Slide => FigureWidth::Slide,
+        },
+        theme: match arguments.theme {
+            ThemeChoice::Light => Theme::Light,
+            ThemeChoice::Dark => Theme::Dark,
+            ThemeChoice::Grey => Theme::Grey,
+        },
+        numbering: figure_numbering(numbering),
+        energies,
+        lines: (!arguments.lines.is_empty()).then(|| arguments.lines.clone()),
+        ..FigureOptions::default()
+    })
+}
+
+pub(crate) fn figure_numbering(numbering: NumberingChoice) -> Numbering {
+    match numbering {
+        NumberingChoice::Core => Numbering::Core,
+        NumberingChoice::Valence => Numbering::Valence,
+    }
+}
+
+fn energy_window(text: &str) -> Result<(f64, f64), Failure> {
+    text.split_once("..")
+        .and_then(|(from, to)| Some((from.trim().parse().ok()?, to.trim().parse().ok()?)))
+        .filter(|&(from, to): &(f64, f64)| from.is_finite() && to.is_finite() && from < to)
+        .ok_or_else(|| {
+            Failure::request(format!("--energies {text}: not an energy window"))
+                .fix("write from..to in eV with from below to, for example -20..0")
+        })
+}
+
+/// How text is laid out on this standard output.
+pub(crate) fn text_options(numbering: NumberingChoice) -> TextOptions {
+    TextOptions { numbering: figure_numbering(numbering), ..TextOptions::default() }
+}

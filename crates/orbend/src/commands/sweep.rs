@@ -1,0 +1,77 @@
+//! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
+
+use orbend_report::{sweep_csv, sweep_document, sweep_figure, sweep_text, to_json};
+use orbend_scan::Sweep;
+use orbend_structure::{Coordinate, CoordinateKind};
+
+use super::{figure_options, provenance, resolve, text_options};
+use crate::arguments::{CoordinateArguments, SweepArguments};
+use crate::failure::Failure;
+use crate::outputs::Outputs;
+use crate::write::write_stdout;
+
+pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
+    let output = &arguments.output;
+    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "xyz"])?;
+    let figure = figure_options(&arguments.figure, output.numbering)?;
+    let coordinates = coordinates(&arguments.coordinates)?;
+    let resolved = resolve(&arguments.geometry, coordinates, &arguments.model, output.numbering)?;
+    let plan = resolved.request.plan().map_err(|error| Failure::scan(&error))?;
+    let sweep = in_pool(arguments.jobs, || Sweep::run(plan))?.map_err(|error| Failure::scan(&error))?;
+    let document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
+        .map_err(|error| Failure::running(error.to_string()))?;
+    outputs.write(|ending| {
+        Ok(match ending {
+            "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
+            "csv" => sweep_csv(&document).map_err(Failure::document)?.into_bytes(),
+            "xyz" => resolved.geometry.to_xyz().into_bytes(),
+            _ => sweep_figure(&document, &figure)
+                .map_err(|error| Failure::request(error.to_string()))?
+                .into_bytes(),
+        })
+    })?;
+    if output.json {
+        write_stdout(to_json(&document).map_err(Failure::document)?.as_bytes())
+    } else {
+        write_stdout(sweep_text(&document, &text_options(output.numbering)).as_bytes())
+    }
+}
+
+fn coordinates(arguments: &CoordinateArguments) -> Result<Vec<Coordinate>, Failure> {
+    let kinds = [
+        (CoordinateKind::Bend, &arguments.bend),
+        (CoordinateKind::Stretch, &arguments.stretch),
+        (CoordinateKind::Twist, &arguments.twist),
+        (CoordinateKind::Pyramid, &arguments.pyramid),
+    ];
+    let mut coordinates = Vec::new();
+    for (kind, texts) in kinds {
+        for text in texts {
+            let mut coordinate = Coordinate::parse(kind, text)
+                .map_err(|error| Failure::request(format!("--{error}")))?;
+            coordinate.alone = arguments.alone;
+            coordinates.push(coordinate);
+        }
+    }
+    match coordinates.len() {
+        0 => Err(Failure::request("no coordinate: a sweep needs something that moves")
+            .fix("add for example --bend 2-1-3=90..180:2, --stretch, --twist or --pyramid")),
+        1 | 2 => Ok(coordinates),
+        more => Err(Failure::request(format!("{more} coordinates: a grid has two at most"))
+            .fix("leave some out, or run one sweep for each value")),
+    }
+}
+
+/// Runs on a pool of its own when a number of threads is asked for.
+fn in_pool<T: Send>(jobs: Option<usize>, work: impl FnOnce() -> T + Send) -> Result<T, Failure> {
+    let Some(jobs) = jobs else { return Ok(work()) };
+    if !(1..=1024).contains(&jobs) {
+        return Err(Failure::request(format!("--jobs {jobs}: not a usable number of threads"))
+            .fix("give a number from 1 to 1024"));
+    }
+    let pool = rayon::ThreadPoolBuilder::new()
+        .num_threads(jobs)
+        .build()
+        .map_err(|error| Failure::running(format!("cannot start {jobs} threads: {error}")))?;
+    Ok(pool.install(work))
+}

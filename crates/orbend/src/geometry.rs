@@ -1,0 +1,140 @@
+//! From the word GEOMETRY to a molecule: a file, standard input or a formula.
+
+use std::io::Read;
+use std::path::Path;
+
+use orbend_report::{BondLength, Number, Warning};
+use orbend_structure::{
+    BondOverride, LengthUnit, Molecule, XyzOptions, ideal_geometry, read_xyz, write_xyz,
+};
+
+use crate::arguments::{ModelArguments, UnitChoice};
+use crate::failure::Failure;
+
+/// A molecule and how it came about.
+pub(crate) struct Geometry {
+    pub(crate) molecule: Molecule,
+    pub(crate) record: orbend_report::Geometry,
+    pub(crate) warnings: Vec<Warning>,
+}
+
+impl Geometry {
+    /// The start geometry as extended XYZ.
+    pub(crate) fn to_xyz(&self) -> String {
+        write_xyz(&self.molecule)
+    }
+}
+
+/// Reads GEOMETRY; `--charge` and `--unpaired` go before what a file says.
+pub(crate) fn read(word: &str, model: &ModelArguments) -> Result<Geometry, Failure> {
+    let mut geometry = if word == "-" {
+        let mut bytes = Vec::new();
+        std::io::stdin()
+            .read_to_end(&mut bytes)
+            .map_err(|error| Failure::request(format!("cannot read standard input: {error}")))?;
+        from_bytes("standard input", &bytes, model)?
+    } else if is_file_name(word) {
+        let bytes = std::fs::read(word).map_err(|error| {
+            Failure::request(format!("cannot read {word}: {error}"))
+                .fix("name an XYZ file that exists, `-` for standard input, or a formula such as SiF2")
+        })?;
+        from_bytes(word, &bytes, model)?
+    } else {
+        return from_formula(word, model);
+    };
+    if !model.bond.is_empty() {
+        return Err(Failure::request("--bond sets lengths of an ideal geometry, but a file was given")
+            .fix("change the file, or give a formula"));
+    }
+    if let Some(charge) = model.charge {
+        geometry.molecule.charge = charge;
+    }
+    if model.unpaired.is_some() {
+        geometry.molecule.unpaired = model.unpaired;
+    }
+    Ok(geometry)
+}
+
+/// A word with a dot, a slash, or the name of a file that is there.
+fn is_file_name(word: &str) -> bool {
+    word.contains(['.', '/', '\\']) || Path::new(word).exists()
+}
+
+fn from_bytes(name: &str, bytes: &[u8], model: &ModelArguments) -> Result<Geometry, Failure> {
+    let text = std::str::from_utf8(bytes).map_err(|error| {
+        Failure::request(format!("{name}: byte {} is not UTF-8 text", error.valid_up_to() + 1))
+            .fix("give an XYZ file: the number of atoms, a comment line, then one atom per line")
+    })?;
+    let unit = match model.unit {
+        UnitChoice::Angstrom => LengthUnit::Angstrom,
+        UnitChoice::Bohr => LengthUnit::Bohr,
+    };
+    let frames = read_xyz(text, &XyzOptions { unit })
+        .map_err(|error| Failure::request(format!("{name}: {error}")))?;
+    let mut frames = frames.into_iter();
+    let Some(frame) = frames.next() else {
+        return Err(Failure::request(format!("{name}: no geometry in it"))
+            .fix("give an XYZ file: the number of atoms, a comment line, then one atom per line"));
+    };
+    let mut notes = vec![name.to_owned()];
+    if !frame.understood.is_empty() {
+        notes.push(frame.understood);
+    }
+    let mut warnings: Vec<Warning> = frame
+        .notes
+        .into_iter()
+        .map(|text| Warning { code: "geometry-file".to_owned(), text })
+        .collect();
+    let more = frames.count();
+    if more > 0 {
+        warnings.push(Warning {
+            code: "first-frame".to_owned(),
+            text: format!("{name} holds {} geometries; the first one is used", more + 1),
+        });
+    }
+    Ok(Geometry {
+        molecule: frame.molecule,
+        record: orbend_report::Geometry {
+            origin: if name == "standard input" { name } else { "file" }.to_owned(),
+            notes,
+            bonds: Vec::new(),
+        },
+        warnings,
+    })
+}
+
+fn from_formula(word: &str, model: &ModelArguments) -> Result<Geometry, Failure> {
+    let overrides = model
+        .bond
+        .iter()
+        .map(|text| BondOverride::parse(text))
+        .collect::<Result<Vec<_>, _>>()
+        .map_err(|error| Failure::request(format!("--bond: {error}")))?;
+    let ideal = ideal_geometry(word, model.charge.unwrap_or(0), &overrides)
+        .map_err(|error| Failure::request(error.to_string()))?;
+    let mut molecule = ideal.molecule;
+    molecule.charge = model.charge.unwrap_or(molecule.charge);
+    molecule.unpaired = model.unpaired;
+    let bonds = ideal
+        .bonds
+        .iter()
+        .map(|bond| {
+            Ok(BondLength {
+                atoms: bond.atoms.map(|atom| atom as u32 + 1),
+                elements: bond.atoms.map(|atom| molecule.elements[atom].symbol().to_owned()),
+                length: Number::new(bond.length.0)?,
+                source: bond.source.clone(),
+            })
+        })
+        .collect::<Result<_, orbend_report::NotFinite>>()
+        .map_err(|error| Failure::running(error.to_string()))?;
+    Ok(Geometry {
+        record: orbend_report::Geometry {
+            origin: "formula".to_owned(),
+            notes: ideal.notes,
+            bonds,
+        },
+        molecule,
+        warnings: Vec::new(),
+    })
+}

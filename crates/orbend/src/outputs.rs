@@ -1,0 +1,62 @@
+//! The files of `--out`: checked before anything runs, written at the end.
+
+use std::path::{Path, PathBuf};
+
+use crate::failure::Failure;
+use crate::write::write_whole;
+
+/// Files to write, each with its ending.
+pub(crate) struct Outputs<'a> {
+    files: Vec<(&'a Path, String)>,
+}
+
+impl<'a> Outputs<'a> {
+    /// Checks endings, doubles and folders before the calculation.
+    pub(crate) fn check(files: &'a [PathBuf], endings: &[&str]) -> Result<Self, Failure> {
+        let mut checked: Vec<(&Path, String)> = Vec::new();
+        for file in files {
+            let ending = file
+                .extension()
+                .map(|ending| ending.to_string_lossy().to_ascii_lowercase())
+                .unwrap_or_default();
+            if !endings.contains(&ending.as_str()) {
+                let known: Vec<String> = endings.iter().map(|ending| format!(".{ending}")).collect();
+                return Err(Failure::request(format!(
+                    "--out {}: cannot tell what to write from the ending",
+                    file.display()
+                ))
+                .fix(format!("end the name in {}", known.join(", "))));
+            }
+            if checked.iter().any(|(seen, _)| *seen == file.as_path()) {
+                return Err(Failure::request(format!("--out {}: named twice", file.display()))
+                    .fix("name each file once"));
+            }
+            let folder = file.parent().filter(|folder| !folder.as_os_str().is_empty());
+            if let Some(folder) = folder
+                && !folder.is_dir()
+            {
+                return Err(Failure::request(format!(
+                    "--out {}: there is no folder {}",
+                    file.display(),
+                    folder.display()
+                ))
+                .fix("make the folder first or name another"));
+            }
+            checked.push((file, ending));
+        }
+        Ok(Self { files: checked })
+    }
+
+    /// Makes every file's bytes first and writes them then.
+    pub(crate) fn write(&self, make: impl Fn(&str) -> Result<Vec<u8>, Failure>) -> Result<(), Failure> {
+        let made = self
+            .files
+            .iter()
+            .map(|(path, ending)| Ok((*path, make(ending)?)))
+            .collect::<Result<Vec<_>, Failure>>()?;
+        for (path, bytes) in made {
+            write_whole(path, &bytes)?;
+        }
+        Ok(())
+    }
+}

@@ -1,0 +1,231 @@
+//! A plan per sweep: path, path group and axes, basis and pair list,
+//! symmetry-adapted combinations and names, all fixed once.
+
+use orbend_hamiltonian::{Basis, HamiltonianPlan};
+use orbend_structure::{Element, Molecule, PathPlan};
+use orbend_symmetry::{
+    AdaptedBasis, GroupScreen, NearMiss, Nucleus, OrbitalShell, PointGroup, path_group, symmetrize,
+};
+
+use crate::error::ScanError;
+use crate::filling::{Electrons, Filling};
+use crate::line::{LineHead, line_heads};
+use crate::naming::Name;
+use crate::request::{Numbering, Request};
+use crate::solve::Workspace;
+
+/// Atoms farther than this (Å) from their symmetric places are moved onto them
+/// before anything is computed, and the document says by how much.
+const EXACT_ANGSTROM: f64 = 1e-9;
+
+/// Geometries looked at to find the path group.
+const SAMPLES: usize = 64;
+
+/// Something that a reader of the result should know.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Notice {
+    /// A short plain name for scripts.
+    pub code: &'static str,
+    /// The sentence for people.
+    pub text: String,
+}
+
+/// Everything about a sweep that does not change from point to point.
+#[derive(Debug)]
+pub struct SweepPlan {
+    pub(crate) request: Request,
+    pub(crate) molecule: Molecule,
+    pub(crate) path: PathPlan,
+    pub(crate) basis: Basis,
+    pub(crate) hamiltonian: HamiltonianPlan,
+    pub(crate) near_misses: Vec<NearMiss>,
+    pub(crate) group: PointGroup,
+    pub(crate) adapted: AdaptedBasis,
+    pub(crate) core_counts: Vec<usize>,
+    pub(crate) shells: Vec<OrbitalShell>,
+    pub(crate) core_shells: Vec<OrbitalShell>,
+    pub(crate) lines: Vec<LineHead>,
+    pub(crate) filling: Filling,
+    pub(crate) screen: GroupScreen,
+    pub(crate) notices: Vec<Notice>,
+}
+
+impl SweepPlan {
+    /// Checks the request and lays everything out.
+    ///
+    /// # Errors
+    /// A coordinate that is not defined, an element without parameters,
+    /// electrons that do not fit, a geometry without a usable overlap matrix.
+    pub fn new(request: &Request) -> Result<Self, ScanError> {
+        let mut notices = Vec::new();
+        let basis = Basis::new(&request.molecule.elements, &request.parameters, &request.method)?;
+        let electrons = Electrons::new(
+            basis.valence_electrons,
+            request.molecule.charge,
+            request.molecule.unpaired,
+            basis.functions.len(),
+        )?;
+        let hamiltonian = HamiltonianPlan::new(&basis, &request.method)?;
+
+        let mut molecule = request.molecule.clone();
+        let tolerance = request.tolerance.0;
+        let start = orbend_symmetry::find(&nuclei(&molecule.elements, &molecule.positions), tolerance)?;
+        if start.deviation_angstrom > EXACT_ANGSTROM {
+            let (places, moved) = symmetrize(&nuclei(&molecule.elements, &molecule.positions), &start.group);
+            molecule.positions = places.iter().map(|nucleus| nucleus.position).collect();
+            notices.push(Notice {
+                code: "moved-onto-symmetry",
+                text: format!(
+                    "atoms were moved by up to {moved:.1e} Å onto {}; a smaller --tolerance keeps them where they are",
+                    start.group.name
+                ),
+            });
+        }
+        let permutations: Vec<Vec<usize>> =
+            start.group.operations.iter().map(|operation| operation.permutation.clone()).collect();
+        let path = PathPlan::new(&molecule, &request.coordinates, &permutations)?;
+
+        let samples = sample_geometries(&path, molecule.positions.len())?;
+        let kinds = kinds(&molecule.elements);
+        let kept = path_group(&kinds, &samples, tolerance)?;
+        let screen = GroupScreen::new(&nuclei(&molecule.elements, &samples[kept.axes_from]), tolerance)?;
+        let group = kept.group;
+
+        let shells = basis
+            .shells
+            .iter()
+            .map(|shell| OrbitalShell { atom: shell.atom, l: shell.l })
+            .collect::<Vec<_>>();
+        let core_shells = basis
+            .core_shells
+            .iter()
+            .map(|&(atom, _, l)| OrbitalShell { atom, l })
+            .collect::<Vec<_>>();
+        let adapted = group.adapt(&shells)?;
+        let core_counts = group.count(&core_shells)?;
+
+        let mut plan = Self {
+            request: request.clone(),
+            molecule,
+            path,
+            basis,
+            hamiltonian,
+            near_misses: start.near_misses,
+            group,
+            adapted,
+            core_counts,
+            shells,
+            core_shells,
+            lines: Vec::new(),
+            filling: Filling::Aufbau(electrons.clone()),
+            screen,
+            notices,
+        };
+        let first = plan.slot_energies(&plan.path.values(0), &mut Workspace::new(&plan))?;
+        plan.lines = line_heads(&plan.group, &plan.adapted, &plan.core_counts, &first);
+        if let Some(configuration) = &plan.request.configuration {
+            let labels: Vec<String> = plan
+                .lines
+                .iter()
+                .map(|line| match plan.request.numbering {
+                    Numbering::Core => line.name.plain.clone(),
+                    Numbering::Valence => line.name.valence_plain.clone(),
+                })
+                .collect();
+            let order: Vec<usize> = (0..plan.lines.len()).collect();
+            let occupations = configuration.occupations(&electrons, &labels, &order)?;
+            plan.filling = Filling::ByLine { electrons, occupations };
+        }
+        Ok(plan)
+    }
+
+    /// Points of the sweep.
+    pub fn points(&self) -> usize {
+        self.path.points()
+    }
+
+    /// The molecule whose atoms move, on its symmetric places.
+    pub fn molecule(&self) -> &Molecule {
+        &self.molecule
+    }
+
+    /// The group that every point keeps, with its axes.
+    pub fn path_group(&self) -> &PointGroup {
+        &self.group
+    }
+
+    /// The lines, by rising energy at the first point.
+    pub fn lines(&self) -> &[LineHead] {
+        &self.lines
+    }
+
+    /// The basis functions.
+    pub fn basis(&self) -> &Basis {
+        &self.basis
+    }
+
+    /// The path along which the atoms move.
+    pub fn path(&self) -> &PathPlan {
+        &self.path
+    }
+
+    /// The request as it was understood.
+    pub fn request(&self) -> &Request {
+        &self.request
+    }
+
+    /// The electrons that are handed out.
+    pub fn electrons(&self) -> &Electrons {
+        self.filling.electrons()
+    }
+
+    /// Core orbitals that labels count but the basis does not hold.
+    pub fn core_orbitals(&self) -> u32 {
+        self.basis.core_orbitals() as u32
+    }
+
+    /// Bigger groups that the start geometry misses narrowly.
+    pub fn near_misses(&self) -> &[NearMiss] {
+        &self.near_misses
+    }
+
+    /// Name of a line in the path group under the other usual choice of axes.
+    pub fn other_axes_name(&self, line: usize) -> Name {
+        let head = &self.lines[line];
+        let plain = self.group.other_axes(&self.group.irreps[head.irrep].plain);
+        let irrep = self.group.irrep(&plain).unwrap_or(head.irrep);
+        head.name.renamed(&self.group.irreps[head.irrep], &self.group.irreps[irrep])
+    }
+
+    /// What a reader should know about how the request was understood.
+    pub fn notices(&self) -> &[Notice] {
+        &self.notices
+    }
+}
+
+/// The nuclei as symmetry sees them.
+pub(crate) fn nuclei(elements: &[Element], positions: &[[f64; 3]]) -> Vec<Nucleus> {
+    elements
+        .iter()
+        .zip(positions)
+        .map(|(element, &position)| Nucleus { kind: u32::from(element.number()), position })
+        .collect()
+}
+
+fn kinds(elements: &[Element]) -> Vec<u32> {
+    elements.iter().map(|element| u32::from(element.number())).collect()
+}
+
+/// Both ends and points between them, evenly spread.
+fn sample_geometries(path: &PathPlan, atoms: usize) -> Result<Vec<Vec<[f64; 3]>>, ScanError> {
+    let points = path.points();
+    let count = points.min(SAMPLES);
+    let mut samples = Vec::with_capacity(count);
+    for sample in 0..count {
+        let point = if count == 1 { 0 } else { sample * (points - 1) / (count - 1) };
+        let mut positions = vec![[0.0; 3]; atoms];
+        path.positions(&path.values(point), &mut positions)?;
+        samples.push(positions);
+    }
+    Ok(samples)
+}
