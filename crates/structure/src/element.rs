@@ -50,9 +50,11 @@ const FILLING_ORDER: [(u8, u8); 16] = [
     (7, 0),
 ];
 
+type Anomaly = (u8, (u8, u8), (u8, u8), u8);
+
 /// Ground states that break Madelung's rule: (Z, from, to, electrons moved).
 /// NIST Atomic Spectra Database, ground levels of the neutral atoms; from memory.
-const ANOMALIES: [(u8, (u8, u8), (u8, u8), u8); 13] = [
+const ANOMALIES: [Anomaly; 13] = [
     (24, (4, 0), (3, 2), 1), // Cr 3d5 4s1
     (29, (4, 0), (3, 2), 1), // Cu 3d10 4s1
     (41, (5, 0), (4, 2), 1), // Nb 4d4 5s1
@@ -88,7 +90,7 @@ impl Element {
         let index = ROWS
             .iter()
             .position(|row| row.symbol.to_lowercase() == lower || row.name == lower);
-        let index = index.or_else(|| match lower.as_str() {
+        let index = index.or(match lower.as_str() {
             "aluminum" => Some(12),
             "sulphur" => Some(15),
             "cesium" => Some(54),

@@ -8,6 +8,8 @@ mod bonds;
 mod coordinate;
 mod element;
 mod element_table;
+mod formula;
+mod ideal;
 mod molecule;
 mod neighbours;
 mod path;
@@ -21,8 +23,12 @@ mod xyz;
 pub use bonds::BondGraph;
 pub use coordinate::{Coordinate, CoordinateError, CoordinateKind, measure};
 pub use element::{BondOrder, Element, OccupiedShell};
+pub use formula::{Formula, FormulaError, FormulaPart};
+pub use ideal::{
+    BondLengthUsed, BondOverride, BondOverrideError, IdealGeometry, ShapeClass, ideal_geometry,
+};
 pub use molecule::{LARGEST_COORDINATE, Molecule, MoleculeError, SMALLEST_DISTANCE};
-pub use path::{Alignment, Axis, FrameValues, PathError, PathPlan, align};
+pub use path::{Alignment, Axis, FrameValues, PathError, PathPlan, TowardReport, align};
 pub use range::{LARGEST_POINT_COUNT, Range, RangeError};
 pub use units::{
     Angstrom, BOHR_IN_ANGSTROM, Bohr, DEGREE_IN_RADIANS, Degrees, ElectronVolt, HARTREE_IN_EV,

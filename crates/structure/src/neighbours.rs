@@ -1,14 +1,39 @@
 //! Pairs of atoms nearer than a cut-off, in time linear in the atoms.
 
 use std::collections::HashMap;
+use std::hash::{BuildHasherDefault, Hasher};
 
 /// Atoms sorted into cubes. The map is only looked up, never iterated, so the
 /// order of its entries cannot reach a result.
 pub(crate) struct CellGrid<'a> {
     positions: &'a [[f64; 3]],
     edge: f64,
-    heads: HashMap<[i64; 3], usize>,
+    heads: HashMap<[i64; 3], usize, BuildHasherDefault<CellHasher>>,
     next: Vec<usize>,
+}
+
+/// Multiply and rotate: cell numbers are small and need no keyed hash.
+#[derive(Default)]
+struct CellHasher(u64);
+
+impl Hasher for CellHasher {
+    fn finish(&self) -> u64 {
+        self.0
+    }
+
+    fn write(&mut self, bytes: &[u8]) {
+        for chunk in bytes.chunks(8) {
+            let mut word = [0; 8];
+            word[..chunk.len()].copy_from_slice(chunk);
+            self.write_u64(u64::from_le_bytes(word));
+        }
+    }
+
+    fn write_u64(&mut self, word: u64) {
+        // The odd constant is 2⁶⁴ over the golden ratio.
+        self.0 = (self.0.rotate_left(23) ^ word).wrapping_mul(0x9e37_79b9_7f4a_7c15);
+        self.0 ^= self.0 >> 29;
+    }
 }
 
 const END: usize = usize::MAX;
@@ -19,7 +44,10 @@ impl<'a> CellGrid<'a> {
         Self {
             positions,
             edge,
-            heads: HashMap::with_capacity(positions.len()),
+            heads: HashMap::with_capacity_and_hasher(
+                positions.len(),
+                BuildHasherDefault::default(),
+            ),
             next: vec![END; positions.len()],
         }
     }

@@ -27,6 +27,8 @@ pub enum FrameValues {
 pub(crate) struct FramePath {
     values: Vec<f64>,
     frames: Vec<Vec<Vector>>,
+    /// Cubic curves through the frames instead of straight lines.
+    smooth: bool,
 }
 
 impl FramePath {
@@ -113,16 +115,57 @@ impl FramePath {
         let path = Self {
             values: axis.values.clone(),
             frames: aligned,
+            smooth: false,
         };
         Ok((path, axis))
+    }
+
+    /// Straight lines between frames that need no alignment.
+    pub(crate) fn straight(values: Vec<f64>, frames: Vec<Vec<Vector>>) -> Self {
+        Self {
+            values,
+            frames,
+            smooth: false,
+        }
+    }
+
+    /// A smooth curve through evenly spaced frames.
+    pub(crate) fn smooth(values: Vec<f64>, frames: Vec<Vec<Vector>>) -> Self {
+        Self {
+            values,
+            frames,
+            smooth: true,
+        }
     }
 
     pub(crate) fn positions(&self, value: f64, out: &mut [[f64; 3]]) {
         let (index, fraction) = segment(&self.values, value);
         let (low, high) = (&self.frames[index], &self.frames[index + 1]);
-        for ((place, a), b) in out.iter_mut().zip(low).zip(high) {
+        let inside = fraction > 0.0 && fraction < 1.0;
+        if !(self.smooth && inside) {
+            for ((place, a), b) in out.iter_mut().zip(low).zip(high) {
+                for k in 0..3 {
+                    place[k] = between(a[k], b[k], fraction);
+                }
+            }
+            return;
+        }
+        // Cubic Hermite curve with central differences as slopes (one-sided at
+        // the ends), for evenly spaced frames.
+        let before = self.frames.get(index.wrapping_sub(1));
+        let after = self.frames.get(index + 2);
+        let t = fraction;
+        let (a0, a1) = (
+            (1.0 + 2.0 * t) * (1.0 - t) * (1.0 - t),
+            t * (1.0 - t) * (1.0 - t),
+        );
+        let (b0, b1) = (t * t * (3.0 - 2.0 * t), t * t * (t - 1.0));
+        for (atom, place) in out.iter_mut().enumerate() {
             for k in 0..3 {
-                place[k] = between(a[k], b[k], fraction);
+                let (p, q) = (low[atom][k], high[atom][k]);
+                let first = before.map_or(q - p, |frame| 0.5 * (q - frame[atom][k]));
+                let last = after.map_or(q - p, |frame| 0.5 * (frame[atom][k] - p));
+                place[k] = a0 * p + a1 * first + b0 * q + b1 * last;
             }
         }
     }
@@ -147,7 +190,7 @@ fn laid_onto(moved: &[Vector], target: &[Vector]) -> Vec<Vector> {
 }
 
 /// Nearest approach of every pair on the straight lines between two frames.
-fn check_between(
+pub(crate) fn check_between(
     molecule: &Molecule,
     axis: &Axis,
     index: usize,

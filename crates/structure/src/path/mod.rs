@@ -4,15 +4,20 @@ mod align;
 mod check;
 mod error;
 mod frames;
+mod matching;
 mod motion;
 mod partners;
 mod sequence;
 #[cfg(test)]
 mod tests;
+mod toward;
+#[cfg(test)]
+mod toward_tests;
 
 pub use align::{Alignment, align};
 pub use error::PathError;
 pub use frames::FrameValues;
+pub use toward::TowardReport;
 
 use crate::bonds::BondGraph;
 use crate::coordinate::Coordinate;
@@ -202,13 +207,17 @@ impl PathPlan {
             "{} given geometries, straight lines between them",
             frames.len()
         );
-        Ok(Self {
-            start: frames[0].clone(),
+        Ok(Self::through(frames[0].clone(), axis, path, described))
+    }
+
+    fn through(start: Molecule, axis: Axis, path: FramePath, described: String) -> Self {
+        Self {
+            start,
             axes: vec![axis],
             coordinates: Vec::new(),
             shape: Shape::Frames(path),
             described,
-        })
+        }
     }
 
     fn internal(

@@ -374,7 +374,10 @@ fn clash_between_two_points_is_found() {
     let start = build("He 0 0 0; H 0.75 0 0; H -3.25 0 0");
     let line = coordinate(Stretch, "2-3=4..0.5:3.5").alone();
     let error = PathPlan::new(&start, &[line], &[]).unwrap_err();
-    assert!(error.to_string().starts_with("He1 and H3 come to 0."), "{error}");
+    assert!(
+        error.to_string().starts_with("He1 and H3 come to 0."),
+        "{error}"
+    );
     let apart = coordinate(Stretch, "2-3=4..1:3").alone();
     assert!(PathPlan::new(&start, &[apart], &[]).is_ok());
     let frames = [
