@@ -33,9 +33,7 @@ impl PointGroup {
         if self.is_atom() {
             return self.adapt_atom(shells);
         }
-        let rows: Result<Vec<Representation>, SymmetryError> =
-            self.irreps.iter().map(|irrep| matrices(self, irrep)).collect();
-        self.adapt_rows(shells, &rows?)
+        self.adapt_rows(shells, &matrices(self)?)
     }
 
     /// As [`PointGroup::adapt`], with the rows of degenerate sets turned so that each belongs to
@@ -68,19 +66,21 @@ impl PointGroup {
             .operations
             .iter()
             .map(|op| {
-                self.operation_of(&op.matrix).ok_or_else(|| SymmetryError::NotSubgroup {
-                    big: self.name.clone(),
-                    small: subgroup.name.clone(),
-                    operation: op.label.clone(),
-                })
+                self.operation_of(&op.matrix)
+                    .ok_or_else(|| SymmetryError::NotSubgroup {
+                        big: self.name.clone(),
+                        small: subgroup.name.clone(),
+                        operation: op.label.clone(),
+                    })
             })
             .collect();
         let kept = kept?;
-        let mut rows = Vec::with_capacity(self.irreps.len());
-        for irrep in &self.irreps {
-            let own = matrices(self, irrep)?;
-            let plain = irrep.dimension == 1 || irrep.paired;
-            rows.push(if plain { own } else { along(&own, subgroup, &kept)? });
+        let small = matrices(subgroup)?;
+        let mut rows = matrices(self)?;
+        for (irrep, own) in self.irreps.iter().zip(&mut rows) {
+            if irrep.dimension > 1 && !irrep.paired {
+                *own = along(own, subgroup, &small, &kept)?;
+            }
         }
         self.adapt_rows(shells, &rows)
     }
@@ -95,7 +95,10 @@ impl PointGroup {
         let highest = shells.iter().map(|s| s.l).max().unwrap_or(0);
         let turns: Vec<Vec<[[f64; 7]; 7]>> = (0..=highest)
             .map(|l| {
-                self.operations.iter().map(|op| harmonics::rotation(l, &op.matrix)).collect()
+                self.operations
+                    .iter()
+                    .map(|op| harmonics::rotation(l, &op.matrix))
+                    .collect()
             })
             .collect();
         for orbit in &layout.orbits {
@@ -114,7 +117,11 @@ impl PointGroup {
             .filter(|(_, columns)| !columns.is_empty())
             .map(|(k, columns)| self.block(k, columns))
             .collect();
-        Ok(AdaptedBasis { functions: layout.functions, irreps: self.irreps.len(), blocks })
+        Ok(AdaptedBasis {
+            functions: layout.functions,
+            irreps: self.irreps.len(),
+            blocks,
+        })
     }
 
     fn project(
@@ -127,7 +134,11 @@ impl PointGroup {
     ) -> Result<(), SymmetryError> {
         let order = self.order() as f64;
         let size = action.size();
-        let inner = if irrep.paired { 1.0 } else { irrep.dimension as f64 };
+        let inner = if irrep.paired {
+            1.0
+        } else {
+            irrep.dimension as f64
+        };
         let weight = |op: usize, row: usize| {
             let value = if irrep.paired {
                 irrep.characters[self.class_of[op]]
@@ -136,14 +147,20 @@ impl PointGroup {
             };
             inner / order * value
         };
-        let wanted = if irrep.paired { irrep.dimension * count } else { count };
+        let wanted = if irrep.paired {
+            irrep.dimension * count
+        } else {
+            count
+        };
         let all: Vec<usize> = (0..size).collect();
         let first: Vec<Vec<f64>> = action.images(&all, |op| weight(op, 0));
-        let chosen = independent(&first, wanted)
-            .ok_or(SymmetryError::Inconsistent("an irrep occurs less often than it should"))?;
+        let chosen = independent(&first, wanted).ok_or(SymmetryError::Inconsistent(
+            "an irrep occurs less often than it should",
+        ))?;
         // Cholesky of the projector among the chosen functions: u = L⁻¹ (P e).
-        let inverse = inverse_factor(&first, &chosen)
-            .ok_or(SymmetryError::Inconsistent("adapted functions are not independent"))?;
+        let inverse = inverse_factor(&first, &chosen).ok_or(SymmetryError::Inconsistent(
+            "adapted functions are not independent",
+        ))?;
         let partner_images: Vec<Vec<Vec<f64>>> = if irrep.paired {
             Vec::new()
         } else {
@@ -225,14 +242,20 @@ impl PointGroup {
                 .map(|(_, &first)| Column {
                     row: first,
                     factors: vec![(first, 1.0)],
-                    vectors: (0..irrep.dimension).map(|m| vec![(first + m, 1.0)]).collect(),
+                    vectors: (0..irrep.dimension)
+                        .map(|m| vec![(first + m, 1.0)])
+                        .collect(),
                 })
                 .collect();
             if !columns.is_empty() {
                 blocks.push(self.block(l, columns));
             }
         }
-        Ok(AdaptedBasis { functions: layout.functions, irreps: self.irreps.len(), blocks })
+        Ok(AdaptedBasis {
+            functions: layout.functions,
+            irreps: self.irreps.len(),
+            blocks,
+        })
     }
 }
 
@@ -269,9 +292,16 @@ impl<'a> Action<'a> {
                     .collect()
             })
             .collect();
-        let functions =
-            orbit.iter().flat_map(|&s| layout.first[s]..layout.first[s] + width).collect();
-        Self { width, functions, places, turns }
+        let functions = orbit
+            .iter()
+            .flat_map(|&s| layout.first[s]..layout.first[s] + width)
+            .collect();
+        Self {
+            width,
+            functions,
+            places,
+            turns,
+        }
     }
 
     fn size(&self) -> usize {
@@ -361,12 +391,21 @@ fn inverse_factor(projected: &[Vec<f64>], chosen: &[usize]) -> Option<Vec<Vec<f6
     }
     let mut inverse = vec![vec![0.0; m]; m];
     for i in 0..m {
-        inverse[i][i] = 1.0 / lower[i][i];
-        for j in 0..i {
+        // L⁻¹ row by row, from the rows above.
+        let mut row = vec![0.0; m];
+        row[i] = 1.0 / lower[i][i];
+        for (j, x) in row[..i].iter_mut().enumerate() {
             let total: f64 = (j..i).map(|k| lower[i][k] * inverse[k][j]).sum();
-            inverse[i][j] = -total / lower[i][i];
+            *x = -total / lower[i][i];
         }
+        inverse[i] = row;
     }
     // Only the part up to the diagonal is ever non-zero.
-    Some(inverse.into_iter().enumerate().map(|(i, row)| row[..=i].to_vec()).collect())
+    Some(
+        inverse
+            .into_iter()
+            .enumerate()
+            .map(|(i, row)| row[..=i].to_vec())
+            .collect(),
+    )
 }

@@ -41,12 +41,21 @@ pub(crate) fn choose(
 ) -> (Frame, String) {
     let scorer = Scorer::new(atoms, tolerance);
     let (z, x, text) = match family {
-        Family::Trivial | Family::Inversion => {
-            ([0.0, 0.0, 1.0], [1.0, 0.0, 0.0], "axes of the input".to_owned())
-        }
+        Family::Trivial | Family::Inversion => (
+            [0.0, 0.0, 1.0],
+            [1.0, 0.0, 0.0],
+            "axes of the input".to_owned(),
+        ),
         Family::Mirror => {
-            let z = elements.iter().find(|e| e.is_mirror()).map_or([0.0, 0.0, 1.0], |e| e.axis);
-            (z, scorer.towards_first(z), "z perpendicular to the mirror plane".to_owned())
+            let z = elements
+                .iter()
+                .find(|e| e.is_mirror())
+                .map_or([0.0, 0.0, 1.0], |e| e.axis);
+            (
+                z,
+                scorer.towards_first(z),
+                "z perpendicular to the mirror plane".to_owned(),
+            )
         }
         _ if family.is_cubic() => cubic(family, elements, &scorer),
         Family::Dihedral | Family::DihedralHorizontal if n == 2 => three_axes(elements, &scorer),
@@ -54,7 +63,15 @@ pub(crate) fn choose(
     };
     let z = scorer.signed(z);
     let x = scorer.signed(normalised(perpendicular(x, z)));
-    (Frame { origin: atoms.centre, x, y: cross(z, x), z }, text)
+    (
+        Frame {
+            origin: atoms.centre,
+            x,
+            y: cross(z, x),
+            z,
+        },
+        text,
+    )
 }
 
 type Choice = (Vector3, Vector3, String);
@@ -102,7 +119,11 @@ fn axial(family: Family, n: u32, elements: &[Element], scorer: &Scorer) -> Choic
             } else {
                 format!("C{n}")
             };
-            (z, x, format!("z along {main}, x along the C2' axis through most atoms"))
+            (
+                z,
+                x,
+                format!("z along {main}, x along the C2' axis through most atoms"),
+            )
         }
         Family::Improper if n.is_multiple_of(2) => {
             (z, scorer.towards_first(z), format!("z along S{}", 2 * n))
@@ -113,7 +134,11 @@ fn axial(family: Family, n: u32, elements: &[Element], scorer: &Scorer) -> Choic
 
 /// D2 and D2h: three twofold axes, none of them principal.
 fn three_axes(elements: &[Element], scorer: &Scorer) -> Choice {
-    let axes: Vec<Vector3> = elements.iter().filter(|e| e.is_twofold()).map(|e| e.axis).collect();
+    let axes: Vec<Vector3> = elements
+        .iter()
+        .filter(|e| e.is_twofold())
+        .map(|e| e.axis)
+        .collect();
     let normal = axes.iter().copied().find(|&axis| scorer.all_in_plane(axis));
     let in_plane: Vec<Vector3> = axes
         .iter()
@@ -121,7 +146,10 @@ fn three_axes(elements: &[Element], scorer: &Scorer) -> Choice {
         .filter(|&axis| normal.is_none_or(|n| !parallel(n, axis)))
         .collect();
     let z = scorer.best_axis(&in_plane);
-    let others: Vec<Vector3> = axes.into_iter().filter(|&axis| !parallel(z, axis)).collect();
+    let others: Vec<Vector3> = axes
+        .into_iter()
+        .filter(|&axis| !parallel(z, axis))
+        .collect();
     let x = scorer.best_plane(&others);
     let text = if normal.is_some() {
         "x perpendicular to the plane, z along the C2 axis through most atoms (then most bonds)"
@@ -182,7 +210,10 @@ impl Score {
         if self.bonds != other.bonds {
             return self.bonds > other.bonds;
         }
-        let pairs = [(self.distance, other.distance), (self.weighted, other.weighted)];
+        let pairs = [
+            (self.distance, other.distance),
+            (self.weighted, other.weighted),
+        ];
         let each = self.each.iter().copied().zip(other.each.iter().copied());
         for (a, b) in pairs.into_iter().chain(each) {
             if (a - b).abs() > 1e-3 * (1.0 + a.abs()) {
@@ -195,14 +226,27 @@ impl Score {
 
 impl<'a> Scorer<'a> {
     fn new(atoms: &'a Centred, tolerance: f64) -> Self {
-        Self { atoms, bonds: middles(atoms), on: tolerance.max(0.02) }
+        Self {
+            atoms,
+            bonds: middles(atoms),
+            on: tolerance.max(0.02),
+        }
     }
 
     fn score(&self, distance_of: impl Fn(Vector3) -> f64) -> Score {
-        let each: Vec<f64> = self.atoms.positions.iter().map(|p| distance_of(*p)).collect();
+        let each: Vec<f64> = self
+            .atoms
+            .positions
+            .iter()
+            .map(|p| distance_of(*p))
+            .collect();
         Score {
             atoms: each.iter().filter(|d| **d <= self.on).count(),
-            bonds: self.bonds.iter().filter(|p| distance_of(**p) <= self.on).count(),
+            bonds: self
+                .bonds
+                .iter()
+                .filter(|p| distance_of(**p) <= self.on)
+                .count(),
             distance: each.iter().sum(),
             weighted: each
                 .iter()
@@ -225,7 +269,9 @@ impl<'a> Scorer<'a> {
     }
 
     fn best_axis(&self, candidates: &[Vector3]) -> Vector3 {
-        self.best(candidates, |axis| self.score(|p| norm(perpendicular(p, axis))))
+        self.best(candidates, |axis| {
+            self.score(|p| norm(perpendicular(p, axis)))
+        })
     }
 
     fn best_plane(&self, normals: &[Vector3]) -> Vector3 {
@@ -233,7 +279,10 @@ impl<'a> Scorer<'a> {
     }
 
     fn all_in_plane(&self, normal: Vector3) -> bool {
-        self.atoms.positions.iter().all(|p| dot(*p, normal).abs() <= self.on)
+        self.atoms
+            .positions
+            .iter()
+            .all(|p| dot(*p, normal).abs() <= self.on)
     }
 
     /// Perpendicular to z, towards the first atom of the input that is off the axis.
@@ -248,8 +297,17 @@ impl<'a> Scorer<'a> {
 
     /// The direction of an axis in which the first atom off the plane across it lies.
     fn signed(&self, axis: Vector3) -> Vector3 {
-        let first = self.atoms.positions.iter().map(|p| dot(*p, axis)).find(|x| x.abs() > 0.05);
-        if first.is_some_and(|x| x < 0.0) { scaled(axis, -1.0) } else { axis }
+        let first = self
+            .atoms
+            .positions
+            .iter()
+            .map(|p| dot(*p, axis))
+            .find(|x| x.abs() > 0.05);
+        if first.is_some_and(|x| x < 0.0) {
+            scaled(axis, -1.0)
+        } else {
+            axis
+        }
     }
 }
 

@@ -86,7 +86,10 @@ pub(crate) fn characters(table: &Multiplication, classes: &Classes) -> Option<Ve
 }
 
 fn merge_inverses(table: &Multiplication, classes: &Classes) -> Classes {
-    let mut merged = Classes { members: Vec::new(), of: vec![usize::MAX; table.order()] };
+    let mut merged = Classes {
+        members: Vec::new(),
+        of: vec![usize::MAX; table.order()],
+    };
     for class in &classes.members {
         if merged.of[class[0]] != usize::MAX {
             continue;
@@ -151,7 +154,11 @@ fn from_idempotent(
         })
         .collect();
     let dimension = if paired { 2.0 * inner } else { inner };
-    Some(Character { dimension: dimension as usize, paired, values })
+    Some(Character {
+        dimension: dimension as usize,
+        paired,
+        values,
+    })
 }
 
 /// Removes the last digits, which depend on rounding.
@@ -167,7 +174,13 @@ fn tidy(value: f64) -> f64 {
 fn orthogonal(all: &[Character], order: usize, classes: &Classes) -> bool {
     let squares: usize = all
         .iter()
-        .map(|c| if c.paired { c.dimension * c.dimension / 2 } else { c.dimension * c.dimension })
+        .map(|c| {
+            if c.paired {
+                c.dimension * c.dimension / 2
+            } else {
+                c.dimension * c.dimension
+            }
+        })
         .sum();
     if squares != order {
         return false;

@@ -49,15 +49,18 @@ fn key(m: &Mapping) -> (bool, &[usize]) {
 /// the tolerance lets one more operation in.
 pub(crate) fn chain(mappings: &[Mapping]) -> Vec<ClosedSet> {
     let products = Products::new(mappings);
-    let identity = mappings.iter().position(|m| {
-        m.proper && m.permutation.iter().enumerate().all(|(i, &j)| i == j)
-    });
+    let identity = mappings
+        .iter()
+        .position(|m| m.proper && m.permutation.iter().enumerate().all(|(i, &j)| i == j));
     let Some(identity) = identity else {
         return Vec::new();
     };
     let mut order: Vec<usize> = (0..mappings.len()).collect();
     order.sort_by(|&i, &j| mappings[i].deviation.total_cmp(&mappings[j].deviation));
-    let mut sets = vec![ClosedSet { elements: vec![identity], deviation: 0.0 }];
+    let mut sets = vec![ClosedSet {
+        elements: vec![identity],
+        deviation: 0.0,
+    }];
     let mut generators: Vec<usize> = Vec::new();
     let mut inside = vec![false; mappings.len()];
     inside[identity] = true;
@@ -76,7 +79,10 @@ pub(crate) fn chain(mappings: &[Mapping]) -> Vec<ClosedSet> {
             inside[e] = true;
             deviation = deviation.max(mappings[e].deviation);
         }
-        sets.push(ClosedSet { elements, deviation });
+        sets.push(ClosedSet {
+            elements,
+            deviation,
+        });
     }
     sets
 }

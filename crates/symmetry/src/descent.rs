@@ -66,7 +66,11 @@ impl PointGroup {
             .map(|op| &op.permutation)
             .find(|p| p.iter().enumerate().any(|(i, &j)| i != j));
         let centred = self.family == crate::element::Family::LinearCentred;
-        let swap = if centred { swap.map(Vec::as_slice) } else { None };
+        let swap = if centred {
+            swap.map(Vec::as_slice)
+        } else {
+            None
+        };
         linear_group(z, x, self.axes.origin, atoms, swap)
     }
 }

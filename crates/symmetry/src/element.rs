@@ -23,7 +23,12 @@ impl Element {
         let cos = (0.5 * (trace(&rotation) - 1.0)).clamp(-1.0, 1.0);
         if cos > 1.0 - 1e-8 {
             let order = if proper { 1 } else { 2 };
-            return Self { proper, order, power: order - 1, axis: [0.0; 3] };
+            return Self {
+                proper,
+                order,
+                power: order - 1,
+                axis: [0.0; 3],
+            };
         }
         let axis = axis_of(&rotation, cos);
         let twice_sin = axis[0] * (rotation[2][1] - rotation[1][2])
@@ -35,7 +40,12 @@ impl Element {
         }
         turn -= turn.floor();
         let (order, power) = fraction(turn, highest.max(2));
-        Self { proper, order, power, axis }
+        Self {
+            proper,
+            order,
+            power,
+            axis,
+        }
     }
 
     pub(crate) fn is_mirror(&self) -> bool {
@@ -61,7 +71,11 @@ impl Element {
         };
         // An even power of an odd S is a pure rotation, so the improper one is named once round.
         let again = !self.proper && self.order % 2 == 1 && self.power.is_multiple_of(2);
-        let power = if again { self.power + self.order } else { self.power };
+        let power = if again {
+            self.power + self.order
+        } else {
+            self.power
+        };
         if power == 1 {
             format!("{letter}{}", self.order)
         } else {
@@ -99,7 +113,10 @@ fn fraction(turn: f64, highest: u32) -> (u32, u32) {
             return (order, power as u32 % order);
         }
     }
-    (highest, (turn * f64::from(highest)).round() as u32 % highest)
+    (
+        highest,
+        (turn * f64::from(highest)).round() as u32 % highest,
+    )
 }
 
 /// The kind of point group.
@@ -156,7 +173,10 @@ impl Family {
         let proper = elements.iter().filter(|e| e.proper).count();
         // In D2h any of the three axes may stand first, so all principal ones are looked at.
         let horizontal = elements.iter().any(|e| {
-            e.is_mirror() && axes.iter().any(|(axis, order)| *order == n && parallel(*axis, e.axis))
+            e.is_mirror()
+                && axes
+                    .iter()
+                    .any(|(axis, order)| *order == n && parallel(*axis, e.axis))
         });
         let mirror = elements.iter().any(Element::is_mirror);
         let family = if proper == 2 * n as usize {
@@ -209,11 +229,17 @@ impl Family {
     }
 
     pub(crate) fn is_cubic(self) -> bool {
-        matches!(self, Self::T | Self::Td | Self::Th | Self::O | Self::Oh | Self::I | Self::Ih)
+        matches!(
+            self,
+            Self::T | Self::Td | Self::Th | Self::O | Self::Oh | Self::I | Self::Ih
+        )
     }
 
     pub(crate) fn is_dihedral(self) -> bool {
-        matches!(self, Self::Dihedral | Self::DihedralDiagonal | Self::DihedralHorizontal)
+        matches!(
+            self,
+            Self::Dihedral | Self::DihedralDiagonal | Self::DihedralHorizontal
+        )
     }
 }
 

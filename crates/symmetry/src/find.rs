@@ -5,7 +5,9 @@ use crate::element::{Element, Family};
 use crate::error::SymmetryError;
 use crate::group::{PointGroup, RawOperation};
 use crate::linear::{atom_group, end_for_end, linear_group};
-use crate::matrix::{Matrix3, Vector3, any_perpendicular, apply, distance, difference, sum, transpose};
+use crate::matrix::{
+    Matrix3, Vector3, any_perpendicular, apply, difference, distance, sum, transpose,
+};
 use crate::multiplication::Multiplication;
 use crate::nucleus::{Centred, Nucleus};
 use crate::search::{Mapping, common_line, deviation_of, mappings};
@@ -59,8 +61,9 @@ pub fn find(nuclei: &[Nucleus], tolerance_angstrom: f64) -> Result<Symmetry, Sym
     let limit = tolerance_angstrom.max(NEAR);
     let found = mappings(&atoms, limit);
     let sets = chain(&found);
-    let (within, beyond): (Vec<ClosedSet>, Vec<ClosedSet>) =
-        sets.into_iter().partition(|set| set.deviation <= tolerance_angstrom);
+    let (within, beyond): (Vec<ClosedSet>, Vec<ClosedSet>) = sets
+        .into_iter()
+        .partition(|set| set.deviation <= tolerance_angstrom);
     // A set at the very edge of the tolerance may close without being a group; the one before it
     // then counts.
     let mut raw = Err(SymmetryError::Inconsistent("the identity was not found"));
@@ -78,16 +81,28 @@ pub fn find(nuclei: &[Nucleus], tolerance_angstrom: f64) -> Result<Symmetry, Sym
     let mut near_misses: Vec<NearMiss> = Vec::new();
     for (k, set) in beyond.iter().enumerate() {
         // Sets that appear together count as the largest of them.
-        let last = beyond.get(k + 1).is_none_or(|next| next.deviation > set.deviation + 1e-6);
+        let last = beyond
+            .get(k + 1)
+            .is_none_or(|next| next.deviation > set.deviation + 1e-6);
         if last && let Ok(name) = name_of(&found, set) {
-            near_misses.push(NearMiss { name, tolerance_angstrom: set.deviation });
+            near_misses.push(NearMiss {
+                name,
+                tolerance_angstrom: set.deviation,
+            });
         }
     }
     if off <= limit {
         let swap = end_for_end(&atoms, axis).filter(|(_, d)| *d <= off.max(tolerance_angstrom));
-        let family = if swap.is_some() { Family::LinearCentred } else { Family::LinearPolar };
+        let family = if swap.is_some() {
+            Family::LinearCentred
+        } else {
+            Family::LinearPolar
+        };
         near_misses.retain(|miss| miss.tolerance_angstrom < off);
-        near_misses.push(NearMiss { name: family.name(0), tolerance_angstrom: off });
+        near_misses.push(NearMiss {
+            name: family.name(0),
+            tolerance_angstrom: off,
+        });
     }
     Ok(Symmetry {
         group: PointGroup::finite(raw, &atoms, tolerance_angstrom)?,
@@ -114,11 +129,25 @@ fn find_linear(
         });
     }
     // The axis points to the end where the first atom off the centre is.
-    let first = atoms.positions.iter().map(|p| crate::matrix::dot(*p, axis)).find(|x| x.abs() > 0.05);
-    let axis = if first.is_some_and(|x| x < 0.0) { axis.map(|x| -x) } else { axis };
+    let first = atoms
+        .positions
+        .iter()
+        .map(|p| crate::matrix::dot(*p, axis))
+        .find(|x| x.abs() > 0.05);
+    let axis = if first.is_some_and(|x| x < 0.0) {
+        axis.map(|x| -x)
+    } else {
+        axis
+    };
     let permutation = swap.map(|(p, _)| p.as_slice());
     Ok(Symmetry {
-        group: linear_group(axis, any_perpendicular(axis), atoms.centre, atoms.len(), permutation)?,
+        group: linear_group(
+            axis,
+            any_perpendicular(axis),
+            atoms.centre,
+            atoms.len(),
+            permutation,
+        )?,
         deviation_angstrom: swap.map_or(off, |(_, d)| off.max(*d)),
         near_misses,
     })
@@ -134,7 +163,9 @@ fn exact_matrices(found: &[Mapping], set: &ClosedSet) -> Result<Vec<Matrix3>, Sy
     if table.obeyed(&exact, 1e-9) {
         Ok(exact)
     } else {
-        Err(SymmetryError::Inconsistent("the operations cannot be made exact"))
+        Err(SymmetryError::Inconsistent(
+            "the operations cannot be made exact",
+        ))
     }
 }
 
@@ -147,14 +178,19 @@ pub(crate) fn exact_operations(
         .elements
         .iter()
         .zip(exact)
-        .map(|(&e, matrix)| RawOperation { matrix, permutation: found[e].permutation.clone() })
+        .map(|(&e, matrix)| RawOperation {
+            matrix,
+            permutation: found[e].permutation.clone(),
+        })
         .collect())
 }
 
 fn name_of(found: &[Mapping], set: &ClosedSet) -> Result<String, SymmetryError> {
     let highest = u32::try_from(set.elements.len()).unwrap_or(u32::MAX);
-    let elements: Vec<Element> =
-        exact_matrices(found, set)?.iter().map(|m| Element::new(m, highest)).collect();
+    let elements: Vec<Element> = exact_matrices(found, set)?
+        .iter()
+        .map(|m| Element::new(m, highest))
+        .collect();
     let (family, n) = Family::of(&elements);
     Ok(family.name(n))
 }
@@ -167,7 +203,10 @@ pub fn symmetrize(nuclei: &[Nucleus], group: &PointGroup) -> (Vec<Nucleus>, f64)
     for op in &group.operations {
         let back = transpose(&op.matrix);
         for (total, &image) in sums.iter_mut().zip(&op.permutation) {
-            *total = sum(*total, apply(&back, difference(nuclei[image].position, centre)));
+            *total = sum(
+                *total,
+                apply(&back, difference(nuclei[image].position, centre)),
+            );
         }
     }
     let share = 1.0 / group.operations.len() as f64;
@@ -178,7 +217,10 @@ pub fn symmetrize(nuclei: &[Nucleus], group: &PointGroup) -> (Vec<Nucleus>, f64)
         .map(|(nucleus, total)| {
             let position = sum(centre, total.map(|x| x * share));
             worst = worst.max(distance(position, nucleus.position));
-            Nucleus { kind: nucleus.kind, position }
+            Nucleus {
+                kind: nucleus.kind,
+                position,
+            }
         })
         .collect();
     (moved, worst)

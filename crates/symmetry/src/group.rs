@@ -97,8 +97,10 @@ impl PointGroup {
             };
             (kind, u32::MAX - e.order, e.power, op.permutation.clone())
         });
-        let elements: Vec<Element> =
-            raw.iter().map(|op| Element::new(&op.matrix, highest)).collect();
+        let elements: Vec<Element> = raw
+            .iter()
+            .map(|op| Element::new(&op.matrix, highest))
+            .collect();
         let (family, n) = Family::of(&elements);
         let (frame, convention) = axes::choose(family, n, &elements, atoms, tolerance);
         Self::assemble(raw, &elements, family, n, frame, convention)
@@ -116,10 +118,17 @@ impl PointGroup {
         let table = Multiplication::of_matrices(&matrices)
             .ok_or(SymmetryError::Inconsistent("the operations do not close"))?;
         let classes = Classes::new(&table);
-        let all = characters(&table, &classes)
-            .ok_or(SymmetryError::Inconsistent("the characters are not orthogonal"))?;
+        let all = characters(&table, &classes).ok_or(SymmetryError::Inconsistent(
+            "the characters are not orthogonal",
+        ))?;
         let linear = matches!(family, Family::LinearPolar | Family::LinearCentred);
-        let naming = Naming { elements, classes: &classes, family, n, frame: &frame };
+        let naming = Naming {
+            elements,
+            classes: &classes,
+            family,
+            n,
+            frame: &frame,
+        };
         let irreps = naming.irreps(&all);
         let labels = naming.operation_labels();
         let named_classes = classes
@@ -211,7 +220,10 @@ struct Naming<'a> {
 
 impl Naming<'_> {
     fn find(&self, wanted: impl Fn(&Element) -> bool) -> Option<usize> {
-        self.elements.iter().position(wanted).map(|op| self.classes.of[op])
+        self.elements
+            .iter()
+            .position(wanted)
+            .map(|op| self.classes.of[op])
     }
 
     /// The smallest turn about z, or the C5 of icosahedral groups: its order and class.
@@ -233,11 +245,9 @@ impl Naming<'_> {
 
     fn irreps(&self, all: &[Character]) -> Vec<Irrep> {
         let (order, principal) = self.principal();
-        let along = |axis: Vector3| {
-            move |e: &Element| e.is_twofold() && parallel(e.axis, axis)
-        };
-        let three = self.n == 2
-            && matches!(self.family, Family::Dihedral | Family::DihedralHorizontal);
+        let along = |axis: Vector3| move |e: &Element| e.is_twofold() && parallel(e.axis, axis);
+        let three =
+            self.n == 2 && matches!(self.family, Family::Dihedral | Family::DihedralHorizontal);
         let twofold = [self.frame.z, self.frame.y, self.frame.x].map(|axis| self.find(along(axis)));
         let linear = matches!(self.family, Family::LinearPolar | Family::LinearCentred);
         let vertical = |e: &Element| e.is_mirror() && parallel(e.axis, self.frame.y);
@@ -251,7 +261,11 @@ impl Naming<'_> {
         };
         let inversion = self.find(Element::is_inversion);
         let horizontal = self.find(|e| e.is_mirror() && parallel(e.axis, self.frame.z));
-        let horizontal = if self.family.is_cubic() { None } else { horizontal };
+        let horizontal = if self.family.is_cubic() {
+            None
+        } else {
+            horizontal
+        };
         let marks: Vec<Marks> = all
             .iter()
             .map(|c| Marks {
@@ -271,7 +285,10 @@ impl Naming<'_> {
         let parts: Vec<Option<Parts>> = if linear {
             marks.iter().map(|m| names::linear(order, m)).collect()
         } else {
-            names::parts(self.family, order, &marks).into_iter().map(Some).collect()
+            names::parts(self.family, order, &marks)
+                .into_iter()
+                .map(Some)
+                .collect()
         };
         let mut irreps: Vec<Irrep> = all
             .iter()
@@ -293,7 +310,9 @@ impl Naming<'_> {
     }
 
     fn operation_labels(&self) -> Vec<String> {
-        (0..self.elements.len()).map(|op| self.operation_label(op)).collect()
+        (0..self.elements.len())
+            .map(|op| self.operation_label(op))
+            .collect()
     }
 
     fn operation_label(&self, op: usize) -> String {

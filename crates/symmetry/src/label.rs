@@ -79,7 +79,10 @@ impl AdaptedBasis {
             content.extend(best.map(|irrep| (irrep, 1)));
             explained = best.map_or(0.0, |irrep| total[irrep]);
         }
-        Label { content, purity: explained / orbitals.max(1) as f64 }
+        Label {
+            content,
+            purity: explained / orbitals.max(1) as f64,
+        }
     }
 }
 

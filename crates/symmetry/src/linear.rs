@@ -24,7 +24,12 @@ pub(crate) fn linear_group(
     swap: Option<&[usize]>,
 ) -> Result<PointGroup, SymmetryError> {
     let x = normalised(perpendicular(x, axis));
-    let frame = Frame { origin: centre, x, y: cross(axis, x), z: axis };
+    let frame = Frame {
+        origin: centre,
+        x,
+        y: cross(axis, x),
+        z: axis,
+    };
     let unchanged: Vec<usize> = (0..atoms).collect();
     let mut raw = Vec::new();
     let half = std::f64::consts::FRAC_1_SQRT_2;
@@ -33,16 +38,31 @@ pub(crate) fn linear_group(
         let turn = rotation_about(axis, cosines[k], cosines[(k + 6) % 8]);
         let mirrored = product(&turn, &reflection(frame.y));
         for matrix in [turn, mirrored] {
-            raw.push(RawOperation { matrix, permutation: unchanged.clone() });
+            raw.push(RawOperation {
+                matrix,
+                permutation: unchanged.clone(),
+            });
             if let Some(swap) = swap {
-                raw.push(RawOperation { matrix: negative(&matrix), permutation: swap.to_vec() });
+                raw.push(RawOperation {
+                    matrix: negative(&matrix),
+                    permutation: swap.to_vec(),
+                });
             }
         }
     }
-    let identity = raw.iter().position(|op| crate::matrix::largest_difference(&op.matrix, &IDENTITY) < 1e-9);
+    let identity = raw
+        .iter()
+        .position(|op| crate::matrix::largest_difference(&op.matrix, &IDENTITY) < 1e-9);
     raw.swap(0, identity.unwrap_or(0));
-    let elements: Vec<Element> = raw.iter().map(|op| Element::new(&op.matrix, 2 * TURN)).collect();
-    let family = if swap.is_some() { Family::LinearCentred } else { Family::LinearPolar };
+    let elements: Vec<Element> = raw
+        .iter()
+        .map(|op| Element::new(&op.matrix, 2 * TURN))
+        .collect();
+    let family = if swap.is_some() {
+        Family::LinearCentred
+    } else {
+        Family::LinearPolar
+    };
     let convention = "z along the molecule".to_owned();
     PointGroup::assemble(raw, &elements, family, TURN, frame, convention)
 }
@@ -71,12 +91,20 @@ pub(crate) fn atom_group(centre: Vector3) -> PointGroup {
         permutation: vec![0],
         label: label.to_owned(),
     };
-    let class = |k: usize, label: &str| Class { label: label.to_owned(), operations: vec![k] };
+    let class = |k: usize, label: &str| Class {
+        label: label.to_owned(),
+        operations: vec![k],
+    };
     let irreps = [("s", "g"), ("p", "u"), ("d", "g"), ("f", "u")]
         .iter()
         .enumerate()
         .map(|(l, (letter, parity))| {
-            let parts = Parts { letter, number: 0, parity, sign: "" };
+            let parts = Parts {
+                letter,
+                number: 0,
+                parity,
+                sign: "",
+            };
             let dimension = 2 * l + 1;
             let size = dimension as f64;
             Irrep {
@@ -91,9 +119,17 @@ pub(crate) fn atom_group(centre: Vector3) -> PointGroup {
         .collect();
     PointGroup {
         name: Family::Spherical.name(0),
-        axes: Frame { origin: centre, x: IDENTITY[0], y: IDENTITY[1], z: IDENTITY[2] },
+        axes: Frame {
+            origin: centre,
+            x: IDENTITY[0],
+            y: IDENTITY[1],
+            z: IDENTITY[2],
+        },
         convention: "axes of the input".to_owned(),
-        operations: vec![operation(IDENTITY, "E"), operation(negative(&IDENTITY), "i")],
+        operations: vec![
+            operation(IDENTITY, "E"),
+            operation(negative(&IDENTITY), "i"),
+        ],
         classes: vec![class(0, "E"), class(1, "i")],
         irreps,
         linear: false,
@@ -122,9 +158,15 @@ pub(crate) fn linear_character(parts: &Parts, axis: Vector3, matrix: &Matrix3) -
         kept = negative(matrix);
     }
     let proper = determinant(&kept) > 0.0;
-    let waves = Parts::LINEAR.iter().position(|letter| *letter == parts.letter)?;
+    let waves = Parts::LINEAR
+        .iter()
+        .position(|letter| *letter == parts.letter)?;
     if waves == 0 {
-        return Some(if proper || parts.sign == "+" { sign } else { -sign });
+        return Some(if proper || parts.sign == "+" {
+            sign
+        } else {
+            -sign
+        });
     }
     if !proper {
         return Some(0.0);
@@ -133,7 +175,6 @@ pub(crate) fn linear_character(parts: &Parts, axis: Vector3, matrix: &Matrix3) -
     Some(sign * 2.0 * cos_multiple(cos, waves))
 }
 
-
 /// Trace of an orthogonal matrix on the functions of angular momentum `l`:
 /// Σ cos mθ over m = −l … l, times (−1)^l if improper.
 pub(crate) fn shell_character(l: usize, matrix: &Matrix3) -> f64 {
@@ -141,7 +182,11 @@ pub(crate) fn shell_character(l: usize, matrix: &Matrix3) -> f64 {
     let rotation = if proper { *matrix } else { negative(matrix) };
     let cos = (0.5 * (trace(&rotation) - 1.0)).clamp(-1.0, 1.0);
     let sum = 1.0 + 2.0 * (1..=l).map(|m| cos_multiple(cos, m)).sum::<f64>();
-    if proper || l.is_multiple_of(2) { sum } else { -sum }
+    if proper || l.is_multiple_of(2) {
+        sum
+    } else {
+        -sum
+    }
 }
 
 /// cos kθ from cos θ.
@@ -169,4 +214,3 @@ pub(crate) fn multiplicity(irrep: &Irrep, sizes: &[usize], values: &[f64]) -> f6
         .sum();
     sum / (norm * order as f64)
 }
-

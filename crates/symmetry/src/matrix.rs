@@ -151,11 +151,7 @@ pub(crate) fn orthogonal_factor(m: &Matrix3) -> Matrix3 {
         if d.abs() < 1e-12 {
             break;
         }
-        let cofactors = [
-            cross(x[1], x[2]),
-            cross(x[2], x[0]),
-            cross(x[0], x[1]),
-        ];
+        let cofactors = [cross(x[1], x[2]), cross(x[2], x[0]), cross(x[0], x[1])];
         let mut next = [[0.0; 3]; 3];
         for i in 0..3 {
             for j in 0..3 {
@@ -189,10 +185,22 @@ pub(crate) fn best_fit(
     }
     let [[xx, xy, xz], [yx, yy, yz], [zx, zy, zz]] = s;
     let n = Matrix4::new(
-        xx + yy + zz, yz - zy, zx - xz, xy - yx,
-        yz - zy, xx - yy - zz, xy + yx, zx + xz,
-        zx - xz, xy + yx, yy - xx - zz, yz + zy,
-        xy - yx, zx + xz, yz + zy, zz - xx - yy,
+        xx + yy + zz,
+        yz - zy,
+        zx - xz,
+        xy - yx,
+        yz - zy,
+        xx - yy - zz,
+        xy + yx,
+        zx + xz,
+        zx - xz,
+        xy + yx,
+        yy - xx - zz,
+        yz + zy,
+        xy - yx,
+        zx + xz,
+        yz + zy,
+        zz - xx - yy,
     );
     let eigen = SymmetricEigen::try_new(n, 1e-15, 1000)?;
     let mut best = 0;
@@ -205,11 +213,27 @@ pub(crate) fn best_fit(
     let length = q.norm();
     let (w, x, y, z) = (q[0] / length, q[1] / length, q[2] / length, q[3] / length);
     let rotation = [
-        [w * w + x * x - y * y - z * z, 2.0 * (x * y - w * z), 2.0 * (x * z + w * y)],
-        [2.0 * (x * y + w * z), w * w - x * x + y * y - z * z, 2.0 * (y * z - w * x)],
-        [2.0 * (x * z - w * y), 2.0 * (y * z + w * x), w * w - x * x - y * y + z * z],
+        [
+            w * w + x * x - y * y - z * z,
+            2.0 * (x * y - w * z),
+            2.0 * (x * z + w * y),
+        ],
+        [
+            2.0 * (x * y + w * z),
+            w * w - x * x + y * y - z * z,
+            2.0 * (y * z - w * x),
+        ],
+        [
+            2.0 * (x * z - w * y),
+            2.0 * (y * z + w * x),
+            w * w - x * x - y * y + z * z,
+        ],
     ];
-    Some(if proper { rotation } else { negative(&rotation) })
+    Some(if proper {
+        rotation
+    } else {
+        negative(&rotation)
+    })
 }
 
 #[cfg(test)]

@@ -68,14 +68,20 @@ impl Multiplication {
             let row = &table[x * order..(x + 1) * order];
             inverse[x] = u16::try_from(row.iter().position(|&y| y == 0)?).ok()?;
         }
-        Some(Self { order, table, inverse })
+        Some(Self {
+            order,
+            table,
+            inverse,
+        })
     }
 
     /// The table of exact matrices.
     pub(crate) fn of_matrices(matrices: &[Matrix3]) -> Option<Self> {
         Self::new(matrices.len(), |i, j| {
             let wanted = product(&matrices[i], &matrices[j]);
-            matrices.iter().position(|m| largest_difference(m, &wanted) < 1e-6)
+            matrices
+                .iter()
+                .position(|m| largest_difference(m, &wanted) < 1e-6)
         })
     }
 

@@ -38,7 +38,10 @@ pub(crate) fn parts(family: Family, turn: u32, marks: &[Marks]) -> Vec<Parts> {
     let alone: Vec<bool> = all
         .iter()
         .map(|p| {
-            all.iter().filter(|q| q.letter == p.letter && q.parity == p.parity).count() == 1
+            all.iter()
+                .filter(|q| q.letter == p.letter && q.parity == p.parity)
+                .count()
+                == 1
         })
         .collect();
     for (p, alone) in all.iter_mut().zip(alone) {
@@ -52,8 +55,20 @@ pub(crate) fn parts(family: Family, turn: u32, marks: &[Marks]) -> Vec<Parts> {
 
 fn one(family: Family, turn: u32, m: &Marks) -> Parts {
     let parity = match (m.inversion, m.horizontal) {
-        (Some(i), _) => if i > 0.0 { "g" } else { "u" },
-        (None, Some(h)) => if h > 0.0 { "'" } else { "''" },
+        (Some(i), _) => {
+            if i > 0.0 {
+                "g"
+            } else {
+                "u"
+            }
+        }
+        (None, Some(h)) => {
+            if h > 0.0 {
+                "'"
+            } else {
+                "''"
+            }
+        }
         (None, None) => "",
     };
     let second = match m.second {
@@ -74,17 +89,32 @@ fn one(family: Family, turn: u32, m: &Marks) -> Parts {
             }
             None => ("a", second),
         },
-        2 => ("e", if family.is_cubic() { 0 } else { wave(m.principal, turn) }),
-        3 => ("t", if matches!(family, Family::I | Family::Ih) {
-            // C5 of the vector representation has 1 + 2 cos 72° > 0.
-            if m.principal > 0.0 { 1 } else { 2 }
-        } else {
-            second
-        }),
+        2 => (
+            "e",
+            if family.is_cubic() {
+                0
+            } else {
+                wave(m.principal, turn)
+            },
+        ),
+        3 => (
+            "t",
+            if matches!(family, Family::I | Family::Ih) {
+                // C5 of the vector representation has 1 + 2 cos 72° > 0.
+                if m.principal > 0.0 { 1 } else { 2 }
+            } else {
+                second
+            },
+        ),
         4 => ("g", 0),
         _ => ("h", 0),
     };
-    Parts { letter, number, parity, sign: "" }
+    Parts {
+        letter,
+        number,
+        parity,
+        sign: "",
+    }
 }
 
 /// The parts of the name of an irrep of the stand-in of a linear group, `second` at a plane
@@ -106,7 +136,12 @@ pub(crate) fn linear(turn: u32, m: &Marks) -> Option<Parts> {
         Some(_) => "u",
         None => "",
     };
-    Some(Parts { letter, number: 0, parity, sign })
+    Some(Parts {
+        letter,
+        number: 0,
+        parity,
+        sign,
+    })
 }
 
 /// k where the character at a turn of 1/n is 2 cos(2πk/n).

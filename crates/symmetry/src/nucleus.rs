@@ -44,8 +44,10 @@ impl Centred {
             }
         }
         let centre = centroid(nuclei.iter().map(|n| n.position));
-        let positions: Vec<Vector3> =
-            nuclei.iter().map(|n| difference(n.position, centre)).collect();
+        let positions: Vec<Vector3> = nuclei
+            .iter()
+            .map(|n| difference(n.position, centre))
+            .collect();
         Ok(Self {
             kinds: nuclei.iter().map(|n| n.kind).collect(),
             radii: positions.iter().map(|p| norm(*p)).collect(),

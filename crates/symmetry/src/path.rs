@@ -55,7 +55,11 @@ pub fn path_group<G: AsRef<[[f64; 3]]>>(
     let first = all.first().ok_or(SymmetryError::NoAtoms)?;
     if first.len() == 1 {
         let group = atom_group(first.centre);
-        return Ok(PathGroup { group, axes_from: 0, deviation_angstrom: 0.0 });
+        return Ok(PathGroup {
+            group,
+            axes_from: 0,
+            deviation_angstrom: 0.0,
+        });
     }
     let lines: Vec<(Vector3, f64)> = all.iter().map(common_line).collect();
     // The further a geometry is from a line, the better it fixes the operations.
@@ -100,11 +104,13 @@ pub fn path_group<G: AsRef<[[f64; 3]]>>(
                 .last()
                 .is_some_and(|set| set.elements.len() == raw.len())
     };
-    let axes_from = (0..all.len()).find(generic).unwrap_or(if lines[0].1 > tolerance_angstrom {
-        0
-    } else {
-        start
-    });
+    let axes_from = (0..all.len())
+        .find(generic)
+        .unwrap_or(if lines[0].1 > tolerance_angstrom {
+            0
+        } else {
+            start
+        });
     Ok(PathGroup {
         group: PointGroup::finite(raw, &all[axes_from], tolerance_angstrom)?,
         axes_from,
@@ -118,8 +124,13 @@ fn all_linear(
     tolerance: f64,
 ) -> Result<PathGroup, SymmetryError> {
     let axis = lines[0].0;
-    if lines.iter().any(|(other, _)| dot(*other, axis).abs() < 1.0 - 1e-6) {
-        return Err(SymmetryError::Inconsistent("the axis of a linear molecule turns on the path"));
+    if lines
+        .iter()
+        .any(|(other, _)| dot(*other, axis).abs() < 1.0 - 1e-6)
+    {
+        return Err(SymmetryError::Inconsistent(
+            "the axis of a linear molecule turns on the path",
+        ));
     }
     let mut swap: Option<Vec<usize>> = None;
     let mut deviation = lines.iter().map(|(_, off)| *off).fold(0.0, f64::max);

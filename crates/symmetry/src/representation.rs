@@ -37,7 +37,13 @@ impl Representation {
                 let mut out = vec![0.0; d * d];
                 for (j, right) in basis.iter().enumerate() {
                     let image: Vec<f64> = (0..n)
-                        .map(|r| m[r * n..(r + 1) * n].iter().zip(right).map(|(a, b)| a * b).sum())
+                        .map(|r| {
+                            m[r * n..(r + 1) * n]
+                                .iter()
+                                .zip(right)
+                                .map(|(a, b)| a * b)
+                                .sum()
+                        })
                         .collect();
                     for (i, left) in basis.iter().enumerate() {
                         out[i * d + j] = left.iter().zip(&image).map(|(a, b)| a * b).sum();
@@ -46,7 +52,10 @@ impl Representation {
                 out
             })
             .collect();
-        Self { dimension: d, matrices }
+        Self {
+            dimension: d,
+            matrices,
+        }
     }
 
     /// Σ over operations of weight × matrix.
@@ -62,39 +71,64 @@ impl Representation {
     }
 }
 
-/// Matrices of one irrep of a finite group (or of the stand-in of a linear one).
-pub(crate) fn matrices(group: &PointGroup, irrep: &Irrep) -> Result<Representation, SymmetryError> {
-    if irrep.dimension == 1 {
-        return Ok(Representation {
-            dimension: 1,
-            matrices: group.class_of.iter().map(|&c| vec![irrep.characters[c]]).collect(),
-        });
-    }
-    let carriers: Vec<Representation> =
-        if group.family.is_cubic() { cubic_carriers(group) } else { axial_carriers(group) };
+/// Matrices of all irreps of a finite group (or of the stand-in of a linear one).
+pub(crate) fn matrices(group: &PointGroup) -> Result<Vec<Representation>, SymmetryError> {
+    let mut found: Vec<Option<Representation>> = group
+        .irreps
+        .iter()
+        .map(|irrep| {
+            (irrep.dimension == 1).then(|| Representation {
+                dimension: 1,
+                matrices: group
+                    .class_of
+                    .iter()
+                    .map(|&c| vec![irrep.characters[c]])
+                    .collect(),
+            })
+        })
+        .collect();
     let sizes = group.class_sizes();
-    for carrier in carriers {
-        let values: Vec<f64> =
-            group.classes.iter().map(|class| carrier.character(class.operations[0])).collect();
-        if (multiplicity(irrep, &sizes, &values) - 1.0).abs() > 1e-6 {
-            continue;
+    // A carrier is built only while irreps are missing.
+    for number in 0..carrier_count(group) {
+        if found.iter().all(Option::is_some) {
+            break;
         }
-        let norm = if irrep.paired { 2.0 } else { 1.0 };
-        let factor = irrep.dimension as f64 / (norm * group.order() as f64);
-        let projector = carrier.weighted(|op| factor * irrep.characters[group.class_of[op]]);
-        let basis = columns(&projector, carrier.dimension, irrep.dimension);
-        if basis.len() == irrep.dimension {
-            return Ok(carrier.in_basis(&basis));
+        let carrier = carrier(group, number);
+        let values: Vec<f64> = group
+            .classes
+            .iter()
+            .map(|class| carrier.character(class.operations[0]))
+            .collect();
+        for (irrep, place) in group.irreps.iter().zip(&mut found) {
+            let once = (multiplicity(irrep, &sizes, &values) - 1.0).abs() < 1e-6;
+            if place.is_none() && once {
+                *place = part(group, irrep, &carrier);
+            }
         }
     }
-    Err(SymmetryError::Inconsistent("no functions span a degenerate irrep"))
+    found
+        .into_iter()
+        .collect::<Option<Vec<Representation>>>()
+        .ok_or(SymmetryError::Inconsistent(
+            "no functions span a degenerate irrep",
+        ))
+}
+
+/// The part of a carrier that belongs to an irrep.
+fn part(group: &PointGroup, irrep: &Irrep, carrier: &Representation) -> Option<Representation> {
+    let norm = if irrep.paired { 2.0 } else { 1.0 };
+    let factor = irrep.dimension as f64 / (norm * group.order() as f64);
+    let projector = carrier.weighted(|op| factor * irrep.characters[group.class_of[op]]);
+    let basis = columns(&projector, carrier.dimension, irrep.dimension);
+    (basis.len() == irrep.dimension).then(|| carrier.in_basis(&basis))
 }
 
 /// Rows of a degenerate irrep reordered and turned so that each belongs to one irrep of a
-/// subgroup; `kept[k]` is the operation of the big group that is operation k of the small one.
+/// subgroup; `rows` are the matrices of the subgroup's irreps, `kept[k]` is the operation of the big group that is operation k of the small one.
 pub(crate) fn along(
     big: &Representation,
     small: &PointGroup,
+    rows: &[Representation],
     kept: &[usize],
 ) -> Result<Representation, SymmetryError> {
     let restricted = Representation {
@@ -102,9 +136,12 @@ pub(crate) fn along(
         matrices: kept.iter().map(|&op| big.matrices[op].clone()).collect(),
     };
     let mut basis: Vec<Vec<f64>> = Vec::new();
-    for irrep in &small.irreps {
-        let own = matrices(small, irrep)?;
-        let inner = if irrep.paired { 1.0 } else { irrep.dimension as f64 };
+    for (irrep, own) in small.irreps.iter().zip(rows) {
+        let inner = if irrep.paired {
+            1.0
+        } else {
+            irrep.dimension as f64
+        };
         let factor = inner / small.order() as f64;
         if irrep.paired {
             let p = restricted.weighted(|op| factor * irrep.characters[small.class_of[op]]);
@@ -121,20 +158,25 @@ pub(crate) fn along(
         }
     }
     if basis.len() != big.dimension {
-        return Err(SymmetryError::Inconsistent("a degenerate set does not split cleanly"));
+        return Err(SymmetryError::Inconsistent(
+            "a degenerate set does not split cleanly",
+        ));
     }
     Ok(big.in_basis(&basis))
 }
 
 fn times(m: &[f64], v: &[f64]) -> Vec<f64> {
-    m.chunks_exact(v.len()).map(|row| row.iter().zip(v).map(|(a, b)| a * b).sum()).collect()
+    m.chunks_exact(v.len())
+        .map(|row| row.iter().zip(v).map(|(a, b)| a * b).sum())
+        .collect()
 }
 
 /// Up to `wanted` orthonormal vectors that span the columns of a projector, the largest remaining
 /// column first.
 fn columns(projector: &[f64], n: usize, wanted: usize) -> Vec<Vec<f64>> {
-    let mut left: Vec<Vec<f64>> =
-        (0..n).map(|j| (0..n).map(|i| projector[i * n + j]).collect()).collect();
+    let mut left: Vec<Vec<f64>> = (0..n)
+        .map(|j| (0..n).map(|i| projector[i * n + j]).collect())
+        .collect();
     let mut basis: Vec<Vec<f64>> = Vec::new();
     while basis.len() < wanted {
         let sizes: Vec<f64> = left.iter().map(|v| v.iter().map(|x| x * x).sum()).collect();
@@ -165,45 +207,50 @@ fn in_frame(group: &PointGroup, matrix: &Matrix3) -> Matrix3 {
     product(&product(&frame, matrix), &transpose(&frame))
 }
 
-fn cubic_carriers(group: &PointGroup) -> Vec<Representation> {
-    let mut carriers = Vec::new();
-    for l in 1..=3_u8 {
-        for turned in [false, true] {
-            let size = 2 * usize::from(l) + 1;
-            let matrices = group
-                .operations
-                .iter()
-                .map(|op| {
-                    let local = in_frame(group, &op.matrix);
-                    let sign = if turned && determinant(&local) < 0.0 { -1.0 } else { 1.0 };
-                    let d = harmonics::rotation(l, &local);
-                    d[..size].iter().flat_map(|row| row[..size].iter().map(|x| sign * x)).collect()
-                })
-                .collect();
-            carriers.push(Representation { dimension: size, matrices });
-        }
+fn carrier_count(group: &PointGroup) -> u32 {
+    if group.family.is_cubic() {
+        6
+    } else {
+        4 * group.n.max(1)
     }
-    carriers
 }
 
-fn axial_carriers(group: &PointGroup) -> Vec<Representation> {
-    let highest = 2 * group.n.max(1);
-    let mut carriers = Vec::new();
-    for k in 1..=highest {
-        for odd in [false, true] {
-            let matrices = group
-                .operations
+/// Functions that may span irreps: even numbers plain, odd ones times det or the sign of z.
+fn carrier(group: &PointGroup, number: u32) -> Representation {
+    let degree = number / 2 + 1;
+    let turned = !number.is_multiple_of(2);
+    let local = group
+        .operations
+        .iter()
+        .map(|op| in_frame(group, &op.matrix));
+    if group.family.is_cubic() {
+        let size = 2 * degree as usize + 1;
+        let l = degree as u8;
+        let matrices = local.map(|m| {
+            let sign = if turned && determinant(&m) < 0.0 {
+                -1.0
+            } else {
+                1.0
+            };
+            let d = harmonics::rotation(l, &m);
+            d[..size]
                 .iter()
-                .map(|op| {
-                    let local = in_frame(group, &op.matrix);
-                    let sign = if odd && local[2][2] < 0.0 { -1.0 } else { 1.0 };
-                    wave_matrix(&local, k).map(|x| sign * x).to_vec()
-                })
-                .collect();
-            carriers.push(Representation { dimension: 2, matrices });
-        }
+                .flat_map(|row| row[..size].iter().map(|x| sign * x))
+                .collect()
+        });
+        return Representation {
+            dimension: size,
+            matrices: matrices.collect(),
+        };
     }
-    carriers
+    let matrices = local.map(|m| {
+        let sign = if turned && m[2][2] < 0.0 { -1.0 } else { 1.0 };
+        wave_matrix(&m, degree).map(|x| sign * x).to_vec()
+    });
+    Representation {
+        dimension: 2,
+        matrices: matrices.collect(),
+    }
 }
 
 /// The matrix on (cos kφ, sin kφ) of an operation that keeps the z axis.

@@ -41,7 +41,10 @@ impl GroupScreen {
         let mut pairs: Vec<(u64, f64, (u32, u32))> = Vec::new();
         for j in 0..count {
             for i in 0..j {
-                let (a, b) = (atoms.kinds[i].min(atoms.kinds[j]), atoms.kinds[i].max(atoms.kinds[j]));
+                let (a, b) = (
+                    atoms.kinds[i].min(atoms.kinds[j]),
+                    atoms.kinds[i].max(atoms.kinds[j]),
+                );
                 let d = distance(atoms.positions[i], atoms.positions[j]);
                 pairs.push(((u64::from(a) << 32) | u64::from(b), d, (i as u32, j as u32)));
             }
@@ -50,7 +53,8 @@ impl GroupScreen {
         let mut classes: Vec<(u64, Vec<(u32, u32)>)> = Vec::new();
         let mut before: Option<(u64, f64)> = None;
         for (kinds, d, pair) in pairs {
-            let same = before.is_some_and(|(k, last)| k == kinds && d - last <= 2.0 * tolerance_angstrom);
+            let same =
+                before.is_some_and(|(k, last)| k == kinds && d - last <= 2.0 * tolerance_angstrom);
             match classes.last_mut() {
                 Some((_, members)) if same => members.push(pair),
                 _ => classes.push((kinds, vec![pair])),
@@ -58,7 +62,13 @@ impl GroupScreen {
             before = Some((kinds, d));
         }
         let (extent, span) = extent_of(&atoms, tolerance_angstrom);
-        Ok(Self { atoms: count, classes, extent, span, tolerance: tolerance_angstrom })
+        Ok(Self {
+            atoms: count,
+            classes,
+            extent,
+            span,
+            tolerance: tolerance_angstrom,
+        })
     }
 
     /// Whether a geometry (Å, atoms in the order of the reference) surely has the same group. A
@@ -71,15 +81,20 @@ impl GroupScreen {
     }
 
     fn same_pattern(&self, positions: &[[f64; 3]]) -> bool {
-        let at = |pair: (u32, u32)| {
-            distance(positions[pair.0 as usize], positions[pair.1 as usize])
-        };
+        let at =
+            |pair: (u32, u32)| distance(positions[pair.0 as usize], positions[pair.1 as usize]);
         for (k, (kinds, members)) in self.classes.iter().enumerate() {
             let d = at(members[0]);
-            if members.iter().any(|&pair| (at(pair) - d).abs() > self.tolerance) {
+            if members
+                .iter()
+                .any(|&pair| (at(pair) - d).abs() > self.tolerance)
+            {
                 return false;
             }
-            let earlier = self.classes[..k].iter().rev().take_while(|(other, _)| other == kinds);
+            let earlier = self.classes[..k]
+                .iter()
+                .rev()
+                .take_while(|(other, _)| other == kinds);
             for (_, others) in earlier {
                 if (at(others[0]) - d).abs() <= 4.0 * self.tolerance {
                     return false;

@@ -82,9 +82,15 @@ pub(crate) fn mappings(atoms: &Centred, limit: f64) -> Vec<Mapping> {
             for proper in [true, false] {
                 let to = frame(pa, pb, if proper { 1.0 } else { -1.0 });
                 let start = between(&from, &to);
-                if let Some(mapping) =
-                    try_mapping(atoms, &lists, start, (a, a2, b, b2), proper, &mut image, &mut taken)
-                {
+                if let Some(mapping) = try_mapping(
+                    atoms,
+                    &lists,
+                    start,
+                    (a, a2, b, b2),
+                    proper,
+                    &mut image,
+                    &mut taken,
+                ) {
                     found.push(mapping);
                 }
             }
@@ -164,7 +170,12 @@ fn try_mapping(
     if image[a] != a2 || image[b] != b2 {
         return None;
     }
-    let mut mapping = Mapping { matrix: start, permutation: image.to_vec(), proper, deviation };
+    let mut mapping = Mapping {
+        matrix: start,
+        permutation: image.to_vec(),
+        proper,
+        deviation,
+    };
     if deviation > 1e-9 {
         let pairs = (0..atoms.len()).map(|i| (atoms.positions[i], atoms.positions[image[i]]));
         mapping.matrix = best_fit(pairs, proper)?;
@@ -183,7 +194,7 @@ fn match_atoms(
 ) -> Option<f64> {
     taken.fill(false);
     let mut worst = 0.0_f64;
-    for i in 0..atoms.len() {
+    for (i, target) in image.iter_mut().enumerate() {
         let place = apply(matrix, atoms.positions[i]);
         let mut nearest = (f64::INFINITY, usize::MAX);
         for &j in &lists.partners[i] {
@@ -198,7 +209,7 @@ fn match_atoms(
             return None;
         }
         taken[nearest.1] = true;
-        image[i] = nearest.1;
+        *target = nearest.1;
         worst = worst.max(nearest.0);
     }
     Some(worst.sqrt())

@@ -27,7 +27,10 @@ pub(crate) struct Layout {
 
 impl Layout {
     pub(crate) fn new(group: &PointGroup, shells: &[OrbitalShell]) -> Result<Self, SymmetryError> {
-        let atoms = group.operations.first().map_or(0, |op| op.permutation.len());
+        let atoms = group
+            .operations
+            .first()
+            .map_or(0, |op| op.permutation.len());
         let mut first = Vec::with_capacity(shells.len());
         let mut functions = 0;
         // Which of the shells of its atom and l each one is.
@@ -72,7 +75,12 @@ impl Layout {
             }
             orbits.push(orbit);
         }
-        Ok(Self { functions, first, orbits, images })
+        Ok(Self {
+            functions,
+            first,
+            orbits,
+            images,
+        })
     }
 }
 
@@ -104,7 +112,10 @@ impl PointGroup {
     }
 
     pub(crate) fn class_sizes(&self) -> Vec<usize> {
-        self.classes.iter().map(|class| class.operations.len()).collect()
+        self.classes
+            .iter()
+            .map(|class| class.operations.len())
+            .collect()
     }
 
     /// How many sets of each irrep a list of shells spans, one number per irrep.
@@ -125,7 +136,9 @@ impl PointGroup {
 
     pub(crate) fn count_orbit(&self, layout: &Layout, orbit: &[usize], l: usize) -> Vec<usize> {
         if self.is_atom() {
-            return (0..self.irreps.len()).map(|k| usize::from(k == l)).collect();
+            return (0..self.irreps.len())
+                .map(|k| usize::from(k == l))
+                .collect();
         }
         let values: Vec<f64> = self
             .classes
@@ -155,6 +168,10 @@ impl PointGroup {
                 _ => format!("{count}{}", irrep.plain),
             })
             .collect();
-        if terms.is_empty() { "nothing".to_owned() } else { terms.join(" + ") }
+        if terms.is_empty() {
+            "nothing".to_owned()
+        } else {
+            terms.join(" + ")
+        }
     }
 }

@@ -1,6 +1,6 @@
 //! Descent against the standard correlation tables (Herzberg, *Electronic Spectra of Polyatomic
 //! Molecules* (1966), tables 58–60; Altmann & Herzig, *Point-Group Theory Tables* (1994)).
-#![allow(missing_docs)]
+#![allow(missing_docs, clippy::unwrap_used, clippy::panic)]
 
 mod common;
 
@@ -12,7 +12,9 @@ fn check(big: &PointGroup, small: &PointGroup, table: &str) {
     let descent = Descent::between(big, small).unwrap();
     for entry in table.split(';') {
         let (from, to) = entry.split_once("->").unwrap();
-        let k = big.irrep(from.trim()).unwrap_or_else(|| panic!("{from} not in {}", big.name));
+        let k = big
+            .irrep(from.trim())
+            .unwrap_or_else(|| panic!("{from} not in {}", big.name));
         let mut counts = vec![0; small.irreps.len()];
         for &(j, count) in &descent.content[k] {
             counts[j] = count;
@@ -88,9 +90,17 @@ fn trigonal_molecules() {
     let mut skew = trigonal(5, 9, 1.3, 0.0);
     skew[1].position[0] *= 1.1;
     skew[2].position[0] *= 1.2;
-    check(&d3h, &named(&skew, "Cs"), "a1'->a'; a2'->a'; e'->2a'; a1''->a''; a2''->a''; e''->2a''");
+    check(
+        &d3h,
+        &named(&skew, "Cs"),
+        "a1'->a'; a2'->a'; e'->2a'; a1''->a''; a2''->a''; e''->2a''",
+    );
     let d3 = named(&propeller(), "D3");
-    check(&d3h, &d3, "a1'->a1; a2'->a2; e'->e; a1''->a1; a2''->a2; e''->e");
+    check(
+        &d3h,
+        &d3,
+        "a1'->a1; a2'->a2; e'->e; a1''->a1; a2''->a2; e''->e",
+    );
 }
 
 /// Three pairs of atoms turned like a propeller, the first ones on the D3h molecule's axes.
@@ -107,21 +117,37 @@ fn tetrahedral_molecules() {
     let td = named(&tetrahedral(6, 9, x), "Td");
     let mut c3v = tetrahedral(6, 9, x);
     c3v[1].position = c3v[1].position.map(|p| 1.1 * p);
-    check(&td, &named(&c3v, "C3v"), "a1->a1; a2->a2; e->e; t1->a2+e; t2->a1+e");
+    check(
+        &td,
+        &named(&c3v, "C3v"),
+        "a1->a1; a2->a2; e->e; t1->a2+e; t2->a1+e",
+    );
     let mut d2d = tetrahedral(6, 9, x);
     for a in &mut d2d {
         a.position[2] *= 0.8;
     }
-    check(&td, &named(&d2d, "D2d"), "a1->a1; a2->b1; e->a1+b1; t1->a2+e; t2->b2+e");
+    check(
+        &td,
+        &named(&d2d, "D2d"),
+        "a1->a1; a2->b1; e->a1+b1; t1->a2+e; t2->b2+e",
+    );
     let mut c2v = tetrahedral(6, 9, x);
     for a in c2v.iter_mut().filter(|a| a.position[2] > 0.1) {
         a.position = a.position.map(|p| 1.1 * p);
     }
-    check(&td, &named(&c2v, "C2v"), "a1->a1; a2->a2; e->a1+a2; t1->a2+b1+b2; t2->a1+b1+b2");
+    check(
+        &td,
+        &named(&c2v, "C2v"),
+        "a1->a1; a2->a2; e->a1+a2; t1->a2+b1+b2; t2->a1+b1+b2",
+    );
     let ops = common::closure(&common::generators("Dn", 2).1);
     let mut d2 = atoms(&[(6, [0.0; 3])]);
     d2.extend(common::orbit(9, [0.5, 0.58, 0.66], &ops));
-    check(&td, &named(&d2, "D2"), "a1->a; a2->a; e->2a; t1->b1+b2+b3; t2->b1+b2+b3");
+    check(
+        &td,
+        &named(&d2, "D2"),
+        "a1->a; a2->a; e->2a; t1->b1+b2+b3; t2->b1+b2+b3",
+    );
 }
 
 #[test]
@@ -192,5 +218,9 @@ fn twisted_ethylene() {
         &d2,
         "ag->a; au->a; b1g->b1; b1u->b1; b2g->b2; b2u->b2; b3g->b3; b3u->b3",
     );
-    check(&named(&ethylene(90.0), "D2d"), &d2, "a1->a; b1->a; a2->b1; b2->b1; e->b2+b3");
+    check(
+        &named(&ethylene(90.0), "D2d"),
+        &d2,
+        "a1->a; b1->a; a2->b1; b2->b1; e->b2+b3",
+    );
 }

@@ -1,6 +1,6 @@
 //! Labels do not depend on how the molecule lies, on the order of atoms or on noise; paths,
 //! near misses and the screen.
-#![allow(missing_docs)]
+#![allow(missing_docs, clippy::unwrap_used, clippy::panic)]
 
 mod common;
 
@@ -13,7 +13,10 @@ struct Sequence(u64);
 
 impl Sequence {
     fn next(&mut self) -> f64 {
-        self.0 = self.0.wrapping_mul(6_364_136_223_846_793_005).wrapping_add(1_442_695_040_888_963_407);
+        self.0 = self
+            .0
+            .wrapping_mul(6_364_136_223_846_793_005)
+            .wrapping_add(1_442_695_040_888_963_407);
         (self.0 >> 11) as f64 / (1_u64 << 53) as f64
     }
 
@@ -87,7 +90,10 @@ fn labels_do_not_depend_on_position_order_or_noise() {
                     let p = apply(&turn, nuclei[k].position);
                     let noise = [0; 3].map(|_| 2e-9 * (random.next() - 0.5));
                     let position = [0, 1, 2].map(|i| p[i] + shift[i] + noise[i]);
-                    Nucleus { kind: nuclei[k].kind, position }
+                    Nucleus {
+                        kind: nuclei[k].kind,
+                        position,
+                    }
                 })
                 .collect();
             let other = group(&moved);
@@ -106,7 +112,10 @@ fn water_turned_by_a_right_angle_about_its_axis_keeps_its_labels() {
     let quarter = rotation([0.0, 0.0, 1.0], 0.25);
     let turned: Vec<Nucleus> = water
         .iter()
-        .map(|n| Nucleus { kind: n.kind, position: apply(&quarter, n.position) })
+        .map(|n| Nucleus {
+            kind: n.kind,
+            position: apply(&quarter, n.position),
+        })
         .collect();
     for (nuclei, lone_pair) in [(water, 1 + 1), (turned, 1 + 2)] {
         let g = group(&nuclei);
@@ -171,16 +180,24 @@ fn a_path_keeps_what_all_its_points_keep() {
     let path = path_group(&[8, 1, 1], &walsh, TOLERANCE).unwrap();
     assert_eq!(path.group.name, "C2v");
     assert_eq!(path.axes_from, 1);
-    assert_eq!(path.group.convention, "z along C2, x perpendicular to the plane");
+    assert_eq!(
+        path.group.convention,
+        "z along C2, x perpendicular to the plane"
+    );
 
     let kinds = [7, 1, 1, 1];
-    let umbrella: Vec<Vec<[f64; 3]>> =
-        (0..8).map(|k| positions(&trigonal(7, 1, 0.98, 0.05 * f64::from(k)))).collect();
-    assert_eq!(path_group(&kinds, &umbrella, TOLERANCE).unwrap().group.name, "C3v");
+    let umbrella: Vec<Vec<[f64; 3]>> = (0..8)
+        .map(|k| positions(&trigonal(7, 1, 0.98, 0.05 * f64::from(k))))
+        .collect();
+    assert_eq!(
+        path_group(&kinds, &umbrella, TOLERANCE).unwrap().group.name,
+        "C3v"
+    );
 
     let kinds = [6, 6, 1, 1, 1, 1];
-    let twist: Vec<Vec<[f64; 3]>> =
-        (0..=6).map(|k| positions(&ethylene(15.0 * f64::from(k)))).collect();
+    let twist: Vec<Vec<[f64; 3]>> = (0..=6)
+        .map(|k| positions(&ethylene(15.0 * f64::from(k))))
+        .collect();
     let path = path_group(&kinds, &twist, TOLERANCE).unwrap();
     assert_eq!(path.group.name, "D2");
     // x stays across the plane of the start, z along CC.
@@ -188,10 +205,28 @@ fn a_path_keeps_what_all_its_points_keep() {
     assert!(path.group.axes.x[0].abs() > 0.999_999);
 
     let stretch: Vec<Vec<[f64; 3]>> = (0..4)
-        .map(|k| positions(&line(&[(6, 0.0), (8, 1.16), (8, -1.16 - 0.1 * f64::from(k))])))
+        .map(|k| {
+            positions(&line(&[
+                (6, 0.0),
+                (8, 1.16),
+                (8, -1.16 - 0.1 * f64::from(k)),
+            ]))
+        })
         .collect();
-    assert_eq!(path_group(&[6, 8, 8], &stretch, TOLERANCE).unwrap().group.name, "Cinfv");
-    assert_eq!(path_group(&[6, 8, 8], &stretch[..1], TOLERANCE).unwrap().group.name, "Dinfh");
+    assert_eq!(
+        path_group(&[6, 8, 8], &stretch, TOLERANCE)
+            .unwrap()
+            .group
+            .name,
+        "Cinfv"
+    );
+    assert_eq!(
+        path_group(&[6, 8, 8], &stretch[..1], TOLERANCE)
+            .unwrap()
+            .group
+            .name,
+        "Dinfh"
+    );
 }
 
 #[test]
@@ -204,8 +239,9 @@ fn the_screen_tells_special_points_from_generic_ones() {
     assert!(!screen.unchanged(&lopsided));
 
     let screen = GroupScreen::new(&ethylene(33.0), TOLERANCE).unwrap();
-    let flags: Vec<bool> =
-        (0..=6).map(|k| screen.unchanged(&positions(&ethylene(15.0 * f64::from(k))))).collect();
+    let flags: Vec<bool> = (0..=6)
+        .map(|k| screen.unchanged(&positions(&ethylene(15.0 * f64::from(k)))))
+        .collect();
     assert_eq!(flags, [false, true, true, true, true, true, false]);
 
     let screen = GroupScreen::new(&trigonal(7, 1, 0.95, 0.3), TOLERANCE).unwrap();
@@ -232,8 +268,14 @@ fn cages_span_the_irreps_of_their_vertices() {
     );
     assert_eq!(s_only(&cubane(), 1), "a1g + t2g + a2u + t1u");
     assert_eq!(s_only(&borane12(), 1), "ag + hg + t1u + t2u");
-    assert_eq!(s_only(&ferrocene(true), 1), "a1g + e1g + e2g + a2u + e1u + e2u");
-    assert_eq!(s_only(&ferrocene(false), 1), "a1' + e1' + e2' + a2'' + e1'' + e2''");
+    assert_eq!(
+        s_only(&ferrocene(true), 1),
+        "a1g + e1g + e2g + a2u + e1u + e2u"
+    );
+    assert_eq!(
+        s_only(&ferrocene(false), 1),
+        "a1' + e1' + e2' + a2'' + e1'' + e2''"
+    );
 }
 
 #[test]

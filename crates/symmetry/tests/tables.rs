@@ -1,6 +1,6 @@
 //! Generated character tables against published ones (Herzberg, *Electronic Spectra of Polyatomic
 //! Molecules* (1966), tables 50–57; Altmann & Herzig, *Point-Group Theory Tables* (1994)).
-#![allow(missing_docs)]
+#![allow(missing_docs, clippy::unwrap_used, clippy::panic)]
 
 mod common;
 
@@ -24,7 +24,9 @@ fn check(g: &PointGroup, header: &str, rows: &str) {
     assert_eq!(rows.len(), g.irreps.len(), "{}", g.name);
     for row in rows {
         let (name, values) = row.split_once(' ').unwrap();
-        let irrep = &g.irreps[g.irrep(name).unwrap_or_else(|| panic!("{}: {name}", g.name))];
+        let irrep = &g.irreps[g
+            .irrep(name)
+            .unwrap_or_else(|| panic!("{}: {name}", g.name))];
         let values: Vec<f64> = values
             .split_whitespace()
             .map(|x| match x {
@@ -153,15 +155,24 @@ fn linear_groups() {
     let across = common::rotation([0.6, 0.0, 0.8], 0.5);
     for (letter, m) in [("sigma", 0.0), ("pi", 1.0), ("delta", 2.0), ("phi", 3.0)] {
         for (parity, sign) in [("g", 1.0), ("u", -1.0)] {
-            let signs: &[(&str, f64)] =
-                if m == 0.0 { &[("+", 1.0), ("-", -1.0)] } else { &[("", 0.0)] };
+            let signs: &[(&str, f64)] = if m == 0.0 {
+                &[("+", 1.0), ("-", -1.0)]
+            } else {
+                &[("", 0.0)]
+            };
             for (suffix, even) in signs {
                 let name = format!("{letter}_{parity}{suffix}");
                 let k = dinfh.irrep(&name).unwrap();
                 let at = |matrix| dinfh.character(k, matrix).unwrap();
                 let whole = if m == 0.0 { 1.0 } else { 2.0 };
-                assert!((at(&turn) - whole * (m * angle).cos()).abs() < 1e-12, "{name}");
-                assert!((at(&common::INVERSION) - sign * whole).abs() < 1e-12, "{name}");
+                assert!(
+                    (at(&turn) - whole * (m * angle).cos()).abs() < 1e-12,
+                    "{name}"
+                );
+                assert!(
+                    (at(&common::INVERSION) - sign * whole).abs() < 1e-12,
+                    "{name}"
+                );
                 assert!((at(&plane) - even).abs() < 1e-12, "{name}");
                 // A twofold axis across is the inversion times a plane.
                 assert!((at(&across) - sign * even).abs() < 1e-12, "{name}");
@@ -169,9 +180,18 @@ fn linear_groups() {
         }
     }
     assert_eq!(dinfh.irreps.len(), 10);
-    assert_eq!(dinfh.irreps[dinfh.irrep("sigma_g+").unwrap()].level_display(2), "2σg⁺");
+    assert_eq!(
+        dinfh.irreps[dinfh.irrep("sigma_g+").unwrap()].level_display(2),
+        "2σg⁺"
+    );
     assert_eq!(dinfh.irreps[dinfh.irrep("pi_u").unwrap()].level(1), "1pi_u");
     let d3h = group(&trigonal(5, 9, 1.3, 0.0));
-    assert_eq!(d3h.irreps[d3h.irrep("a1'").unwrap()].level_display(3), "3a₁′");
-    assert_eq!(dinfh.character(0, &common::rotation([1.0, 1.0, 0.0], 0.1)), None);
+    assert_eq!(
+        d3h.irreps[d3h.irrep("a1'").unwrap()].level_display(3),
+        "3a₁′"
+    );
+    assert_eq!(
+        dinfh.character(0, &common::rotation([1.0, 1.0, 0.0], 0.1)),
+        None
+    );
 }

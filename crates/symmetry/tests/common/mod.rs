@@ -1,5 +1,12 @@
 //! Molecules and groups that the checks share.
-#![allow(dead_code, missing_docs, unreachable_pub)]
+// Each check uses a part of this module.
+#![allow(
+    dead_code,
+    missing_docs,
+    unreachable_pub,
+    clippy::unwrap_used,
+    clippy::panic
+)]
 
 pub mod molecules;
 
@@ -14,7 +21,9 @@ pub fn group(nuclei: &[Nucleus]) -> PointGroup {
 }
 
 pub fn atoms(list: &[(u32, [f64; 3])]) -> Vec<Nucleus> {
-    list.iter().map(|&(kind, position)| Nucleus { kind, position }).collect()
+    list.iter()
+        .map(|&(kind, position)| Nucleus { kind, position })
+        .collect()
 }
 
 pub fn apply(m: &Matrix3, v: [f64; 3]) -> [f64; 3] {
@@ -58,7 +67,10 @@ pub fn closure(generators: &[Matrix3]) -> Vec<Matrix3> {
         for g in generators {
             let new = product(&all[next], g);
             let known = all.iter().any(|m: &Matrix3| {
-                m.iter().flatten().zip(new.iter().flatten()).all(|(a, b)| (a - b).abs() < 1e-6)
+                m.iter()
+                    .flatten()
+                    .zip(new.iter().flatten())
+                    .all(|(a, b)| (a - b).abs() < 1e-6)
             });
             if !known {
                 all.push(new);
@@ -75,7 +87,10 @@ pub fn orbit(kind: u32, point: [f64; 3], group: &[Matrix3]) -> Vec<Nucleus> {
     for m in group {
         let position = apply(m, point);
         let known = out.iter().any(|n| {
-            (0..3).map(|k| (n.position[k] - position[k]).powi(2)).sum::<f64>() < 1e-8
+            (0..3)
+                .map(|k| (n.position[k] - position[k]).powi(2))
+                .sum::<f64>()
+                < 1e-8
         });
         if !known {
             out.push(Nucleus { kind, position });
@@ -149,9 +164,16 @@ pub fn moved(nuclei: &[Nucleus], turn: &Matrix3, shift: [f64; 3], step: usize) -
     let count = nuclei.len();
     (0..count)
         .map(|k| {
-            let n = nuclei[if count % step == 0 { k } else { (k * step + 1) % count }];
+            let n = nuclei[if count.is_multiple_of(step) {
+                k
+            } else {
+                (k * step + 1) % count
+            }];
             let p = apply(turn, n.position);
-            Nucleus { kind: n.kind, position: [0, 1, 2].map(|i| p[i] + shift[i]) }
+            Nucleus {
+                kind: n.kind,
+                position: [0, 1, 2].map(|i| p[i] + shift[i]),
+            }
         })
         .collect()
 }

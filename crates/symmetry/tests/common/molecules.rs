@@ -32,19 +32,32 @@ pub fn tetrahedral(a: u32, x: u32, length: f64) -> Vec<Nucleus> {
 
 pub fn octahedral(a: u32, x: u32, length: f64) -> Vec<Nucleus> {
     let mut all = atoms(&[(a, [0.0; 3])]);
-    all.extend(orbit(x, [0.0, 0.0, length], &closure(&generators("O", 1).1)));
+    all.extend(orbit(
+        x,
+        [0.0, 0.0, length],
+        &closure(&generators("O", 1).1),
+    ));
     all
 }
 
 /// Square-planar AX4 with the X atoms on the x and y axes.
 pub fn square(a: u32, x: u32, length: f64) -> Vec<Nucleus> {
     let mut all = atoms(&[(a, [0.0; 3])]);
-    all.extend(orbit(x, [length, 0.0, 0.0], &closure(&generators("Cn", 4).1)));
+    all.extend(orbit(
+        x,
+        [length, 0.0, 0.0],
+        &closure(&generators("Cn", 4).1),
+    ));
     all
 }
 
 pub fn line(list: &[(u32, f64)]) -> Vec<Nucleus> {
-    list.iter().map(|&(kind, z)| Nucleus { kind, position: [0.0, 0.0, z] }).collect()
+    list.iter()
+        .map(|&(kind, z)| Nucleus {
+            kind,
+            position: [0.0, 0.0, z],
+        })
+        .collect()
 }
 
 pub fn benzene() -> Vec<Nucleus> {
@@ -110,9 +123,17 @@ pub fn ferrocene(staggered: bool) -> Vec<Nucleus> {
     let ops = closure(&generators(if staggered { "Dnd" } else { "Dnh" }, 5).1);
     let mut all = line(&[(26, 0.0)]);
     // In D5d the twofold axes lie between the atoms of the two rings.
-    let turn = if staggered { 18.0_f64.to_radians() } else { 0.0 };
+    let turn = if staggered {
+        18.0_f64.to_radians()
+    } else {
+        0.0
+    };
     for (kind, radius) in [(6, 1.21), (1, 2.29)] {
-        all.extend(orbit(kind, [radius * turn.cos(), radius * turn.sin(), 1.66], &ops));
+        all.extend(orbit(
+            kind,
+            [radius * turn.cos(), radius * turn.sin(), 1.66],
+            &ops,
+        ));
     }
     all
 }
