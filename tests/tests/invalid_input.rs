@@ -2,6 +2,12 @@
 //!
 //! `tests/invalid/README.md` describes the files.
 
+#![allow(
+    clippy::expect_used,
+    clippy::panic,
+    reason = "a failed expectation in a check is its message"
+)]
+
 use std::collections::BTreeSet;
 use std::fs;
 use std::io::Write;
@@ -33,17 +39,32 @@ fn program() -> &'static Path {
     static PROGRAM: OnceLock<PathBuf> = OnceLock::new();
     PROGRAM.get_or_init(|| {
         let test = std::env::current_exe().expect("path of this test");
-        let profile = test.parent().and_then(Path::parent).expect("target/profile/deps/test");
+        let profile = test
+            .parent()
+            .and_then(Path::parent)
+            .expect("target/profile/deps/test");
         let target = profile.parent().expect("target directory");
         let mut build = Command::new(env!("CARGO"));
         build
-            .args(["build", "--quiet", "--offline", "-p", "orbend", "--bin", "orbend", "--target-dir"])
+            .args([
+                "build",
+                "--quiet",
+                "--offline",
+                "-p",
+                "orbend",
+                "--bin",
+                "orbend",
+                "--target-dir",
+            ])
             .arg(target)
             .current_dir(env!("CARGO_MANIFEST_DIR"));
         if profile.ends_with("release") {
             build.arg("--release");
         }
-        assert!(build.status().expect("cargo runs").success(), "the binary `orbend` does not build");
+        assert!(
+            build.status().expect("cargo runs").success(),
+            "the binary `orbend` does not build"
+        );
         profile.join(format!("orbend{}", std::env::consts::EXE_SUFFIX))
     })
 }
@@ -62,11 +83,18 @@ fn words(line: &str) -> Vec<String> {
 }
 
 fn alternatives(text: &str) -> Vec<String> {
-    text.split(" | ").map(|word| word.trim().to_lowercase()).collect()
+    text.split(" | ")
+        .map(|word| word.trim().to_lowercase())
+        .collect()
 }
 
 fn parse(name: &str, file: Option<&str>, entries: &[&str]) -> Case {
-    let mut case = Case { name: name.to_owned(), file: file.map(str::to_owned), exit: i32::MIN, ..Case::default() };
+    let mut case = Case {
+        name: name.to_owned(),
+        file: file.map(str::to_owned),
+        exit: i32::MIN,
+        ..Case::default()
+    };
     let mut asked = false;
     for entry in entries {
         let entry = entry.trim();
@@ -77,16 +105,26 @@ fn parse(name: &str, file: Option<&str>, entries: &[&str]) -> Case {
                 asked = true;
                 case.arguments = words(value);
             }
-            "exit" => case.exit = value.parse().unwrap_or_else(|_| panic!("{name}: exit code `{value}`")),
+            "exit" => {
+                case.exit = value
+                    .parse()
+                    .unwrap_or_else(|_| panic!("{name}: exit code `{value}`"))
+            }
             "says" => case.says.push(alternatives(value)),
             "fix" => case.fix.push(alternatives(value)),
             "with" => case.with.push(value.to_owned()),
             "stdin" => case.stdin = Some(value.to_owned()),
             "directory" => case.directories.push(value.to_owned()),
-            _ => assert!(entry.is_empty() || entry.starts_with('#'), "{name}: unknown entry `{entry}`"),
+            _ => assert!(
+                entry.is_empty() || entry.starts_with('#'),
+                "{name}: unknown entry `{entry}`"
+            ),
         }
     }
-    assert!(asked && case.exit != i32::MIN, "{name}: `args:` and `exit:` are needed");
+    assert!(
+        asked && case.exit != i32::MIN,
+        "{name}: `args:` and `exit:` are needed"
+    );
     case
 }
 
@@ -94,7 +132,14 @@ fn parse(name: &str, file: Option<&str>, entries: &[&str]) -> Case {
 fn cases() -> Vec<Case> {
     let names: BTreeSet<String> = fs::read_dir(corpus())
         .expect("tests/invalid")
-        .map(|entry| entry.expect("entry").file_name().into_string().expect("plain file names"))
+        .map(|entry| {
+            entry
+                .expect("entry")
+                .file_name()
+                .into_string()
+                .expect("plain file names")
+        })
+        .filter(|name| !name.starts_with('.'))
         .collect();
     let mut out = Vec::new();
     let mut helpers = BTreeSet::new();
@@ -110,12 +155,20 @@ fn cases() -> Vec<Case> {
         } else if name.ends_with(".cmd") {
             out.push(parse(name, None, &text.lines().collect::<Vec<_>>()));
         } else if name.ends_with(".toml") {
-            let head: Vec<&str> = text.lines().map_while(|line| line.strip_prefix("# ")).skip(1).collect();
+            let head: Vec<&str> = text
+                .lines()
+                .map_while(|line| line.strip_prefix("# "))
+                .skip(1)
+                .collect();
             out.push(parse(name, Some(name), &head));
         } else if name.ends_with(".xyz") {
             match text.lines().nth(1) {
                 Some(comment) if comment.starts_with("args:") => {
-                    out.push(parse(name, Some(name), &comment.split(" ; ").collect::<Vec<_>>()));
+                    out.push(parse(
+                        name,
+                        Some(name),
+                        &comment.split(" ; ").collect::<Vec<_>>(),
+                    ));
                 }
                 _ => {
                     helpers.insert(name.clone());
@@ -126,12 +179,17 @@ fn cases() -> Vec<Case> {
         }
     }
     let used: BTreeSet<String> = out.iter().flat_map(|case| case.with.clone()).collect();
-    assert_eq!(helpers, used, "geometries without an expectation are those that cases name");
+    assert_eq!(
+        helpers, used,
+        "geometries without an expectation are those that cases name"
+    );
     out
 }
 
 fn run(arguments: &[String], directory: &Path, stdin: Option<&Path>) -> Output {
-    let input = stdin.map_or_else(Stdio::null, |path| Stdio::from(fs::File::open(path).expect("input")));
+    let input = stdin.map_or_else(Stdio::null, |path| {
+        Stdio::from(fs::File::open(path).expect("input"))
+    });
     Command::new(program())
         .args(arguments)
         .current_dir(directory)
@@ -148,7 +206,11 @@ fn listing(directory: &Path) -> BTreeSet<String> {
         let entry = entry.expect("entry");
         let name = entry.file_name().to_string_lossy().into_owned();
         if entry.path().is_dir() {
-            out.extend(listing(&entry.path()).into_iter().map(|inner| format!("{name}/{inner}")));
+            out.extend(
+                listing(&entry.path())
+                    .into_iter()
+                    .map(|inner| format!("{name}/{inner}")),
+            );
         }
         out.insert(name);
     }
@@ -156,19 +218,31 @@ fn listing(directory: &Path) -> BTreeSet<String> {
 }
 
 /// What is wrong with the outcome, in words.
-fn judge(case: &Case, output: &Output, before: &BTreeSet<String>, after: &BTreeSet<String>) -> Vec<String> {
+fn judge(
+    case: &Case,
+    output: &Output,
+    before: &BTreeSet<String>,
+    after: &BTreeSet<String>,
+) -> Vec<String> {
     let mut wrong = Vec::new();
     let message = String::from_utf8_lossy(&output.stderr).into_owned();
     let folded = message.to_lowercase();
     if output.status.code() != Some(case.exit) {
-        wrong.push(format!("exit {:?} instead of {}", output.status.code(), case.exit));
+        wrong.push(format!(
+            "exit {:?} instead of {}",
+            output.status.code(),
+            case.exit
+        ));
     }
     for wanted in case.says.iter().chain(&case.fix) {
         if !wanted.iter().any(|word| folded.contains(word)) {
             wrong.push(format!("does not say `{}`", wanted.join(" | ")));
         }
     }
-    if ["panicked", "rust_backtrace", "unwrap()", ".rs:"].iter().any(|word| folded.contains(word)) {
+    if ["panicked", "rust_backtrace", "unwrap()", ".rs:"]
+        .iter()
+        .any(|word| folded.contains(word))
+    {
         wrong.push("panic text".to_owned());
     }
     if case.exit != 0 {
@@ -185,7 +259,10 @@ fn judge(case: &Case, output: &Output, before: &BTreeSet<String>, after: &BTreeS
         if std::str::from_utf8(&output.stderr).is_err() {
             wrong.push("not UTF-8".to_owned());
         }
-        if message.chars().any(|c| c.is_control() && c != '\n' && c != '\t') {
+        if message
+            .chars()
+            .any(|c| c.is_control() && c != '\n' && c != '\t')
+        {
             wrong.push("raw control characters".to_owned());
         }
     }
@@ -205,8 +282,17 @@ fn check(case: &Case) -> Vec<String> {
         fs::create_dir(directory.path().join(name)).expect("made");
     }
     let own = case.file.clone().unwrap_or_default();
-    let arguments: Vec<String> =
-        case.arguments.iter().map(|word| if word == "FILE" { own.clone() } else { word.clone() }).collect();
+    let arguments: Vec<String> = case
+        .arguments
+        .iter()
+        .map(|word| {
+            if word == "FILE" {
+                own.clone()
+            } else {
+                word.clone()
+            }
+        })
+        .collect();
     let stdin = case.stdin.as_ref().map(|name| corpus().join(name));
     let before = listing(directory.path());
     let output = run(&arguments, directory.path(), stdin.as_deref());
@@ -218,8 +304,13 @@ fn every_case_states_place_cause_and_fix() {
     let cases = cases();
     assert!(cases.len() > 100, "{} cases", cases.len());
     for case in &cases {
-        let sound = case.exit == 0 || (case.exit == 2 && !case.says.is_empty() && !case.fix.is_empty());
-        assert!(sound, "{}: a refusal needs exit 2, `says:` and `fix:`", case.name);
+        let sound =
+            case.exit == 0 || (case.exit == 2 && !case.says.is_empty() && !case.fix.is_empty());
+        assert!(
+            sound,
+            "{}: a refusal needs exit 2, `says:` and `fix:`",
+            case.name
+        );
     }
 }
 
@@ -243,7 +334,11 @@ fn refuse_generated(name: &str, content: &str, says: &[&str]) {
     let directory = tempfile::tempdir().expect("temporary directory");
     fs::write(directory.path().join(name), content).expect("written");
     let before = listing(directory.path());
-    let output = run(&["levels".to_owned(), name.to_owned()], directory.path(), None);
+    let output = run(
+        &["levels".to_owned(), name.to_owned()],
+        directory.path(),
+        None,
+    );
     let case = Case {
         name: name.to_owned(),
         exit: 2,
@@ -260,21 +355,41 @@ fn a_million_lines_that_belong_to_no_atom() {
     for row in 0..1_000_000 {
         text.push_str(&format!("H 0.0 0.0 {row}.0\n"));
     }
-    refuse_generated("long.xyz", &text, &["long.xyz", ":5: | line 5 | :1: | line 1", "number of atoms | count | frame"]);
+    refuse_generated(
+        "long.xyz",
+        &text,
+        &[
+            "long.xyz",
+            ":5: | line 5 | :1: | line 1",
+            "number of atoms | count | frame",
+        ],
+    );
 }
 
 #[test]
 fn a_million_atoms() {
     let mut text = String::from("1000000\na cubic lattice\n");
     for row in 0..1_000_000 {
-        text.push_str(&format!("H {} {} {}\n", row % 100, row / 100 % 100, row / 10_000));
+        text.push_str(&format!(
+            "H {} {} {}\n",
+            row % 100,
+            row / 100 % 100,
+            row / 10_000
+        ));
     }
-    refuse_generated("crystal.xyz", &text, &["crystal.xyz | 1000000", "1000000", "atoms | functions"]);
+    refuse_generated(
+        "crystal.xyz",
+        &text,
+        &["crystal.xyz | 1000000", "1000000", "atoms | functions"],
+    );
 }
 
 #[test]
 fn a_very_long_line() {
-    let text = format!("1\none line of ten million characters\nH 0 0 {}\n", "0".repeat(10_000_000) + "x");
+    let text = format!(
+        "1\none line of ten million characters\nH 0 0 {}\n",
+        "0".repeat(10_000_000) + "x"
+    );
     refuse_generated("wide.xyz", &text, &["wide.xyz", ":3: | line 3", "number"]);
 }
 
@@ -302,11 +417,21 @@ fn a_closed_pipe_is_quiet() {
 fn a_refused_run_leaves_earlier_output_alone() {
     let directory = tempfile::tempdir().expect("temporary directory");
     let kept = directory.path().join("kept.json");
-    fs::File::create(&kept).expect("made").write_all(b"earlier").expect("written");
-    let arguments: Vec<String> =
-        ["levels", "H2O", "--unpaired", "1", "--out", "kept.json"].iter().map(|&word| word.to_owned()).collect();
+    fs::File::create(&kept)
+        .expect("made")
+        .write_all(b"earlier")
+        .expect("written");
+    let arguments: Vec<String> = ["levels", "H2O", "--unpaired", "1", "--out", "kept.json"]
+        .iter()
+        .map(|&word| word.to_owned())
+        .collect();
     let output = run(&arguments, directory.path(), None);
-    assert_eq!(output.status.code(), Some(2), "{}", String::from_utf8_lossy(&output.stderr));
+    assert_eq!(
+        output.status.code(),
+        Some(2),
+        "{}",
+        String::from_utf8_lossy(&output.stderr)
+    );
     assert_eq!(fs::read(&kept).expect("still there"), b"earlier");
     assert_eq!(listing(directory.path()).len(), 1);
 }
