@@ -4,11 +4,11 @@
 pub(crate) const ORDERS: usize = 16;
 
 /// |β| up to which the power series of B is used.
-pub(crate) const SWITCH: f64 = 4.0;
+pub(crate) const SWITCH: f64 = 4.7;
 
 /// Upper ends of the ranges of |β| and the number of series terms that leave a remainder below
 /// 1e-18 of the sum.
-const RANGES: [(f64, usize); 5] = [(0.0, 1), (0.3, 7), (1.0, 10), (2.0, 13), (SWITCH, 18)];
+const RANGES: [(f64, usize); 5] = [(0.0, 1), (0.3, 7), (1.0, 10), (2.0, 13), (SWITCH, 20)];
 const SERIES: usize = RANGES[RANGES.len() - 1].1;
 
 /// `B_COEFFICIENTS[k][t]`: coefficient of β^2t in B_k (k even) or in B_k/β (k odd).

@@ -15,7 +15,7 @@
 //!
 //! # Method
 //! Prolate spheroidal coordinates (ξ, η) turn a diatomic integral into a sum of products of the
-//! auxiliary integrals A and B (Mulliken *et al.* 1949). While |β| = R|ζ−ζ′|/2 ≤ 4 the B integrals
+//! auxiliary integrals A and B (Mulliken *et al.* 1949). While |β| = R|ζ−ζ′|/2 ≤ 4.7 the B integrals
 //! come from their power series, whose terms have one sign; beyond, the polynomial is expanded
 //! about the tighter centre, where the density sits, so that no digits cancel.
 

@@ -3,7 +3,7 @@
 use crate::OverlapError;
 use crate::angular::{solid_harmonics, tangential_gradient};
 use crate::coupling::Coupling;
-use crate::lanes::{Lanes, accumulate};
+use crate::lanes::{LANES, Lanes, accumulate};
 use crate::polynomial::Quantum;
 use crate::radial::RadialKernel;
 use crate::shell::Shell;
@@ -138,19 +138,22 @@ impl PairKernel {
     /// Overlaps of one geometry: `out` holds rows × columns numbers, row-major (more are left
     /// alone; with fewer nothing is written, which debug builds report).
     pub fn block(&self, displacement_bohr: [f64; 3], out: &mut [f64]) {
-        let displacement = displacement_bohr.map(|c| [c]);
-        self.arch.dispatch(
-            #[inline(always)]
-            || self.run::<1, false>(&displacement, out.as_chunks_mut::<1>().0, &mut []),
-        );
+        self.arch.dispatch(Fill::<1, false> {
+            kernel: self,
+            displacement: &displacement_bohr.map(|c| [c]),
+            out: out.as_chunks_mut::<1>().0,
+            gradient: &mut [],
+        });
     }
 
     /// Overlaps of [`crate::LANES`] geometries at once, each with the bits of [`Self::block`].
     pub fn block_lanes(&self, displacement_bohr: &[Lanes; 3], out: &mut [Lanes]) {
-        self.arch.dispatch(
-            #[inline(always)]
-            || self.run::<8, false>(displacement_bohr, out, &mut []),
-        );
+        self.arch.dispatch(Fill::<LANES, false> {
+            kernel: self,
+            displacement: displacement_bohr,
+            out,
+            gradient: &mut [],
+        });
     }
 
     /// Overlaps and their derivatives with respect to the displacement (bohr⁻¹): `gradient` holds
@@ -159,14 +162,12 @@ impl PairKernel {
     /// Closed form: the derivative of the diatomic integrals along the bond and of the harmonics
     /// of its direction across it.
     pub fn gradient(&self, displacement_bohr: [f64; 3], out: &mut [f64], gradient: &mut [f64]) {
-        let displacement = displacement_bohr.map(|c| [c]);
-        self.arch.dispatch(
-            #[inline(always)]
-            || {
-                let gradient = gradient.as_chunks_mut::<1>().0;
-                self.run::<1, true>(&displacement, out.as_chunks_mut::<1>().0, gradient);
-            },
-        );
+        self.arch.dispatch(Fill::<1, true> {
+            kernel: self,
+            displacement: &displacement_bohr.map(|c| [c]),
+            out: out.as_chunks_mut::<1>().0,
+            gradient: gradient.as_chunks_mut::<1>().0,
+        });
     }
 
     /// As [`Self::gradient`] for [`crate::LANES`] geometries at once, with the same bits.
@@ -176,10 +177,12 @@ impl PairKernel {
         out: &mut [Lanes],
         gradient: &mut [Lanes],
     ) {
-        self.arch.dispatch(
-            #[inline(always)]
-            || self.run::<8, true>(displacement_bohr, out, gradient),
-        );
+        self.arch.dispatch(Fill::<LANES, true> {
+            kernel: self,
+            displacement: displacement_bohr,
+            out,
+            gradient,
+        });
     }
 
     #[inline(always)]
@@ -258,6 +261,25 @@ impl PairKernel {
                 }
             }
         }
+    }
+}
+
+/// One call of a kernel, as what is compiled for each SIMD level. (A closure would do in principle,
+/// but it is not inlined into the compiled-for-SIMD function and stays at the base level.)
+struct Fill<'a, const N: usize, const DERIVATIVE: bool> {
+    kernel: &'a PairKernel,
+    displacement: &'a [[f64; N]; 3],
+    out: &'a mut [[f64; N]],
+    gradient: &'a mut [[f64; N]],
+}
+
+impl<const N: usize, const DERIVATIVE: bool> pulp::WithSimd for Fill<'_, N, DERIVATIVE> {
+    type Output = ();
+
+    #[inline(always)]
+    fn with_simd<S: pulp::Simd>(self, _simd: S) {
+        self.kernel
+            .run::<N, DERIVATIVE>(self.displacement, self.out, self.gradient);
     }
 }
 
