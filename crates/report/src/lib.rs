@@ -14,6 +14,8 @@ mod csv_table;
 mod document;
 mod draw;
 mod figure;
+mod from_parameters;
+mod from_scan;
 mod lettering;
 #[cfg(test)]
 mod synthetic;
@@ -25,4 +27,6 @@ pub use figure::{
     ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering, Theme,
     levels_figure, sweep_figure,
 };
+pub use from_parameters::params_document;
+pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
 pub use text::{TextOptions, levels_text, params_text, sweep_text};
