@@ -129,7 +129,7 @@ impl FramePath {
         }
     }
 
-    /// A smooth curve through evenly spaced frames.
+    /// A smooth curve through the frames.
     pub(crate) fn smooth(values: Vec<f64>, frames: Vec<Vec<Vector>>) -> Self {
         Self {
             values,
@@ -151,9 +151,17 @@ impl FramePath {
             return;
         }
         // Cubic Hermite curve with central differences as slopes (one-sided at
-        // the ends), for evenly spaced frames.
+        // the ends).
         let before = self.frames.get(index.wrapping_sub(1));
         let after = self.frames.get(index + 2);
+        let width = self.values[index + 1] - self.values[index];
+        let slope = |k: usize| width / (self.values[k + 1] - self.values[k - 1]);
+        let left = if index > 0 { slope(index) } else { 0.0 };
+        let right = if after.is_some() {
+            slope(index + 1)
+        } else {
+            0.0
+        };
         let t = fraction;
         let (a0, a1) = (
             (1.0 + 2.0 * t) * (1.0 - t) * (1.0 - t),
@@ -163,8 +171,8 @@ impl FramePath {
         for (atom, place) in out.iter_mut().enumerate() {
             for k in 0..3 {
                 let (p, q) = (low[atom][k], high[atom][k]);
-                let first = before.map_or(q - p, |frame| 0.5 * (q - frame[atom][k]));
-                let last = after.map_or(q - p, |frame| 0.5 * (frame[atom][k] - p));
+                let first = before.map_or(q - p, |frame| left * (q - frame[atom][k]));
+                let last = after.map_or(q - p, |frame| right * (frame[atom][k] - p));
                 place[k] = a0 * p + a1 * first + b0 * q + b1 * last;
             }
         }

@@ -145,12 +145,20 @@ impl Motion {
                 },
             ) => {
                 let change = value - angle;
-                for (arm, sign, first) in [(a, -1.0, true), (c, 1.0, false)] {
+                // Two half turns share sine and cosine.
+                let halves = (a.share - c.share).abs() < 1e-15;
+                let of_c = libm::sincos(c.share * change * DEGREE_IN_RADIANS);
+                let of_a = if halves {
+                    of_c
+                } else {
+                    libm::sincos(a.share * change * DEGREE_IN_RADIANS)
+                };
+                for (arm, (sine, cosine), first) in [(a, (-of_a.0, of_a.1), true), (c, of_c, false)]
+                {
                     if arm.atoms.is_empty() {
                         continue;
                     }
-                    let turn = sign * arm.share * change;
-                    let mut matrix = rotation(*normal, turn);
+                    let mut matrix = rotation_from(*normal, sine, cosine);
                     if let Some((of_a, of_c)) = straighten {
                         matrix = multiply(&matrix, if first { of_a } else { of_c });
                     }
@@ -197,6 +205,11 @@ impl Motion {
                 let back = anchor.map(|k| carry(targets[k], directions[k]));
                 for (k, atoms) in fragments.iter().enumerate() {
                     if *anchor == Some(k) {
+                        continue;
+                    }
+                    if let (&[ligand], None) = (&atoms[..], &back) {
+                        let length = distance(positions[ligand], *centre);
+                        positions[ligand] = add(*centre, scale(targets[k], length));
                         continue;
                     }
                     let mut matrix = carry(directions[k], targets[k]);

@@ -27,10 +27,11 @@ pub struct TowardReport {
     pub internal: bool,
 }
 
-/// Intervals of the fine path at least.
-const FINE: usize = 60;
-/// Longest path of an atom between two fine points (Å) that counts as steady.
-const LONGEST_JUMP: f64 = 0.5;
+/// Intervals of the fine path that is kept.
+const FINE: usize = 100;
+/// Longest step of an atom between two fine points that counts as steady, as a
+/// share of the longest way of an atom (an even path takes 2 %).
+const LONGEST_JUMP: f64 = 0.1;
 
 impl PathPlan {
     /// A path from one geometry to another in `points` points; its parameter
@@ -39,8 +40,9 @@ impl PathPlan {
     /// no more bonds than the best other one.
     ///
     /// The second geometry is laid onto the first one; between them all
-    /// distances change linearly as far as possible: linear synchronous
-    /// transit, Halgren & Lipscomb, Chem. Phys. Lett. 49, 225 (1977). Both ends
+    /// distances change in step as far as possible: linear synchronous
+    /// transit, Halgren & Lipscomb, Chem. Phys. Lett. 49, 225 (1977). The
+    /// parameter is the share of the way (mean over the atoms). Both ends
     /// come out exactly (the second one turned and shifted), the path from the
     /// second to the first is the same, and symmetry of both ends is kept.
     ///
@@ -93,12 +95,8 @@ impl PathPlan {
             unit: "1".into(),
             values: Range::with_points(0.0, 1.0, points).map_or(vec![0.0, 1.0], |r| r.values()),
         };
-        // Fine points: the points themselves with others between them.
-        let intervals = (points - 1) * FINE.div_ceil(points - 1);
-        let (nodes, internal) = interpolate(&from.positions, &end, intervals);
-        let values: Vec<f64> = (0..=intervals)
-            .map(|k| k as f64 / intervals as f64)
-            .collect();
+        let (nodes, internal) = interpolate(&from.positions, &end);
+        let values = even_values(&nodes);
         let fine = Axis {
             values: values.clone(),
             ..axis.clone()
@@ -229,12 +227,25 @@ fn given_mapping(from: &Molecule, to: &Molecule, mapping: &[usize]) -> Option<Ma
 
 /// The fine path and whether distances could be interpolated. Each half grows
 /// from its own end, so that the reversed path is the same.
-fn interpolate(start: &[Vector], end: &[Vector], intervals: usize) -> (Vec<Vec<Vector>>, bool) {
+fn interpolate(start: &[Vector], end: &[Vector]) -> (Vec<Vec<Vector>>, bool) {
+    let intervals = FINE;
     let straight = |t: f64| -> Vec<Vector> {
         let line = |(&a, &b): (&Vector, &Vector)| add(scale(a, 1.0 - t), scale(b, t));
         start.iter().zip(end).map(line).collect()
     };
-    let at = |k: usize| k as f64 / intervals as f64;
+    // Dense near the ends: a distance in a planar end changes with the square
+    // of a torsion, so the torsion runs with the root of the distance.
+    let at = |k: usize| {
+        let early = |k: usize| {
+            let sine = libm::sin(0.5 * std::f64::consts::PI * k as f64 / intervals as f64);
+            sine * sine
+        };
+        if 2 * k <= intervals {
+            early(k)
+        } else {
+            1.0 - early(intervals - k)
+        }
+    };
     let mut nodes: Vec<Vec<Vector>> = (0..=intervals).map(|k| straight(at(k))).collect();
     nodes[0] = start.to_vec();
     nodes[intervals] = end.to_vec();
@@ -269,15 +280,42 @@ fn interpolate(start: &[Vector], end: &[Vector], intervals: usize) -> (Vec<Vec<V
             None => found = false,
         }
     }
-    let steady = nodes.windows(2).all(|pair| {
-        let mut steps = pair[0].iter().zip(&pair[1]);
-        steps.all(|(&a, &b)| distance(a, b) < LONGEST_JUMP)
-    });
+    let farthest = |a: &[Vector], b: &[Vector]| -> f64 {
+        let steps = a.iter().zip(b).map(|(&a, &b)| distance(a, b));
+        steps.fold(0.0, f64::max)
+    };
+    let longest = LONGEST_JUMP * farthest(start, end);
+    let steady = nodes
+        .windows(2)
+        .all(|pair| farthest(&pair[0], &pair[1]) < longest);
     if found && steady {
         (nodes, true)
     } else {
         (direct, false)
     }
+}
+
+/// The share of the way at every node, 0 to 1: the root mean square motion of
+/// the atoms, summed.
+fn even_values(nodes: &[Vec<Vector>]) -> Vec<f64> {
+    let mut values = vec![0.0];
+    let mut sum = 0.0;
+    for pair in nodes.windows(2) {
+        let squares: f64 = pair[0]
+            .iter()
+            .zip(&pair[1])
+            .map(|(&a, &b)| distance(a, b) * distance(a, b))
+            .sum();
+        // The tiny part keeps the values rising where nothing moves.
+        sum += squares.sqrt() + 1e-12;
+        values.push(sum);
+    }
+    let count = values.len();
+    for value in &mut values {
+        *value /= sum;
+    }
+    values[count - 1] = 1.0;
+    values
 }
 
 /// Positions whose distances are nearest to the interpolated ones: minimises

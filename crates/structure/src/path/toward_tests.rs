@@ -85,14 +85,19 @@ fn reversed_path_is_the_same() {
 
 #[test]
 fn equal_order_is_kept_where_bonds_agree() {
-    // Swapping the two hydrogens of one CH2 changes no bond: the file is trusted.
+    // Swapping the two hydrogens of one CH2 changes no bond: the file is
+    // trusted, and the path that exchanges them in their plane is refused.
     let start = ethylene();
-    let twist = [Coordinate::parse(CoordinateKind::Twist, "3-1-2-5=0..180:180").unwrap()];
-    let plan = PathPlan::new(&start, &twist, &[]).unwrap();
-    let (path, report) =
-        PathPlan::toward(&start, &plan.molecule(&[180.0]).unwrap(), 11, None).unwrap();
-    assert!(!report.permuted);
-    assert!(path.molecule(&[0.5]).is_ok());
+    let mut swapped = bent(&start);
+    swapped.positions.swap(2, 3);
+    let error = PathPlan::toward(&start, &swapped, 11, None).unwrap_err();
+    assert!(
+        error.to_string().starts_with("H3 and H4 come to 0."),
+        "{error}"
+    );
+    let mapping = [0, 1, 3, 2, 4, 5];
+    let (_, report) = PathPlan::toward(&start, &swapped, 11, Some(&mapping)).unwrap();
+    assert!(report.permuted && report.internal);
     // A given mapping is followed.
     let (_, given) = PathPlan::toward(&start, &bent(&start), 5, Some(&[1, 0, 4, 5, 2, 3])).unwrap();
     assert!(given.permuted && given.changed_bonds == 0);
@@ -191,4 +196,60 @@ fn along_a_displacement() {
             .to_string()
             .contains("H2 and H3 come to 0.000 Å")
     );
+}
+
+#[test]
+fn planar_to_perpendicular_keeps_the_common_symmetry() {
+    let start = ethylene();
+    let twist = [Coordinate::parse(CoordinateKind::Twist, "3-1-2-5=0..90:90").unwrap()];
+    let twisted = PathPlan::new(&start, &twist, &equivalences(&start)).unwrap();
+    let end = twisted.molecule(&[90.0]).unwrap();
+    let (path, report) = PathPlan::toward(&start, &end, 10, None).unwrap();
+    assert!(report.internal && !report.permuted);
+    for point in 0..10 {
+        let p = path.molecule(&path.values(point)).unwrap().positions;
+        let ch = [
+            distance(p[0], p[2]),
+            distance(p[0], p[3]),
+            distance(p[1], p[4]),
+            distance(p[1], p[5]),
+        ];
+        assert!(ch.iter().all(|d| (d - ch[0]).abs() < 1e-8), "{ch:?}");
+        assert!((ch[0] - distance(start.positions[0], start.positions[2])).abs() < 0.01);
+    }
+}
+
+/// Ring closing of butadiene by the order of the hydrogens in the second file:
+/// conrotatory keeps the twofold axis, disrotatory the mirror plane (Woodward &
+/// Hoffmann, J. Am. Chem. Soc. 87, 395 (1965)). Geometries drawn by hand.
+#[test]
+fn ring_closing_both_ways() {
+    let open = build(
+        "C -1.45 1.13 0; C -0.73 0 0; C 0.73 0 0; C 1.45 1.13 0; H -0.9 2.06 0; H 0.9 2.06 0; \
+         H -2.53 1.18 0; H 2.53 1.18 0; H -1.25 -0.95 0; H 1.25 -0.95 0",
+    );
+    let ring = |right: f64| {
+        build(&format!(
+            "C -0.785 1.5 0; C -0.67 0 0; C 0.67 0 0; C 0.785 1.5 0; H -1.24 1.9 0.89; \
+             H 1.24 1.9 {}; H -1.24 1.9 -0.89; H 1.24 1.9 {}; H -1.5 -0.7 0; H 1.5 -0.7 0",
+            0.89 * right,
+            -0.89 * right
+        ))
+    };
+    for (right, z) in [(-1.0, -1.0), (1.0, 1.0)] {
+        let (plan, report) = PathPlan::toward(&open, &ring(right), 21, None).unwrap();
+        assert!(report.internal && !report.permuted);
+        assert_eq!(report.changed_bonds, 1);
+        let partner = [3, 2, 1, 0, 5, 4, 7, 6, 9, 8];
+        for point in 0..21 {
+            let p = plan.molecule(&plan.values(point)).unwrap().positions;
+            for (atom, &image) in partner.iter().enumerate() {
+                let expected = [-p[atom][0], p[atom][1], z * p[atom][2]];
+                assert!(distance(expected, p[image]) < 1e-7, "{point} {atom}");
+            }
+        }
+    }
+    let order = [3, 0, 2, 1, 9, 8, 4, 5, 6, 7];
+    let (_, report) = PathPlan::toward(&open, &scrambled(&ring(-1.0), &order), 21, None).unwrap();
+    assert!(report.permuted && report.changed_bonds == 1, "{report:?}");
 }
