@@ -76,7 +76,7 @@ pub(crate) fn compose(document: &LevelsDocument, options: &FigureOptions) -> Res
     let energy_text = |rung: &Rung| {
         let unit = options.energy_unit;
         let decimals = if unit == super::EnergyUnit::Hartree { 4 } else { 2 };
-        Lettering::plain(number(unit.from_ev(rung.energy), decimals))
+        Lettering::plain(number(unit.of_ev(rung.energy), decimals))
     };
     let label_width =
         shown.iter().map(|rung| Lettering::level(&rung.label).width(size)).fold(0.0, f64::max);

@@ -64,7 +64,7 @@ impl Measure {
             FigureWidth::Slide => Self {
                 page: 960.0,
                 least_height: 540.0,
-                main: 290.0,
+                main: 318.0,
                 sum: 70.0,
                 pad: 12.0,
                 label: 17.0,
@@ -72,7 +72,7 @@ impl Measure {
                 title: 15.0,
                 heading: 20.0,
                 key: 13.0,
-                stroke: 2.4,
+                stroke: 2.1,
             },
         }
     }

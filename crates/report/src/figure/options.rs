@@ -1,5 +1,7 @@
 //! What a user may choose about a figure, and what can be wrong with the choice.
 
+use orbend_structure::HARTREE_IN_EV;
+
 use crate::document::DocumentError;
 
 /// Width of the page.
@@ -37,20 +39,17 @@ pub enum EnergyUnit {
 }
 
 impl EnergyUnit {
-    /// One hartree in eV, CODATA 2018.
-    const HARTREE_EV: f64 = 27.211_386_245_988;
-
-    pub(crate) fn from_ev(self, energy: f64) -> f64 {
+    pub(crate) fn of_ev(self, energy: f64) -> f64 {
         match self {
             Self::ElectronVolt => energy,
-            Self::Hartree => energy / Self::HARTREE_EV,
+            Self::Hartree => energy / HARTREE_IN_EV,
         }
     }
 
     pub(crate) fn to_ev(self, energy: f64) -> f64 {
         match self {
             Self::ElectronVolt => energy,
-            Self::Hartree => energy * Self::HARTREE_EV,
+            Self::Hartree => energy * HARTREE_IN_EV,
         }
     }
 

@@ -141,12 +141,12 @@ impl EnergyScale {
             .segments
             .iter()
             .find(|s| (s.high - s.low - longest).abs() < 1e-9)
-            .map(|s| ticks(unit.from_ev(s.low), unit.from_ev(s.high), most));
+            .map(|s| ticks(unit.of_ev(s.low), unit.of_ev(s.high), most));
         let step = main.as_ref().and_then(|t| Some(t.major.get(1)? - t.major.first()?));
         self.segments
             .iter()
             .map(|s| {
-                let (low, high) = (unit.from_ev(s.low), unit.from_ev(s.high));
+                let (low, high) = (unit.of_ev(s.low), unit.of_ev(s.high));
                 let fits = step.map_or(1, |step| ((high - low) / step).floor() as usize);
                 (1..=most.min(fits.max(1)) + 1)
                     .rev()

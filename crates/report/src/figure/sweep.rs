@@ -43,7 +43,15 @@ pub(crate) fn compose(document: &SweepDocument, options: &FigureOptions) -> Resu
     let titled = options.title && heading.width(measure.heading) < measure.page - 2.0 * measure.pad;
     let crowd = starts.len().max(ends.len());
     let needed = label_room(crowd, measure.label_distance()) + (ASCENT + DESCENT) * size;
-    let head = measure.pad + if titled { 1.5 * measure.heading } else { 0.0 } + 1.6 * size;
+    // The groups stand outside the curves, so that a short heading fits between them.
+    let row = 1.6 * size;
+    let shared = heading.width(measure.heading) < 0.4 * measure.page;
+    let head = measure.pad
+        + match (titled, shared) {
+            (true, true) => row.max(1.75 * measure.heading),
+            (true, false) => 1.5 * measure.heading + row,
+            (false, _) => row,
+        };
     sheet.top = head;
     sheet.bottom = head + measure.main.max(needed);
 
@@ -83,7 +91,7 @@ pub(crate) fn compose(document: &SweepDocument, options: &FigureOptions) -> Resu
         let middle = (0.5 * (sheet.left + sheet.right))
             .min(measure.page - measure.pad - 0.5 * heading.width(measure.heading))
             .max(measure.pad + 0.5 * heading.width(measure.heading));
-        let base = measure.pad + measure.heading;
+        let base = if shared { group_base } else { measure.pad + measure.heading };
         canvas.text((middle, base), Anchor::Middle, measure.heading, sheet.colours.ink, &heading);
     }
     let below = axes::coordinate_axis(&mut canvas, &sheet, lowest);
