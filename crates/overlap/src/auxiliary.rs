@@ -11,24 +11,23 @@ pub(crate) const SWITCH: f64 = 4.7;
 const RANGES: [(f64, usize); 5] = [(0.0, 1), (0.3, 7), (1.0, 10), (2.0, 13), (SWITCH, 20)];
 const SERIES: usize = RANGES[RANGES.len() - 1].1;
 
-/// `B_COEFFICIENTS[k][t]`: coefficient of β^2t in B_k (k even) or in B_k/β (k odd).
-const B_COEFFICIENTS: [[f64; SERIES]; ORDERS] = b_coefficients();
+/// `B_COEFFICIENTS[k][t]`: coefficients of β^2t in B_2k and in B_(2k+1)/β.
+const B_COEFFICIENTS: [[[f64; 2]; SERIES]; ORDERS / 2] = b_coefficients();
 
-const fn b_coefficients() -> [[f64; SERIES]; ORDERS] {
-    let mut out = [[0.0; SERIES]; ORDERS];
+const fn b_coefficients() -> [[[f64; 2]; SERIES]; ORDERS / 2] {
+    let mut out = [[[0.0; 2]; SERIES]; ORDERS / 2];
     let mut k = 0;
-    while k < ORDERS {
-        let odd = k % 2;
-        // 1/(2t+odd)!, carried as its inverse, which is exact where it matters.
+    while k < ORDERS / 2 {
+        // (2t)! as a double, which is exact where it matters.
         let mut factorial = 1.0;
         let mut t = 0;
         while t < SERIES {
-            let power = 2 * t + odd;
+            let power = 2 * t;
             if t > 0 {
                 factorial *= (power * (power - 1)) as f64;
             }
-            let sign = if odd == 1 { -2.0 } else { 2.0 };
-            out[k][t] = sign / (factorial * (k + power + 1) as f64);
+            out[k][t][0] = 2.0 / (factorial * (2 * k + power + 1) as f64);
+            out[k][t][1] = -2.0 / (factorial * ((power + 1) * (2 * k + power + 3)) as f64);
             t += 1;
         }
         k += 1;
@@ -39,15 +38,15 @@ const fn b_coefficients() -> [[f64; SERIES]; ORDERS] {
 /// a_i(p) = p^(i+1) e^p ∫₁^∞ ξ^i e^(−pξ) dξ = p^i + i a_(i−1), all terms positive, for i ≤ `top`,
 /// and the powers of p up to p^`top`.
 #[inline(always)]
-pub(crate) fn a_integrals<const N: usize>(
+pub(crate) fn a_integrals<const N: usize, const K: usize>(
     p: &[f64; N],
     top: usize,
-    a: &mut [[f64; N]; ORDERS],
-    powers: &mut [[f64; N]; ORDERS],
+    a: &mut [[f64; N]; K],
+    powers: &mut [[f64; N]; K],
 ) {
     a[0] = [1.0; N];
     powers[0] = [1.0; N];
-    for i in 1..=top.min(ORDERS - 1) {
+    for i in 1..=top.min(K - 1) {
         let factor = i as f64;
         for lane in 0..N {
             let power = powers[i - 1][lane] * p[lane];
@@ -63,16 +62,17 @@ pub(crate) fn a_integrals<const N: usize>(
 /// Power series in β² by Horner's scheme; its terms have one sign. The length of the series
 /// depends on the lane's own β alone, whatever the neighbours need.
 #[inline(always)]
-pub(crate) fn b_integrals<const N: usize>(
+pub(crate) fn b_integrals<const N: usize, const K: usize>(
     beta: &[f64; N],
     top: usize,
-    out: &mut [[f64; N]; ORDERS],
+    out: &mut [[f64; N]; K],
 ) {
     let mut square = [0.0; N];
     let mut range = [0_usize; N];
     let (mut lowest, mut highest) = (RANGES.len(), 0);
     for lane in 0..N {
-        let size = beta[lane].abs().min(SWITCH);
+        let size = beta[lane].abs();
+        let size = if size > SWITCH { SWITCH } else { size };
         square[lane] = size * size;
         for (end, _) in &RANGES[..RANGES.len() - 1] {
             range[lane] += usize::from(size > *end);
@@ -80,47 +80,66 @@ pub(crate) fn b_integrals<const N: usize>(
         lowest = lowest.min(range[lane]);
         highest = highest.max(range[lane]);
     }
+    let pairs = (top / 2 + 1).min(K / 2);
+    if lowest == highest {
+        for k in 0..pairs {
+            let [even, odd] = b_pair(beta, &square, k, RANGES[lowest % RANGES.len()].1);
+            out[2 * k] = even;
+            out[2 * k + 1] = odd;
+        }
+        return;
+    }
     for (which, &(_, length)) in RANGES.iter().enumerate().take(highest + 1).skip(lowest) {
-        for (k, target) in out.iter_mut().enumerate().take(top + 1) {
-            let coefficients = &B_COEFFICIENTS[k];
-            let mut sum = [coefficients[length - 1]; N];
-            for t in (0..length - 1).rev() {
-                for lane in 0..N {
-                    sum[lane] = coefficients[t] + square[lane] * sum[lane];
-                }
-            }
+        for k in 0..pairs {
+            let [even, odd] = b_pair(beta, &square, k, length);
             for lane in 0..N {
-                let value = if k % 2 == 1 {
-                    beta[lane] * sum[lane]
-                } else {
-                    sum[lane]
-                };
-                target[lane] = if range[lane] == which {
-                    value
-                } else {
-                    target[lane]
-                };
+                if range[lane] == which {
+                    out[2 * k][lane] = even[lane];
+                    out[2 * k + 1][lane] = odd[lane];
+                }
             }
         }
     }
 }
 
+/// B_2k and B_(2k+1) from `length` terms of the series in β².
+#[inline(always)]
+fn b_pair<const N: usize>(
+    beta: &[f64; N],
+    square: &[f64; N],
+    k: usize,
+    length: usize,
+) -> [[f64; N]; 2] {
+    let coefficients = &B_COEFFICIENTS[k % (ORDERS / 2)];
+    let (mut even, mut odd) = ([0.0; N], [0.0; N]);
+    for &[c, d] in coefficients[..length].iter().rev() {
+        for lane in 0..N {
+            even[lane] = c + square[lane] * even[lane];
+            odd[lane] = d + square[lane] * odd[lane];
+        }
+    }
+    for lane in 0..N {
+        odd[lane] *= beta[lane];
+    }
+    [even, odd]
+}
+
 /// V_j(b) = ∫₀² v^j e^(−bv) dv for j ≤ `top` and b ≥ [`SWITCH`] (smaller values are raised to it),
 /// given e^(−2b); upward recursion in j.
 #[inline(always)]
-pub(crate) fn v_integrals<const N: usize>(
+pub(crate) fn v_integrals<const N: usize, const K: usize>(
     b: &[f64; N],
     exponential: &[f64; N],
     top: usize,
-    out: &mut [[f64; N]; ORDERS],
+    out: &mut [[f64; N]; K],
 ) {
     let mut inverse = [0.0; N];
     let mut edge = *exponential;
     for lane in 0..N {
-        inverse[lane] = 1.0 / b[lane].max(SWITCH);
+        inverse[lane] = 1.0 / if b[lane] > SWITCH { b[lane] } else { SWITCH };
         out[0][lane] = (1.0 - edge[lane]) * inverse[lane];
     }
-    for j in 1..=top.min(ORDERS - 1) {
+    for j in 1..=top.min(K - 1) {
         let factor = j as f64;
         for lane in 0..N {
             edge[lane] *= 2.0;
@@ -161,7 +180,7 @@ mod tests {
 
     #[test]
     fn v_agrees_with_quadrature() {
-        for b in [4.0, 5.5, 40.0] {
+        for b in [SWITCH, 5.5, 40.0] {
             let mut out = [[0.0; 1]; ORDERS];
             v_integrals(&[b], &[(-2.0 * b).exp()], 15, &mut out);
             for (j, row) in out.iter().enumerate() {

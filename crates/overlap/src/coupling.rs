@@ -17,11 +17,15 @@ pub(crate) struct Coupling {
     /// Number of L, which is also the number of diatomic integrals.
     pub(crate) count: usize,
     /// For each component: which L (d) and where its harmonic stands in the flat list.
-    pub(crate) components: Vec<(usize, usize)>,
-    /// For entry e = i·(2l_b+1)+j of the block: its terms are `starts[e]..starts[e+1]`.
-    pub(crate) starts: Vec<usize>,
+    pub(crate) components: Vec<(u8, u8)>,
+    /// Whether l_a = l_b: then the block is symmetric and only its entries with j ≥ i are listed.
+    pub(crate) symmetric: bool,
+    rows: usize,
+    columns: usize,
+    /// For each entry (i, j), row by row: how many terms it has.
+    pub(crate) entries: Vec<u8>,
     /// (component, w).
-    pub(crate) terms: Vec<(usize, f64)>,
+    pub(crate) terms: Vec<(u8, f64)>,
 }
 
 impl Coupling {
@@ -40,7 +44,7 @@ impl Coupling {
         for (d, reduce_row) in reduce.iter_mut().enumerate().take(count) {
             let degree = l_a.abs_diff(l_b) + 2 * d;
             for member in 0..=2 * degree {
-                components.push((d, degree * degree + member));
+                components.push((d as u8, (degree * degree + member) as u8));
                 weights.push(gaunt(l_a, l_b, degree, member));
             }
             for table in weights.iter_mut().rev().take(2 * degree + 1) {
@@ -54,36 +58,62 @@ impl Coupling {
                 *factor = both * along_z[k * columns + k];
             }
         }
-        let mut starts = vec![0];
+        let mut entries = Vec::new();
         let mut terms = Vec::new();
-        for entry in 0..rows * columns {
-            for (component, table) in weights.iter().enumerate() {
-                if table[entry].abs() > 1e-12 {
-                    terms.push((component, table[entry]));
+        for i in 0..rows {
+            let from = if l_a == l_b { i } else { 0 };
+            for j in from..columns {
+                let before = terms.len();
+                for (component, table) in weights.iter().enumerate() {
+                    let weight = table[i * columns + j];
+                    if weight.abs() > 1e-12 {
+                        terms.push((component as u8, weight));
+                    }
                 }
+                entries.push((terms.len() - before) as u8);
             }
-            starts.push(terms.len());
         }
         Self {
             reduce,
             count,
+            symmetric: l_a == l_b,
+            rows,
+            columns,
             components,
-            starts,
+            entries,
             terms,
         }
     }
 
-    /// w of entry (i, j) in the component that belongs to the highest L, for harmonics products.
-    pub(crate) fn highest(&self, l_a: usize, l_b: usize) -> Vec<Vec<(usize, usize, f64)>> {
-        let degree = l_a + l_b;
-        let first = self.components.len() - (2 * degree + 1);
-        let columns = 2 * l_b + 1;
-        let mut out = vec![Vec::new(); 2 * degree + 1];
-        for entry in 0..self.starts.len() - 1 {
-            for &(component, w) in &self.terms[self.starts[entry]..self.starts[entry + 1]] {
-                if component >= first {
-                    out[component - first].push((entry / columns, entry % columns, w));
+    /// All (i, j, component, w), both halves of a symmetric block.
+    pub(crate) fn all(&self) -> Vec<(usize, usize, usize, f64)> {
+        let mut out = Vec::new();
+        let mut terms = self.terms.iter();
+        let mut entries = self.entries.iter();
+        for i in 0..self.rows {
+            let from = if self.symmetric { i } else { 0 };
+            for (j, &count) in (from..self.columns).zip(&mut entries) {
+                for &(component, w) in terms.by_ref().take(usize::from(count)) {
+                    let component = usize::from(component);
+                    out.push((i, j, component, w));
+                    if self.symmetric && j > i {
+                        out.push((j, i, component, w));
+                    }
                 }
+            }
+        }
+        out
+    }
+
+    /// (i, j, w) of each component of the highest L: how products make the harmonics of degree
+    /// l_a + l_b.
+    pub(crate) fn highest(&self) -> Vec<Vec<(usize, usize, f64)>> {
+        let count = self.rows + self.columns - 1;
+        let first = self.components.len() - count;
+        let mut out = vec![Vec::new(); count];
+        for (i, j, component, w) in self.all() {
+            if component >= first {
+                out[component - first].push((i, j, w));
             }
         }
         out
@@ -160,19 +190,17 @@ mod tests {
     #[test]
     fn sparse_and_orthonormal() {
         for (l_a, l_b, terms) in [(0, 0, 1), (0, 1, 3), (1, 1, 14)] {
-            assert_eq!(Coupling::of(l_a, l_b).terms.len(), terms, "{l_a} {l_b}");
+            assert_eq!(Coupling::of(l_a, l_b).all().len(), terms, "{l_a} {l_b}");
         }
         for l_a in 0..4 {
             for l_b in 0..4 {
                 let coupling = Coupling::of(l_a, l_b);
                 let n = coupling.components.len();
                 let mut gram = vec![0.0; n * n];
-                for e in 0..coupling.starts.len() - 1 {
-                    let terms = &coupling.terms[coupling.starts[e]..coupling.starts[e + 1]];
-                    for &(p, v) in terms {
-                        for &(q, w) in terms {
-                            gram[p * n + q] += v * w;
-                        }
+                let all = coupling.all();
+                for &(i, j, p, v) in &all {
+                    for &(_, _, q, w) in all.iter().filter(|t| (t.0, t.1) == (i, j)) {
+                        gram[p * n + q] += v * w;
                     }
                 }
                 for p in 0..n {

@@ -73,7 +73,7 @@ fn evaluate(a: Primitive, b: Primitive, m: u8, distance: f64) -> Result<(f64, f6
     };
     kernel.push(quantum, a.zeta, b.zeta, 1.0, 0);
     let (mut value, mut slope) = ([[0.0]; 1], [[0.0]; 1]);
-    kernel.evaluate::<1, 256, 1, true>(&[distance], &mut value, &mut slope);
+    kernel.evaluate::<1, 16, 1, true>(&[distance], &mut value, &mut slope);
     Ok((value[0][0], slope[0][0]))
 }
 

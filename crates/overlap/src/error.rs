@@ -56,7 +56,4 @@ pub enum OverlapError {
         /// Angular momentum of the second function.
         l_b: u8,
     },
-    /// One atom holds more shells than the fixed workspace can take.
-    #[error("the pair needs {0} diatomic integrals, more than the 256 provided for")]
-    TooManyShells(usize),
 }

@@ -88,7 +88,7 @@ pub fn rotation(l: u8, matrix: &[[f64; 3]; 3]) -> [[f64; 7]; 7] {
             let vector = rotation(1, matrix);
             let lower = rotation(l - 1, matrix);
             let below = usize::from(l) - 1;
-            let products = Coupling::of(1, below).highest(1, below);
+            let products = Coupling::of(1, below).highest();
             for (j, left) in products.iter().enumerate() {
                 for (i, right) in products.iter().enumerate() {
                     let mut sum = 0.0;

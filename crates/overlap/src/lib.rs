@@ -30,6 +30,7 @@ mod pair;
 mod polynomial;
 mod radial;
 mod shell;
+mod spread;
 
 pub use diatomic::{Primitive, slater_overlap, slater_overlap_derivative};
 pub use error::OverlapError;

@@ -3,54 +3,42 @@
 use crate::OverlapError;
 use crate::angular::{solid_harmonics, tangential_gradient};
 use crate::coupling::Coupling;
-use crate::lanes::{LANES, Lanes, accumulate};
+use crate::lanes::{LANES, Lanes};
 use crate::polynomial::Quantum;
 use crate::radial::RadialKernel;
 use crate::shell::Shell;
+use crate::spread::{Direction, ShellPair};
 
-/// Largest number of diatomic integrals of a pair.
-const MOST_INTEGRALS: usize = 256;
 /// Below this distance (bohr) the direction is taken as z and S_L/R as its limit.
 const TOUCHING_BOHR: f64 = 1.0e-8;
 /// A contraction farther from ⟨χ|χ⟩ = 1 than this is refused.
 const NORM_TOLERANCE: f64 = 1.0e-6;
-
-/// Two shells and their place in the block.
-#[derive(Clone)]
-struct ShellPair {
-    row: usize,
-    column: usize,
-    rows: usize,
-    columns: usize,
-    /// First of its diatomic integrals; they follow with rising m.
-    first: usize,
-    coupling: &'static Coupling,
-}
+/// Largest number of diatomic integrals of one part.
+const MOST_INTEGRALS: usize = 32;
 
 /// Everything about a pair of atoms that does not depend on the geometry.
 ///
-/// Rows of a block are the functions of A in the order of its shells, columns those of B, row-major;
-/// within a shell the order of [`crate::harmonics`]. Displacements are R_B − R_A in bohr.
+/// Rows of a block are the functions of A in the order of its shells, columns those of B,
+/// row-major; within a shell the order of [`crate::harmonics`]. Displacements are R_B − R_A in
+/// bohr.
 ///
 /// The distance itself is not judged here: atoms on top of each other give the one-centre overlaps.
 #[derive(Clone)]
 pub struct PairKernel {
-    radial: RadialKernel,
-    pairs: Vec<ShellPair>,
+    parts: Vec<Part>,
     rows: usize,
     columns: usize,
-    /// Highest degree of the harmonics of the direction.
-    degree: usize,
-    size: Size,
     arch: pulp::Arch,
 }
 
-/// Which compiled workspace size is large enough.
-#[derive(Copy, Clone, Debug, PartialEq)]
-enum Size {
-    Small,
-    Medium,
-    Large,
+/// Shell pairs that share a workspace; one part is enough for all but very large bases.
+#[derive(Clone, Default)]
+struct Part {
+    radial: RadialKernel,
+    pairs: Vec<ShellPair>,
+    /// Highest degree of the harmonics of the direction, for blocks and for gradients.
+    degree: usize,
+    gradient_degree: usize,
 }
 
 impl core::fmt::Debug for PairKernel {
@@ -58,7 +46,6 @@ impl core::fmt::Debug for PairKernel {
         f.debug_struct("PairKernel")
             .field("rows", &self.rows)
             .field("columns", &self.columns)
-            .field("integrals", &self.radial.integrals)
             .finish_non_exhaustive()
     }
 }
@@ -68,7 +55,7 @@ impl PairKernel {
     ///
     /// # Errors
     /// Quantum numbers, exponents or coefficients out of range; a contraction that is not
-    /// normalised; more shells than the workspace holds.
+    /// normalised.
     pub fn new(a: &[Shell], b: &[Shell]) -> Result<Self, OverlapError> {
         for shell in a.iter().chain(b) {
             shell.check()?;
@@ -81,46 +68,28 @@ impl PairKernel {
                 });
             }
         }
-        let mut radial = RadialKernel::default();
-        let mut pairs = Vec::with_capacity(a.len() * b.len());
-        let (mut row, mut first, mut degree) = (0, 0, 0);
+        let mut parts = Vec::new();
+        let mut part = Part::default();
+        let mut row = 0;
         for left in a {
             let mut column = 0;
             for right in b {
                 let coupling = Coupling::of(usize::from(left.l), usize::from(right.l));
-                let (rows, columns) = (left.functions(), right.functions());
-                pairs.push(ShellPair {
-                    row,
-                    column,
-                    rows,
-                    columns,
-                    first,
-                    coupling,
-                });
-                push_integrals(&mut radial, left, right, first);
-                first += coupling.count;
-                column += columns;
-                degree = degree.max(usize::from(left.l + right.l));
+                if part.radial.integrals + coupling.count > MOST_INTEGRALS {
+                    parts.push(core::mem::take(&mut part));
+                }
+                part.push(left, right, (row, column), coupling);
+                column += right.functions();
             }
             row += left.functions();
         }
-        if first > MOST_INTEGRALS {
-            return Err(OverlapError::TooManyShells(first));
-        }
-        let size = match (radial.widest, first, degree) {
-            (0..=32, 0..=8, 0..=2) => Size::Small,
-            (0..=64, 0..=16, 0..=4) => Size::Medium,
-            _ => Size::Large,
-        };
+        parts.push(part);
         let columns = b.iter().map(Shell::functions).sum();
         let arch = pulp::Arch::new();
         Ok(Self {
-            radial,
-            pairs,
+            parts,
             rows: row,
             columns,
-            degree,
-            size,
             arch,
         })
     }
@@ -198,65 +167,39 @@ impl PairKernel {
         if !enough {
             return;
         }
-        match self.size {
-            Size::Small => self.fill::<N, 32, 8, 9, DERIVATIVE>(displacement, out, gradient),
-            Size::Medium => self.fill::<N, 64, 16, 25, DERIVATIVE>(displacement, out, gradient),
-            Size::Large => self.fill::<N, 256, 256, 49, DERIVATIVE>(displacement, out, gradient),
-        }
-    }
-
-    #[inline(always)]
-    fn fill<
-        const N: usize,
-        const P: usize,
-        const T: usize,
-        const Y: usize,
-        const DERIVATIVE: bool,
-    >(
-        &self,
-        displacement: &[[f64; N]; 3],
-        out: &mut [[f64; N]],
-        gradient: &mut [[f64; N]],
-    ) {
-        let mut distance = [0.0; N];
-        let mut inverse = [0.0; N];
-        let mut unit = [[0.0; N]; 3];
-        for lane in 0..N {
-            let [x, y, z] = [
-                displacement[0][lane],
-                displacement[1][lane],
-                displacement[2][lane],
-            ];
-            let length = (x * x + y * y + z * z).sqrt();
-            let touching = length < TOUCHING_BOHR;
-            distance[lane] = length;
-            inverse[lane] = if touching { 0.0 } else { 1.0 / length };
-            unit[0][lane] = x * inverse[lane];
-            unit[1][lane] = y * inverse[lane];
-            unit[2][lane] = if touching { 1.0 } else { z * inverse[lane] };
-        }
-        let mut values = [[0.0; N]; T];
-        let mut slopes = [[0.0; N]; T];
-        self.radial
-            .evaluate::<N, P, T, DERIVATIVE>(&distance, &mut values, &mut slopes);
-        let mut harmonics = [[0.0; N]; Y];
-        solid_harmonics(&unit, self.degree, &mut harmonics);
-        for pair in &self.pairs {
-            pair.spread(&values, &harmonics, self.columns, out);
-        }
-        if DERIVATIVE {
-            let mut tangential = [[[0.0; N]; Y]; 3];
-            tangential_gradient(&unit, self.degree, &harmonics, &mut tangential);
-            let size = self.rows * self.columns;
-            for (axis, block) in gradient.chunks_exact_mut(size).take(3).enumerate() {
-                for pair in &self.pairs {
-                    pair.spread_slope(
-                        &values,
-                        &slopes,
-                        (&harmonics, &tangential[axis]),
-                        (&unit[axis], &inverse),
+        let gradient = if DERIVATIVE {
+            &mut gradient[..3 * needed]
+        } else {
+            gradient
+        };
+        for part in &self.parts {
+            match (
+                part.radial.degree,
+                part.radial.integrals,
+                part.gradient_degree,
+            ) {
+                (0..=6, 0..=8, 0..=2) => {
+                    part.fill::<N, 8, 8, 9, 8, DERIVATIVE>(
+                        displacement,
                         self.columns,
-                        block,
+                        out,
+                        gradient,
+                    );
+                }
+                (_, 0..=16, 0..=4) => {
+                    part.fill::<N, 16, 16, 25, 16, DERIVATIVE>(
+                        displacement,
+                        self.columns,
+                        out,
+                        gradient,
+                    );
+                }
+                _ => {
+                    part.fill::<N, 16, 32, 49, 32, DERIVATIVE>(
+                        displacement,
+                        self.columns,
+                        out,
+                        gradient,
                     );
                 }
             }
@@ -283,115 +226,101 @@ impl<const N: usize, const DERIVATIVE: bool> pulp::WithSimd for Fill<'_, N, DERI
     }
 }
 
-/// The integrals of two shells, contracted, from number `first` on.
-fn push_integrals(radial: &mut RadialKernel, a: &Shell, b: &Shell, first: usize) {
-    for m in 0..=a.l.min(b.l) {
-        let quantum = Quantum {
-            n_a: a.n,
-            l_a: a.l,
-            n_b: b.n,
-            l_b: b.l,
-            m,
-        };
-        for s in &a.terms {
-            for t in &b.terms {
-                let coefficient = s.coefficient * t.coefficient;
-                radial.push(quantum, s.zeta, t.zeta, coefficient, first + usize::from(m));
-            }
-        }
-    }
-}
-
-impl ShellPair {
-    /// κ_L from the diatomic integrals.
-    #[inline(always)]
-    fn reduced<const N: usize, const T: usize>(&self, values: &[[f64; N]; T]) -> [[f64; N]; 4] {
-        let mut out = [[0.0; N]; 4];
-        for (row, target) in self
-            .coupling
-            .reduce
-            .iter()
-            .zip(&mut out)
-            .take(self.coupling.count)
-        {
-            for (m, &factor) in row.iter().enumerate().take(self.coupling.count) {
-                accumulate(target, factor, &values[(self.first + m) & (T - 1)]);
-            }
-        }
-        out
-    }
-
-    #[inline(always)]
-    fn spread<const N: usize, const T: usize, const Y: usize>(
-        &self,
-        values: &[[f64; N]; T],
-        harmonics: &[[f64; N]; Y],
-        stride: usize,
-        out: &mut [[f64; N]],
-    ) {
-        let reduced = self.reduced(values);
-        let mut components = [[0.0; N]; Y];
-        for (component, &(d, at)) in components.iter_mut().zip(&self.coupling.components) {
-            for lane in 0..N {
-                component[lane] = reduced[d & 3][lane] * harmonics[at][lane];
-            }
-        }
-        self.write(&components, stride, out);
-    }
-
-    #[inline(always)]
-    fn spread_slope<const N: usize, const T: usize, const Y: usize>(
-        &self,
-        values: &[[f64; N]; T],
-        slopes: &[[f64; N]; T],
-        (harmonics, tangential): (&[[f64; N]; Y], &[[f64; N]; Y]),
-        (unit, inverse): (&[f64; N], &[f64; N]),
-        stride: usize,
-        out: &mut [[f64; N]],
-    ) {
-        let (mut along, mut across) = (self.reduced(slopes), self.reduced(values));
-        for (d, (along, across)) in along.iter_mut().zip(&mut across).enumerate() {
-            // At R = 0 the harmonics of degree 1 grow linearly: κ/R there is the slope.
-            let linear = self.rows.abs_diff(self.columns) == 2 && d == 0;
-            for lane in 0..N {
-                let limit = if linear { along[lane] } else { 0.0 };
-                let touching = inverse[lane] == 0.0;
-                across[lane] = if touching {
-                    limit
-                } else {
-                    across[lane] * inverse[lane]
-                };
-                along[lane] *= unit[lane];
-            }
-        }
-        let mut components = [[0.0; N]; Y];
-        for (component, &(d, at)) in components.iter_mut().zip(&self.coupling.components) {
-            for lane in 0..N {
-                component[lane] = along[d & 3][lane] * harmonics[at][lane]
-                    + across[d & 3][lane] * tangential[at][lane];
-            }
-        }
-        self.write(&components, stride, out);
-    }
-
-    #[inline(always)]
-    fn write<const N: usize, const Y: usize>(
-        &self,
-        components: &[[f64; N]; Y],
-        stride: usize,
-        out: &mut [[f64; N]],
-    ) {
-        let mut start = 0;
-        let mut ends = self.coupling.starts.iter().skip(1);
-        for i in 0..self.rows {
-            let begin = (self.row + i) * stride + self.column;
-            for (target, &end) in out[begin..begin + self.columns].iter_mut().zip(&mut ends) {
-                let mut sum = [0.0; N];
-                for &(component, weight) in &self.coupling.terms[start..end] {
-                    accumulate(&mut sum, weight, &components[component]);
+impl Part {
+    /// The integrals of two shells, contracted, and their place in the block.
+    fn push(&mut self, a: &Shell, b: &Shell, place: (usize, usize), coupling: &'static Coupling) {
+        let first = self.radial.integrals;
+        for m in 0..=a.l.min(b.l) {
+            let quantum = Quantum {
+                n_a: a.n,
+                l_a: a.l,
+                n_b: b.n,
+                l_b: b.l,
+                m,
+            };
+            for s in &a.terms {
+                for t in &b.terms {
+                    let coefficient = s.coefficient * t.coefficient;
+                    self.radial
+                        .push(quantum, s.zeta, t.zeta, coefficient, first as u8 + m);
                 }
-                *target = sum;
-                start = end;
+            }
+        }
+        let pair = ShellPair::new((a.l.into(), b.l.into()), place, first, coupling);
+        self.degree = self.degree.max(pair.degree());
+        self.gradient_degree = self.gradient_degree.max(usize::from(a.l + b.l));
+        self.pairs.push(pair);
+    }
+
+    /// `K`, `T`, `Y`, `Z`: room for auxiliary integrals, diatomic integrals, harmonics and the
+    /// components of a shell pair.
+    #[inline(always)]
+    fn fill<
+        const N: usize,
+        const K: usize,
+        const T: usize,
+        const Y: usize,
+        const Z: usize,
+        const DERIVATIVE: bool,
+    >(
+        &self,
+        displacement: &[[f64; N]; 3],
+        stride: usize,
+        out: &mut [[f64; N]],
+        gradient: &mut [[f64; N]],
+    ) {
+        let mut distance = [0.0; N];
+        let mut inverse = [0.0; N];
+        let mut unit = [[0.0; N]; 3];
+        for lane in 0..N {
+            let [x, y, z] = [
+                displacement[0][lane],
+                displacement[1][lane],
+                displacement[2][lane],
+            ];
+            let length = (x * x + y * y + z * z).sqrt();
+            let touching = length < TOUCHING_BOHR;
+            distance[lane] = length;
+            inverse[lane] = if touching { 0.0 } else { 1.0 / length };
+            unit[0][lane] = x * inverse[lane];
+            unit[1][lane] = y * inverse[lane];
+            unit[2][lane] = if touching { 1.0 } else { z * inverse[lane] };
+        }
+        let mut values = [[0.0; N]; T];
+        let mut slopes = [[0.0; N]; T];
+        self.radial
+            .evaluate::<N, K, T, DERIVATIVE>(&distance, &mut values, &mut slopes);
+        let mut harmonics = [[0.0; N]; Y];
+        let degree = if DERIVATIVE {
+            self.gradient_degree
+        } else {
+            self.degree
+        };
+        if degree > 0 {
+            solid_harmonics(&unit, degree, &mut harmonics);
+        }
+        let direction = Direction {
+            unit: &unit,
+            inverse: &inverse,
+            harmonics: &harmonics,
+        };
+        for pair in &self.pairs {
+            pair.spread::<N, T, Y, Z>(&values, &direction, stride, out);
+        }
+        if DERIVATIVE {
+            let mut tangential = [[[0.0; N]; Y]; 3];
+            tangential_gradient(&unit, degree, &harmonics, &mut tangential);
+            let size = gradient.len() / 3;
+            for (axis, block) in gradient.chunks_exact_mut(size.max(1)).take(3).enumerate() {
+                for pair in &self.pairs {
+                    pair.spread_slope::<N, T, Y, Z>(
+                        (&values, &slopes),
+                        &direction,
+                        (axis, &tangential[axis]),
+                        stride,
+                        block,
+                    );
+                }
             }
         }
     }
@@ -531,10 +460,24 @@ mod tests {
             PairKernel::new(&[wide], &light()),
             Err(OverlapError::Norm { .. })
         ));
-        let many = vec![Shell::single(4, 3, 1.0); 9];
-        assert!(matches!(
-            PairKernel::new(&many, &many),
-            Err(OverlapError::TooManyShells(324))
-        ));
+    }
+
+    #[test]
+    fn a_large_basis_is_split_into_parts() {
+        // Nine f shells on each atom: every sub-block is that of one pair of shells.
+        let zeta = |k: usize| 1.0 + 0.3 * k as f64;
+        let many: Vec<Shell> = (0..9).map(|k| Shell::single(4, 3, zeta(k))).collect();
+        let kernel = PairKernel::new(&many, &many).unwrap();
+        let mut block = vec![0.0; 63 * 63];
+        kernel.block([1.0, 0.2, -0.7], &mut block);
+        let one = PairKernel::new(&many[7..8], &many[2..3]).unwrap();
+        let mut small = vec![0.0; 49];
+        one.block([1.0, 0.2, -0.7], &mut small);
+        for i in 0..7 {
+            for j in 0..7 {
+                let (whole, part) = (block[(49 + i) * 63 + 14 + j], small[i * 7 + j]);
+                assert_eq!(whole.to_bits(), part.to_bits());
+            }
+        }
     }
 }

@@ -6,8 +6,7 @@
 //! and v = η+1, the same quantities are polynomials in u ≥ 0 and 0 ≤ v ≤ 2 that stay small where
 //! the density of a tight A function is.
 
-/// Highest power of either variable plus one: n + n′ = 14.
-const SIDE: usize = 15;
+use std::sync::OnceLock;
 
 /// Quantum numbers of one diatomic integral.
 #[derive(Copy, Clone, Debug, PartialEq)]
@@ -25,6 +24,19 @@ impl Quantum {
         usize::from(self.n_a + self.n_b)
     }
 
+    /// A number of its own for each set of quantum numbers in range.
+    fn number(self) -> usize {
+        [
+            (self.n_a - 1, 7),
+            (self.l_a, 4),
+            (self.n_b - 1, 7),
+            (self.l_b, 4),
+            (self.m, 4),
+        ]
+        .into_iter()
+        .fold(0, |sum, (value, count)| sum * count + usize::from(value))
+    }
+
     pub(crate) fn swapped(self) -> Self {
         Self {
             n_a: self.n_b,
@@ -35,6 +47,9 @@ impl Quantum {
         }
     }
 }
+
+/// Sets of quantum numbers with n ≤ 7, l ≤ 3 (impossible ones counted).
+const KINDS: usize = 7 * 4 * 7 * 4 * 4;
 
 /// A factor with few terms: (power of the first variable, of the second, coefficient).
 type Factor = [(usize, usize, i64)];
@@ -68,16 +83,19 @@ const SHIFTED: Coordinates = Coordinates {
 /// Dense polynomial in two variables with exact integer coefficients.
 #[derive(Clone)]
 struct Polynomial {
-    /// Powers below `width` occur.
+    /// Powers below this have room, in each variable.
+    side: usize,
+    /// Powers below this occur.
     width: usize,
-    coefficients: [i64; SIDE * SIDE],
+    coefficients: Vec<i64>,
 }
 
 impl Polynomial {
-    fn constant(value: i64) -> Self {
-        let mut coefficients = [0; SIDE * SIDE];
+    fn constant(value: i64, side: usize) -> Self {
+        let mut coefficients = vec![0; side * side];
         coefficients[0] = value;
         Self {
+            side,
             width: 1,
             coefficients,
         }
@@ -85,19 +103,19 @@ impl Polynomial {
 
     fn multiply(&mut self, factor: &Factor) {
         let grown = factor.iter().map(|f| f.0.max(f.1)).max().unwrap_or(0);
-        let mut product = [0; SIDE * SIDE];
+        let mut product = vec![0; self.side * self.side];
         for i in 0..self.width {
             for j in 0..self.width {
-                let value = self.coefficients[i * SIDE + j];
+                let value = self.coefficients[i * self.side + j];
                 if value != 0 {
                     for &(di, dj, c) in factor {
-                        product[(i + di) * SIDE + j + dj] += c * value;
+                        product[(i + di) * self.side + j + dj] += c * value;
                     }
                 }
             }
         }
         self.coefficients = product;
-        self.width = (self.width + grown).min(SIDE);
+        self.width = (self.width + grown).min(self.side);
     }
 
     fn multiply_power(&mut self, factor: &Factor, power: usize) {
@@ -106,43 +124,47 @@ impl Polynomial {
         }
     }
 
-    fn add(&mut self, other: &Self) {
+    fn add_multiple(&mut self, multiple: i64, other: &Self) {
         self.width = self.width.max(other.width);
         for (sum, value) in self.coefficients.iter_mut().zip(&other.coefficients) {
-            *sum += value;
+            *sum += multiple * value;
         }
     }
 }
 
 /// One term of the integrand's polynomial.
+#[derive(Copy, Clone, Debug, PartialEq)]
 pub(crate) struct Monomial {
-    pub(crate) first: usize,
-    pub(crate) second: usize,
+    pub(crate) first: u8,
+    pub(crate) second: u8,
     pub(crate) coefficient: i64,
 }
 
-/// Polynomial in ξ (first) and η (second), without normalisation; Legendre functions enter times
-/// 2^l.
-pub(crate) fn spheroidal(q: Quantum) -> Vec<Monomial> {
-    integrand(q, &SPHEROIDAL)
+/// Polynomial in ξ (first) and η (second), without normalisation, in rising powers of ξ; Legendre
+/// functions enter times 2^l.
+pub(crate) fn spheroidal(q: Quantum) -> &'static [Monomial] {
+    static TABLE: [OnceLock<Vec<Monomial>>; KINDS] = [const { OnceLock::new() }; KINDS];
+    TABLE[q.number()].get_or_init(|| integrand(q, &SPHEROIDAL))
 }
 
-/// Polynomial in u (first) and v (second) about the first centre.
-pub(crate) fn shifted(q: Quantum) -> Vec<Monomial> {
-    integrand(q, &SHIFTED)
+/// Polynomial in u (first) and v (second) about the first centre, in rising powers of u.
+pub(crate) fn shifted(q: Quantum) -> &'static [Monomial] {
+    static TABLE: [OnceLock<Vec<Monomial>>; KINDS] = [const { OnceLock::new() }; KINDS];
+    TABLE[q.number()].get_or_init(|| integrand(q, &SHIFTED))
 }
 
 fn integrand(q: Quantum, c: &Coordinates) -> Vec<Monomial> {
     let (n_a, l_a) = (usize::from(q.n_a), usize::from(q.l_a));
     let (n_b, l_b) = (usize::from(q.n_b), usize::from(q.l_b));
     let m = usize::from(q.m);
+    let side = q.degree() + 1;
     // r^(n−1) times the volume element leaves r^(n−l) beside the solid harmonic.
-    let mut common = Polynomial::constant(1);
+    let mut common = Polynomial::constant(1, side);
     common.multiply_power(c.r_a, n_a - l_a);
     common.multiply_power(c.r_b, n_b - l_b);
     common.multiply_power(c.across[0], m);
     common.multiply_power(c.across[1], m);
-    let mut sum = Polynomial::constant(0);
+    let mut sum = Polynomial::constant(0, side);
     for (k, value) in legendre(l_a, m).into_iter().enumerate() {
         for (k2, value2) in legendre(l_b, m).into_iter().enumerate() {
             if value * value2 == 0 {
@@ -153,17 +175,15 @@ fn integrand(q: Quantum, c: &Coordinates) -> Vec<Monomial> {
             term.multiply_power(c.r_a, 2 * k);
             term.multiply_power(c.z_b, l_b - m - 2 * k2);
             term.multiply_power(c.r_b, 2 * k2);
-            term.coefficients
-                .iter_mut()
-                .for_each(|x| *x *= value * value2);
-            sum.add(&term);
+            sum.add_multiple(value * value2, &term);
         }
     }
     let mut out = Vec::new();
-    for first in 0..sum.width {
-        for second in 0..sum.width {
-            let coefficient = sum.coefficients[first * SIDE + second];
+    for first in 0..side {
+        for second in 0..side {
+            let coefficient = sum.coefficients[first * side + second];
             if coefficient != 0 {
+                let (first, second) = (first as u8, second as u8);
                 out.push(Monomial {
                     first,
                     second,
@@ -223,9 +243,9 @@ mod tests {
             l_b: 2,
             m: 1,
         };
-        let value = |terms: Vec<Monomial>, x: f64, y: f64| {
+        let value = |terms: &[Monomial], x: f64, y: f64| {
             terms.iter().fold(0.0, |sum, t| {
-                sum + t.coefficient as f64 * x.powi(t.first as i32) * y.powi(t.second as i32)
+                sum + t.coefficient as f64 * x.powi(t.first.into()) * y.powi(t.second.into())
             })
         };
         let (left, right) = (

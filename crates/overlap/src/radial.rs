@@ -6,63 +6,75 @@
 //! C e^(−R min(ζ,ζ′)) Σ t_ij [i! p^(N−1−i)] V_j(|β|): no division by R anywhere, so R = 0 is an
 //! ordinary point. C and the contraction coefficients are folded into the t_ij.
 
-use crate::auxiliary::{ORDERS, SWITCH, a_integrals, b_integrals, v_integrals};
-use crate::lanes::{accumulate, exp_negative};
+use crate::auxiliary::{SWITCH, a_integrals, b_integrals, v_integrals};
+use crate::lanes::{accumulate, exp_negative, mul};
 use crate::polynomial::{Monomial, Quantum, shifted, spheroidal};
 use crate::shell::{factorial, integer_power};
 
 /// Distances beyond this (bohr) are treated as this; every overlap has long vanished.
 const FARTHEST_BOHR: f64 = 1.0e4;
 
-/// Sum of products of the auxiliary integrals for several diatomic integrals.
+/// Several diatomic integrals as sums Σ_i f_i Σ_j t_ij g_j.
 #[derive(Clone, Debug, Default)]
 struct Table {
-    /// Distinct (i, j) in use.
-    products: Vec<(u8, u8)>,
-    /// For each integral: where its value goes, and the end of its terms.
-    integrals: Vec<(usize, usize)>,
-    /// (index of the product, coefficient).
+    /// For each integral: where its value goes and how many rows it has.
+    integrals: Vec<(u8, u8)>,
+    /// For each row: i and how many terms it has.
+    rows: Vec<(u8, u8)>,
+    /// (j, t_ij).
     terms: Vec<(u8, f64)>,
 }
 
 impl Table {
-    fn push(&mut self, target: usize, monomials: &[Monomial], factor: impl Fn(&Monomial) -> f64) {
-        for monomial in monomials {
-            let key = (monomial.first as u8, monomial.second as u8);
-            let found = self.products.iter().position(|product| *product == key);
-            let index = found.unwrap_or_else(|| {
-                self.products.push(key);
-                self.products.len() - 1
-            });
-            self.terms.push((index as u8, factor(monomial)));
+    fn push(&mut self, target: u8, monomials: &[Monomial], factor: impl Fn(&Monomial) -> f64) {
+        let mut rows = 0;
+        for row in monomials.chunk_by(|a, b| a.first == b.first) {
+            self.rows.push((row[0].first, row.len() as u8));
+            let term = |monomial: &Monomial| (monomial.second, factor(monomial));
+            self.terms.extend(row.iter().map(term));
+            rows += 1;
         }
-        self.integrals.push((target, self.terms.len()));
+        self.integrals.push((target, rows));
     }
 
-    /// `values[target] += scaling · Σ t · product`, in lanes where `active`.
+    /// `values[target] += scaling · Σ f t g`, and with a derivative
+    /// `slopes[target] += scaling · Σ (f′ t g + f t g′)`, where g′_j = `turn` · g_(j+1).
     #[inline(always)]
-    fn accumulate<const N: usize, const P: usize, const T: usize>(
+    fn add<const N: usize, const K: usize, const T: usize, const DERIVATIVE: bool>(
         &self,
-        products: &[[f64; N]; P],
+        [first, first_slope, second]: [&[[f64; N]; K]; 3],
+        turn: f64,
         scaling: &[f64; N],
-        active: &[bool; N],
-        values: &mut [[f64; N]; T],
+        [values, slopes]: [&mut [[f64; N]; T]; 2],
     ) {
-        let mut start = 0;
-        for &(target, end) in &self.integrals {
-            let mut sum = [0.0; N];
-            for &(index, coefficient) in &self.terms[start..end] {
-                accumulate(
-                    &mut sum,
-                    coefficient,
-                    &products[usize::from(index) & (P - 1)],
-                );
+        let mut rows = self.rows.iter();
+        let mut terms = self.terms.iter();
+        for &(target, count) in &self.integrals {
+            let (mut sum, mut slope) = ([0.0; N], [0.0; N]);
+            for &(i, count) in rows.by_ref().take(usize::from(count)) {
+                let (mut inner, mut turned) = ([0.0; N], [0.0; N]);
+                for &(j, coefficient) in terms.by_ref().take(usize::from(count)) {
+                    let j = usize::from(j) & (K - 1);
+                    accumulate(&mut inner, coefficient, &second[j]);
+                    if DERIVATIVE {
+                        accumulate(&mut turned, coefficient, &second[(j + 1) & (K - 1)]);
+                    }
+                }
+                let i = usize::from(i) & (K - 1);
+                for lane in 0..N {
+                    sum[lane] += first[i][lane] * inner[lane];
+                    if DERIVATIVE {
+                        let along = first_slope[i][lane] * inner[lane];
+                        slope[lane] += along + (turn * first[i][lane]) * turned[lane];
+                    }
+                }
             }
-            start = end;
-            let value = &mut values[target & (T - 1)];
+            let target = usize::from(target) & (T - 1);
             for lane in 0..N {
-                let term = sum[lane] * scaling[lane];
-                value[lane] += if active[lane] { term } else { 0.0 };
+                values[target][lane] += sum[lane] * scaling[lane];
+                if DERIVATIVE {
+                    slopes[target][lane] += slope[lane] * scaling[lane];
+                }
             }
         }
     }
@@ -80,12 +92,11 @@ struct Set {
 }
 
 impl Set {
-    fn push(&mut self, quantum: Quantum, target: usize, coefficient: f64) {
+    fn push(&mut self, quantum: Quantum, target: u8, coefficient: f64) {
         let (zeta_a, zeta_b) = (self.zeta_a, self.zeta_b);
         let norm = coefficient * norm(quantum, zeta_a, zeta_b);
-        self.spheroidal.push(target, &spheroidal(quantum), |t| {
-            norm * t.coefficient as f64
-        });
+        self.spheroidal
+            .push(target, spheroidal(quantum), |t| norm * t.coefficient as f64);
         // About B the picture is mirrored: both l change sign with z.
         let (about_tighter, sign) = if zeta_a >= zeta_b {
             (quantum, 1.0)
@@ -99,14 +110,14 @@ impl Set {
                 },
             )
         };
-        self.shifted.push(target, &shifted(about_tighter), |t| {
-            (sign * norm) * (t.coefficient as f64 * factorial(t.first as u8))
+        self.shifted.push(target, shifted(about_tighter), |t| {
+            (sign * norm) * (t.coefficient as f64 * factorial(t.first))
         });
     }
 
     /// Adds this set's share of the integrals (and of their derivatives with respect to R).
     #[inline(always)]
-    fn add<const N: usize, const P: usize, const T: usize, const DERIVATIVE: bool>(
+    fn add<const N: usize, const K: usize, const T: usize, const DERIVATIVE: bool>(
         &self,
         distance: &[f64; N],
         values: &mut [[f64; N]; T],
@@ -115,92 +126,92 @@ impl Set {
         let half_sum = 0.5 * (self.zeta_a + self.zeta_b);
         let half_difference = 0.5 * (self.zeta_a - self.zeta_b);
         let (mut p, mut beta, mut size) = ([0.0; N], [0.0; N], [0.0; N]);
-        let mut near = [false; N];
-        let (mut any_near, mut any_far) = (false, false);
+        let (mut smallest, mut largest) = (f64::INFINITY, 0.0);
         for lane in 0..N {
             p[lane] = half_sum * distance[lane];
             beta[lane] = half_difference * distance[lane];
             size[lane] = beta[lane].abs();
-            near[lane] = size[lane] <= SWITCH;
-            any_near |= near[lane];
-            any_far |= !near[lane];
+            smallest = if size[lane] < smallest {
+                size[lane]
+            } else {
+                smallest
+            };
+            largest = if size[lane] > largest {
+                size[lane]
+            } else {
+                largest
+            };
         }
-        let degree = self.degree.min(ORDERS - 2);
-        let (mut a, mut powers) = ([[0.0; N]; ORDERS], [[0.0; N]; ORDERS]);
-        a_integrals(&p, degree, &mut a, &mut powers);
-        let mut second = [[0.0; N]; ORDERS];
-        let mut products = [[0.0; N]; P];
-        let mut products_slope = [[0.0; N]; P];
+        let degree = self.degree.min(K - 2);
         let top = degree + usize::from(DERIVATIVE);
-        if any_near {
+        let (mut a, mut powers) = ([[0.0; N]; K], [[0.0; N]; K]);
+        a_integrals(&p, degree, &mut a, &mut powers);
+        let (mut first, mut first_slope) = ([[0.0; N]; K], [[0.0; N]; K]);
+        let mut second = [[0.0; N]; K];
+        // A lane outside a branch gets the factor 0 there: its share is an exact zero.
+        if smallest <= SWITCH {
             b_integrals(&beta, top, &mut second);
             let mut exponent = [0.0; N];
             for lane in 0..N {
                 exponent[lane] = -p[lane];
             }
-            let scaling = exp_negative(&exponent);
-            for (at, &(i, j)) in self.spheroidal.products.iter().enumerate() {
-                let (i, j) = (usize::from(i).min(degree), usize::from(j).min(degree));
-                let power = &powers[degree - i];
-                let product = &mut products[at & (P - 1)];
-                for lane in 0..N {
-                    product[lane] = (a[i][lane] * power[lane]) * second[j][lane];
-                }
+            let mut scaling = exp_negative(&exponent);
+            for lane in 0..N {
+                scaling[lane] = if size[lane] <= SWITCH {
+                    scaling[lane]
+                } else {
+                    0.0
+                };
+            }
+            for i in 0..=degree {
+                first[i] = mul(&a[i], &powers[degree - i]);
                 if DERIVATIVE {
+                    // d/dR of e^(−p) a_i p^(N−1−i), times e^p.
                     let rest = (degree - i) as f64;
                     let below = &powers[(degree - i).max(1) - 1];
-                    let slope = &mut products_slope[at & (P - 1)];
                     for lane in 0..N {
-                        // d/dp of e^(−p) a_i p^(N−1−i), times e^p.
-                        let first = rest * (a[i][lane] * below[lane]) - powers[degree][lane];
-                        slope[lane] = half_sum * (first * second[j][lane])
-                            - half_difference * ((a[i][lane] * power[lane]) * second[j + 1][lane]);
+                        let slope = rest * (a[i][lane] * below[lane]) - powers[degree][lane];
+                        first_slope[i][lane] = half_sum * slope;
                     }
                 }
             }
+            let factors = [&first, &first_slope, &second];
+            let turn = -half_difference;
             self.spheroidal
-                .accumulate(&products, &scaling, &near, values);
-            if DERIVATIVE {
-                self.spheroidal
-                    .accumulate(&products_slope, &scaling, &near, slopes);
-            }
+                .add::<N, K, T, DERIVATIVE>(factors, turn, &scaling, [values, slopes]);
         }
-        if any_far {
+        if largest > SWITCH {
             let smaller = self.zeta_a.min(self.zeta_b);
-            let half_difference = half_difference.abs();
-            let mut far = [false; N];
             let (mut exponent, mut edge) = ([0.0; N], [0.0; N]);
             for lane in 0..N {
-                far[lane] = !near[lane];
                 exponent[lane] = -(smaller * distance[lane]);
                 edge[lane] = -2.0 * size[lane];
             }
-            let scaling = exp_negative(&exponent);
+            let mut scaling = exp_negative(&exponent);
             let edge = exp_negative(&edge);
+            for lane in 0..N {
+                scaling[lane] = if size[lane] > SWITCH {
+                    scaling[lane]
+                } else {
+                    0.0
+                };
+            }
             v_integrals(&size, &edge, top, &mut second);
-            for (at, &(i, j)) in self.shifted.products.iter().enumerate() {
-                let (i, j) = (usize::from(i).min(degree), usize::from(j).min(degree));
-                let power = &powers[degree - i];
-                let product = &mut products[at & (P - 1)];
-                for lane in 0..N {
-                    product[lane] = power[lane] * second[j][lane];
-                }
+            for i in 0..=degree {
+                first[i] = powers[degree - i];
                 if DERIVATIVE {
                     let rest = half_sum * (degree - i) as f64;
                     let below = &powers[(degree - i).max(1) - 1];
-                    let slope = &mut products_slope[at & (P - 1)];
                     for lane in 0..N {
-                        let first = rest * below[lane] - smaller * power[lane];
-                        slope[lane] = first * second[j][lane]
-                            - half_difference * (power[lane] * second[j + 1][lane]);
+                        first_slope[i][lane] =
+                            rest * below[lane] - smaller * powers[degree - i][lane];
                     }
                 }
             }
-            self.shifted.accumulate(&products, &scaling, &far, values);
-            if DERIVATIVE {
-                self.shifted
-                    .accumulate(&products_slope, &scaling, &far, slopes);
-            }
+            let factors = [&first, &first_slope, &second];
+            let turn = -half_difference.abs();
+            self.shifted
+                .add::<N, K, T, DERIVATIVE>(factors, turn, &scaling, [values, slopes]);
         }
     }
 }
@@ -226,8 +237,8 @@ pub(crate) struct RadialKernel {
     sets: Vec<Set>,
     /// Number of integrals.
     pub(crate) integrals: usize,
-    /// Largest number of distinct products in a set.
-    pub(crate) widest: usize,
+    /// Largest n + n′.
+    pub(crate) degree: usize,
 }
 
 impl RadialKernel {
@@ -238,7 +249,7 @@ impl RadialKernel {
         zeta_a: f64,
         zeta_b: f64,
         coefficient: f64,
-        target: usize,
+        target: u8,
     ) {
         let degree = quantum.degree();
         let same = |set: &Set| {
@@ -257,23 +268,17 @@ impl RadialKernel {
             });
             self.sets.len() - 1
         });
-        let set = &mut self.sets[at];
-        set.push(quantum, target, coefficient);
-        self.integrals = self.integrals.max(target + 1);
-        let widest = set
-            .spheroidal
-            .products
-            .len()
-            .max(set.shifted.products.len());
-        self.widest = self.widest.max(widest);
+        self.sets[at].push(quantum, target, coefficient);
+        self.integrals = self.integrals.max(usize::from(target) + 1);
+        self.degree = self.degree.max(degree);
     }
 
-    /// Values (and slopes dS/dR when `DERIVATIVE`) of all integrals at N distances. `P` and `T`
-    /// are powers of two, at least `widest` and `integrals`.
+    /// Values (and slopes dS/dR when `DERIVATIVE`) of all integrals at N distances. `K` and `T`
+    /// are powers of two, at least `degree + 2` and `integrals`.
     #[inline(always)]
     pub(crate) fn evaluate<
         const N: usize,
-        const P: usize,
+        const K: usize,
         const T: usize,
         const DERIVATIVE: bool,
     >(
@@ -291,7 +296,7 @@ impl RadialKernel {
             };
         }
         for set in &self.sets {
-            set.add::<N, P, T, DERIVATIVE>(&cut, values, slopes);
+            set.add::<N, K, T, DERIVATIVE>(&cut, values, slopes);
         }
     }
 }
