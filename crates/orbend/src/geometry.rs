@@ -5,7 +5,7 @@ use std::path::Path;
 
 use orbend_report::{BondLength, Number, Warning};
 use orbend_structure::{
-    BondOverride, LengthUnit, Molecule, XyzOptions, ideal_geometry, read_xyz, write_xyz,
+    BondOverride, Formula, LengthUnit, Molecule, XyzOptions, ideal_geometry, read_xyz, write_xyz,
 };
 
 use crate::arguments::{ModelArguments, UnitChoice};
@@ -107,13 +107,14 @@ fn from_formula(word: &str, model: &ModelArguments) -> Result<Geometry, Failure>
     let overrides = model
         .bond
         .iter()
-        .map(|text| BondOverride::parse(text))
+        .map(|text| text.parse::<BondOverride>())
         .collect::<Result<Vec<_>, _>>()
         .map_err(|error| Failure::request(format!("--bond: {error}")))?;
-    let ideal = ideal_geometry(word, model.charge.unwrap_or(0), &overrides)
+    let formula = Formula::parse(word).map_err(|error| Failure::request(error.to_string()))?;
+    let ideal = ideal_geometry(&formula, model.charge, &overrides)
         .map_err(|error| Failure::request(error.to_string()))?;
     let mut molecule = ideal.molecule;
-    molecule.charge = model.charge.unwrap_or(molecule.charge);
+    formula.text.clone_into(&mut molecule.title);
     molecule.unpaired = model.unpaired;
     let bonds = ideal
         .bonds
@@ -131,7 +132,10 @@ fn from_formula(word: &str, model: &ModelArguments) -> Result<Geometry, Failure>
     Ok(Geometry {
         record: orbend_report::Geometry {
             origin: "formula".to_owned(),
-            notes: ideal.notes,
+            notes: vec![
+                format!("ideal geometry of {word}: {}", ideal.shape_class.name()),
+                ideal.because,
+            ],
             bonds,
         },
         molecule,

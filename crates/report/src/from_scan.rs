@@ -170,7 +170,7 @@ pub(crate) fn shell_values(
         zeta: shell
             .terms
             .iter()
-            .map(|term| Ok([Number::new(term.zeta)?, Number::new(term.coefficient)?]))
+            .map(|term| Ok([Number::new(term.0)?, Number::new(term.1)?]))
             .collect::<Result<_, _>>()?,
         source: shell.citation(),
         checked: match shell.checked {

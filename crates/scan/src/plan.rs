@@ -83,7 +83,11 @@ impl SweepPlan {
         }
         let permutations: Vec<Vec<usize>> =
             start.group.operations.iter().map(|operation| operation.permutation.clone()).collect();
-        let path = PathPlan::new(&molecule, &request.coordinates, &permutations)?;
+        let path = if request.coordinates.is_empty() {
+            PathPlan::fixed(&molecule)?
+        } else {
+            PathPlan::new(&molecule, &request.coordinates, &permutations)?
+        };
 
         let samples = sample_geometries(&path, molecule.positions.len())?;
         let kinds = kinds(&molecule.elements);

@@ -2,7 +2,7 @@
 
 use orbend_report::{FigureOptions, levels_csv, levels_document, levels_figure, levels_text, to_json};
 
-use super::{figure_numbering, provenance, resolve, text_options};
+use super::{csv, figure_numbering, provenance, resolve, text_options};
 use crate::arguments::LevelsArguments;
 use crate::failure::Failure;
 use crate::outputs::Outputs;
@@ -18,7 +18,7 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     outputs.write(|ending| {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
-            "csv" => levels_csv(&document).map_err(Failure::document)?.into_bytes(),
+            "csv" => csv(|out| levels_csv(&document, out))?,
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
             _ => levels_figure(&document, &FigureOptions { numbering: figure_numbering(output.numbering), ..FigureOptions::default() })
                 .map_err(|error| Failure::request(error.to_string()))?

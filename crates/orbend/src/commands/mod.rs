@@ -145,3 +145,12 @@ fn energy_window(text: &str) -> Result<(f64, f64), Failure> {
 pub(crate) fn text_options(numbering: NumberingChoice) -> TextOptions {
     TextOptions { numbering: figure_numbering(numbering), ..TextOptions::default() }
 }
+
+/// The bytes of a table.
+pub(crate) fn csv(
+    table: impl FnOnce(&mut Vec<u8>) -> Result<(), orbend_report::CsvError>,
+) -> Result<Vec<u8>, Failure> {
+    let mut bytes = Vec::new();
+    table(&mut bytes).map_err(Failure::document)?;
+    Ok(bytes)
+}

@@ -4,7 +4,7 @@ use orbend_report::{sweep_csv, sweep_document, sweep_figure, sweep_text, to_json
 use orbend_scan::Sweep;
 use orbend_structure::{Coordinate, CoordinateKind};
 
-use super::{figure_options, provenance, resolve, text_options};
+use super::{csv, figure_options, provenance, resolve, text_options};
 use crate::arguments::{CoordinateArguments, SweepArguments};
 use crate::failure::Failure;
 use crate::outputs::Outputs;
@@ -23,7 +23,7 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     outputs.write(|ending| {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
-            "csv" => sweep_csv(&document).map_err(Failure::document)?.into_bytes(),
+            "csv" => csv(|out| sweep_csv(&document, out))?,
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
             _ => sweep_figure(&document, &figure)
                 .map_err(|error| Failure::request(error.to_string()))?

@@ -72,6 +72,7 @@ pub struct PathPlan {
 
 #[derive(Clone, Debug)]
 enum Shape {
+    Fixed,
     Internal(Sequence),
     Frames(FramePath),
 }
@@ -99,6 +100,21 @@ impl PathPlan {
         let mut plan = Self::internal(molecule, coordinates, equivalences, axes, None)?;
         check::check(&mut plan)?;
         Ok(plan)
+    }
+
+    /// A single geometry: one point, no axis.
+    ///
+    /// # Errors
+    /// A geometry that is not usable.
+    pub fn fixed(molecule: &Molecule) -> Result<Self, PathError> {
+        molecule.check()?;
+        Ok(Self {
+            start: molecule.clone(),
+            axes: Vec::new(),
+            coordinates: Vec::new(),
+            shape: Shape::Fixed,
+            described: String::new(),
+        })
     }
 
     /// A path along which several coordinates move in step: its parameter is
@@ -302,7 +318,7 @@ impl PathPlan {
     pub fn moved_along(&self) -> Vec<Vec<Vec<usize>>> {
         match &self.shape {
             Shape::Internal(sequence) => sequence.partners(),
-            Shape::Frames(_) => Vec::new(),
+            Shape::Fixed | Shape::Frames(_) => Vec::new(),
         }
     }
 
@@ -340,6 +356,10 @@ impl PathPlan {
                 .map_err(|stop| self.name_stop(&stop, values)),
             Shape::Frames(path) => {
                 path.positions(values[0], out);
+                Ok(())
+            }
+            Shape::Fixed => {
+                out.copy_from_slice(&self.start.positions);
                 Ok(())
             }
         }
