@@ -109,7 +109,7 @@ pub fn levels_document(sweep: &Sweep, provenance: &Provenance) -> Result<LevelsD
     })
 }
 
-fn molecule_record(plan: &SweepPlan, provenance: &Provenance) -> Result<MoleculeRecord, NotFinite> {
+pub(crate) fn molecule_record(plan: &SweepPlan, provenance: &Provenance) -> Result<MoleculeRecord, NotFinite> {
     let molecule = plan.molecule();
     let electrons = plan.electrons();
     let positions = molecule
@@ -134,7 +134,7 @@ fn molecule_record(plan: &SweepPlan, provenance: &Provenance) -> Result<Molecule
     })
 }
 
-fn method_record(plan: &SweepPlan, provenance: &Provenance) -> Result<Method, NotFinite> {
+pub(crate) fn method_record(plan: &SweepPlan, provenance: &Provenance) -> Result<Method, NotFinite> {
     let request = plan.request();
     let mut elements = request.molecule.elements.clone();
     elements.sort();
@@ -180,7 +180,7 @@ pub(crate) fn shell_values(
     })
 }
 
-fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFinite> {
+pub(crate) fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFinite> {
     let path = plan.path();
     let moved = path.moved_along();
     path.coordinates()
@@ -406,7 +406,7 @@ fn overlap_populations(populations: &Populations) -> Result<Vec<OverlapPopulatio
     Ok(records)
 }
 
-fn warnings(plan: &SweepPlan, provenance: &Provenance) -> Vec<Warning> {
+pub(crate) fn warnings(plan: &SweepPlan, provenance: &Provenance) -> Vec<Warning> {
     plan.notices()
         .iter()
         .map(|notice| Warning { code: notice.code.to_owned(), text: notice.text.clone() })

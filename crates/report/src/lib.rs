@@ -16,6 +16,7 @@ mod draw;
 mod figure;
 mod from_parameters;
 mod from_scan;
+mod from_shape;
 mod lettering;
 #[cfg(test)]
 mod synthetic;
@@ -25,8 +26,9 @@ pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
 pub use figure::{
     ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering, Theme,
-    levels_figure, sweep_figure,
+    levels_figure, shape_figure, sweep_figure,
 };
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
-pub use text::{TextOptions, levels_text, params_text, sweep_text};
+pub use from_shape::shape_document;
+pub use text::{TextOptions, levels_text, params_text, shape_text, sweep_text};

@@ -2,6 +2,7 @@
 
 pub(crate) mod levels;
 pub(crate) mod params;
+pub(crate) mod shape;
 pub(crate) mod sweep;
 
 use std::path::Path;

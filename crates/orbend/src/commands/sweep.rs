@@ -63,7 +63,7 @@ fn coordinates(arguments: &CoordinateArguments) -> Result<Vec<Coordinate>, Failu
 }
 
 /// Runs on a pool of its own when a number of threads is asked for.
-fn in_pool<T: Send>(jobs: Option<usize>, work: impl FnOnce() -> T + Send) -> Result<T, Failure> {
+pub(crate) fn in_pool<T: Send>(jobs: Option<usize>, work: impl FnOnce() -> T + Send) -> Result<T, Failure> {
     let Some(jobs) = jobs else { return Ok(work()) };
     if !(1..=1024).contains(&jobs) {
         return Err(Failure::request(format!("--jobs {jobs}: not a usable number of threads"))

@@ -3,11 +3,13 @@
 mod diagram;
 mod levels;
 mod params;
+mod shape;
 mod sweep;
 mod table;
 
 pub use levels::levels_text;
 pub use params::params_text;
+pub use shape::shape_text;
 pub use sweep::sweep_text;
 
 use crate::document::{Method, MoleculeRecord, Warning};

@@ -78,7 +78,8 @@ pub(crate) fn at_distortion(
     distortion: f64,
 ) -> Result<Vec<[f64; 3]>, ScanError> {
     let mut positions = vec![[0.0; 3]; plan.molecule.len()];
-    plan.path.positions(&[motion.angle(distortion)], &mut positions)?;
+    plan.path
+        .positions(&[motion.angle(distortion)], &mut positions)?;
     // The unit factor leaves every position as it is; it keeps one way of moving ligands.
     centre.stretch(&vec![1.0; centre.ligands.len()], &mut positions);
     Ok(positions)
@@ -94,9 +95,18 @@ pub(crate) fn sums(
     let constant = &plan.hamiltonian;
     let weighted = with_coupling(constant, Coupling::Weighted)?;
     let models = [
-        Model { hamiltonian: constant, response: None },
-        Model { hamiltonian: constant, response: Some(Response::NOMINAL) },
-        Model { hamiltonian: &weighted, response: None },
+        Model {
+            hamiltonian: constant,
+            response: None,
+        },
+        Model {
+            hamiltonian: constant,
+            response: Some(Response::NOMINAL),
+        },
+        Model {
+            hamiltonian: &weighted,
+            response: None,
+        },
     ];
     let curves = Engine::new(plan).curves(positions, &models);
     Ok(curves
@@ -112,7 +122,10 @@ pub(crate) fn with_coupling(
     coupling: Coupling,
 ) -> Result<HamiltonianPlan, ScanError> {
     let mut other = plan.clone();
-    other.set_method(&Method { coupling, ..*plan.method() })?;
+    other.set_method(&Method {
+        coupling,
+        ..*plan.method()
+    })?;
     Ok(other)
 }
 
@@ -126,7 +139,10 @@ fn argument(name: &'static str, motion: Motion, curve: Curve) -> SumArgument {
         depth: found.map(|minimum| minimum.depth),
         votes: matches!(name, "polarised-sum" | "polarised-charge-response"),
         at_rest: curve.at_rest,
-        angles: grid.iter().map(|&distortion| motion.angle(distortion)).collect(),
+        angles: grid
+            .iter()
+            .map(|&distortion| motion.angle(distortion))
+            .collect(),
         sums: curve.sums,
     }
 }

@@ -7,6 +7,9 @@ use crate::error::ScanError;
 
 use super::motion::Motion;
 
+/// √3/2.
+const SIN_120: f64 = 0.866_025_403_784_438_6;
+
 /// The centre and its ligands, counted from 0.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub struct Centre {
@@ -76,13 +79,17 @@ impl Centre {
     pub fn find(molecule: &Molecule, asked: Option<usize>) -> Result<Self, ShapeError> {
         let graph = BondGraph::new(molecule);
         let atoms = molecule.len();
-        let possible: Vec<usize> =
-            (0..atoms).filter(|&atom| matches!(graph.neighbours(atom).len(), 2 | 3)).collect();
+        let possible: Vec<usize> = (0..atoms)
+            .filter(|&atom| matches!(graph.neighbours(atom).len(), 2 | 3))
+            .collect();
         let named = |list: &[usize]| -> Vec<String> {
             list.iter()
                 .map(|&atom| {
-                    let around: Vec<String> =
-                        graph.neighbours(atom).iter().map(|&other| molecule.atom_name(other)).collect();
+                    let around: Vec<String> = graph
+                        .neighbours(atom)
+                        .iter()
+                        .map(|&other| molecule.atom_name(other))
+                        .collect();
                     format!("{} (with {})", molecule.atom_name(atom), around.join(", "))
                 })
                 .collect()
@@ -92,22 +99,39 @@ impl Centre {
             if small {
                 let ligands: Vec<usize> = (0..atoms).filter(|&other| other != atom).collect();
                 let carried = ligands.iter().map(|&ligand| vec![ligand]).collect();
-                return Ok(Self { atom, ligands, carried });
+                return Ok(Self {
+                    atom,
+                    ligands,
+                    carried,
+                });
             }
             if !possible.contains(&atom) {
                 let known = atom < atoms;
                 return Err(ShapeError::NotACentre {
-                    atom: if known { molecule.atom_name(atom) } else { (atom + 1).to_string() },
-                    neighbours: if known { graph.neighbours(atom).len() } else { 0 },
+                    atom: if known {
+                        molecule.atom_name(atom)
+                    } else {
+                        (atom + 1).to_string()
+                    },
+                    neighbours: if known {
+                        graph.neighbours(atom).len()
+                    } else {
+                        0
+                    },
                     possible: named(&possible),
                 });
             }
             return Ok(Self::with_neighbours(&graph, atom));
         }
         match possible[..] {
-            [] => Err(ShapeError::NoCentre { formula: molecule.formula() }),
+            [] => Err(ShapeError::NoCentre {
+                formula: molecule.formula(),
+            }),
             [atom] => Ok(Self::with_neighbours(&graph, atom)),
-            _ => Err(ShapeError::SeveralCentres { formula: molecule.formula(), atoms: named(&possible) }),
+            _ => Err(ShapeError::SeveralCentres {
+                formula: molecule.formula(),
+                atoms: named(&possible),
+            }),
         }
     }
 
@@ -117,12 +141,46 @@ impl Centre {
             .iter()
             .map(|&ligand| graph.fragment(atom, ligand).unwrap_or_else(|| vec![ligand]))
             .collect();
-        Self { atom, ligands, carried }
+        Self {
+            atom,
+            ligands,
+            carried,
+        }
     }
 
     /// Bend with two ligands, pyramid with three.
     pub fn motion(&self) -> Motion {
-        if self.ligands.len() == 2 { Motion::Bend } else { Motion::Pyramid }
+        if self.ligands.len() == 2 {
+            Motion::Bend
+        } else {
+            Motion::Pyramid
+        }
+    }
+
+    /// Whether the molecule is the centre with single atoms around it.
+    pub(crate) fn is_whole(&self, molecule: &Molecule) -> bool {
+        molecule.len() == self.ligands.len() + 1
+    }
+
+    /// The linear or planar form of such a molecule with its own bond lengths, Å.
+    pub(crate) fn symmetric_form(&self, molecule: &Molecule) -> Vec<[f64; 3]> {
+        let mut positions = vec![[0.0; 3]; molecule.len()];
+        let directions: &[[f64; 3]] = match self.motion() {
+            Motion::Bend => &[[0.0, 0.0, 1.0], [0.0, 0.0, -1.0]],
+            Motion::Pyramid => &[[1.0, 0.0, 0.0], [-0.5, SIN_120, 0.0], [-0.5, -SIN_120, 0.0]],
+        };
+        for (&ligand, direction) in self.ligands.iter().zip(directions) {
+            let length = (0..3)
+                .map(|axis| {
+                    let difference =
+                        molecule.positions[ligand][axis] - molecule.positions[self.atom][axis];
+                    difference * difference
+                })
+                .sum::<f64>()
+                .sqrt();
+            positions[ligand] = direction.map(|component| component * length);
+        }
+        positions
     }
 
     /// Moves each ligand, with what hangs on it, so that its bond is `scale` times as long.

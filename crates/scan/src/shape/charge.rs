@@ -18,9 +18,15 @@ pub(crate) struct Response {
 
 impl Response {
     /// The nominal curves: up to 60 iterations, a point that has not come to rest is cut off.
-    pub(crate) const NOMINAL: Self = Self { per_charge_ev: 1.0, iterations: 60 };
+    pub(crate) const NOMINAL: Self = Self {
+        per_charge_ev: 1.0,
+        iterations: 60,
+    };
     /// The ensemble: 14 damped iterations leave less than a thousandth of the first step.
-    pub(crate) const ENSEMBLE: Self = Self { per_charge_ev: 1.0, iterations: 14 };
+    pub(crate) const ENSEMBLE: Self = Self {
+        per_charge_ev: 1.0,
+        iterations: 14,
+    };
 }
 
 /// Share of each step that is taken.

@@ -70,8 +70,12 @@ impl<'a> Engine<'a> {
                 let m = block.size();
                 let support = (0..block.row_count())
                     .map(|row| {
-                        let mut list: Vec<usize> =
-                            block.row(row).iter().flatten().map(|&(function, _)| function).collect();
+                        let mut list: Vec<usize> = block
+                            .row(row)
+                            .iter()
+                            .flatten()
+                            .map(|&(function, _)| function)
+                            .collect();
                         list.sort_unstable();
                         list.dedup();
                         list
@@ -103,8 +107,18 @@ impl<'a> Engine<'a> {
             s: vec![[0.0; LANES]; n * n],
             h: vec![[0.0; LANES]; n * n],
             rooms,
-            valence: plan.basis.atoms.iter().map(|atom| f64::from(atom.valence_electrons)).collect(),
-            atom_of: plan.basis.functions.iter().map(|function| function.atom).collect(),
+            valence: plan
+                .basis
+                .atoms
+                .iter()
+                .map(|atom| f64::from(atom.valence_electrons))
+                .collect(),
+            atom_of: plan
+                .basis
+                .functions
+                .iter()
+                .map(|function| function.atom)
+                .collect(),
             line_of,
             energies: vec![[0.0; LANES]; first_slot],
             occupations: vec![[0.0; LANES]; plan.lines.len()],
@@ -113,13 +127,22 @@ impl<'a> Engine<'a> {
     }
 
     /// One curve per model over the geometries; `geometries[point]` holds positions in Å.
-    pub(crate) fn curves(&mut self, geometries: &[Vec<[f64; 3]>], models: &[Model<'_>]) -> Vec<Curve> {
-        let empty = Curve { sums: Vec::with_capacity(geometries.len()), at_rest: true };
+    pub(crate) fn curves(
+        &mut self,
+        geometries: &[Vec<[f64; 3]>],
+        models: &[Model<'_>],
+    ) -> Vec<Curve> {
+        let empty = Curve {
+            sums: Vec::with_capacity(geometries.len()),
+            at_rest: true,
+        };
         let mut curves = vec![empty; models.len()];
         for chunk in geometries.chunks(LANES) {
             self.load(chunk);
             let Some(first) = models.first() else { break };
-            first.hamiltonian.fill_lanes(&self.lanes, &mut self.s, &mut self.h);
+            first
+                .hamiltonian
+                .fill_lanes(&self.lanes, &mut self.s, &mut self.h);
             self.transform_overlap();
             for (model, curve) in models.iter().zip(&mut curves) {
                 let (sums, rest) = self.sums(model);
@@ -134,11 +157,15 @@ impl<'a> Engine<'a> {
     pub(crate) fn line_energies(&mut self, geometries: &[Vec<[f64; 3]>]) -> Vec<Vec<f64>> {
         let plan = self.plan;
         self.load(geometries);
-        plan.hamiltonian.fill_lanes(&self.lanes, &mut self.s, &mut self.h);
+        plan.hamiltonian
+            .fill_lanes(&self.lanes, &mut self.s, &mut self.h);
         self.transform_overlap();
         self.solve(false);
         let count = geometries.len().min(LANES);
-        plan.lines.iter().map(|line| self.energies[line.slot][..count].to_vec()).collect()
+        plan.lines
+            .iter()
+            .map(|line| self.energies[line.slot][..count].to_vec())
+            .collect()
     }
 
     fn load(&mut self, chunk: &[Vec<[f64; 3]>]) {
@@ -173,7 +200,9 @@ impl<'a> Engine<'a> {
                     .as_ref()
                     .map_or(true, |status| matches!(status[lane], LaneStatus::Failed(_)));
                 if failed {
-                    energies.iter_mut().for_each(|energy| energy[lane] = f64::NAN);
+                    energies
+                        .iter_mut()
+                        .for_each(|energy| energy[lane] = f64::NAN);
                 }
             }
         }
@@ -185,7 +214,9 @@ impl<'a> Engine<'a> {
         let k = [model.hamiltonian.method().k; LANES];
         let mut shifted: Vec<Lanes> = diagonal.iter().map(|&value| [value; LANES]).collect();
         let Some(response) = model.response else {
-            model.hamiltonian.couple_lanes(&self.lanes, &shifted, &k, &self.s, &mut self.h);
+            model
+                .hamiltonian
+                .couple_lanes(&self.lanes, &shifted, &k, &self.s, &mut self.h);
             self.solve(false);
             return (self.fill(), [true; LANES]);
         };
@@ -201,7 +232,9 @@ impl<'a> Engine<'a> {
                     value[lane] = diagonal[function] - response.per_charge_ev * charge;
                 }
             }
-            model.hamiltonian.couple_lanes(&self.lanes, &shifted, &k, &self.s, &mut self.h);
+            model
+                .hamiltonian
+                .couple_lanes(&self.lanes, &shifted, &k, &self.s, &mut self.h);
             self.solve(true);
             sums = self.fill();
             self.populations(&mut populations);
@@ -224,7 +257,8 @@ impl<'a> Engine<'a> {
             for (energy, line) in energies.iter_mut().zip(lines) {
                 *energy = self.energies[line.slot][lane];
             }
-            self.order.sort_by(|&a, &b| energies[a].total_cmp(&energies[b]).then(a.cmp(&b)));
+            self.order
+                .sort_by(|&a, &b| energies[a].total_cmp(&energies[b]).then(a.cmp(&b)));
             self.plan.filling.fill(&self.order, &energies, &mut filled);
             let mut sum = 0.0;
             for line in 0..lines.len() {

@@ -83,10 +83,16 @@ pub(crate) fn ensemble(
                 for positions in &mut moved {
                     centre.stretch(&draw.scale, positions);
                 }
-                let method = Method { k: draw.k, ..*plan.hamiltonian.method() };
+                let method = Method {
+                    k: draw.k,
+                    ..*plan.hamiltonian.method()
+                };
                 let constant = HamiltonianPlan::new(&draw.basis, &method)?;
                 let weighted = with_coupling(&constant, Coupling::Weighted)?;
-                let model = |hamiltonian, response| Model { hamiltonian, response };
+                let model = |hamiltonian, response| Model {
+                    hamiltonian,
+                    response,
+                };
                 let response = Some(Response::ENSEMBLE);
                 let curves = engine.curves(
                     &moved,
@@ -132,7 +138,10 @@ fn summary(members: &[Vec<(Favour, f64)>], motion: Motion) -> Support {
         distorted: count(Favour::Distorted, 0..4) / total,
         symmetric: count(Favour::Symmetric, 0..4) / total,
         curves,
-        by_form: (2.0 * count(Favour::Distorted, 0..2) / total, 2.0 * count(Favour::Distorted, 2..4) / total),
+        by_form: (
+            2.0 * count(Favour::Distorted, 0..2) / total,
+            2.0 * count(Favour::Distorted, 2..4) / total,
+        ),
         angles: (!angles.is_empty()).then(|| [0.1, 0.5, 0.9].map(|share| quantile(&angles, share))),
     }
 }
@@ -152,13 +161,18 @@ fn bond_classes(plan: &SweepPlan, centre: &Centre, positions: &[[f64; 3]]) -> Ve
             .map(|axis| (positions[ligand][axis] - positions[centre.atom][axis]).powi(2))
             .sum::<f64>()
             .sqrt();
-        (plan.molecule.elements[ligand], (distance * 1e6).round() as i64)
+        (
+            plan.molecule.elements[ligand],
+            (distance * 1e6).round() as i64,
+        )
     };
     let mut keys: Vec<(Element, i64)> = centre.ligands.iter().map(|&ligand| key(ligand)).collect();
     let each = keys.clone();
     keys.sort();
     keys.dedup();
-    each.iter().map(|key| keys.iter().position(|other| other == key).unwrap_or(0)).collect()
+    each.iter()
+        .map(|key| keys.iter().position(|other| other == key).unwrap_or(0))
+        .collect()
 }
 
 fn perturb(plan: &SweepPlan, from: &Basis, bonds: &[usize], seed: u64, draw: u64) -> Draw {
@@ -171,8 +185,10 @@ fn perturb(plan: &SweepPlan, from: &Basis, bonds: &[usize], seed: u64, draw: u64
         let of_element: Vec<usize> = (0..basis.shells.len())
             .filter(|&shell| basis.atoms[basis.shells[shell].atom].element == element)
             .collect();
-        let mut names: Vec<(u8, u8)> =
-            of_element.iter().map(|&shell| (basis.shells[shell].n, basis.shells[shell].l)).collect();
+        let mut names: Vec<(u8, u8)> = of_element
+            .iter()
+            .map(|&shell| (basis.shells[shell].n, basis.shells[shell].l))
+            .collect();
         names.sort_unstable();
         names.dedup();
         for (n, l) in names {
@@ -190,13 +206,20 @@ fn perturb(plan: &SweepPlan, from: &Basis, bonds: &[usize], seed: u64, draw: u64
                 // A common factor of the exponents keeps the norm.
                 values.terms.iter_mut().for_each(|term| term.0 *= exponent);
                 let functions = values.first..values.first + 2 * usize::from(l) + 1;
-                basis.functions[functions].iter_mut().for_each(|function| function.hii_ev *= energy);
+                basis.functions[functions]
+                    .iter_mut()
+                    .for_each(|function| function.hii_ev *= energy);
             }
         }
     }
     let k = random.uniform(K_RANGE.0, K_RANGE.1);
     let classes = bonds.iter().max().map_or(0, |class| class + 1);
-    let factors: Vec<f64> =
-        (0..classes).map(|_| random.uniform(1.0 - LENGTH, 1.0 + LENGTH)).collect();
-    Draw { basis, k, scale: bonds.iter().map(|&class| factors[class]).collect() }
+    let factors: Vec<f64> = (0..classes)
+        .map(|_| random.uniform(1.0 - LENGTH, 1.0 + LENGTH))
+        .collect();
+    Draw {
+        basis,
+        k,
+        scale: bonds.iter().map(|&class| factors[class]).collect(),
+    }
 }

@@ -58,7 +58,9 @@ pub(crate) fn flips(
     let mut engine = Engine::new(plan);
     let mut found: Vec<(f64, Flip)> = Vec::new();
     for what in search.candidates() {
-        let Some(change) = search.smallest(&mut engine, &what, now)? else { continue };
+        let Some(change) = search.smallest(&mut engine, &what, now)? else {
+            continue;
+        };
         let to = search.favours(&mut engine, &what, change)?;
         let (name, unit, published) = search.words(&what);
         let spread = match what {
@@ -111,12 +113,18 @@ impl Search<'_> {
             .collect();
         shells.sort_unstable();
         shells.dedup();
-        let mut out: Vec<What> = shells.iter().map(|&(e, n, l)| What::Energy(e, n, l)).collect();
+        let mut out: Vec<What> = shells
+            .iter()
+            .map(|&(e, n, l)| What::Energy(e, n, l))
+            .collect();
         out.extend(shells.iter().map(|&(e, n, l)| What::Exponent(e, n, l)));
         out.push(What::K);
         let elements = &self.plan.molecule.elements;
         for (index, &ligand) in self.centre.ligands.iter().enumerate() {
-            if self.centre.ligands[..index].iter().all(|&other| elements[other] != elements[ligand]) {
+            if self.centre.ligands[..index]
+                .iter()
+                .all(|&other| elements[other] != elements[ligand])
+            {
                 out.push(What::Length(index));
             }
         }
@@ -169,7 +177,12 @@ impl Search<'_> {
     }
 
     /// What the polarised sum speaks for after a relative change of one value.
-    fn favours(&self, engine: &mut Engine<'_>, what: &What, change: f64) -> Result<Favour, ScanError> {
+    fn favours(
+        &self,
+        engine: &mut Engine<'_>,
+        what: &What,
+        change: f64,
+    ) -> Result<Favour, ScanError> {
         let mut basis: Basis = self.plan.basis.clone();
         let mut method: Method = *self.plan.hamiltonian.method();
         let factor = 1.0 + change;
@@ -184,7 +197,9 @@ impl Search<'_> {
                     if energy {
                         shell.hii_ev *= factor;
                         let functions = shell.first..shell.first + 2 * usize::from(l) + 1;
-                        basis.functions[functions].iter_mut().for_each(|f| f.hii_ev *= factor);
+                        basis.functions[functions]
+                            .iter_mut()
+                            .for_each(|f| f.hii_ev *= factor);
                     } else {
                         shell.terms.iter_mut().for_each(|term| term.0 *= factor);
                     }
@@ -198,10 +213,17 @@ impl Search<'_> {
                     .centre
                     .ligands
                     .iter()
-                    .map(|&ligand| if elements[ligand] == named { factor } else { 1.0 })
+                    .map(|&ligand| {
+                        if elements[ligand] == named {
+                            factor
+                        } else {
+                            1.0
+                        }
+                    })
                     .collect();
                 let mut all = self.start.clone();
-                all.iter_mut().for_each(|positions| self.centre.stretch(&scale, positions));
+                all.iter_mut()
+                    .for_each(|positions| self.centre.stretch(&scale, positions));
                 moved = Some(all);
             }
         }
@@ -220,8 +242,16 @@ impl Search<'_> {
         hamiltonian: &HamiltonianPlan,
         positions: &[Vec<[f64; 3]>],
     ) -> Result<Favour, ScanError> {
-        let curves = engine.curves(positions, &[Model { hamiltonian, response: None }]);
-        let found = curves.first().and_then(|curve| minimum(self.step, curve.usable()));
+        let curves = engine.curves(
+            positions,
+            &[Model {
+                hamiltonian,
+                response: None,
+            }],
+        );
+        let found = curves
+            .first()
+            .and_then(|curve| minimum(self.step, curve.usable()));
         Ok(favour(found.map(|minimum| minimum.depth)))
     }
 
@@ -238,17 +268,28 @@ impl Search<'_> {
                     .basis
                     .shells
                     .iter()
-                    .find(|s| self.plan.basis.atoms[s.atom].element == element && (s.n, s.l) == (n, l))
+                    .find(|s| {
+                        self.plan.basis.atoms[s.atom].element == element && (s.n, s.l) == (n, l)
+                    })
                     .map_or(0.0, |s| s.hii_ev);
-                (format!("hii {}", shell(element, n, l)), ("eV", value), SPREAD * value.abs())
+                (
+                    format!("hii {}", shell(element, n, l)),
+                    ("eV", value),
+                    SPREAD * value.abs(),
+                )
             }
-            What::Exponent(element, n, l) => {
-                (format!("zeta {}", shell(element, n, l)), ("percent", 100.0), 100.0 * SPREAD)
-            }
+            What::Exponent(element, n, l) => (
+                format!("zeta {}", shell(element, n, l)),
+                ("percent", 100.0),
+                100.0 * SPREAD,
+            ),
             What::K => ("k".to_owned(), ("percent", 100.0), 100.0 * 0.1 / 1.75),
             What::Length(index) => {
                 let elements = &self.plan.molecule.elements;
-                let (centre, ligand) = (elements[self.centre.atom], elements[self.centre.ligands[index]]);
+                let (centre, ligand) = (
+                    elements[self.centre.atom],
+                    elements[self.centre.ligands[index]],
+                );
                 (
                     format!("length {}-{}", centre.symbol(), ligand.symbol()),
                     ("percent", 100.0),

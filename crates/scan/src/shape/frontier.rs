@@ -45,7 +45,10 @@ pub(crate) fn frontier(
     let at_first: Vec<f64> = energies.iter().map(|line| line[1]).collect();
     let mut order: Vec<usize> = (0..energies.len()).collect();
     order.sort_by(|&a, &b| {
-        at_first[a].total_cmp(&at_first[b]).then(energies[a][2].total_cmp(&energies[b][2])).then(a.cmp(&b))
+        at_first[a]
+            .total_cmp(&at_first[b])
+            .then(energies[a][2].total_cmp(&energies[b][2]))
+            .then(a.cmp(&b))
     });
     let mut filled = vec![0.0; energies.len()];
     plan.filling.fill(&order, &at_first, &mut filled);
@@ -55,25 +58,50 @@ pub(crate) fn frontier(
             continue;
         }
         let head = &plan.lines[line];
-        if let Some(set) = lines.iter_mut().find(|set| plan.lines[set.0].slot == head.slot) {
+        if let Some(set) = lines
+            .iter_mut()
+            .find(|set| plan.lines[set.0].slot == head.slot)
+        {
             set.2 += filled[line];
         } else {
-            lines.push((line, head.name.plain.clone(), filled[line], energies[line][2] - energies[line][0]));
+            lines.push((
+                line,
+                head.name.plain.clone(),
+                filled[line],
+                energies[line][2] - energies[line][0],
+            ));
         }
     }
     let found = lines.iter().find(|set| set.3.abs() > RESPONSE_EV).cloned();
     let (favours, line, label, electrons, change) = match found {
         None => (Favour::Silent, None, String::new(), 0.0, 0.0),
         Some((line, label, electrons, change)) => {
-            let favours = if change < 0.0 { Favour::Distorted } else { Favour::Symmetric };
+            let favours = if change < 0.0 {
+                Favour::Distorted
+            } else {
+                Favour::Symmetric
+            };
             (favours, Some(line), label, electrons, change)
         }
     };
-    let lines = lines.into_iter().map(|(_, label, electrons, change)| (label, electrons, change)).collect();
-    Ok(FrontierArgument { favours, line, label, electrons, change, lines })
+    let lines = lines
+        .into_iter()
+        .map(|(_, label, electrons, change)| (label, electrons, change))
+        .collect();
+    Ok(FrontierArgument {
+        favours,
+        line,
+        label,
+        electrons,
+        change,
+        lines,
+    })
 }
 
 /// Whether every ligand is a hydrogen.
 pub(crate) fn all_hydrogen(molecule: &Molecule, centre: &Centre) -> bool {
-    centre.ligands.iter().all(|&ligand| molecule.elements[ligand].number() == 1)
+    centre
+        .ligands
+        .iter()
+        .all(|&ligand| molecule.elements[ligand].number() == 1)
 }

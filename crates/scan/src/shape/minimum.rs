@@ -85,7 +85,13 @@ mod tests {
     #[test]
     fn the_symmetric_point_and_no_minimum() {
         let up: Vec<f64> = (0..12).map(|i| f64::from(i * i)).collect();
-        assert_eq!(minimum(5.0, &up), Some(Minimum { distortion: 0.0, depth: 0.0 }));
+        assert_eq!(
+            minimum(5.0, &up),
+            Some(Minimum {
+                distortion: 0.0,
+                depth: 0.0
+            })
+        );
         let down: Vec<f64> = up.iter().map(|x| -x).collect();
         assert_eq!(minimum(5.0, &down), None);
         assert_eq!(minimum(5.0, &up[..3]), None);

@@ -57,6 +57,9 @@ mod tests {
         let values: Vec<f64> = (0..20_000).map(|_| random.normal()).collect();
         let mean = values.iter().sum::<f64>() / 20_000.0;
         let variance = values.iter().map(|x| x * x).sum::<f64>() / 20_000.0;
-        assert!(mean.abs() < 0.03 && (variance - 0.97).abs() < 0.05, "{mean} {variance}");
+        assert!(
+            mean.abs() < 0.03 && (variance - 0.97).abs() < 0.05,
+            "{mean} {variance}"
+        );
     }
 }

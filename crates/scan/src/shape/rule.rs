@@ -74,13 +74,21 @@ pub struct Ruling {
 /// Weighs the arguments.
 pub fn weigh(evidence: &Evidence) -> Ruling {
     let (distorted, symmetric) = evidence.shares;
-    let majority = if distorted > symmetric { Favour::Distorted } else { Favour::Symmetric };
+    let majority = if distorted > symmetric {
+        Favour::Distorted
+    } else {
+        Favour::Symmetric
+    };
     let most = distorted.max(symmetric);
     let exempt = evidence.frontier == Favour::Distorted
         && majority == Favour::Symmetric
         && evidence.frontier_single
         && evidence.light_hydride;
-    let frontier = if exempt { Favour::Silent } else { evidence.frontier };
+    let frontier = if exempt {
+        Favour::Silent
+    } else {
+        evidence.frontier
+    };
     let (shape, doubt) = if evidence.heavy_alkaline_earth && majority == Favour::Symmetric {
         (Favour::Silent, Some(Doubt::MissingShell))
     } else if most >= MAJORITY {
@@ -90,9 +98,16 @@ pub fn weigh(evidence: &Evidence) -> Ruling {
             (Favour::Silent, Some(Doubt::FrontierAgainstSum))
         }
     } else {
-        let first =
-            if evidence.leading == Favour::Silent { evidence.response } else { evidence.leading };
-        let second = if frontier == Favour::Silent { evidence.response } else { frontier };
+        let first = if evidence.leading == Favour::Silent {
+            evidence.response
+        } else {
+            evidence.leading
+        };
+        let second = if frontier == Favour::Silent {
+            evidence.response
+        } else {
+            frontier
+        };
         if first != Favour::Silent && second == first && !evidence.inverted {
             (first, None)
         } else {
@@ -110,7 +125,13 @@ pub fn weigh(evidence: &Evidence) -> Ruling {
         && evidence.leading == shape
         && evidence.response == shape
         && !evidence.inverted;
-    Ruling { shape, doubt, majority, support, confident }
+    Ruling {
+        shape,
+        doubt,
+        majority,
+        support,
+        confident,
+    }
 }
 
 #[cfg(test)]
@@ -132,11 +153,25 @@ mod tests {
     fn agreement_is_confident_and_contradiction_undecided() {
         let ruling = weigh(&CLEAR);
         assert_eq!((ruling.shape, ruling.confident), (Favour::Distorted, true));
-        let against = weigh(&Evidence { frontier: Favour::Symmetric, ..CLEAR });
+        let against = weigh(&Evidence {
+            frontier: Favour::Symmetric,
+            ..CLEAR
+        });
         assert_eq!(against.doubt, Some(Doubt::FrontierAgainstSum));
-        let split = weigh(&Evidence { shares: (0.5, 0.4), response: Favour::Symmetric, frontier: Favour::Silent, ..CLEAR });
+        let split = weigh(&Evidence {
+            shares: (0.5, 0.4),
+            response: Favour::Symmetric,
+            frontier: Favour::Silent,
+            ..CLEAR
+        });
         assert_eq!(split.doubt, Some(Doubt::Split));
-        assert!(!weigh(&Evidence { inverted: true, ..CLEAR }).confident);
+        assert!(
+            !weigh(&Evidence {
+                inverted: true,
+                ..CLEAR
+            })
+            .confident
+        );
     }
 
     #[test]
@@ -149,9 +184,16 @@ mod tests {
             ..CLEAR
         };
         assert_eq!(weigh(&planar).shape, Favour::Silent);
-        let methyl = weigh(&Evidence { light_hydride: true, ..planar });
+        let methyl = weigh(&Evidence {
+            light_hydride: true,
+            ..planar
+        });
         assert_eq!((methyl.shape, methyl.confident), (Favour::Symmetric, false));
-        let earth = weigh(&Evidence { heavy_alkaline_earth: true, frontier: Favour::Silent, ..planar });
+        let earth = weigh(&Evidence {
+            heavy_alkaline_earth: true,
+            frontier: Favour::Silent,
+            ..planar
+        });
         assert_eq!(earth.doubt, Some(Doubt::MissingShell));
     }
 }

@@ -2,6 +2,7 @@
 
 use orbend_hamiltonian::{Basis, Coupling, Method, ParameterSet};
 
+use crate::error::ScanError;
 use crate::plan::SweepPlan;
 use crate::request::Request;
 
@@ -76,7 +77,13 @@ pub struct ShapeVerdict {
 impl ShapeRequest {
     /// A verdict with the usual ensemble, what would flip it included.
     pub fn new(request: Request) -> Self {
-        Self { request, centre: None, seed: SEED, draws: DRAWS, flips: true }
+        Self {
+            request,
+            centre: None,
+            seed: SEED,
+            draws: DRAWS,
+            flips: true,
+        }
     }
 
     /// Works the verdict out on the caller's rayon pool; the same bytes on any number of threads.
@@ -92,7 +99,11 @@ impl ShapeRequest {
         let mut sums = sums(
             &plan,
             motion,
-            ["polarised-sum", "polarised-charge-response", "polarised-weighted"],
+            [
+                "polarised-sum",
+                "polarised-charge-response",
+                "polarised-weighted",
+            ],
             &positions,
         )?;
         sums.extend(self.minimal_sums(&plan, &centre, motion, &sums)?);
@@ -113,8 +124,11 @@ impl ShapeRequest {
         } else {
             Vec::new()
         };
-        let hydrogens =
-            centre.ligands.iter().filter(|&&ligand| plan.molecule.elements[ligand].number() == 1).count();
+        let hydrogens = centre
+            .ligands
+            .iter()
+            .filter(|&&ligand| plan.molecule.elements[ligand].number() == 1)
+            .count();
         let electron_count =
             electron_count_rule(centre.ligands.len(), hydrogens, plan.electrons().total());
         let (angle, angle_range) = angles(&ruling, motion, &support);
@@ -141,12 +155,27 @@ impl ShapeRequest {
         Ok(verdict)
     }
 
-    fn plan(&self, centre: &Centre, motion: Motion, polarised: bool) -> Result<SweepPlan, ShapeError> {
+    fn plan(
+        &self,
+        centre: &Centre,
+        motion: Motion,
+        polarised: bool,
+    ) -> Result<SweepPlan, ShapeError> {
         let mut request = self.request.clone();
-        request.method =
-            Method { polarised_hydrogen: polarised, ..Method::with_coupling(Coupling::Constant) };
+        request.method = Method {
+            polarised_hydrogen: polarised,
+            ..Method::with_coupling(Coupling::Constant)
+        };
         request.coordinates = vec![motion.coordinate(centre)?];
-        Ok(request.plan()?)
+        match request.plan() {
+            // In a bent start two ligands may count as bonded (Li···Li in Li₂O): the symmetric form
+            // with the same bond lengths is as good a start.
+            Err(ScanError::Path(_)) if centre.is_whole(&request.molecule) => {
+                request.molecule.positions = centre.symmetric_form(&request.molecule);
+                Ok(request.plan()?)
+            }
+            other => Ok(other?),
+        }
     }
 
     /// The sums in the minimal basis; without hydrogen they are the polarised ones.
@@ -158,14 +187,18 @@ impl ShapeRequest {
         polarised: &[SumArgument],
     ) -> Result<Vec<SumArgument>, ShapeError> {
         let names = ["sum", "charge-response", "weighted"];
-        let mut minimal: Vec<SumArgument> =
-            if plan.molecule.elements.iter().any(|element| element.number() == 1) {
-                let plan = self.plan(centre, motion, false)?;
-                let positions = geometries(&plan, centre, motion, true)?;
-                sums(&plan, motion, names, &positions)?
-            } else {
-                polarised.to_vec()
-            };
+        let mut minimal: Vec<SumArgument> = if plan
+            .molecule
+            .elements
+            .iter()
+            .any(|element| element.number() == 1)
+        {
+            let plan = self.plan(centre, motion, false)?;
+            let positions = geometries(&plan, centre, motion, true)?;
+            sums(&plan, motion, names, &positions)?
+        } else {
+            polarised.to_vec()
+        };
         for (argument, name) in minimal.iter_mut().zip(names) {
             argument.name = name;
             argument.votes = false;
@@ -185,7 +218,8 @@ fn second_values(set: &ParameterSet, plan: &SweepPlan) -> Result<Basis, ShapeErr
         .filter(|element| !element.is_transition_metal())
         .filter(|&element| {
             set.element(element).is_some_and(|values| {
-                values.variant().name == "A" && values.variants().iter().any(|other| other.name == "B")
+                values.variant().name == "A"
+                    && values.variants().iter().any(|other| other.name == "B")
             })
         })
         .map(|element| format!("{}:B", element.symbol()))
@@ -205,7 +239,11 @@ fn evidence(
     let elements = &plan.molecule.elements;
     let element = elements[centre.atom];
     let p_level = |atom: usize| {
-        plan.basis.shells.iter().find(|shell| shell.atom == atom && shell.l == 1).map(|shell| shell.hii_ev)
+        plan.basis
+            .shells
+            .iter()
+            .find(|shell| shell.atom == atom && shell.l == 1)
+            .map(|shell| shell.hii_ev)
     };
     let inverted = element.number() != 1
         && centre.ligands.iter().any(|&ligand| {
@@ -236,7 +274,11 @@ fn angles(ruling: &Ruling, motion: Motion, support: &Support) -> (Option<f64>, O
 }
 
 fn configuration(frontier: &FrontierArgument) -> String {
-    let words: Vec<String> =
-        frontier.lines.iter().rev().map(|(label, electrons, _)| format!("{label}:{electrons}")).collect();
+    let words: Vec<String> = frontier
+        .lines
+        .iter()
+        .rev()
+        .map(|(label, electrons, _)| format!("{label}:{electrons}"))
+        .collect();
     words.join(" ")
 }

@@ -40,9 +40,16 @@ pub(crate) fn because(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String
             motion.symmetric_word()
         ));
     } else {
-        out.push(format!("no occupied line changes by more than 0.3 eV down to {reference:.0}°"));
+        out.push(format!(
+            "no occupied line changes by more than 0.3 eV down to {reference:.0}°"
+        ));
     }
-    out.extend(verdict.ruling.doubt.map(|doubt| undecided(doubt).to_owned()));
+    out.extend(
+        verdict
+            .ruling
+            .doubt
+            .map(|doubt| undecided(doubt).to_owned()),
+    );
     out
 }
 
@@ -63,8 +70,11 @@ pub(crate) fn doubts(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String>
     let motion = verdict.motion;
     let shape = verdict.ruling.shape;
     let mut out = vec!["the sum of orbital energies carries no electron repulsion".to_owned()];
-    let reference =
-        if shape == Favour::Silent { verdict.ruling.majority } else { shape };
+    let reference = if shape == Favour::Silent {
+        verdict.ruling.majority
+    } else {
+        shape
+    };
     if evidence.frontier != Favour::Silent && evidence.frontier != reference {
         let class = if evidence.light_hydride && evidence.frontier_single {
             "; in a first-row radical AH3 a single electron in that line does not decide"
@@ -79,8 +89,15 @@ pub(crate) fn doubts(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String>
         ));
     }
     let leading = &verdict.sums[0];
-    if let Some(depth) = leading.depth.filter(|&depth| depth > 1e-3 && depth < 4.0 * FLAT_EV) {
-        let small = if depth < FLAT_EV { "below" } else { "little above" };
+    if let Some(depth) = leading
+        .depth
+        .filter(|&depth| depth > 1e-3 && depth < 4.0 * FLAT_EV)
+    {
+        let small = if depth < FLAT_EV {
+            "below"
+        } else {
+            "little above"
+        };
         out.push(format!(
             "flat (quasilinear or nearly planar): the minimum is {depth:.3} eV deep, {small} kT at 298 K (0.026 eV)"
         ));
@@ -92,7 +109,11 @@ pub(crate) fn doubts(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String>
         .map(|sum| sum.name)
         .collect();
     if !opposed.is_empty() {
-        out.push(format!("forms disagree: {} not for {}", opposed.join(", "), reference.word(motion)));
+        out.push(format!(
+            "forms disagree: {} not for {}",
+            opposed.join(", "),
+            reference.word(motion)
+        ));
     }
     let (constant, weighted) = verdict.support.by_form;
     if (constant - weighted).abs() > 0.25 {
@@ -122,8 +143,12 @@ pub(crate) fn doubts(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String>
                 .to_owned(),
         );
     }
-    let restless: Vec<&str> =
-        verdict.sums.iter().filter(|sum| !sum.at_rest).map(|sum| sum.name).collect();
+    let restless: Vec<&str> = verdict
+        .sums
+        .iter()
+        .filter(|sum| !sum.at_rest)
+        .map(|sum| sum.name)
+        .collect();
     if !restless.is_empty() {
         out.push(format!(
             "the charges do not come to rest everywhere in {}: its curve may jump where levels cross",
@@ -138,7 +163,9 @@ pub(crate) fn doubts(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String>
         ));
     }
     if verdict.plan.electrons().unpaired() > 0 {
-        out.push("the method knows no multiplets: the order of spin states is not claimed".to_owned());
+        out.push(
+            "the method knows no multiplets: the order of spin states is not claimed".to_owned(),
+        );
     }
     out
 }
@@ -146,7 +173,11 @@ pub(crate) fn doubts(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String>
 fn second_order_jahn_teller(verdict: &ShapeVerdict) -> bool {
     let plan = &verdict.plan;
     verdict.centre.ligands.len() == 3
-        && verdict.centre.ligands.iter().all(|&ligand| plan.molecule.elements[ligand].number() == 1)
+        && verdict
+            .centre
+            .ligands
+            .iter()
+            .all(|&ligand| plan.molecule.elements[ligand].number() == 1)
         && plan.electrons().total() == 7
         && plan.molecule.elements[verdict.centre.atom].period() >= 3
 }
