@@ -283,8 +283,9 @@ fn row_name(document: &ShapeDocument, case: &Case) -> String {
     } else {
         String::new()
     };
+    let space = if case.charge.abs() > 1 { " " } else { "" };
     format!(
-        "{formula}{}, {} e{spin}",
+        "{formula}{space}{}, {} e{spin}",
         charge(case.charge),
         case.electrons
     )

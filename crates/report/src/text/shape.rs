@@ -79,7 +79,9 @@ fn name(document: &ShapeDocument, case: &Case) -> String {
         .formula
         .as_deref()
         .unwrap_or_else(|| heading_formula(&document.molecule));
-    format!("{formula}{}", charge(case.charge))
+    // A space keeps the charge apart from the last number of the formula: NO2 2+.
+    let space = if case.charge.abs() > 1 { " " } else { "" };
+    format!("{formula}{space}{}", charge(case.charge))
 }
 
 fn degrees(angle: Option<Number>) -> String {
@@ -234,7 +236,7 @@ fn remark(argument: &Argument) -> &'static str {
     match argument.note.as_deref() {
         Some(note) if note.starts_with("votes") => "votes",
         Some(note) if note.starts_with("silent") => "silent",
-        Some(note) if note.starts_with("reference") => "reference",
+        Some(note) if note.starts_with("reference") => "shown",
         _ => "",
     }
 }
