@@ -101,6 +101,34 @@ impl SweepPlan {
         Ok(energies)
     }
 
+    /// Energies by slot at up to eight values of a path with one parameter,
+    /// `at.len() × slots`.
+    pub(crate) fn batch_energies(
+        &self,
+        at: &[f64],
+        workspace: &mut Workspace,
+        out: &mut [f64],
+    ) -> Result<(), ScanError> {
+        let slots = self.slots();
+        let used = at.len().min(LANES);
+        for lane in 0..LANES {
+            if lane < used {
+                self.path.positions(&at[lane..=lane], &mut workspace.positions)?;
+            }
+            workspace.load(lane);
+        }
+        let mut smallest = [0.0; LANES];
+        self.solve_loaded(workspace, used, &mut smallest, |slot, lanes| {
+            for lane in 0..used {
+                out[lane * slots + slot] = lanes[lane];
+            }
+        })
+        .map_err(|failure| {
+            let values = [at[failure.lane.min(used - 1)]];
+            self.explain(&self.adapted, failure.block, failure.error, &values)
+        })
+    }
+
     /// Solves the points `first .. first + rows.smallest.len()`.
     pub(crate) fn solve_rows(
         &self,
