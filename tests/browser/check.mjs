@@ -67,8 +67,8 @@ try {
   session = (await send('Target.attachToTarget', { targetId, flatten: true })).sessionId;
   for (const domain of ['Page', 'Runtime', 'Log', 'Network', 'DOM']) await send(`${domain}.enable`);
   await send('Page.navigate', { url: address });
-  for (let k = 0; k < 100 && !(await ask("document.documentElement.dataset.ready === 'yes'")); k++) await new Promise((done) => setTimeout(done, 50));
-  check('the page becomes ready', await ask("document.documentElement.dataset.ready === 'yes'"));
+  for (let k = 0; k < 100 && !(await ask("document.documentElement?.dataset.ready === 'yes'")); k++) await new Promise((done) => setTimeout(done, 50));
+  check('the page becomes ready', await ask("document.documentElement?.dataset.ready === 'yes'"));
   const ready = await ask("performance.getEntriesByType('navigation')[0].domContentLoadedEventEnd");
   console.log(`     size ${(statSync(page).size / 1000).toFixed(0)} kB, ready after ${ready.toFixed(0)} ms`);
   await frame();
@@ -144,10 +144,14 @@ try {
 
   await send('Emulation.setScriptExecutionDisabled', { value: true });
   await send('Page.reload');
+  let nodeIds = [];
+  for (let k = 0; k < 40 && nodeIds.length === 0; k++) {
+    await new Promise((done) => setTimeout(done, 250));
+    const { root } = await send('DOM.getDocument', { depth: -1 });
+    ({ nodeIds } = await send('DOM.querySelectorAll', { nodeId: root.nodeId, selector: '#figure svg .line' }));
+  }
   await new Promise((done) => setTimeout(done, 500));
   await picture('static');
-  const { root } = await send('DOM.getDocument', { depth: -1 });
-  const { nodeIds } = await send('DOM.querySelectorAll', { nodeId: root.nodeId, selector: '#figure svg .line' });
   check('the figure stands without script', nodeIds.length > 0, `${nodeIds.length} lines`);
 } finally {
   browser.kill();

@@ -189,7 +189,7 @@ fn shells(document: &SweepDocument) -> Vec<ShellData> {
     for (index, function) in document.basis.iter().flatten().enumerate() {
         let seen = found
             .last()
-            .is_some_and(|last| last.atom == function.atom && last.shell == function.shell);
+            .is_some_and(|last| last.atom + 1 == function.atom && last.shell == function.shell);
         if !seen {
             found.extend(shell(document, function, index));
         }

@@ -62,7 +62,7 @@ pub(crate) fn dark_figure() -> String {
         for property in ["fill", "stroke"] {
             let _ = writeln!(
                 rules,
-                "[data-theme=dark] #figure [{property}=\"{from}\"]{{{property}:{to}}}"
+                "[data-theme=dark] :is(#figure,#ladder) [{property}=\"{from}\"]{{{property}:{to}}}"
             );
         }
     };

@@ -56,6 +56,7 @@ pub fn sweep_page(document: &SweepDocument, options: &FigureOptions) -> Result<S
     let options = FigureOptions {
         width: FigureWidth::Page,
         theme: Theme::Light,
+        title: false,
         ..options.clone()
     };
     let canvas = compose(document, &options)?;

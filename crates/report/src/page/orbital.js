@@ -3,13 +3,14 @@
 const BOHR = 0.529177210903;
 
 // Normalised real harmonics times r^l, in the order m = 0, +1, −1, +2, −2, +3, −3.
+const S_NORM = Math.sqrt(1 / (4 * Math.PI)), P_NORM = Math.sqrt(3 / (4 * Math.PI));
 const SOLID = (() => {
   const f = (square) => Math.sqrt(square / Math.PI);
-  const s = f(1 / 4), p = f(3 / 4), d = f(15 / 4), z = f(5 / 16);
+  const d = f(15 / 4), z = f(5 / 16);
   const f0 = f(7 / 16), f1 = f(21 / 32), f2 = f(105 / 16), f3 = f(35 / 32);
   return [
-    () => [s],
-    (x, y, w) => [p * w, p * x, p * y],
+    null,
+    null,
     (x, y, w, q) => [z * (3 * w * w - q), d * x * w, d * y * w, d / 2 * (x * x - y * y), d * x * y],
     (x, y, w, q) => [
       f0 * w * (5 * w * w - 3 * q), f1 * x * (5 * w * w - q), f1 * y * (5 * w * w - q),
@@ -40,12 +41,17 @@ function psi(shells, coefficients, from, atoms, x, y, z) {
     const dx = (x - at[0]) / BOHR, dy = (y - at[1]) / BOHR, dz = (z - at[2]) / BOHR;
     const q = dx * dx + dy * dy + dz * dz, r = Math.sqrt(q) + 1e-12;
     let radial = 0;
-    for (const [zeta, c] of shell.terms) radial += c * Math.exp(-zeta * r);
+    for (const term of shell.terms) radial += term[1] * Math.exp(-term[0] * r);
     // r^(n−1) Y = r^(n−1−l) · (r^l Y)
-    radial *= Math.pow(r, shell.n - 1 - shell.l);
-    const y1 = SOLID[shell.l](dx, dy, dz, q);
+    for (let k = shell.n - 1; k > shell.l; k--) radial *= r;
+    const first = from + shell.first;
     let angular = 0;
-    for (let k = 0; k < y1.length; k++) angular += coefficients[from + shell.first + k] * y1[k];
+    if (shell.l === 0) angular = S_NORM * coefficients[first];
+    else if (shell.l === 1) angular = P_NORM * (coefficients[first] * dz + coefficients[first + 1] * dx + coefficients[first + 2] * dy);
+    else {
+      const values = SOLID[shell.l](dx, dy, dz, q);
+      for (let k = 0; k < values.length; k++) angular += coefficients[first + k] * values[k];
+    }
     sum += radial * angular;
   }
   return sum;
@@ -145,15 +151,15 @@ function content(frame, plane, { psiAt, atoms }) {
   return sum;
 }
 
-// Draws the molecule, and the orbital where `psiAt` is given. Contours at ±0.025·2^k; positive phase
-// filled, negative phase filled and hatched.
-function drawOrbital(canvas, { frame, plane, atoms, elements, bonds, psiAt, colours }) {
+// Draws the molecule, and the orbital where `psiAt` is given, on `fine` pixels. Contours at ±0.025·2^k;
+// positive phase filled, negative phase filled and hatched.
+function drawOrbital(canvas, { frame, plane, atoms, elements, bonds, psiAt, colours, fine }) {
   const g = canvas.getContext('2d'), size = canvas.width, half = frame.size + 1.7, c = frame.centre(atoms);
   const [a, b, n] = plane.axes;
   g.fillStyle = colours.ground;
   g.fillRect(0, 0, size, size);
   if (psiAt) {
-    const cells = 90, grid = new Float64Array((cells + 1) * (cells + 1));
+    const cells = fine > 400 ? 90 : 60, grid = new Float64Array((cells + 1) * (cells + 1));
     for (let j = 0; j <= cells; j++) {
       for (let i = 0; i <= cells; i++) {
         const s = (2 * i / cells - 1) * half, t = (1 - 2 * j / cells) * half;
@@ -163,32 +169,7 @@ function drawOrbital(canvas, { frame, plane, atoms, elements, bonds, psiAt, colo
           c[2] + s * a[2] + t * b[2] + plane.height * n[2]);
       }
     }
-    const image = g.getImageData(0, 0, size, size), pixels = image.data;
-    const values = new Float64Array(size + 1), above = new Float64Array(size + 1);
-    for (let y = 0; y < size; y++) {
-      above.set(values);
-      const fy = y / size * cells, j = Math.floor(fy), v = fy - j, row = j * (cells + 1), next = row + cells + 1;
-      for (let x = 0; x <= size; x++) {
-        const fx = Math.min(x / size * cells, cells - 1e-9), i = Math.floor(fx), u = fx - i;
-        values[x] = (grid[row + i] * (1 - u) + grid[row + i + 1] * u) * (1 - v) + (grid[next + i] * (1 - u) + grid[next + i + 1] * u) * v;
-      }
-      for (let x = 0; x < size; x++) {
-        const value = values[x], level = Math.log2(Math.abs(value) / 0.025 + 1e-9);
-        const right = values[x + 1], over = y ? above[x] : value;
-        const slope = Math.hypot(right - value, over - value) / (Math.abs(value) * Math.LN2 + 1e-12);
-        const k = 4 * (y * size + x), phase = value > 0 ? colours.plus : colours.minus;
-        let share = 0;
-        if (level > 0) {
-          share = 0.2 + 0.13 * Math.min(Math.floor(level), 4);
-          if (value < 0 && (x + y) % 14 < 3) share = Math.min(1, share + 0.3);
-        }
-        const nearest = Math.max(0, Math.min(5, Math.round(level)));
-        const edge = Math.max(0, Math.min(1, 1.6 - Math.abs(level - nearest) / (slope + 1e-12)));
-        share = Math.max(share, edge);
-        for (let q = 0; q < 3; q++) pixels[k + q] += (phase[q] - pixels[k + q]) * share;
-      }
-    }
-    g.putImageData(image, 0, 0);
+    paint(canvas, grid, cells, fine, colours);
   }
   const place = (at) => {
     const d = at.map((x, k) => x - c[k]);
@@ -216,4 +197,45 @@ function drawOrbital(canvas, { frame, plane, atoms, elements, bonds, psiAt, colo
     g.fillStyle = colours.ink;
     g.fillText(elements[k], spots[k][0], spots[k][1] + size / 360);
   }
+}
+
+let scratch = null;
+// Contours of a lattice: values between its points are bilinear, contour lines as wide on every slope.
+function paint(canvas, grid, cells, fine, colours) {
+  scratch = scratch || document.createElement('canvas');
+  scratch.width = scratch.height = fine;
+  const g = scratch.getContext('2d'), image = g.createImageData(fine, fine), pixels = image.data;
+  const row = new Float64Array(fine + 1), above = new Float64Array(fine + 1), hatch = Math.round(fine / 52);
+  const reach = 2 * fine / 720;
+  for (let y = 0; y < fine; y++) {
+    above.set(row);
+    const fy = y / fine * cells, j = Math.floor(fy), v = fy - j, from = j * (cells + 1), next = from + cells + 1;
+    for (let x = 0; x <= fine; x++) {
+      const fx = Math.min(x / fine * cells, cells - 1e-9), i = Math.floor(fx), u = fx - i;
+      row[x] = (grid[from + i] * (1 - u) + grid[from + i + 1] * u) * (1 - v) + (grid[next + i] * (1 - u) + grid[next + i + 1] * u) * v;
+    }
+    for (let x = 0; x < fine; x++) {
+      const value = row[x], size = Math.abs(value), k = 4 * (y * fine + x);
+      if (size < 0.012) {
+        pixels[k] = colours.paper[0]; pixels[k + 1] = colours.paper[1]; pixels[k + 2] = colours.paper[2]; pixels[k + 3] = 255;
+        continue;
+      }
+      const level = Math.log2(size / 0.025);
+      const dx = row[x + 1] - value, dy = y ? above[x] - value : 0;
+      const slope = Math.sqrt(dx * dx + dy * dy) / (size * Math.LN2) + 1e-9;
+      let share = 0;
+      if (level > 0) {
+        share = 0.2 + 0.13 * Math.min(Math.floor(level), 4);
+        if (value < 0 && (x + y) % hatch < hatch / 4) share = Math.min(1, share + 0.3);
+      }
+      const nearest = Math.max(0, Math.min(5, Math.round(level)));
+      const edge = 0.5 + reach - Math.abs(level - nearest) / slope;
+      if (edge > share) share = Math.min(1, edge);
+      const phase = value > 0 ? colours.plus : colours.minus;
+      for (let q = 0; q < 3; q++) pixels[k + q] = colours.paper[q] + (phase[q] - colours.paper[q]) * share;
+      pixels[k + 3] = 255;
+    }
+  }
+  g.putImageData(image, 0, 0);
+  canvas.getContext('2d').drawImage(scratch, 0, 0, canvas.width, canvas.height);
 }

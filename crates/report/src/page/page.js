@@ -87,13 +87,17 @@
       g.append(wide);
     }
     listen(g, line.id);
+    listenToKeys(g, line.id);
   }
   function listen(target, id) {
     target.addEventListener('pointerenter', () => hover(id));
     target.addEventListener('pointerleave', () => hover(null));
+    target.addEventListener('click', () => { if (!dragged) pin(state.pinned === id ? null : id); });
+  }
+  // Not for the ladder: its rungs are made anew, and the table below has them as buttons.
+  function listenToKeys(target, id) {
     target.addEventListener('focus', () => hover(id));
     target.addEventListener('blur', () => hover(null));
-    target.addEventListener('click', () => { if (!dragged) pin(state.pinned === id ? null : id); });
     target.addEventListener('keydown', (event) => {
       if (event.key === 'Enter' || event.key === ' ') { event.preventDefault(); pin(state.pinned === id ? null : id); }
     });
@@ -135,16 +139,25 @@
     const gap = 11.5, floor = Math.max(area.energies[0][2], area.down[0] + gap * rows.length);
     rows.forEach((row, k) => { if (k) row.place = Math.max(row.place, rows[k - 1].place + gap); });
     for (let k = rows.length - 1, limit = floor; k >= 0; k--) { rows[k].place = Math.min(rows[k].place, limit); limit = rows[k].place - gap; }
-    for (const { set, y, place } of rows) {
+    // Rungs that would lie on each other share the width.
+    for (let from = 0; from < rows.length;) {
+      let to = from + 1;
+      while (to < rows.length && rows[to].y - rows[to - 1].y < 4) to += 1;
+      const members = rows.slice(from, to).reduce((sum, row) => sum + row.set.length, 0);
+      let column = 0;
+      for (const row of rows.slice(from, to)) { row.column = column; row.width = 50 / members; column += row.set.length; }
+      from = to;
+    }
+    for (const { set, y, place, column, width } of rows) {
       const line = set[0], colour = colourOf(line.id), on = set.some((l) => l.id === active());
-      const g = drawn('g', { class: on ? 'rung on' : 'rung' }, ladder), width = 50 / set.length;
+      const g = drawn('g', { class: on ? 'rung on' : 'rung' }, ladder), gap = Math.min(4, width / 4), r = Math.min(2.6, width / 7);
       set.forEach((member, k) => {
-        const x = 14 + k * width;
-        drawn('path', { d: `M${x} ${y}H${x + width - 4}`, stroke: colour, 'stroke-width': on ? 3 : 1.6 }, g);
+        const x = 14 + (column + k) * width;
+        drawn('path', { d: `M${x} ${y}H${x + width - gap}`, stroke: colour, 'stroke-width': on ? 3 : 1.6 }, g);
         const electrons = member.electrons[p], whole = Math.ceil(electrons - 1e-6);
         for (let e = 0; e < whole; e++) {
           const part = e + 1 > electrons + 1e-6;
-          drawn('circle', { cx: x + width / 2 - 2 + (e - (whole - 1) / 2) * 7, cy: y, r: part ? 2.2 : 2.6, fill: part ? '#ffffff' : colour, stroke: colour }, g);
+          drawn('circle', { cx: x + (width - gap) / 2 + (e - (whole - 1) / 2) * 2.7 * r, cy: y, r: part ? 0.85 * r : r, fill: part ? 'var(--ground)' : colour, stroke: colour, 'stroke-width': 0.6 }, g);
         }
       });
       drawn('path', { d: `M64 ${y}L74 ${place}`, stroke: '#656d76', 'stroke-width': 0.5, fill: 'none' }, g);
@@ -171,7 +184,7 @@
   slider.addEventListener('input', () => go(Number(slider.value)));
   $('back').addEventListener('click', () => go(state.point - 1));
   $('forth').addEventListener('click', () => go(state.point + 1));
-  let pending = false;
+  let pending = false, moved = -1e9;
   function later() {
     if (pending) return;
     pending = true;
@@ -181,6 +194,7 @@
     point = Math.max(0, Math.min(count - 1, point));
     if (point === state.point) return;
     state.point = point;
+    moved = performance.now();
     later();
   }
   function hover(id) { state.hovered = id; later(); }
@@ -209,12 +223,13 @@
     drawLadder();
     drawCard();
     drawPicture();
-    drawTable();
+    // A reader of the table waits until things rest.
+    if (performance.now() - moved > 150) drawTable();
   }
   const theme = () => document.documentElement.dataset.theme;
   const LOOKS = {
-    light: { ground: '#ffffff', ink: '#1b1f24', plus: [11, 111, 92], minus: [139, 43, 120] },
-    dark: { ground: '#14181d', ink: '#eef1f4', plus: [111, 208, 185], minus: [221, 154, 208] },
+    light: { ground: '#ffffff', paper: [255, 255, 255], ink: '#1b1f24', plus: [11, 111, 92], minus: [139, 43, 120] },
+    dark: { ground: '#14181d', paper: [20, 24, 29], ink: '#eef1f4', plus: [111, 208, 185], minus: [221, 154, 208] },
   };
   function psiOf(line, point) {
     const atoms = data.positions[point];
@@ -227,13 +242,17 @@
     }
     return chosenPlane.get(line.id);
   }
-  function drawPicture() {
+  // Coarse while things move, fine when they rest.
+  let rest = 0;
+  function drawPicture(fine = 360) {
+    clearTimeout(rest);
+    if (fine < 720) rest = setTimeout(() => { drawPicture(720); drawTable(); }, 160);
     const line = byId.get(active()), p = state.point, has = line && line.coefficients.length > 0 && shells.length > 0;
     const index = state.cut !== 'auto' ? Number(state.cut) : has ? planeOf(line) : 0;
     const plane = planes[index];
     drawOrbital($('orbital'), {
       frame, plane, atoms: data.positions[p], elements: data.elements, bonds: data.bonds,
-      psiAt: has ? psiOf(line, p) : null, colours: LOOKS[theme()],
+      psiAt: has ? psiOf(line, p) : null, colours: LOOKS[theme()], fine,
     });
     const label = line ? plainText(labelOf(line)) : '';
     $('orbital').setAttribute('aria-label', has
