@@ -5,7 +5,7 @@ use std::path::Path;
 
 use orbend_report::{BondLength, Number, Warning};
 use orbend_structure::{
-    BondOverride, Formula, LengthUnit, Molecule, XyzOptions, ideal_geometry, read_xyz, write_xyz,
+    BondOverride, Formula, LengthUnit, Molecule, XyzOptions, ideal_geometry, read_xyz_bytes, write_xyz,
 };
 
 use crate::arguments::{ModelArguments, UnitChoice};
@@ -60,17 +60,23 @@ fn is_file_name(word: &str) -> bool {
     word.contains(['.', '/', '\\']) || Path::new(word).exists()
 }
 
+/// Atoms beyond this number are refused: matrices grow with its square, time with its cube.
+const MOST_ATOMS: usize = 500;
+
 fn from_bytes(name: &str, bytes: &[u8], model: &ModelArguments) -> Result<Geometry, Failure> {
-    let text = std::str::from_utf8(bytes).map_err(|error| {
-        Failure::request(format!("{name}: byte {} is not UTF-8 text", error.valid_up_to() + 1))
-            .fix("give an XYZ file: the number of atoms, a comment line, then one atom per line")
-    })?;
     let unit = match model.unit {
         UnitChoice::Angstrom => LengthUnit::Angstrom,
         UnitChoice::Bohr => LengthUnit::Bohr,
     };
-    let frames = read_xyz(text, &XyzOptions { unit })
-        .map_err(|error| Failure::request(format!("{name}: {error}")))?;
+    if let Some(atoms) = announced_atoms(bytes).filter(|&atoms| atoms > MOST_ATOMS) {
+        return Err(Failure::request(format!(
+            "{name}:1:1: {atoms} atoms are announced, more than the {MOST_ATOMS} that can be treated"
+        ))
+        .fix("give one molecule of that size or smaller, its number of atoms on the first line"));
+    }
+    let frames = read_xyz_bytes(bytes, &XyzOptions { unit }).map_err(|error| {
+        Failure::request(format!("{name}:{}:{}: {}", error.line, error.column, error.cause)).fix(error.fix)
+    })?;
     let mut frames = frames.into_iter();
     let Some(frame) = frames.next() else {
         return Err(Failure::request(format!("{name}: no geometry in it"))
@@ -141,4 +147,10 @@ fn from_formula(word: &str, model: &ModelArguments) -> Result<Geometry, Failure>
         molecule,
         warnings: Vec::new(),
     })
+}
+
+/// The number alone on the first line that holds anything, if it is one.
+fn announced_atoms(bytes: &[u8]) -> Option<usize> {
+    let line = bytes.split(|&byte| byte == b'\n' || byte == b'\r').find(|line| !line.trim_ascii().is_empty())?;
+    std::str::from_utf8(line.trim_ascii()).ok()?.parse().ok()
 }
