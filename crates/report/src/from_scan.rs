@@ -183,10 +183,12 @@ pub(crate) fn shell_values(
 fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFinite> {
     let path = plan.path();
     let moved = path.moved_along();
+    let described: Vec<&str> = path.describe().lines().collect();
     path.coordinates()
         .iter()
         .zip(moved)
-        .map(|(coordinate, moved)| {
+        .enumerate()
+        .map(|(index, (coordinate, moved))| {
             Ok(CoordinateRecord {
                 kind: match coordinate.kind {
                     CoordinateKind::Bend => MotionKind::Bend,
@@ -203,7 +205,7 @@ fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFini
                 from: Some(Number::new(coordinate.range.from)?),
                 to: Some(Number::new(coordinate.range.to)?),
                 step: Some(Number::new(coordinate.range.step)?),
-                text: path.describe().to_owned(),
+                text: described.get(index).copied().unwrap_or_default().to_owned(),
             })
         })
         .collect()

@@ -46,13 +46,22 @@ impl Workspace {
                 }
             })
             .collect();
-        Self {
-            positions: vec![[0.0; 3]; atoms],
+        let mut workspace = Self {
+            positions: plan.reference.clone(),
             lanes: vec![[[0.0; LANES]; 3]; atoms],
             overlap: vec![[0.0; LANES]; n * n],
             hamiltonian: vec![[0.0; LANES]; n * n],
             blocks,
+        };
+        for lane in 0..LANES {
+            workspace.load(lane);
         }
+        plan.hamiltonian.fill_lanes(
+            &workspace.lanes,
+            &mut workspace.overlap,
+            &mut workspace.hamiltonian,
+        );
+        workspace
     }
 }
 
@@ -161,8 +170,9 @@ impl SweepPlan {
         smallest: &mut Lanes,
         mut store: impl FnMut(usize, &Lanes),
     ) -> Result<(), LaneFailure> {
-        self.hamiltonian.fill_lanes(
+        self.hamiltonian.refill_lanes(
             &workspace.lanes,
+            &self.moving,
             &mut workspace.overlap,
             &mut workspace.hamiltonian,
         );
