@@ -1,5 +1,5 @@
 # six electrons where eight are
-args: levels H2O --occupy "1a1:2 1b2:2 1b1:2"
+args: levels H2O --occupy "2a1:2 1b2:2 1b1:2"
 exit: 2
 says: 6
 says: 8

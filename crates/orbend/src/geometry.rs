@@ -5,7 +5,8 @@ use std::path::Path;
 
 use orbend_report::{BondLength, Number, Warning};
 use orbend_structure::{
-    BondOverride, Formula, LengthUnit, Molecule, XyzOptions, ideal_geometry, read_xyz_bytes, write_xyz,
+    BondOverride, Formula, LengthUnit, Molecule, XyzOptions, ideal_geometry, read_xyz_bytes,
+    write_xyz,
 };
 
 use crate::arguments::{ModelArguments, UnitChoice};
@@ -35,16 +36,19 @@ pub(crate) fn read(word: &str, model: &ModelArguments) -> Result<Geometry, Failu
         from_bytes("standard input", &bytes, model)?
     } else if is_file_name(word) {
         let bytes = std::fs::read(word).map_err(|error| {
-            Failure::request(format!("cannot read {word}: {error}"))
-                .fix("name an XYZ file that exists, `-` for standard input, or a formula such as SiF2")
+            Failure::request(format!("cannot read {word}: {error}")).fix(
+                "name an XYZ file that exists, `-` for standard input, or a formula such as SiF2",
+            )
         })?;
         from_bytes(word, &bytes, model)?
     } else {
         return from_formula(word, model);
     };
     if !model.bond.is_empty() {
-        return Err(Failure::request("--bond sets lengths of an ideal geometry, but a file was given")
-            .fix("change the file, or give a formula"));
+        return Err(Failure::request(
+            "--bond sets lengths of an ideal geometry, but a file was given",
+        )
+        .fix("change the file, or give a formula"));
     }
     if let Some(charge) = model.charge {
         geometry.molecule.charge = charge;
@@ -75,7 +79,11 @@ fn from_bytes(name: &str, bytes: &[u8], model: &ModelArguments) -> Result<Geomet
         .fix("give one molecule of that size or smaller, its number of atoms on the first line"));
     }
     let frames = read_xyz_bytes(bytes, &XyzOptions { unit }).map_err(|error| {
-        Failure::request(format!("{name}:{}:{}: {}", error.line, error.column, error.cause)).fix(error.fix)
+        Failure::request(format!(
+            "{name}:{}:{}: {}",
+            error.line, error.column, error.cause
+        ))
+        .fix(error.fix)
     })?;
     let mut frames = frames.into_iter();
     let Some(frame) = frames.next() else {
@@ -89,19 +97,30 @@ fn from_bytes(name: &str, bytes: &[u8], model: &ModelArguments) -> Result<Geomet
     let mut warnings: Vec<Warning> = frame
         .notes
         .into_iter()
-        .map(|text| Warning { code: "geometry-file".to_owned(), text })
+        .map(|text| Warning {
+            code: "geometry-file".to_owned(),
+            text,
+        })
         .collect();
     let more = frames.count();
     if more > 0 {
         warnings.push(Warning {
             code: "first-frame".to_owned(),
-            text: format!("{name} holds {} geometries; the first one is used", more + 1),
+            text: format!(
+                "{name} holds {} geometries; the first one is used",
+                more + 1
+            ),
         });
     }
     Ok(Geometry {
         molecule: frame.molecule,
         record: orbend_report::Geometry {
-            origin: if name == "standard input" { name } else { "file" }.to_owned(),
+            origin: if name == "standard input" {
+                name
+            } else {
+                "file"
+            }
+            .to_owned(),
             notes,
             bonds: Vec::new(),
         },
@@ -115,10 +134,10 @@ fn from_formula(word: &str, model: &ModelArguments) -> Result<Geometry, Failure>
         .iter()
         .map(|text| text.parse::<BondOverride>())
         .collect::<Result<Vec<_>, _>>()
-        .map_err(|error| Failure::request(format!("--bond: {error}")))?;
-    let formula = Formula::parse(word).map_err(|error| Failure::request(error.to_string()))?;
-    let ideal = ideal_geometry(&formula, model.charge, &overrides)
-        .map_err(|error| Failure::request(error.to_string()))?;
+        .map_err(|error| Failure::from_library(format!("--bond: {error}")))?;
+    let formula = Formula::parse(word).map_err(Failure::from_library)?;
+    let ideal =
+        ideal_geometry(&formula, model.charge, &overrides).map_err(Failure::from_library)?;
     let mut molecule = ideal.molecule;
     formula.text.clone_into(&mut molecule.title);
     molecule.unpaired = model.unpaired;
@@ -128,7 +147,9 @@ fn from_formula(word: &str, model: &ModelArguments) -> Result<Geometry, Failure>
         .map(|bond| {
             Ok(BondLength {
                 atoms: bond.atoms.map(|atom| atom as u32 + 1),
-                elements: bond.atoms.map(|atom| molecule.elements[atom].symbol().to_owned()),
+                elements: bond
+                    .atoms
+                    .map(|atom| molecule.elements[atom].symbol().to_owned()),
                 length: Number::new(bond.length.0)?,
                 source: bond.source.clone(),
             })
@@ -151,6 +172,8 @@ fn from_formula(word: &str, model: &ModelArguments) -> Result<Geometry, Failure>
 
 /// The number alone on the first line that holds anything, if it is one.
 fn announced_atoms(bytes: &[u8]) -> Option<usize> {
-    let line = bytes.split(|&byte| byte == b'\n' || byte == b'\r').find(|line| !line.trim_ascii().is_empty())?;
+    let line = bytes
+        .split(|&byte| byte == b'\n' || byte == b'\r')
+        .find(|line| !line.trim_ascii().is_empty())?;
     std::str::from_utf8(line.trim_ascii()).ok()?.parse().ok()
 }
