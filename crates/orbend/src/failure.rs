@@ -86,6 +86,14 @@ impl Failure {
         }
     }
 
+    /// A result that could not become a document.
+    pub(crate) fn result(error: &orbend_report::FromScanError) -> Self {
+        match error {
+            orbend_report::FromScanError::Scan(error) => Self::scan(error),
+            other => Self::running(other.to_string()),
+        }
+    }
+
     /// A document that could not be written.
     pub(crate) fn document(error: impl fmt::Display) -> Self {
         Self::running(error.to_string())

@@ -24,7 +24,7 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     let sweep = in_pool(arguments.jobs, || resolved.request.run())?
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
     let document = levels_document(&sweep, &provenance(&resolved.geometry, output.numbering))
-        .map_err(|error| Failure::running(error.to_string()))?;
+        .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
     outputs.write(|ending| {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
