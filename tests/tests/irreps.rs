@@ -159,8 +159,8 @@ impl Line {
     }
 }
 
-fn opened(molecule: Molecule) -> Sweep {
-    let bend = Coordinate::parse(CoordinateKind::Bend, "2-1-3=90..180:2").expect("a coordinate");
+fn opened(molecule: Molecule, range: &str) -> Sweep {
+    let bend = Coordinate::parse(CoordinateKind::Bend, range).expect("a coordinate");
     Request::new(molecule)
         .coordinate(bend)
         .run()
@@ -172,7 +172,7 @@ fn opening_of_ah2() {
     // Common practice: on opening from 90 to 180 degrees 1b2 falls, 3a1 rises and joins 1b1 in the
     // degenerate 1pi_u, 2a1 hardly moves; labels count the core orbital.
     for spec in ["g2:H2O", "g2:NH2", "g2:CH2_s1A1d"] {
-        let sweep = opened(named(spec));
+        let sweep = opened(named(spec), "2-1-3=90..180:2");
         let [a, b, c, d] = ["2a1", "1b2", "3a1", "1b1"].map(|label| line(&sweep, label));
         println!(
             "{spec}: 2a1 {:+.3}, 1b2 {:+.3}, 3a1 {:+.3}, 1b1 {:+.1e} eV",
@@ -189,10 +189,7 @@ fn opening_of_ah2() {
             c.change() > 0.3 && c.energies.is_sorted_by(|x, y| x < y),
             "{spec}: 3a1 rises"
         );
-        assert!(
-            a.change().abs() < c.change().abs().max(b.change().abs()),
-            "{spec}: 2a1 hardly moves"
-        );
+        assert!(a.change().abs() < 0.1, "{spec}: 2a1 hardly moves");
         assert_eq!((c.end.as_str(), d.end.as_str()), ("1pi_u", "1pi_u"));
         assert!(
             (c.last() - d.last()).abs() < 1e-9,
@@ -205,7 +202,7 @@ fn opening_of_ah2() {
 fn opening_of_ab2() {
     // Common practice, three core orbitals counted: with 16 electrons 6a1 rises steeply on opening and
     // crosses 4b2, which falls into 1pi_g beside 1a2; 5a1 and 1b1 join in 1pi_u.
-    let sweep = opened(named("g2:CO2"));
+    let sweep = opened(named("g2:CO2"), "2-1-3=70..180:2");
     let [six, four, two, five, one] =
         ["6a1", "4b2", "1a2", "5a1", "1b1"].map(|label| line(&sweep, label));
     println!(
