@@ -381,7 +381,7 @@ fn sum_minimum(points: &[Point]) -> Option<SumMinimum> {
     })
 }
 
-fn basis_functions(plan: &SweepPlan) -> Vec<BasisFunction> {
+pub(crate) fn basis_functions(plan: &SweepPlan) -> Vec<BasisFunction> {
     let basis = plan.basis();
     basis
         .functions
@@ -398,7 +398,7 @@ fn shell_name(n: u8, l: u8) -> String {
     hamiltonian::ShellName { n, l }.to_string()
 }
 
-fn shell_populations(
+pub(crate) fn shell_populations(
     plan: &SweepPlan,
     populations: &Populations,
     line: usize,
