@@ -17,7 +17,13 @@ Examples:
 /// Which way does this molecule bend, which orbitals trade places on the way,
 /// and how far can that be trusted?
 #[derive(Debug, Parser)]
-#[command(name = "orbend", version, long_version = None, before_help = EXAMPLES, max_term_width = 96)]
+#[command(
+    name = "orbend",
+    version,
+    before_help = EXAMPLES,
+    max_term_width = 96,
+    color = clap::ColorChoice::Never
+)]
 pub(crate) struct Arguments {
     #[command(subcommand)]
     pub(crate) command: Command,
@@ -50,6 +56,9 @@ pub(crate) struct LevelsArguments {
     pub(crate) model: ModelArguments,
     #[command(flatten)]
     pub(crate) output: OutputArguments,
+    /// Threads; the output is the same bytes for every number
+    #[arg(long, value_name = "N")]
+    pub(crate) jobs: Option<usize>,
 }
 
 #[derive(Debug, Args)]
@@ -172,7 +181,7 @@ pub(crate) struct OutputArguments {
     /// The result document on standard output, alone
     #[arg(long)]
     pub(crate) json: bool,
-    /// Write a file; the ending chooses .json, .csv, .svg or .xyz (may be repeated)
+    /// Write a file; the ending chooses .json, .csv, .svg, .html (a page) or .xyz (may be repeated)
     #[arg(long, value_name = "FILE")]
     pub(crate) out: Vec<PathBuf>,
     /// Which numbering labels show first; the document always has both

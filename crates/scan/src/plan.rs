@@ -38,6 +38,11 @@ pub struct SweepPlan {
     pub(crate) path: PathPlan,
     pub(crate) basis: Basis,
     pub(crate) hamiltonian: HamiltonianPlan,
+    /// Pairs of atoms whose displacement changes along the path; the blocks of
+    /// the others are computed once, at `reference`.
+    pub(crate) moving: Vec<usize>,
+    /// A geometry of the path, Å.
+    pub(crate) reference: Vec<[f64; 3]>,
     pub(crate) near_misses: Vec<NearMiss>,
     pub(crate) group: PointGroup,
     pub(crate) adapted: AdaptedBasis,
@@ -90,6 +95,8 @@ impl SweepPlan {
         };
 
         let samples = sample_geometries(&path, molecule.positions.len())?;
+        let moving = hamiltonian.moving_pairs(samples.iter().map(Vec::as_slice));
+        let reference = samples[0].clone();
         let kinds = kinds(&molecule.elements);
         let kept = path_group(&kinds, &samples, tolerance)?;
         let screen = GroupScreen::new(&nuclei(&molecule.elements, &samples[kept.axes_from]), tolerance)?;
@@ -114,6 +121,8 @@ impl SweepPlan {
             path,
             basis,
             hamiltonian,
+            moving,
+            reference,
             near_misses: start.near_misses,
             group,
             adapted,

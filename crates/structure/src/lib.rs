@@ -10,6 +10,7 @@ mod element;
 mod element_table;
 mod formula;
 mod ideal;
+mod measure;
 mod molecule;
 mod neighbours;
 mod path;
@@ -21,12 +22,13 @@ mod vector;
 mod xyz;
 
 pub use bonds::BondGraph;
-pub use coordinate::{Coordinate, CoordinateError, CoordinateKind, measure};
+pub use coordinate::{Coordinate, CoordinateError, CoordinateKind};
 pub use element::{BondOrder, Element, OccupiedShell};
 pub use formula::{Formula, FormulaError, FormulaPart};
 pub use ideal::{
     BondLengthUsed, BondOverride, BondOverrideError, IdealGeometry, ShapeClass, ideal_geometry,
 };
+pub use measure::measure;
 pub use molecule::{LARGEST_COORDINATE, Molecule, MoleculeError, SMALLEST_DISTANCE};
 pub use path::{Alignment, Axis, FrameValues, PathError, PathPlan, TowardReport, align};
 pub use range::{LARGEST_POINT_COUNT, Range, RangeError};

@@ -1,5 +1,7 @@
 //! The same words for the same things in figures and text.
 
+use orbend_structure::Formula;
+
 use crate::document::{CoordinateRecord, CoordinateUnit, MoleculeRecord, MotionKind, SweepDocument};
 
 use super::ticks;
@@ -41,26 +43,21 @@ fn only_ligand<'a>(coordinate: &CoordinateRecord, molecule: &'a MoleculeRecord) 
 /// The formula for a heading: as the user wrote it where the title is a formula of the same atoms
 /// (`SiF2`), else in Hill order (`F2Si`).
 pub(crate) fn heading_formula(molecule: &MoleculeRecord) -> &str {
-    let counts = |formula: &str| -> Option<Vec<(String, u32)>> {
-        let mut found: Vec<(String, u32)> = Vec::new();
-        let mut rest = formula;
-        while !rest.is_empty() {
-            let mut end = rest.chars().next().filter(char::is_ascii_uppercase)?.len_utf8();
-            end += rest[end..].chars().take_while(char::is_ascii_lowercase).count();
-            let digits = rest[end..].chars().take_while(char::is_ascii_digit).count();
-            let number = if digits == 0 { 1 } else { rest[end..end + digits].parse().ok()? };
-            match found.iter_mut().find(|(element, _)| *element == rest[..end]) {
-                Some((_, count)) => *count += number,
-                None => found.push((rest[..end].to_owned(), number)),
-            }
-            rest = &rest[end + digits..];
-        }
-        found.sort();
-        Some(found)
-    };
     let title = molecule.title.trim();
-    let same = !title.is_empty() && counts(title).is_some_and(|t| counts(&molecule.formula) == Some(t));
-    if same { title } else { &molecule.formula }
+    let Ok(formula) = Formula::parse(title) else { return &molecule.formula };
+    let mut written: Vec<&str> = formula.elements().iter().map(|element| element.symbol()).collect();
+    let mut present: Vec<&str> = molecule.elements.iter().map(String::as_str).collect();
+    written.sort_unstable();
+    present.sort_unstable();
+    if written != present {
+        return &molecule.formula;
+    }
+    // The charge is set beside the heading.
+    match (formula.charge, title.rfind('(')) {
+        (None, _) => title,
+        (Some(_), Some(bracket)) if title.ends_with(')') => &title[..bracket],
+        _ => title.trim_end_matches(['+', '-', '\u{2212}']),
+    }
 }
 
 /// Symbol of a coordinate's unit.
@@ -109,6 +106,14 @@ pub(crate) fn charge(charge: i32) -> String {
         0 => String::new(),
         1 => sign.to_owned(),
         more => format!("{more}{sign}"),
+    }
+}
+
+/// Charge in running text: `(2−)`; empty for none.
+pub(crate) fn bracketed_charge(value: i32) -> String {
+    match charge(value) {
+        none if none.is_empty() => none,
+        some => format!("({some})"),
     }
 }
 

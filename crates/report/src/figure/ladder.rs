@@ -4,7 +4,7 @@ use crate::document::{LevelRecord, LevelsDocument};
 use crate::draw::nearest::nearest;
 use crate::draw::spread::{room as label_room, spread};
 use crate::draw::ticks::{ascii_number, number};
-use crate::draw::wording::{charge, heading_formula};
+use crate::draw::wording::{bracketed_charge, charge, heading_formula};
 use crate::lettering::Lettering;
 
 use super::axes;
@@ -247,7 +247,7 @@ fn frame(
     height: f64,
 ) -> Result<Canvas, FigureError> {
     let prefix = &options.id_prefix;
-    let formula = format!("{}{}", heading_formula(&document.molecule), charge(document.molecule.charge));
+    let formula = format!("{}{}", heading_formula(&document.molecule), bracketed_charge(document.molecule.charge));
     let mut xml = open_page(options, Measure::of(options.width).page, height);
     let title = format!("Orbital levels of {formula}");
     xml.text("title", &[("id", &format!("{prefix}-title"))], &title);
@@ -265,5 +265,5 @@ fn frame(
     let ground = Colours::of(options.theme).ground;
     xml.empty("rect", &[("width", "100%"), ("height", "100%"), ("fill", ground)]);
     xml.append(canvas.xml);
-    Ok(Canvas { xml, height, boxes: canvas.boxes, key: Vec::new() })
+    Ok(Canvas { xml, height, boxes: canvas.boxes, area: None, key: Vec::new() })
 }

@@ -7,7 +7,7 @@ use crate::document::{
     SumMinimum,
 };
 use crate::draw::ticks::ascii_number;
-use crate::draw::wording::{charge, coordinate_name, heading_formula, lowest_sum, value_with_unit};
+use crate::draw::wording::{bracketed_charge, coordinate_name, heading_formula, lowest_sum, value_with_unit};
 
 use super::options::FigureError;
 use super::sheet::Sheet;
@@ -59,7 +59,7 @@ pub(crate) fn title(sheet: &Sheet<'_>) -> String {
     format!(
         "Orbital correlation diagram of {}{}{}",
         heading_formula(molecule),
-        charge(molecule.charge),
+        bracketed_charge(molecule.charge),
         range.unwrap_or_default()
     )
 }

@@ -29,12 +29,12 @@ const BREAK_SHARE: f64 = 0.25;
 const EMPTY_REACH_EV: f64 = 12.0;
 
 /// The energies that are shown when the user names no window: everything that is ever occupied, and
-/// the empty lines that come within [`EMPTY_REACH_EV`] of it (always the lowest one).
+/// the empty lines that come within [`EMPTY_REACH_EV`] of it (always where the lowest one comes lowest).
 pub(crate) fn automatic_window(extents: &[(f64, f64, bool)]) -> Option<(f64, f64)> {
     let lowest = extents.iter().map(|e| e.0).min_by(f64::total_cmp)?;
     let homo = extents.iter().filter(|e| e.2).map(|e| e.1).max_by(f64::total_cmp);
     let floor = homo.unwrap_or(lowest);
-    let lumo = extents.iter().filter(|e| !e.2).map(|e| e.1).min_by(f64::total_cmp).unwrap_or(floor);
+    let lumo = extents.iter().filter(|e| !e.2).map(|e| e.0).min_by(f64::total_cmp).unwrap_or(floor);
     let reach = floor + EMPTY_REACH_EV;
     let highest = extents
         .iter()

@@ -14,7 +14,7 @@ pub use sweep::sweep_text;
 
 use crate::document::{Method, MoleculeRecord, Warning};
 use crate::draw::ticks::short;
-use crate::draw::wording::{charge, heading_formula};
+use crate::draw::wording::{bracketed_charge, heading_formula};
 use crate::figure::Numbering;
 use crate::lettering::Lettering;
 
@@ -83,7 +83,7 @@ fn heading(out: &mut String, options: &TextOptions, molecule: &MoleculeRecord, m
         &format!(
             "{}{}: {} valence electrons, {unpaired}",
             heading_formula(molecule),
-            charge(molecule.charge),
+            bracketed_charge(molecule.charge),
             molecule.valence_electrons
         ),
     );

@@ -2,7 +2,7 @@
 //! given geometry. A motion is applied in two steps: [`Motion::frame`] measures
 //! the geometry, [`Motion::apply`] turns or shifts the fragments. Neither allocates.
 
-use crate::coordinate::IN_LINE;
+use crate::measure::IN_LINE;
 use crate::units::DEGREE_IN_RADIANS;
 use crate::vector::{
     Vector, add, cross, distance, dot, norm, perpendicular, scale, subtract, unit,

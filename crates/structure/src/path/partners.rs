@@ -4,7 +4,8 @@
 use super::error::PathError;
 use super::motion::{Arm, Motion, across};
 use crate::bonds::BondGraph;
-use crate::coordinate::{Coordinate, CoordinateKind, angle_degrees, atoms_text, torsion_degrees};
+use crate::coordinate::{Coordinate, CoordinateKind, atoms_text};
+use crate::measure::{angle_degrees, torsion_degrees};
 use crate::molecule::Molecule;
 use crate::vector::{Vector, add, cross, dot, norm, perpendicular, subtract, unit};
 

@@ -3,7 +3,8 @@
 use super::Axis;
 use super::motion::{Frame, Motion};
 use super::partners::Motions;
-use crate::coordinate::{Coordinate, CoordinateKind, angle_degrees, torsion_degrees};
+use crate::coordinate::{Coordinate, CoordinateKind};
+use crate::measure::{angle_degrees, torsion_degrees};
 use crate::molecule::Molecule;
 use crate::vector::distance;
 

@@ -1,5 +1,6 @@
 use super::*;
-use crate::coordinate::{CoordinateKind, measure};
+use crate::coordinate::CoordinateKind;
+use crate::measure::measure;
 use crate::test_molecules::*;
 use crate::vector::{distance, norm, subtract};
 
