@@ -49,9 +49,9 @@ pub fn shape_figure(
     let left = (0.56 * widest + 1.2) * size;
     let right = 9.5 * size;
     let top = 2.6 * line;
-    let row = 2.0 * line;
+    let row = 2.3 * line;
     let rows = document.cases.len() as f64;
-    let height = top + rows * row + 3.2 * line + line * (CLASSES.len() as f64 + 1.0);
+    let height = top + rows * row + 3.2 * line + line * (CLASSES.len() as f64 + 1.5);
     let prefix = &options.id_prefix;
     let mut xml = open_page(options, page, height);
     let title = format!("Shape verdicts: {}", names.join(", "));
@@ -162,8 +162,8 @@ pub fn shape_figure(
     );
     for (index, (case, name)) in document.cases.iter().zip(&names).enumerate() {
         let y = top + row * index as f64;
-        write(&mut xml, left - 0.5 * size, y + 0.62 * row, "end", name);
-        let box_height = length(0.8 * row);
+        write(&mut xml, left - 0.5 * size, y + 0.41 * row, "end", name);
+        let box_height = length(0.56 * row);
         if let Some(curve) = case.curves.first() {
             let zero = curve
                 .energy
@@ -188,7 +188,7 @@ pub fn shape_figure(
                     write(
                         &mut xml,
                         x,
-                        y + row - 0.12 * line,
+                        y + 0.56 * row + 0.72 * line,
                         "middle",
                         &ascii_number(angle.get(), 0),
                     );
@@ -215,7 +215,7 @@ pub fn shape_figure(
         write(
             &mut xml,
             left + width + 0.5 * size,
-            y + 0.62 * row,
+            y + 0.41 * row,
             "start",
             &format!("{}{angle}", case.verdict),
         );
@@ -226,7 +226,7 @@ pub fn shape_figure(
         left,
         y,
         "start",
-        "sum relative to the symmetric form, eV; hatched: undecided",
+        "sum from the symmetric form, eV",
     );
     for class in &CLASSES {
         y += line;
@@ -239,6 +239,8 @@ pub fn shape_figure(
         );
         write(&mut xml, left + 2.6 * size, y, "start", class.3);
     }
+    y += line;
+    write(&mut xml, left, y, "start", "cross-hatched: undecided");
     Ok(xml.finish())
 }
 
