@@ -439,3 +439,39 @@ fn an_excited_configuration() {
         (Motion::Bend, Favour::Symmetric)
     );
 }
+
+/// Text, document and picture of a series: the width of a terminal, the schema, the tie of 6, 7 and
+/// 8 electrons (REFERENCE: the out-of-plane line of a fixed AH2 is exactly flat in the minimal
+/// basis), the same bytes twice.
+#[test]
+fn a_series_as_text_and_document() {
+    use orbend_report::{
+        FigureOptions, Provenance, TextOptions, read_document, shape_document, shape_figure,
+        shape_text, to_json,
+    };
+    let make = || {
+        let cases: Vec<_> = [(0, 0), (-1, 1), (-2, 0)]
+            .into_iter()
+            .map(|(charge, unpaired)| {
+                let found = verdict(&start("C", &["H", "H"], &[1.1, 1.1], charge, unpaired));
+                (found, Provenance::default())
+            })
+            .collect();
+        shape_document(&cases).expect("document").expect("cases")
+    };
+    let document = make();
+    assert_eq!(document.ties, [[6, 7, 8]]);
+    let text = shape_text(&document, &TextOptions::default());
+    assert!(
+        text.lines().all(|line| line.chars().count() <= 80),
+        "{text}"
+    );
+    let json = to_json(&document).expect("json");
+    assert_eq!(json, to_json(&make()).expect("json"));
+    assert!(read_document(&json).is_ok());
+    let schema = &orbend_report::schemas()[2].1;
+    let value: serde_json::Value = serde_json::from_str(&json).expect("json");
+    assert!(jsonschema::is_valid(schema, &value));
+    let picture = shape_figure(&document, &FigureOptions::default()).expect("picture");
+    assert!(picture.starts_with("<svg") && picture.trim_end().ends_with("</svg>"));
+}
