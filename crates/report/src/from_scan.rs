@@ -2,12 +2,12 @@
 //! made.
 
 use orbend_hamiltonian as hamiltonian;
-use orbend_scan::{Populations, ScanError, Sweep, SweepPlan};
+use orbend_scan::{MeetingKind, Populations, ScanError, Sweep, SweepPlan};
 use orbend_structure::CoordinateKind;
 
 use crate::document::{
     AtomCharge, AtomPosition, BasisFunction, Certificate, CertificateKind, Checked,
-    CoordinateRecord, CoordinateUnit, Geometry, LevelRecord, LevelsDocument, LevelsSchema,
+    CoordinateRecord, CoordinateUnit, CrossingKind, CrossingRecord, CrossingSearch, Geometry, LevelRecord, LevelsDocument, LevelsSchema,
     LineRecord, Method, Missing, MoleculeRecord, MotionKind, NearMiss, NotFinite, Number,
     OverlapPopulation, Passport, Point, Program, ShellPopulation, ShellValues, SpecialLabel,
     SumMinimum, SweepDocument, SweepSchema, SymmetryRecord, Units, Warning,
@@ -67,7 +67,8 @@ pub fn sweep_document(sweep: &Sweep, provenance: &Provenance) -> Result<SweepDoc
         minimum: if single { sum_minimum(&points) } else { None },
         points,
         lines,
-        crossings: None,
+        crossings: if single { Some(crossing_records(sweep)?) } else { None },
+        crossing_search: if single { crossing_search(plan)? } else { None },
         warnings: warnings(plan, provenance),
         missing,
     })
@@ -330,6 +331,42 @@ fn line_records(sweep: &Sweep) -> Result<Vec<LineRecord>, FromScanError> {
         .collect()
 }
 
+fn crossing_records(sweep: &Sweep) -> Result<Vec<CrossingRecord>, FromScanError> {
+    let lines = sweep.plan().lines();
+    sweep
+        .crossings()?
+        .into_iter()
+        .map(|crossing| {
+            let (a, b) = crossing.lines;
+            let number = |value: Option<f64>| value.map(Number::new).transpose();
+            Ok(CrossingRecord {
+                kind: match crossing.kind {
+                    MeetingKind::Crossing => CrossingKind::Crossing,
+                    MeetingKind::Avoided => CrossingKind::Avoided,
+                    MeetingKind::Touching => CrossingKind::Touching,
+                },
+                lines: [a as u32, b as u32],
+                labels: [lines[a].name.plain.clone(), lines[b].name.plain.clone()],
+                at: Number::new(crossing.at)?,
+                energy: Some(Number::new(crossing.energy)?),
+                gap: number(crossing.gap)?,
+                exchange: number(crossing.exchange)?,
+                changes_configuration: crossing.changes_configuration,
+            })
+        })
+        .collect()
+}
+
+fn crossing_search(plan: &SweepPlan) -> Result<Option<CrossingSearch>, NotFinite> {
+    let [axis] = plan.path().axes() else { return Ok(None) };
+    let (low, high) = axis.limits();
+    Ok(Some(CrossingSearch {
+        spacing: Number::new(orbend_scan::resolution(&axis.unit, high - low))?,
+        largest_gap: Number::new(orbend_scan::AVOIDED_GAP_EV)?,
+        smallest_exchange: Number::new(orbend_scan::SMALLEST_EXCHANGE)?,
+    }))
+}
+
 /// The lowest sum among the points.
 fn sum_minimum(points: &[Point]) -> Option<SumMinimum> {
     let (index, sum) = points
@@ -344,7 +381,7 @@ fn sum_minimum(points: &[Point]) -> Option<SumMinimum> {
     })
 }
 
-fn basis_functions(plan: &SweepPlan) -> Vec<BasisFunction> {
+pub(crate) fn basis_functions(plan: &SweepPlan) -> Vec<BasisFunction> {
     let basis = plan.basis();
     basis
         .functions
@@ -361,7 +398,7 @@ fn shell_name(n: u8, l: u8) -> String {
     hamiltonian::ShellName { n, l }.to_string()
 }
 
-fn shell_populations(
+pub(crate) fn shell_populations(
     plan: &SweepPlan,
     populations: &Populations,
     line: usize,

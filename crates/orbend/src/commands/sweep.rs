@@ -1,19 +1,23 @@
 //! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
 
-use orbend_report::{sweep_csv, sweep_document, sweep_figure, sweep_text, to_json};
+use orbend_report::{
+    FigureOptions, sweep_csv, sweep_document, sweep_document_with_orbitals, sweep_figure, sweep_page,
+    sweep_text, to_json,
+};
 use orbend_scan::Sweep;
 use orbend_structure::{Coordinate, CoordinateKind};
 
 use super::geometry_text::geometry_text;
 use super::{csv, figure_options, provenance, resolve, text_options};
-use crate::arguments::{CoordinateArguments, SweepArguments};
+use crate::arguments::{CoordinateArguments, NumberingChoice, SweepArguments};
 use crate::failure::Failure;
+use crate::geometry::Geometry;
 use crate::outputs::Outputs;
 use crate::write::write_stdout;
 
 pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "xyz"])?;
+    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "html", "xyz"])?;
     let figure = figure_options(&arguments.figure, output.numbering)?;
     let coordinates = coordinates(&arguments.coordinates)?;
     let resolved = resolve(
@@ -34,6 +38,7 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
             "csv" => csv(|out| sweep_csv(&document, out))?,
+            "html" => page(&sweep, &resolved.geometry, output.numbering, &figure)?,
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
             _ => sweep_figure(&document, &figure)
                 .map_err(|error| Failure::request(error.to_string()))?
@@ -47,6 +52,19 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
         let start = geometry_text(&resolved.geometry, options.width);
         write_stdout((start + &sweep_text(&document, &options)).as_bytes())
     }
+}
+
+/// The page, with the orbitals at every point.
+fn page(
+    sweep: &Sweep,
+    geometry: &Geometry,
+    numbering: NumberingChoice,
+    figure: &FigureOptions,
+) -> Result<Vec<u8>, Failure> {
+    let document = sweep_document_with_orbitals(sweep, &provenance(geometry, numbering))
+        .map_err(|error| Failure::running(error.to_string()))?;
+    let page = sweep_page(&document, figure).map_err(|error| Failure::request(error.to_string()))?;
+    Ok(page.into_bytes())
 }
 
 fn coordinates(arguments: &CoordinateArguments) -> Result<Vec<Coordinate>, Failure> {
