@@ -17,6 +17,7 @@ mod naming;
 mod orbitals;
 mod plan;
 mod request;
+pub mod shape;
 mod solve;
 mod special;
 mod sweep;
