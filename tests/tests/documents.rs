@@ -13,7 +13,6 @@ use std::process::Command;
 
 use orbend_checks::{file, moved, orbend_binary, random_motion};
 use orbend_report::{read_document, to_json};
-use orbend_structure::write_xyz;
 use serde_json::Value;
 
 const SWEEP: [&str; 4] = ["sweep", "h2s.xyz", "--bend", "2-1-3=60..180:1"];
@@ -41,7 +40,12 @@ fn folder(turned: bool) -> tempfile::TempDir {
         let rotation = random_motion([0.3, -0.7, 0.45, 0.6], false);
         sulfide = moved(&sulfide, rotation, [1.5, -0.25, 3.0], &[0, 2, 1]);
     }
-    std::fs::write(folder.path().join("h2s.xyz"), write_xyz(&sulfide)).expect("written");
+    // Every digit: rounding to 1e-10 Å alone would move an energy by 1e-9 eV.
+    let mut text = String::from("3\n\n");
+    for (element, [x, y, z]) in sulfide.elements.iter().zip(&sulfide.positions) {
+        text.push_str(&format!("{element} {x} {y} {z}\n"));
+    }
+    std::fs::write(folder.path().join("h2s.xyz"), text).expect("written");
     folder
 }
 

@@ -321,7 +321,7 @@ fn levels_of_one_irrep_never_cross_and_blocks_hold_the_whole_spectrum() {
             let at = sweep.point(point).expect("a point");
             let placed = Molecule {
                 positions: at.positions,
-                ..sweep.plan().atoms().clone()
+                ..sweep.plan().molecule().clone()
             };
             let whole = energies(&placed, &ParameterSet::default(), &constant());
             for (one, level) in whole.iter().zip(&at.levels) {

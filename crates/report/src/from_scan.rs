@@ -50,10 +50,14 @@ pub enum FromScanError {
 pub fn sweep_document(sweep: &Sweep, provenance: &Provenance) -> Result<SweepDocument, FromScanError> {
     let plan = sweep.plan();
     let mut missing = Vec::new();
-    let points = (0..sweep.points())
+    let mut points = (0..sweep.points())
         .map(|index| point_record(sweep, index, &mut missing))
         .collect::<Result<Vec<_>, _>>()?;
     let single = plan.path().axes().len() == 1;
+    if !single {
+        // A grid has no lines that a level could name.
+        points.iter_mut().flat_map(|point| &mut point.levels).for_each(|level| level.line = None);
+    }
     let lines = if single { Some(line_records(sweep)?) } else { None };
     Ok(SweepDocument {
         schema: SweepSchema,

@@ -1,8 +1,8 @@
 //! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
 
 use orbend_report::{
-    FigureOptions, sweep_csv, sweep_document, sweep_document_with_orbitals, sweep_figure, sweep_page,
-    sweep_text, to_json,
+    FigureOptions, sweep_csv, sweep_document, sweep_document_with_orbitals, sweep_figure,
+    sweep_page, sweep_text, to_json,
 };
 use orbend_scan::Sweep;
 use orbend_structure::{Coordinate, CoordinateKind};
@@ -63,7 +63,8 @@ fn page(
 ) -> Result<Vec<u8>, Failure> {
     let document = sweep_document_with_orbitals(sweep, &provenance(geometry, numbering))
         .map_err(|error| Failure::running(error.to_string()))?;
-    let page = sweep_page(&document, figure).map_err(|error| Failure::request(error.to_string()))?;
+    let page =
+        sweep_page(&document, figure).map_err(|error| Failure::request(error.to_string()))?;
     Ok(page.into_bytes())
 }
 
