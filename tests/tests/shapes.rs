@@ -385,7 +385,7 @@ fn samples_of_the_other_panels() {
 }
 
 /// Electron counts of one set of atoms (Walsh, J. Chem. Soc. 1953, 2266 and 2301): AB2 with 16 linear,
-/// 17 to 19 bent; AB3 with 24 planar, 26 pyramidal.
+/// 17 to 19 bent; AB3 with 24 planar (CF3⁺), 26 pyramidal (CF3⁻).
 #[test]
 fn electron_counts_of_a_triatomic() {
     let base = |charge, unpaired| start("N", &["O", "O"], &[1.15, 1.15], charge, unpaired);
@@ -397,9 +397,9 @@ fn electron_counts_of_a_triatomic() {
             "{charge}"
         );
     }
-    let planar = |charge, unpaired| start("N", &["F", "F", "F"], &[1.37; 3], charge, unpaired);
-    assert_eq!(verdict(&planar(2, 0)).ruling.shape, Favour::Symmetric);
-    assert_eq!(verdict(&planar(0, 0)).ruling.shape, Favour::Distorted);
+    let planar = |charge, unpaired| start("C", &["F", "F", "F"], &[1.318; 3], charge, unpaired);
+    assert_eq!(verdict(&planar(1, 0)).ruling.shape, Favour::Symmetric);
+    assert_eq!(verdict(&planar(-1, 0)).ruling.shape, Favour::Distorted);
 }
 
 /// Methylene in the minimal basis with constant K: 115° for the singlet and 155° for the triplet
