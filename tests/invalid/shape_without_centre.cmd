@@ -2,3 +2,4 @@
 args: shape HF
 exit: 2
 says: no centre
+fix: verdicts are given
