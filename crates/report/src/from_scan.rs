@@ -2,7 +2,7 @@
 //! made.
 
 use orbend_hamiltonian as hamiltonian;
-use orbend_scan::{MeetingKind, Populations, ScanError, Sweep, SweepPlan};
+use orbend_scan::{MeetingKind, Populations, Route, ScanError, Sweep, SweepPlan};
 use orbend_structure::CoordinateKind;
 
 use crate::document::{
@@ -183,30 +183,52 @@ pub(crate) fn shell_values(
 
 fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFinite> {
     let path = plan.path();
+    let kind = match &plan.request().route {
+        Route::Coordinates => None,
+        Route::Together => (path.axes().len() > 1).then_some(MotionKind::Table),
+        Route::Table { .. } => {
+            path.axes().first().is_some_and(|axis| axis.unit == "1").then_some(MotionKind::Table)
+        }
+        Route::Frames { .. } => Some(MotionKind::Frames),
+        Route::Toward { .. } => Some(MotionKind::Toward),
+        Route::AlongMode { .. } => Some(MotionKind::Mode),
+    };
     let moved = path.moved_along();
-    let described: Vec<&str> = path.describe().lines().collect();
-    path.coordinates()
+    path.axes()
         .iter()
-        .zip(moved)
         .enumerate()
-        .map(|(index, (coordinate, moved))| {
+        .map(|(index, axis)| {
+            let coordinate = if kind.is_none() { path.coordinates().get(index) } else { None };
+            let ends = |at: Option<&f64>| at.map(|&at| Number::new(at)).transpose();
+            let steps = (axis.values.len() as f64 - 1.0).max(1.0);
+            let even = axis.values.last().zip(axis.values.first()).map(|(to, from)| (to - from).abs() / steps);
             Ok(CoordinateRecord {
-                kind: match coordinate.kind {
-                    CoordinateKind::Bend => MotionKind::Bend,
-                    CoordinateKind::Stretch => MotionKind::Stretch,
-                    CoordinateKind::Twist => MotionKind::Twist,
-                    CoordinateKind::Pyramid => MotionKind::Pyramid,
+                kind: kind.unwrap_or(match coordinate.map(|coordinate| coordinate.kind) {
+                    Some(CoordinateKind::Bend) => MotionKind::Bend,
+                    Some(CoordinateKind::Stretch) => MotionKind::Stretch,
+                    Some(CoordinateKind::Twist) => MotionKind::Twist,
+                    Some(CoordinateKind::Pyramid) => MotionKind::Pyramid,
+                    None => MotionKind::Table,
+                }),
+                atoms: coordinate.map(|coordinate| numbers(&coordinate.atoms)).unwrap_or_default(),
+                unit: match axis.unit.as_str() {
+                    "degree" => CoordinateUnit::Degree,
+                    "angstrom" => CoordinateUnit::Angstrom,
+                    _ if kind == Some(MotionKind::Toward) => CoordinateUnit::Share,
+                    _ => CoordinateUnit::Number,
                 },
-                atoms: numbers(&coordinate.atoms),
-                unit: match coordinate.kind {
-                    CoordinateKind::Stretch => CoordinateUnit::Angstrom,
-                    _ => CoordinateUnit::Degree,
+                moved_along: coordinate
+                    .and_then(|_| moved.get(index))
+                    .map(|moved| moved.iter().map(|atoms| numbers(atoms)).collect())
+                    .unwrap_or_default(),
+                from: ends(axis.values.first())?,
+                to: ends(axis.values.last())?,
+                step: match (coordinate, &plan.request().route) {
+                    (Some(_), Route::Table { .. }) => None,
+                    (Some(coordinate), _) => Some(Number::new(coordinate.range.step)?),
+                    (None, _) => even.map(Number::new).transpose()?,
                 },
-                moved_along: moved.iter().map(|atoms| numbers(atoms)).collect(),
-                from: Some(Number::new(coordinate.range.from)?),
-                to: Some(Number::new(coordinate.range.to)?),
-                step: Some(Number::new(coordinate.range.step)?),
-                text: described.get(index).copied().unwrap_or_default().to_owned(),
+                text: path.describe().to_owned(),
             })
         })
         .collect()

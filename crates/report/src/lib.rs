@@ -29,4 +29,4 @@ pub use figure::{
 };
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
-pub use text::{TextOptions, levels_text, params_text, sweep_text};
+pub use text::{TextOptions, levels_text, params_text, passport_text, sweep_text};

@@ -12,6 +12,7 @@ mod character;
 mod crossing;
 mod error;
 mod filling;
+mod follow;
 mod line;
 mod naming;
 mod orbitals;
@@ -26,11 +27,12 @@ pub use crossing::{
     resolution,
 };
 pub use error::{FillingError, ScanError};
+pub use follow::{Ambiguity, CLEAR_OVERLAP, Followed};
 pub use filling::{Configuration, DEGENERACY_EV, Electrons, Filling};
 pub use line::LineHead;
 pub use naming::Name;
 pub use orbitals::{Orbitals, Populations};
 pub use plan::{Notice, SweepPlan};
-pub use request::{Numbering, Request};
+pub use request::{Numbering, Request, Route, symmetrized};
 pub use special::SpecialPoint;
 pub use sweep::{Level, Point, Sweep};

@@ -2,7 +2,7 @@
 //! symmetry-adapted combinations and names, all fixed once.
 
 use orbend_hamiltonian::{Basis, HamiltonianPlan};
-use orbend_structure::{Element, Molecule, PathPlan};
+use orbend_structure::{Element, FrameValues, Molecule, PathPlan};
 use orbend_symmetry::{
     AdaptedBasis, GroupScreen, NearMiss, Nucleus, OrbitalShell, PointGroup, path_group, symmetrize,
 };
@@ -11,7 +11,7 @@ use crate::error::ScanError;
 use crate::filling::{Electrons, Filling};
 use crate::line::{LineHead, line_heads};
 use crate::naming::Name;
-use crate::request::{Numbering, Request};
+use crate::request::{Numbering, Request, Route};
 use crate::solve::Workspace;
 
 /// Atoms farther than this (Å) from their symmetric places are moved onto them
@@ -88,11 +88,13 @@ impl SweepPlan {
         }
         let permutations: Vec<Vec<usize>> =
             start.group.operations.iter().map(|operation| operation.permutation.clone()).collect();
-        let path = if request.coordinates.is_empty() {
-            PathPlan::fixed(&molecule)?
-        } else {
-            PathPlan::new(&molecule, &request.coordinates, &permutations)?
-        };
+        let mut path = request.route.path(&molecule, &request.coordinates, &permutations, tolerance)?;
+        if matches!(request.route, Route::Frames { .. }) {
+            let (moved, notice) = frames_onto_group(&path, &molecule, tolerance)?;
+            path = moved;
+            molecule.positions.clone_from(&path.start().positions);
+            notices.extend(notice);
+        }
 
         let samples = sample_geometries(&path, molecule.positions.len())?;
         let moving = hamiltonian.moving_pairs(samples.iter().map(Vec::as_slice));
@@ -227,6 +229,45 @@ pub(crate) fn nuclei(elements: &[Element], positions: &[[f64; 3]]) -> Vec<Nucleu
 
 fn kinds(elements: &[Element]) -> Vec<u32> {
     elements.iter().map(|element| u32::from(element.number())).collect()
+}
+
+/// Given geometries moved onto the group that all of them keep, with a notice
+/// where that moved an atom noticeably.
+fn frames_onto_group(
+    path: &PathPlan,
+    molecule: &Molecule,
+    tolerance: f64,
+) -> Result<(PathPlan, Option<Notice>), ScanError> {
+    let kinds = kinds(&molecule.elements);
+    let all = (0..path.points())
+        .map(|point| Ok(path.molecule(&path.values(point))?))
+        .collect::<Result<Vec<Molecule>, ScanError>>()?;
+    let places: Vec<Vec<[f64; 3]>> = all.iter().map(|frame| frame.positions.clone()).collect();
+    let group = path_group(&kinds, &places, tolerance)?.group;
+    let mut worst = 0.0_f64;
+    let frames: Vec<Molecule> = all
+        .into_iter()
+        .map(|mut frame| {
+            let (places, moved) = symmetrize(&nuclei(&frame.elements, &frame.positions), &group);
+            frame.positions = places.iter().map(|nucleus| nucleus.position).collect();
+            worst = worst.max(moved);
+            frame
+        })
+        .collect();
+    let Some(axis) = path.axes().first() else { return Ok((path.clone(), None)) };
+    let values = FrameValues::Given {
+        name: axis.name.clone(),
+        unit: axis.unit.clone(),
+        values: axis.values.clone(),
+    };
+    let notice = (worst > EXACT_ANGSTROM).then(|| Notice {
+        code: "frames-moved-onto-symmetry",
+        text: format!(
+            "atoms of the given geometries were moved by up to {worst:.1e} Å onto {}; a smaller --tolerance keeps them where they are",
+            group.name
+        ),
+    });
+    Ok((PathPlan::frames(&frames, &values)?, notice))
 }
 
 /// Both ends and points between them, evenly spread.

@@ -1,11 +1,11 @@
 //! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
 
-use orbend_report::{sweep_csv, sweep_document, sweep_figure, sweep_text, to_json};
+use orbend_report::{passport_text, sweep_csv, sweep_document, sweep_figure, sweep_text, to_json};
 use orbend_scan::Sweep;
-use orbend_structure::{Coordinate, CoordinateKind};
 
+use super::route::{movement, route};
 use super::{csv, figure_options, provenance, resolve, text_options};
-use crate::arguments::{CoordinateArguments, SweepArguments};
+use crate::arguments::SweepArguments;
 use crate::failure::Failure;
 use crate::outputs::Outputs;
 use crate::write::write_stdout;
@@ -14,8 +14,11 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let output = &arguments.output;
     let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "xyz"])?;
     let figure = figure_options(&arguments.figure, output.numbering)?;
-    let coordinates = coordinates(&arguments.coordinates)?;
-    let resolved = resolve(&arguments.geometry, coordinates, &arguments.model, output.numbering)?;
+    let movement = movement(&arguments.coordinates)?;
+    let mut resolved =
+        resolve(&arguments.geometry, movement.coordinates.clone(), &arguments.model, output.numbering)?;
+    resolved.request.route =
+        route(&movement, &arguments.coordinates, &mut resolved.geometry, &arguments.model)?;
     let plan = resolved.request.plan().map_err(|error| Failure::scan(&error))?;
     let sweep = in_pool(arguments.jobs, || Sweep::run(plan))?.map_err(|error| Failure::scan(&error))?;
     let document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
@@ -32,33 +35,10 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     })?;
     if output.json {
         write_stdout(to_json(&document).map_err(Failure::document)?.as_bytes())
+    } else if arguments.passport {
+        write_stdout(passport_text(&document, &text_options(output.numbering)).as_bytes())
     } else {
         write_stdout(sweep_text(&document, &text_options(output.numbering)).as_bytes())
-    }
-}
-
-fn coordinates(arguments: &CoordinateArguments) -> Result<Vec<Coordinate>, Failure> {
-    let kinds = [
-        (CoordinateKind::Bend, &arguments.bend),
-        (CoordinateKind::Stretch, &arguments.stretch),
-        (CoordinateKind::Twist, &arguments.twist),
-        (CoordinateKind::Pyramid, &arguments.pyramid),
-    ];
-    let mut coordinates = Vec::new();
-    for (kind, texts) in kinds {
-        for text in texts {
-            let mut coordinate = Coordinate::parse(kind, text)
-                .map_err(|error| Failure::request(format!("--{error}")))?;
-            coordinate.alone = arguments.alone;
-            coordinates.push(coordinate);
-        }
-    }
-    match coordinates.len() {
-        0 => Err(Failure::request("no coordinate: a sweep needs something that moves")
-            .fix("add for example --bend 2-1-3=90..180:2, --stretch, --twist or --pyramid")),
-        1 | 2 => Ok(coordinates),
-        more => Err(Failure::request(format!("{more} coordinates: a grid has two at most"))
-            .fix("leave some out, or run one sweep for each value")),
     }
 }
 

@@ -88,6 +88,12 @@ pub enum MotionKind {
     Pyramid,
     /// Path to another geometry.
     Toward,
+    /// Given geometries.
+    Frames,
+    /// A displacement vector times an amplitude.
+    Mode,
+    /// The rows of a table of coordinate values.
+    Table,
 }
 
 /// Unit of a coordinate's values.
@@ -100,6 +106,8 @@ pub enum CoordinateUnit {
     Angstrom,
     /// Share of the path, 0 to 1.
     Share,
+    /// A bare number.
+    Number,
 }
 
 /// One orbital followed from point to point.

@@ -28,6 +28,9 @@ pub(crate) fn coordinate_name(
             format!("{ligand}{dash}{chain}{dash}{ligand} angle")
         }
         MotionKind::Toward => "share of the path".to_owned(),
+        MotionKind::Frames => "frame".to_owned(),
+        MotionKind::Mode => "amplitude".to_owned(),
+        MotionKind::Table => "row of the table".to_owned(),
     }
 }
 
@@ -65,7 +68,7 @@ pub(crate) fn unit_symbol(unit: CoordinateUnit) -> &'static str {
     match unit {
         CoordinateUnit::Degree => "°",
         CoordinateUnit::Angstrom => "Å",
-        CoordinateUnit::Share => "",
+        CoordinateUnit::Share | CoordinateUnit::Number => "",
     }
 }
 
@@ -74,7 +77,7 @@ pub(crate) fn value_with_unit(value: f64, unit: CoordinateUnit) -> String {
     match unit {
         CoordinateUnit::Degree => format!("{}°", ticks::short(value, 1)),
         CoordinateUnit::Angstrom => format!("{} Å", ticks::short(value, 3)),
-        CoordinateUnit::Share => ticks::short(value, 3),
+        CoordinateUnit::Share | CoordinateUnit::Number => ticks::short(value, 3),
     }
 }
 

@@ -3,11 +3,13 @@
 mod diagram;
 mod levels;
 mod params;
+mod passport;
 mod sweep;
 mod table;
 
 pub use levels::levels_text;
 pub use params::params_text;
+pub use passport::passport_text;
 pub use sweep::sweep_text;
 
 use crate::document::{Method, MoleculeRecord, Warning};

@@ -6,7 +6,7 @@ mod table;
 
 pub use model::{BATCH, LevelModel};
 pub use search::{Meeting, MeetingKind, meetings};
-pub use table::{AVOIDED_GAP_EV, ZERO_EV};
+pub use table::AVOIDED_GAP_EV;
 
 use crate::character::{Character, share};
 use crate::error::ScanError;

@@ -11,7 +11,7 @@ const SAFETY: f64 = 2.0;
 /// Gaps (eV) up to this are looked at for avoided crossings.
 pub const AVOIDED_GAP_EV: f64 = 1.0;
 /// Gaps (eV) below this count as none: some thousand times the rounding.
-pub const ZERO_EV: f64 = 1e-9;
+pub(super) const ZERO_EV: f64 = 1e-9;
 
 /// Nodes along the path, in path order, and the energies there.
 pub(super) struct Table {
