@@ -2,12 +2,13 @@
 //! made.
 
 use orbend_hamiltonian as hamiltonian;
-use orbend_scan::{MeetingKind, Populations, Route, ScanError, Sweep, SweepPlan};
+use orbend_scan::{Populations, Route, ScanError, Sweep, SweepPlan};
 use orbend_structure::CoordinateKind;
 
+use crate::from_scan_lines::{crossing_records, crossing_search, followed_records};
 use crate::document::{
     AtomCharge, AtomPosition, BasisFunction, Certificate, CertificateKind, Checked,
-    CoordinateRecord, CoordinateUnit, CrossingKind, CrossingRecord, CrossingSearch, Geometry, LevelRecord, LevelsDocument, LevelsSchema,
+    CoordinateRecord, CoordinateUnit, Geometry, LevelRecord, LevelsDocument, LevelsSchema,
     LineRecord, Method, Missing, MoleculeRecord, MotionKind, NearMiss, NotFinite, Number,
     OverlapPopulation, Passport, Point, Program, ShellPopulation, ShellValues, SpecialLabel,
     SumMinimum, SweepDocument, SweepSchema, SymmetryRecord, Units, Warning,
@@ -54,7 +55,15 @@ pub fn sweep_document(sweep: &Sweep, provenance: &Provenance) -> Result<SweepDoc
         .map(|index| point_record(sweep, index, &mut missing))
         .collect::<Result<Vec<_>, _>>()?;
     let single = plan.path().axes().len() == 1;
-    let lines = if single { Some(line_records(sweep)?) } else { None };
+    // With a large group the irreps say which line is which.
+    let group = plan.path_group();
+    let little = single && !group.linear && group.order() <= 2 && sweep.points() > 1;
+    let followed = if little { sweep.followed()? } else { Vec::new() };
+    let mut lines = if single { Some(line_records(sweep)?) } else { None };
+    let followed = followed_records(sweep, &followed)?;
+    for (line, record) in lines.iter_mut().flatten().zip(&followed) {
+        line.certificate = Some(record.certificate.clone());
+    }
     Ok(SweepDocument {
         schema: SweepSchema,
         program: Program::this(),
@@ -67,6 +76,7 @@ pub fn sweep_document(sweep: &Sweep, provenance: &Provenance) -> Result<SweepDoc
         minimum: if single { sum_minimum(&points) } else { None },
         points,
         lines,
+        followed: little.then_some(followed),
         crossings: if single { Some(crossing_records(sweep)?) } else { None },
         crossing_search: if single { crossing_search(plan)? } else { None },
         warnings: warnings(plan, provenance),
@@ -194,6 +204,7 @@ fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFini
         Route::AlongMode { .. } => Some(MotionKind::Mode),
     };
     let moved = path.moved_along();
+    let described: Vec<&str> = path.describe().lines().collect();
     path.axes()
         .iter()
         .enumerate()
@@ -228,7 +239,10 @@ fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFini
                     (Some(coordinate), _) => Some(Number::new(coordinate.range.step)?),
                     (None, _) => even.map(Number::new).transpose()?,
                 },
-                text: path.describe().to_owned(),
+                text: match plan.request().route {
+                    Route::Coordinates => described.get(index).copied().unwrap_or_default().to_owned(),
+                    _ => path.describe().to_owned(),
+                },
             })
         })
         .collect()
@@ -353,42 +367,6 @@ fn line_records(sweep: &Sweep) -> Result<Vec<LineRecord>, FromScanError> {
         .collect()
 }
 
-fn crossing_records(sweep: &Sweep) -> Result<Vec<CrossingRecord>, FromScanError> {
-    let lines = sweep.plan().lines();
-    sweep
-        .crossings()?
-        .into_iter()
-        .map(|crossing| {
-            let (a, b) = crossing.lines;
-            let number = |value: Option<f64>| value.map(Number::new).transpose();
-            Ok(CrossingRecord {
-                kind: match crossing.kind {
-                    MeetingKind::Crossing => CrossingKind::Crossing,
-                    MeetingKind::Avoided => CrossingKind::Avoided,
-                    MeetingKind::Touching => CrossingKind::Touching,
-                },
-                lines: [a as u32, b as u32],
-                labels: [lines[a].name.plain.clone(), lines[b].name.plain.clone()],
-                at: Number::new(crossing.at)?,
-                energy: Some(Number::new(crossing.energy)?),
-                gap: number(crossing.gap)?,
-                exchange: number(crossing.exchange)?,
-                changes_configuration: crossing.changes_configuration,
-            })
-        })
-        .collect()
-}
-
-fn crossing_search(plan: &SweepPlan) -> Result<Option<CrossingSearch>, NotFinite> {
-    let [axis] = plan.path().axes() else { return Ok(None) };
-    let (low, high) = axis.limits();
-    Ok(Some(CrossingSearch {
-        spacing: Number::new(orbend_scan::resolution(&axis.unit, high - low))?,
-        largest_gap: Number::new(orbend_scan::AVOIDED_GAP_EV)?,
-        smallest_exchange: Number::new(orbend_scan::SMALLEST_EXCHANGE)?,
-    }))
-}
-
 /// The lowest sum among the points.
 fn sum_minimum(points: &[Point]) -> Option<SumMinimum> {
     let (index, sum) = points
@@ -403,7 +381,7 @@ fn sum_minimum(points: &[Point]) -> Option<SumMinimum> {
     })
 }
 
-fn basis_functions(plan: &SweepPlan) -> Vec<BasisFunction> {
+pub(crate) fn basis_functions(plan: &SweepPlan) -> Vec<BasisFunction> {
     let basis = plan.basis();
     basis
         .functions
@@ -420,7 +398,7 @@ fn shell_name(n: u8, l: u8) -> String {
     hamiltonian::ShellName { n, l }.to_string()
 }
 
-fn shell_populations(
+pub(crate) fn shell_populations(
     plan: &SweepPlan,
     populations: &Populations,
     line: usize,

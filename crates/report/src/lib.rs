@@ -6,6 +6,7 @@
 //!   ([`to_json`], [`read_document`]) with a generated JSON Schema ([`schemas`]).
 //! - [`CsvWriter`]: one row per point and level (RFC 4180).
 //! - [`sweep_figure`], [`levels_figure`]: SVG with real text.
+//! - [`sweep_page`]: one HTML file with the figure, a slider and the orbitals.
 //! - [`levels_text`], [`sweep_text`], [`params_text`]: text for a person at a terminal.
 //!
 //! It is not for: physics, symmetry, following lines, or writing to files and streams.
@@ -16,7 +17,10 @@ mod draw;
 mod figure;
 mod from_parameters;
 mod from_scan;
+mod from_scan_lines;
+mod from_scan_orbitals;
 mod lettering;
+mod page;
 #[cfg(test)]
 mod synthetic;
 mod text;
@@ -29,4 +33,6 @@ pub use figure::{
 };
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
+pub use from_scan_orbitals::sweep_document_with_orbitals;
+pub use page::{PageError, sweep_page};
 pub use text::{TextOptions, levels_text, params_text, passport_text, sweep_text};

@@ -153,6 +153,7 @@ pub(crate) fn sweep(frame: &Frame<'_>, xs: &[f64], sketches: &[Sketch]) -> Sweep
         lines: Some(lines),
         crossings: Some(crossings),
         crossing_search: None,
+        followed: None,
         minimum: None,
         warnings: vec![],
         missing: vec![],

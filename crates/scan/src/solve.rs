@@ -22,7 +22,6 @@ pub(crate) struct Workspace {
 struct BlockWorkspace {
     overlap: Vec<Lanes>,
     hamiltonian: Vec<Lanes>,
-    unit: Vec<Lanes>,
     eigen: LaneWorkspace,
 }
 
@@ -36,13 +35,12 @@ impl Workspace {
             .iter()
             .map(|block| {
                 let m = block.size();
+                let mut eigen = LaneWorkspace::new(m);
+                eigen.set_smallest_overlap(true);
                 BlockWorkspace {
                     overlap: vec![[0.0; LANES]; m * m],
                     hamiltonian: vec![[0.0; LANES]; m * m],
-                    unit: (0..m * m)
-                        .map(|index| [f64::from(u8::from(index % (m + 1) == 0)); LANES])
-                        .collect(),
-                    eigen: LaneWorkspace::new(m),
+                    eigen,
                 }
             })
             .collect();
@@ -225,14 +223,8 @@ impl SweepPlan {
                 store(slot, values);
                 slot += 1;
             }
-            // Eigenvalues of S itself: the same problem with the unit matrix in its place.
-            room.eigen
-                .solve(&room.overlap, &room.unit, false)
-                .map_err(|error| LaneFailure { lane: 0, error, block: index })?;
-            if let Some(lowest) = room.eigen.values().first() {
-                for (least, value) in smallest.iter_mut().zip(lowest) {
-                    *least = least.min(*value);
-                }
+            for (least, value) in smallest.iter_mut().zip(room.eigen.smallest_overlap_eigenvalues()) {
+                *least = least.min(*value);
             }
         }
         Ok(())

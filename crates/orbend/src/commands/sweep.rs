@@ -1,18 +1,22 @@
 //! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
 
-use orbend_report::{passport_text, sweep_csv, sweep_document, sweep_figure, sweep_text, to_json};
+use orbend_report::{
+    FigureOptions, passport_text, sweep_csv, sweep_document, sweep_document_with_orbitals, sweep_figure, sweep_page,
+    sweep_text, to_json,
+};
 use orbend_scan::Sweep;
 
 use super::route::{movement, route};
 use super::{csv, figure_options, provenance, resolve, text_options};
-use crate::arguments::SweepArguments;
+use crate::arguments::{NumberingChoice, SweepArguments};
 use crate::failure::Failure;
+use crate::geometry::Geometry;
 use crate::outputs::Outputs;
 use crate::write::write_stdout;
 
 pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "xyz"])?;
+    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "html", "xyz"])?;
     let figure = figure_options(&arguments.figure, output.numbering)?;
     let movement = movement(&arguments.coordinates)?;
     let mut resolved =
@@ -27,6 +31,7 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
             "csv" => csv(|out| sweep_csv(&document, out))?,
+            "html" => page(&sweep, &resolved.geometry, output.numbering, &figure)?,
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
             _ => sweep_figure(&document, &figure)
                 .map_err(|error| Failure::request(error.to_string()))?
@@ -40,6 +45,19 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     } else {
         write_stdout(sweep_text(&document, &text_options(output.numbering)).as_bytes())
     }
+}
+
+/// The page, with the orbitals at every point.
+fn page(
+    sweep: &Sweep,
+    geometry: &Geometry,
+    numbering: NumberingChoice,
+    figure: &FigureOptions,
+) -> Result<Vec<u8>, Failure> {
+    let document = sweep_document_with_orbitals(sweep, &provenance(geometry, numbering))
+        .map_err(|error| Failure::running(error.to_string()))?;
+    let page = sweep_page(&document, figure).map_err(|error| Failure::request(error.to_string()))?;
+    Ok(page.into_bytes())
 }
 
 /// Runs on a pool of its own when a number of threads is asked for.

@@ -33,6 +33,10 @@ pub struct SweepDocument {
     /// Orbitals followed from point to point; left out on a grid.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub lines: Option<Vec<LineRecord>>,
+    /// The same lines followed by character (overlap of neighbouring points) instead of energy
+    /// order; left out where the symmetry of the path says which line is which.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub followed: Option<Vec<FollowedRecord>>,
     /// Crossings and avoided crossings; left out on a grid.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub crossings: Option<Vec<CrossingRecord>>,
@@ -245,6 +249,17 @@ pub struct CrossingRecord {
     /// occupied and the lowest empty line cross.
     #[serde(default)]
     pub changes_configuration: bool,
+}
+
+/// One orbital character followed from point to point: the other view of the lines.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+pub struct FollowedRecord {
+    /// The line that has it at the first point.
+    pub id: u32,
+    /// The line (energy order within its irrep) that has it, one per point.
+    pub lines: Vec<u32>,
+    /// What this rests on.
+    pub certificate: Certificate,
 }
 
 /// How crossings were looked for.

@@ -6,6 +6,7 @@ use crate::draw::curve::Piece;
 use crate::lettering::{Lettering, SMALL, Shift};
 
 use super::key::Mark;
+use super::scale::Segment;
 use super::xml::{Writer, escape, length};
 
 /// Which end of a text is at its position.
@@ -30,11 +31,26 @@ pub(crate) struct TextBox {
 pub(crate) const ASCENT: f64 = 0.86;
 pub(crate) const DESCENT: f64 = 0.30;
 
+/// Where the curves of a diagram stand on its page.
+#[derive(Clone, Debug)]
+pub(crate) struct Area {
+    /// Left and right end of the curves.
+    pub(crate) across: (f64, f64),
+    /// Top of the main panel and bottom of the lowest one.
+    pub(crate) down: (f64, f64),
+    /// The energy axis.
+    pub(crate) energies: Vec<Segment>,
+    /// Lines that are drawn: their ids, one list for each drawn line.
+    pub(crate) lines: Vec<Vec<u32>>,
+}
+
 /// A figure under construction; lengths in points.
 #[derive(Default)]
 pub(crate) struct Canvas {
     pub(crate) xml: Writer,
     pub(crate) boxes: Vec<TextBox>,
+    /// Where the curves stand on the page.
+    pub(crate) area: Option<Area>,
     /// Entries of the key for what has been drawn.
     pub(crate) key: Vec<(Mark, String)>,
     /// Height of the finished page, for the checks on where text stands.

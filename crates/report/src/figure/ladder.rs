@@ -265,5 +265,5 @@ fn frame(
     let ground = Colours::of(options.theme).ground;
     xml.empty("rect", &[("width", "100%"), ("height", "100%"), ("fill", ground)]);
     xml.append(canvas.xml);
-    Ok(Canvas { xml, height, boxes: canvas.boxes, key: Vec::new() })
+    Ok(Canvas { xml, height, boxes: canvas.boxes, area: None, key: Vec::new() })
 }

@@ -1,7 +1,7 @@
 //! Figures as SVG with real text: the correlation diagram of a sweep, the ladder of one geometry.
 
 mod axes;
-mod canvas;
+pub(crate) mod canvas;
 mod key;
 mod labels;
 mod ladder;
@@ -12,11 +12,11 @@ mod panel;
 pub(crate) mod scale;
 mod sheet;
 mod sum;
-mod sweep;
+pub(crate) mod sweep;
 #[cfg(test)]
 mod tests;
-mod theme;
-mod xml;
+pub(crate) mod theme;
+pub(crate) mod xml;
 
 pub use ladder::levels_figure;
 pub use options::{

@@ -5,7 +5,7 @@ use crate::draw::spread::room as label_room;
 use crate::draw::wording::{charge, heading_formula, value_with_unit};
 use crate::lettering::Lettering;
 
-use super::canvas::{ASCENT, Anchor, Canvas, DESCENT};
+use super::canvas::{ASCENT, Anchor, Area, Canvas, DESCENT};
 use super::key::Mark;
 use super::labels::{Side, end_labels, widest};
 use super::measure::Measure;
@@ -103,6 +103,12 @@ pub(crate) fn compose(document: &SweepDocument, options: &FigureOptions) -> Resu
         below
     };
     let height = (below + measure.pad).max(measure.least_height);
+    canvas.area = Some(Area {
+        across: (sheet.left, sheet.right),
+        down: (sheet.top, lowest),
+        energies: sheet.scale.segments.clone(),
+        lines: sheet.lines().map(|bundle| bundle.ids.clone()).collect(),
+    });
     frame(canvas, &sheet, height)
 }
 
@@ -186,7 +192,7 @@ fn frame(canvas: Canvas, sheet: &Sheet<'_>, height: f64) -> Result<Canvas, Figur
     xml.close();
     xml.empty("rect", &[("width", "100%"), ("height", "100%"), ("fill", sheet.colours.ground)]);
     xml.append(canvas.xml);
-    Ok(Canvas { xml, height, boxes: canvas.boxes, key: Vec::new() })
+    Ok(Canvas { xml, height, boxes: canvas.boxes, area: canvas.area, key: Vec::new() })
 }
 
 /// The root element with the page's size.

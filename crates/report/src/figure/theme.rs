@@ -13,7 +13,7 @@ pub(crate) struct Colours {
     pub(crate) soft: &'static str,
     pub(crate) faint: &'static str,
     pub(crate) gap: &'static str,
-    irreps: &'static [&'static str],
+    pub(crate) irreps: &'static [&'static str],
 }
 
 const LIGHT: Colours = Colours {
