@@ -20,8 +20,16 @@ fn problem(n: usize, shift: f64) -> (Vec<f64>, Vec<f64>) {
         for j in 0..n {
             let (a, b) = (place(i), place(j));
             let square: f64 = (0..3).map(|x| (a[x] - b[x]).powi(2)).sum();
-            s[i * n + j] = if i == j { 1.0 } else { 0.95 * (-0.4 * square).exp() };
-            h[i * n + j] = if i == j { level(i) } else { 0.875 * s[i * n + j] * (level(i) + level(j)) };
+            s[i * n + j] = if i == j {
+                1.0
+            } else {
+                0.95 * (-0.4 * square).exp()
+            };
+            h[i * n + j] = if i == j {
+                level(i)
+            } else {
+                0.875 * s[i * n + j] * (level(i) + level(j))
+            };
         }
     }
     (h, s)
@@ -31,7 +39,9 @@ fn bench(criterion: &mut Criterion) -> Result<(), Box<dyn Error>> {
     for n in [6, 12, 30, 60] {
         let problems: Vec<_> = (0..LANES).map(|k| problem(n, 0.1 * k as f64)).collect();
         let pack = |pick: &dyn Fn(usize, usize) -> f64| -> Vec<Lanes> {
-            (0..n * n).map(|i| core::array::from_fn(|lane| pick(lane, i))).collect()
+            (0..n * n)
+                .map(|i| core::array::from_fn(|lane| pick(lane, i)))
+                .collect()
         };
         let h = pack(&|lane, i| problems[lane].0[i]);
         let s = pack(&|lane, i| problems[lane].1[i]);

@@ -13,16 +13,23 @@ use std::time::Instant;
 use orbend_eigen::{LANES, LaneStatus, LaneWorkspace, Lanes, Workspace, solve, solve_into};
 
 fn main() -> Result<(), Box<dyn Error>> {
-    let path = std::env::args().nth(1).ok_or("a file of problems is needed")?;
-    let chunk: usize = std::env::args().nth(2).ok_or("the size of a chunk is needed")?.parse()?;
+    let path = std::env::args()
+        .nth(1)
+        .ok_or("a file of problems is needed")?;
+    let chunk: usize = std::env::args()
+        .nth(2)
+        .ok_or("the size of a chunk is needed")?
+        .parse()?;
     let bytes = std::fs::read(path)?;
     let (words, _) = bytes.as_chunks::<8>();
     let n = u64::from_le_bytes(words[0]) as usize;
     let count = u64::from_le_bytes(words[1]) as usize;
     let numbers: Vec<f64> = words[2..].iter().map(|x| f64::from_le_bytes(*x)).collect();
     let size = n * n;
-    let problems: Vec<(&[f64], &[f64])> =
-        numbers.chunks_exact(2 * size).map(|two| two.split_at(size)).collect();
+    let problems: Vec<(&[f64], &[f64])> = numbers
+        .chunks_exact(2 * size)
+        .map(|two| two.split_at(size))
+        .collect();
     if problems.len() != count {
         return Err("the file is too short".into());
     }
@@ -30,9 +37,14 @@ fn main() -> Result<(), Box<dyn Error>> {
         .chunks_exact(LANES)
         .map(|eight| {
             let pack = |pick: &dyn Fn(usize, usize) -> f64| -> Vec<Lanes> {
-                (0..size).map(|i| core::array::from_fn(|lane| pick(lane, i))).collect()
+                (0..size)
+                    .map(|i| core::array::from_fn(|lane| pick(lane, i)))
+                    .collect()
             };
-            (pack(&|lane, i| eight[lane].0[i]), pack(&|lane, i| eight[lane].1[i]))
+            (
+                pack(&|lane, i| eight[lane].0[i]),
+                pack(&|lane, i| eight[lane].1[i]),
+            )
         })
         .collect();
     let mut lanes = LaneWorkspace::new(n);

@@ -327,7 +327,7 @@ fn a_million_lines_that_belong_to_no_atom() {
         &[
             "long.xyz",
             ":5: | line 5 | :1: | line 1",
-            "number of atoms | count | frame",
+            "announces | number of atoms",
         ],
     );
 }

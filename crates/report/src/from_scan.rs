@@ -5,7 +5,6 @@ use orbend_hamiltonian as hamiltonian;
 use orbend_scan::{Populations, Route, ScanError, Sweep, SweepPlan};
 use orbend_structure::CoordinateKind;
 
-use crate::from_scan_lines::{crossing_records, crossing_search, followed_records};
 use crate::document::{
     AtomCharge, AtomPosition, BasisFunction, Certificate, CertificateKind, Checked,
     CoordinateRecord, CoordinateUnit, Geometry, LevelRecord, LevelsDocument, LevelsSchema,
@@ -13,6 +12,7 @@ use crate::document::{
     OverlapPopulation, Passport, Point, Program, ShellPopulation, ShellValues, SpecialLabel,
     SumMinimum, SweepDocument, SweepSchema, SymmetryRecord, Units, Warning,
 };
+use crate::from_scan_lines::{crossing_records, crossing_search, followed_records};
 
 /// What the scan does not know about its input and its reader.
 #[derive(Clone, Debug, Default)]
@@ -35,7 +35,9 @@ pub enum FromScanError {
     #[error(transparent)]
     NotFinite(#[from] NotFinite),
     /// An element is not in the set.
-    #[error("the set `{set}` has no values for {element}; lay a file with its Hii and zeta over the set (--params FILE)")]
+    #[error(
+        "the set `{set}` has no values for {element}; lay a file with its Hii and zeta over the set (--params FILE)"
+    )]
     NoParameters {
         /// Element symbol.
         element: String,
@@ -48,18 +50,36 @@ pub enum FromScanError {
 ///
 /// # Errors
 /// A position or coordinate that is not finite.
-pub fn sweep_document(sweep: &Sweep, provenance: &Provenance) -> Result<SweepDocument, FromScanError> {
+pub fn sweep_document(
+    sweep: &Sweep,
+    provenance: &Provenance,
+) -> Result<SweepDocument, FromScanError> {
     let plan = sweep.plan();
     let mut missing = Vec::new();
-    let points = (0..sweep.points())
+    let mut points = (0..sweep.points())
         .map(|index| point_record(sweep, index, &mut missing))
         .collect::<Result<Vec<_>, _>>()?;
     let single = plan.path().axes().len() == 1;
+    if !single {
+        // A grid has no lines that a level could name.
+        points
+            .iter_mut()
+            .flat_map(|point| &mut point.levels)
+            .for_each(|level| level.line = None);
+    }
     // With a large group the irreps say which line is which.
     let group = plan.path_group();
     let little = single && !group.linear && group.order() <= 2 && sweep.points() > 1;
-    let followed = if little { sweep.followed()? } else { Vec::new() };
-    let mut lines = if single { Some(line_records(sweep)?) } else { None };
+    let followed = if little {
+        sweep.followed()?
+    } else {
+        Vec::new()
+    };
+    let mut lines = if single {
+        Some(line_records(sweep)?)
+    } else {
+        None
+    };
     let followed = followed_records(sweep, &followed)?;
     for (line, record) in lines.iter_mut().flatten().zip(&followed) {
         line.certificate = Some(record.certificate.clone());
@@ -77,7 +97,11 @@ pub fn sweep_document(sweep: &Sweep, provenance: &Provenance) -> Result<SweepDoc
         points,
         lines,
         followed: little.then_some(followed),
-        crossings: if single { Some(crossing_records(sweep)?) } else { None },
+        crossings: if single {
+            Some(crossing_records(sweep)?)
+        } else {
+            None
+        },
         crossing_search: if single { crossing_search(plan)? } else { None },
         warnings: warnings(plan, provenance),
         missing,
@@ -88,7 +112,10 @@ pub fn sweep_document(sweep: &Sweep, provenance: &Provenance) -> Result<SweepDoc
 ///
 /// # Errors
 /// A position that is not finite.
-pub fn levels_document(sweep: &Sweep, provenance: &Provenance) -> Result<LevelsDocument, FromScanError> {
+pub fn levels_document(
+    sweep: &Sweep,
+    provenance: &Provenance,
+) -> Result<LevelsDocument, FromScanError> {
     let plan = sweep.plan();
     let mut missing = Vec::new();
     let mut point = point_record(sweep, 0, &mut missing)?;
@@ -101,7 +128,11 @@ pub fn levels_document(sweep: &Sweep, provenance: &Provenance) -> Result<LevelsD
     for level in &mut point.levels {
         let Some(line) = level.line else { continue };
         let row = orbitals.coefficients.row(line as usize);
-        level.coefficients = Some(row.iter().map(|&c| Number::new(c)).collect::<Result<_, _>>()?);
+        level.coefficients = Some(
+            row.iter()
+                .map(|&c| Number::new(c))
+                .collect::<Result<_, _>>()?,
+        );
         level.populations = Some(shell_populations(plan, &populations, line as usize)?);
     }
     point.charges = Some(charges(plan, &populations)?);
@@ -129,12 +160,20 @@ fn molecule_record(plan: &SweepPlan, provenance: &Provenance) -> Result<Molecule
         .zip(&molecule.elements)
         .zip(1..)
         .map(|((&at, element), atom)| {
-            Ok(AtomPosition { atom, element: element.symbol().to_owned(), at: Number::triple(at)? })
+            Ok(AtomPosition {
+                atom,
+                element: element.symbol().to_owned(),
+                at: Number::triple(at)?,
+            })
         })
         .collect::<Result<_, _>>()?;
     Ok(MoleculeRecord {
         formula: molecule.formula(),
-        elements: molecule.elements.iter().map(|element| element.symbol().to_owned()).collect(),
+        elements: molecule
+            .elements
+            .iter()
+            .map(|element| element.symbol().to_owned())
+            .collect(),
         charge: molecule.charge,
         unpaired: electrons.unpaired(),
         valence_electrons: electrons.total(),
@@ -152,7 +191,9 @@ fn method_record(plan: &SweepPlan, provenance: &Provenance) -> Result<Method, No
     elements.dedup();
     let mut values = Vec::new();
     for element in elements {
-        let Some(parameters) = request.parameters.element(element) else { continue };
+        let Some(parameters) = request.parameters.element(element) else {
+            continue;
+        };
         for shell in parameters.shells() {
             values.push(shell_values(element.symbol(), shell)?);
         }
@@ -163,7 +204,12 @@ fn method_record(plan: &SweepPlan, provenance: &Provenance) -> Result<Method, No
         coupling: request.method.coupling.name().to_owned(),
         k: Number::new(request.method.k)?,
         polarised_hydrogen: request.method.polarised_hydrogen,
-        numbering: if provenance.valence_numbering { "valence" } else { "core" }.to_owned(),
+        numbering: if provenance.valence_numbering {
+            "valence"
+        } else {
+            "core"
+        }
+        .to_owned(),
         notes: Vec::new(),
         values,
     })
@@ -196,9 +242,11 @@ fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFini
     let kind = match &plan.request().route {
         Route::Coordinates => None,
         Route::Together => (path.axes().len() > 1).then_some(MotionKind::Table),
-        Route::Table { .. } => {
-            path.axes().first().is_some_and(|axis| axis.unit == "1").then_some(MotionKind::Table)
-        }
+        Route::Table { .. } => path
+            .axes()
+            .first()
+            .is_some_and(|axis| axis.unit == "1")
+            .then_some(MotionKind::Table),
         Route::Frames { .. } => Some(MotionKind::Frames),
         Route::Toward { .. } => Some(MotionKind::Toward),
         Route::AlongMode { .. } => Some(MotionKind::Mode),
@@ -209,10 +257,18 @@ fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFini
         .iter()
         .enumerate()
         .map(|(index, axis)| {
-            let coordinate = if kind.is_none() { path.coordinates().get(index) } else { None };
+            let coordinate = if kind.is_none() {
+                path.coordinates().get(index)
+            } else {
+                None
+            };
             let ends = |at: Option<&f64>| at.map(|&at| Number::new(at)).transpose();
             let steps = (axis.values.len() as f64 - 1.0).max(1.0);
-            let even = axis.values.last().zip(axis.values.first()).map(|(to, from)| (to - from).abs() / steps);
+            let even = axis
+                .values
+                .last()
+                .zip(axis.values.first())
+                .map(|(to, from)| (to - from).abs() / steps);
             Ok(CoordinateRecord {
                 kind: kind.unwrap_or(match coordinate.map(|coordinate| coordinate.kind) {
                     Some(CoordinateKind::Bend) => MotionKind::Bend,
@@ -221,7 +277,9 @@ fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFini
                     Some(CoordinateKind::Pyramid) => MotionKind::Pyramid,
                     None => MotionKind::Table,
                 }),
-                atoms: coordinate.map(|coordinate| numbers(&coordinate.atoms)).unwrap_or_default(),
+                atoms: coordinate
+                    .map(|coordinate| numbers(&coordinate.atoms))
+                    .unwrap_or_default(),
                 unit: match axis.unit.as_str() {
                     "degree" => CoordinateUnit::Degree,
                     "angstrom" => CoordinateUnit::Angstrom,
@@ -240,7 +298,9 @@ fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFini
                     (None, _) => even.map(Number::new).transpose()?,
                 },
                 text: match plan.request().route {
-                    Route::Coordinates => described.get(index).copied().unwrap_or_default().to_owned(),
+                    Route::Coordinates => {
+                        described.get(index).copied().unwrap_or_default().to_owned()
+                    }
                     _ => path.describe().to_owned(),
                 },
             })
@@ -273,7 +333,11 @@ fn symmetry_record(plan: &SweepPlan) -> Result<SymmetryRecord, NotFinite> {
     })
 }
 
-fn point_record(sweep: &Sweep, index: usize, missing: &mut Vec<Missing>) -> Result<Point, FromScanError> {
+fn point_record(
+    sweep: &Sweep,
+    index: usize,
+    missing: &mut Vec<Missing>,
+) -> Result<Point, FromScanError> {
     let plan = sweep.plan();
     let point = sweep.point(index)?;
     let levels = point
@@ -299,10 +363,23 @@ fn point_record(sweep: &Sweep, index: usize, missing: &mut Vec<Missing>) -> Resu
         })
         .collect::<Result<_, NotFinite>>()?;
     Ok(Point {
-        at: point.at.iter().map(|&value| Number::new(value)).collect::<Result<_, _>>()?,
-        positions: point.positions.iter().map(|&p| Number::triple(p)).collect::<Result<_, _>>()?,
+        at: point
+            .at
+            .iter()
+            .map(|&value| Number::new(value))
+            .collect::<Result<_, _>>()?,
+        positions: point
+            .positions
+            .iter()
+            .map(|&p| Number::triple(p))
+            .collect::<Result<_, _>>()?,
         point_group: point.point_group,
-        sum: Number::or_missing(point.sum, &format!("/points/{index}/sum"), "not a finite number", missing),
+        sum: Number::or_missing(
+            point.sum,
+            &format!("/points/{index}/sum"),
+            "not a finite number",
+            missing,
+        ),
         smallest_overlap_eigenvalue: Number::or_missing(
             point.smallest_overlap_eigenvalue,
             &format!("/points/{index}/smallest_overlap_eigenvalue"),
@@ -361,7 +438,10 @@ fn line_records(sweep: &Sweep) -> Result<Vec<LineRecord>, FromScanError> {
                     .into_iter()
                     .map(|energy| Ok(Some(Number::new(energy)?)))
                     .collect::<Result<_, NotFinite>>()?,
-                certificate: Some(Certificate { kind: CertificateKind::Symmetry, intervals: Vec::new() }),
+                certificate: Some(Certificate {
+                    kind: CertificateKind::Symmetry,
+                    intervals: Vec::new(),
+                }),
             })
         })
         .collect()
@@ -389,7 +469,8 @@ pub(crate) fn basis_functions(plan: &SweepPlan) -> Vec<BasisFunction> {
         .map(|function| BasisFunction {
             atom: function.atom as u32 + 1,
             shell: shell_name(function.n, function.l),
-            function: orbend_overlap::harmonics::function_name(function.l, function.index).to_owned(),
+            function: orbend_overlap::harmonics::function_name(function.l, function.index)
+                .to_owned(),
         })
         .collect()
 }
@@ -426,7 +507,11 @@ fn charges(plan: &SweepPlan, populations: &Populations) -> Result<Vec<AtomCharge
         .zip(&populations.charges)
         .zip(1..)
         .map(|((element, &charge), atom)| {
-            Ok(AtomCharge { atom, element: element.symbol().to_owned(), charge: Number::new(charge)? })
+            Ok(AtomCharge {
+                atom,
+                element: element.symbol().to_owned(),
+                charge: Number::new(charge)?,
+            })
         })
         .collect()
 }
@@ -448,7 +533,10 @@ fn overlap_populations(populations: &Populations) -> Result<Vec<OverlapPopulatio
 fn warnings(plan: &SweepPlan, provenance: &Provenance) -> Vec<Warning> {
     plan.notices()
         .iter()
-        .map(|notice| Warning { code: notice.code.to_owned(), text: notice.text.clone() })
+        .map(|notice| Warning {
+            code: notice.code.to_owned(),
+            text: notice.text.clone(),
+        })
         .chain(provenance.warnings.iter().cloned())
         .collect()
 }

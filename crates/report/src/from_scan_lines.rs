@@ -3,8 +3,8 @@
 use orbend_scan::{MeetingKind, Sweep, SweepPlan};
 
 use crate::document::{
-    Certificate, CertificateInterval, CertificateKind, CrossingKind, CrossingRecord, CrossingSearch,
-    FollowedRecord, NotFinite, Number,
+    Certificate, CertificateInterval, CertificateKind, CrossingKind, CrossingRecord,
+    CrossingSearch, FollowedRecord, NotFinite, Number,
 };
 use crate::from_scan::FromScanError;
 
@@ -12,7 +12,9 @@ pub(crate) fn followed_records(
     sweep: &Sweep,
     followed: &[orbend_scan::Followed],
 ) -> Result<Vec<FollowedRecord>, NotFinite> {
-    let Some(axis) = sweep.plan().path().axes().first() else { return Ok(Vec::new()) };
+    let Some(axis) = sweep.plan().path().axes().first() else {
+        return Ok(Vec::new());
+    };
     let values = &axis.values;
     followed
         .iter()
@@ -79,7 +81,9 @@ pub(crate) fn crossing_records(sweep: &Sweep) -> Result<Vec<CrossingRecord>, Fro
 }
 
 pub(crate) fn crossing_search(plan: &SweepPlan) -> Result<Option<CrossingSearch>, NotFinite> {
-    let [axis] = plan.path().axes() else { return Ok(None) };
+    let [axis] = plan.path().axes() else {
+        return Ok(None);
+    };
     let (low, high) = axis.limits();
     Ok(Some(CrossingSearch {
         spacing: Number::new(orbend_scan::resolution(&axis.unit, high - low))?,

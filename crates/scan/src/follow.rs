@@ -58,7 +58,9 @@ impl Sweep {
     /// A geometry that cannot be solved.
     pub fn followed(&self) -> Result<Vec<Followed>, ScanError> {
         let plan = self.plan();
-        let [axis] = plan.path.axes() else { return Ok(Vec::new()) };
+        let [axis] = plan.path.axes() else {
+            return Ok(Vec::new());
+        };
         let steps = axis
             .values
             .par_windows(2)
@@ -72,7 +74,11 @@ impl Sweep {
             .collect::<Result<Vec<Step>, ScanError>>()?;
         Ok((0..plan.lines.len())
             .map(|line| {
-                let mut followed = Followed { lines: vec![line], overlap: 1.0, ambiguous: Vec::new() };
+                let mut followed = Followed {
+                    lines: vec![line],
+                    overlap: 1.0,
+                    ambiguous: Vec::new(),
+                };
                 let mut now = line;
                 for step in &steps {
                     followed.overlap = followed.overlap.min(step.overlap[now]);
@@ -99,7 +105,11 @@ fn step(
     if halvings == 0 {
         for (line, overlap) in direct.overlap.iter_mut().enumerate() {
             if *overlap < CLEAR_OVERLAP {
-                direct.ambiguous[line].push(Ambiguity { from, to, overlap: *overlap });
+                direct.ambiguous[line].push(Ambiguity {
+                    from,
+                    to,
+                    overlap: *overlap,
+                });
             }
         }
         // The energy order is kept in every irrep with an unclear line.
@@ -148,9 +158,14 @@ fn assign(plan: &SweepPlan, before: &Character, after: &Character) -> (Step, boo
     let mut clear = true;
     for (index, block) in plan.adapted.blocks.iter().enumerate() {
         // One row stands for all; levels of a paired block are taken as sets.
-        let size = if block.paired { block.dimension.max(1) } else { 1 };
-        let mut members: Vec<usize> =
-            (0..count).filter(|&line| plan.lines[line].block == index && plan.lines[line].row == 0).collect();
+        let size = if block.paired {
+            block.dimension.max(1)
+        } else {
+            1
+        };
+        let mut members: Vec<usize> = (0..count)
+            .filter(|&line| plan.lines[line].block == index && plan.lines[line].row == 0)
+            .collect();
         members.sort_by_key(|&line| plan.lines[line].place);
         let sets: Vec<&[usize]> = members.chunks(size).collect();
         let common = |a: &[usize], b: &[usize]| -> f64 {
@@ -161,10 +176,18 @@ fn assign(plan: &SweepPlan, before: &Character, after: &Character) -> (Step, boo
                 .sum();
             all / size as f64
         };
-        let shares: Vec<Vec<f64>> =
-            sets.iter().map(|a| sets.iter().map(|b| common(a, b)).collect()).collect();
-        let weights = shares.iter().map(|row| row.iter().map(|x| (x * 1e9).round() as i64).collect::<Vec<i64>>());
-        let Ok(weights) = Matrix::from_rows(weights) else { continue };
+        let shares: Vec<Vec<f64>> = sets
+            .iter()
+            .map(|a| sets.iter().map(|b| common(a, b)).collect())
+            .collect();
+        let weights = shares.iter().map(|row| {
+            row.iter()
+                .map(|x| (x * 1e9).round() as i64)
+                .collect::<Vec<i64>>()
+        });
+        let Ok(weights) = Matrix::from_rows(weights) else {
+            continue;
+        };
         if weights.rows == 0 {
             continue;
         }

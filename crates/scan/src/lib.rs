@@ -18,6 +18,7 @@ mod naming;
 mod orbitals;
 mod plan;
 mod request;
+pub mod shape;
 mod solve;
 mod special;
 mod sweep;
@@ -27,8 +28,8 @@ pub use crossing::{
     resolution,
 };
 pub use error::{FillingError, ScanError};
-pub use follow::{Ambiguity, CLEAR_OVERLAP, Followed};
 pub use filling::{Configuration, DEGENERACY_EV, Electrons, Filling};
+pub use follow::{Ambiguity, CLEAR_OVERLAP, Followed};
 pub use line::LineHead;
 pub use naming::Name;
 pub use orbitals::{Orbitals, Populations};

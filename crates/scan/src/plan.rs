@@ -63,7 +63,11 @@ impl SweepPlan {
     /// electrons that do not fit, a geometry without a usable overlap matrix.
     pub fn new(request: &Request) -> Result<Self, ScanError> {
         let mut notices = Vec::new();
-        let basis = Basis::new(&request.molecule.elements, &request.parameters, &request.method)?;
+        let basis = Basis::new(
+            &request.molecule.elements,
+            &request.parameters,
+            &request.method,
+        )?;
         let electrons = Electrons::new(
             basis.valence_electrons,
             request.molecule.charge,
@@ -74,9 +78,13 @@ impl SweepPlan {
 
         let mut molecule = request.molecule.clone();
         let tolerance = request.tolerance.0;
-        let start = orbend_symmetry::find(&nuclei(&molecule.elements, &molecule.positions), tolerance)?;
+        let start =
+            orbend_symmetry::find(&nuclei(&molecule.elements, &molecule.positions), tolerance)?;
         if start.deviation_angstrom > EXACT_ANGSTROM {
-            let (places, moved) = symmetrize(&nuclei(&molecule.elements, &molecule.positions), &start.group);
+            let (places, moved) = symmetrize(
+                &nuclei(&molecule.elements, &molecule.positions),
+                &start.group,
+            );
             molecule.positions = places.iter().map(|nucleus| nucleus.position).collect();
             notices.push(Notice {
                 code: "moved-onto-symmetry",
@@ -86,9 +94,16 @@ impl SweepPlan {
                 ),
             });
         }
-        let permutations: Vec<Vec<usize>> =
-            start.group.operations.iter().map(|operation| operation.permutation.clone()).collect();
-        let mut path = request.route.path(&molecule, &request.coordinates, &permutations, tolerance)?;
+        let permutations: Vec<Vec<usize>> = start
+            .group
+            .operations
+            .iter()
+            .map(|operation| operation.permutation.clone())
+            .collect();
+        let mut path =
+            request
+                .route
+                .path(&molecule, &request.coordinates, &permutations, tolerance)?;
         if matches!(request.route, Route::Frames { .. }) {
             let (moved, notice) = frames_onto_group(&path, &molecule, tolerance)?;
             path = moved;
@@ -101,13 +116,19 @@ impl SweepPlan {
         let reference = samples[0].clone();
         let kinds = kinds(&molecule.elements);
         let kept = path_group(&kinds, &samples, tolerance)?;
-        let screen = GroupScreen::new(&nuclei(&molecule.elements, &samples[kept.axes_from]), tolerance)?;
+        let screen = GroupScreen::new(
+            &nuclei(&molecule.elements, &samples[kept.axes_from]),
+            tolerance,
+        )?;
         let group = kept.group;
 
         let shells = basis
             .shells
             .iter()
-            .map(|shell| OrbitalShell { atom: shell.atom, l: shell.l })
+            .map(|shell| OrbitalShell {
+                atom: shell.atom,
+                l: shell.l,
+            })
             .collect::<Vec<_>>();
         let core_shells = basis
             .core_shells
@@ -149,7 +170,10 @@ impl SweepPlan {
                 .collect();
             let order: Vec<usize> = (0..plan.lines.len()).collect();
             let occupations = configuration.occupations(&electrons, &labels, &order)?;
-            plan.filling = Filling::ByLine { electrons, occupations };
+            plan.filling = Filling::ByLine {
+                electrons,
+                occupations,
+            };
         }
         Ok(plan)
     }
@@ -209,7 +233,8 @@ impl SweepPlan {
         let head = &self.lines[line];
         let plain = self.group.other_axes(&self.group.irreps[head.irrep].plain);
         let irrep = self.group.irrep(&plain).unwrap_or(head.irrep);
-        head.name.renamed(&self.group.irreps[head.irrep], &self.group.irreps[irrep])
+        head.name
+            .renamed(&self.group.irreps[head.irrep], &self.group.irreps[irrep])
     }
 
     /// What a reader should know about how the request was understood.
@@ -223,12 +248,18 @@ pub(crate) fn nuclei(elements: &[Element], positions: &[[f64; 3]]) -> Vec<Nucleu
     elements
         .iter()
         .zip(positions)
-        .map(|(element, &position)| Nucleus { kind: u32::from(element.number()), position })
+        .map(|(element, &position)| Nucleus {
+            kind: u32::from(element.number()),
+            position,
+        })
         .collect()
 }
 
 fn kinds(elements: &[Element]) -> Vec<u32> {
-    elements.iter().map(|element| u32::from(element.number())).collect()
+    elements
+        .iter()
+        .map(|element| u32::from(element.number()))
+        .collect()
 }
 
 /// Given geometries moved onto the group that all of them keep, with a notice
@@ -254,7 +285,9 @@ fn frames_onto_group(
             frame
         })
         .collect();
-    let Some(axis) = path.axes().first() else { return Ok((path.clone(), None)) };
+    let Some(axis) = path.axes().first() else {
+        return Ok((path.clone(), None));
+    };
     let values = FrameValues::Given {
         name: axis.name.clone(),
         unit: axis.unit.clone(),
@@ -276,7 +309,11 @@ fn sample_geometries(path: &PathPlan, atoms: usize) -> Result<Vec<Vec<[f64; 3]>>
     let count = points.min(SAMPLES);
     let mut samples = Vec::with_capacity(count);
     for sample in 0..count {
-        let point = if count == 1 { 0 } else { sample * (points - 1) / (count - 1) };
+        let point = if count == 1 {
+            0
+        } else {
+            sample * (points - 1) / (count - 1)
+        };
         let mut positions = vec![[0.0; 3]; atoms];
         path.positions(&path.values(point), &mut positions)?;
         samples.push(positions);

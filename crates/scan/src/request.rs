@@ -74,7 +74,10 @@ impl Route {
                 let (other, ..) = symmetrized(other, Angstrom(tolerance))?;
                 PathPlan::toward(molecule, &other, *points, None)?.0
             }
-            Self::AlongMode { displacement, range } => PathPlan::along(molecule, displacement, *range)?,
+            Self::AlongMode {
+                displacement,
+                range,
+            } => PathPlan::along(molecule, displacement, *range)?,
         })
     }
 }
@@ -84,7 +87,10 @@ impl Route {
 ///
 /// # Errors
 /// A tolerance outside 1e-8 to 0.5 Å or a geometry that is not usable.
-pub fn symmetrized(molecule: &Molecule, tolerance: Angstrom) -> Result<(Molecule, String, f64), ScanError> {
+pub fn symmetrized(
+    molecule: &Molecule,
+    tolerance: Angstrom,
+) -> Result<(Molecule, String, f64), ScanError> {
     let places = nuclei(&molecule.elements, &molecule.positions);
     let group = orbend_symmetry::find(&places, tolerance.0)?.group;
     let (places, moved) = orbend_symmetry::symmetrize(&places, &group);

@@ -56,7 +56,11 @@ impl Family {
         let h11 = p * (p * x + r * y) + r * (p * y - r * x);
         let h12 = p * (r * x + p * y) + r * (r * y - p * x);
         let h22 = r * (r * x + p * y) + p * (r * y - p * x);
-        let (a, b, c) = (1.0 - s * s, -(h11 + h22 - 2.0 * s * h12), h11 * h22 - h12 * h12);
+        let (a, b, c) = (
+            1.0 - s * s,
+            -(h11 + h22 - 2.0 * s * h12),
+            h11 * h22 - h12 * h12,
+        );
         let root = (b * b - 4.0 * a * c).max(0.0).sqrt();
         ((-b - root) / (2.0 * a), (-b + root) / (2.0 * a))
     }
@@ -102,7 +106,11 @@ fn family(random: &mut Random) -> Family {
         gap: random.between(0.02, 0.6),
         overlap: random.between(-0.6, 0.6),
         zeros,
-        scale: if random.next().is_multiple_of(2) { 1.0 } else { -1.0 },
+        scale: if random.next().is_multiple_of(2) {
+            1.0
+        } else {
+            -1.0
+        },
     }
 }
 
@@ -115,18 +123,33 @@ fn planted_meetings_are_found_and_none_is_invented() {
     for case in 0..cases {
         let family = family(&mut random);
         let found = meetings(&family, &nodes).expect("solved");
-        let crossings: Vec<_> = found.iter().filter(|one| one.kind == MeetingKind::Crossing).collect();
-        assert_eq!(crossings.len(), family.zeros.len(), "case {case}: {found:?} {:?}", family.zeros);
+        let crossings: Vec<_> = found
+            .iter()
+            .filter(|one| one.kind == MeetingKind::Crossing)
+            .collect();
+        assert_eq!(
+            crossings.len(),
+            family.zeros.len(),
+            "case {case}: {found:?} {:?}",
+            family.zeros
+        );
         for (crossing, zero) in crossings.iter().zip(&family.zeros) {
             farthest.0 = farthest.0.max((crossing.at - zero).abs());
         }
-        let avoided: Vec<_> = found.iter().filter(|one| one.kind == MeetingKind::Avoided).collect();
+        let avoided: Vec<_> = found
+            .iter()
+            .filter(|one| one.kind == MeetingKind::Avoided)
+            .collect();
         assert_eq!(avoided.len(), 1, "case {case}: {found:?}");
         farthest.1 = farthest.1.max((avoided[0].at - family.centre).abs());
         farthest.2 = farthest.2.max((avoided[0].gap - family.gap).abs());
         assert!(found.len() == crossings.len() + 1, "case {case}: {found:?}");
     }
     assert!(farthest.0 < 1e-3, "crossings are off by {:e}", farthest.0);
-    assert!(farthest.1 < 1e-3, "avoided crossings are off by {:e}", farthest.1);
+    assert!(
+        farthest.1 < 1e-3,
+        "avoided crossings are off by {:e}",
+        farthest.1
+    );
     assert!(farthest.2 < 1e-8, "gaps are off by {:e}", farthest.2);
 }

@@ -19,22 +19,38 @@ pub(crate) struct Movement {
 pub(crate) fn movement(arguments: &CoordinateArguments) -> Result<Movement, Failure> {
     let mut coordinates = parse_all(
         arguments,
-        [&arguments.bend, &arguments.stretch, &arguments.twist, &arguments.pyramid],
+        [
+            &arguments.bend,
+            &arguments.stretch,
+            &arguments.twist,
+            &arguments.pyramid,
+        ],
         "",
     )?;
     let along = parse_all(
         arguments,
-        [&arguments.with_bend, &arguments.with_stretch, &arguments.with_twist, &arguments.with_pyramid],
+        [
+            &arguments.with_bend,
+            &arguments.with_stretch,
+            &arguments.with_twist,
+            &arguments.with_pyramid,
+        ],
         "with-",
     )?;
     let other = arguments.toward.is_some() || arguments.along_mode.is_some();
     if (other || arguments.table.is_some()) && !(coordinates.is_empty() && along.is_empty()) {
-        return Err(Failure::request("a path of its own and coordinates: one of them has to go")
-            .fix("give either --toward, --along-mode or --table, or coordinates such as --bend"));
+        return Err(
+            Failure::request("a path of its own and coordinates: one of them has to go").fix(
+                "give either --toward, --along-mode or --table, or coordinates such as --bend",
+            ),
+        );
     }
     if let Some(file) = &arguments.table {
         let (coordinates, rows) = table(file, arguments.alone)?;
-        return Ok(Movement { coordinates, route: Some(Route::Table { rows }) });
+        return Ok(Movement {
+            coordinates,
+            route: Some(Route::Table { rows }),
+        });
     }
     if along.is_empty() {
         return match coordinates.len() {
@@ -44,11 +60,17 @@ pub(crate) fn movement(arguments: &CoordinateArguments) -> Result<Movement, Fail
         };
     }
     if coordinates.len() != 1 {
-        return Err(Failure::request(format!("{} coordinates lead those that move in step", coordinates.len()))
-            .fix("give exactly one of --bend, --stretch, --twist, --pyramid"));
+        return Err(Failure::request(format!(
+            "{} coordinates lead those that move in step",
+            coordinates.len()
+        ))
+        .fix("give exactly one of --bend, --stretch, --twist, --pyramid"));
     }
     coordinates.extend(along);
-    Ok(Movement { coordinates, route: Some(Route::Together) })
+    Ok(Movement {
+        coordinates,
+        route: Some(Route::Together),
+    })
 }
 
 /// The route that the geometry's file and the arguments make together.
@@ -65,21 +87,32 @@ pub(crate) fn route(
         let other = geometry::read(&file.to_string_lossy(), model)?;
         let mut end = other.molecule;
         end.charge = geometry.molecule.charge;
-        return Ok(Route::Toward { other: Box::new(end), points: arguments.steps });
+        return Ok(Route::Toward {
+            other: Box::new(end),
+            points: arguments.steps,
+        });
     }
     if let Some(text) = &arguments.along_mode {
         let Some(displacement) = geometry.displacement.clone() else {
             return Err(Failure::request("--along-mode: the geometry has no displacement vectors")
                 .fix("give an extended XYZ file with Properties=species:S:1:pos:R:3:displacement:R:3"));
         };
-        return Ok(Route::AlongMode { displacement, range: range(text)? });
+        return Ok(Route::AlongMode {
+            displacement,
+            range: range(text)?,
+        });
     }
     if !movement.coordinates.is_empty() {
         return Ok(Route::Coordinates);
     }
     if geometry.frames.len() > 1 {
-        geometry.warnings.retain(|warning| warning.code != "first-frame");
-        return Ok(Route::Frames { frames: geometry.frames.clone(), values: FrameValues::Number });
+        geometry
+            .warnings
+            .retain(|warning| warning.code != "first-frame");
+        return Ok(Route::Frames {
+            frames: geometry.frames.clone(),
+            values: FrameValues::Number,
+        });
     }
     Err(Failure::request("no coordinate: a sweep needs something that moves")
         .fix("add for example --bend 2-1-3=90..180:2, --stretch, --twist, --pyramid, --toward FILE, or give a file of several geometries"))
@@ -90,8 +123,12 @@ fn parse_all(
     texts: [&Vec<String>; 4],
     prefix: &str,
 ) -> Result<Vec<Coordinate>, Failure> {
-    let kinds =
-        [CoordinateKind::Bend, CoordinateKind::Stretch, CoordinateKind::Twist, CoordinateKind::Pyramid];
+    let kinds = [
+        CoordinateKind::Bend,
+        CoordinateKind::Stretch,
+        CoordinateKind::Twist,
+        CoordinateKind::Pyramid,
+    ];
     let mut coordinates = Vec::new();
     for (kind, texts) in kinds.into_iter().zip(texts) {
         for text in texts {
@@ -124,7 +161,10 @@ fn table(file: &Path, alone: bool) -> Result<(Vec<Coordinate>, Vec<Vec<f64>>), F
         Failure::request(format!("cannot read the table {name}: {cause}"))
             .fix("name a CSV file with a heading such as `bend 2-1-3,stretch 1-2`")
     })?;
-    let mut lines = text.lines().enumerate().filter(|(_, line)| !line.trim().is_empty());
+    let mut lines = text
+        .lines()
+        .enumerate()
+        .filter(|(_, line)| !line.trim().is_empty());
     let heading = lines.next().map(|(_, line)| line).unwrap_or_default();
     let mut rows = Vec::new();
     for (index, line) in lines {
@@ -132,8 +172,12 @@ fn table(file: &Path, alone: bool) -> Result<(Vec<Coordinate>, Vec<Vec<f64>>), F
             .split(',')
             .map(|cell| {
                 cell.trim().trim_matches('"').parse::<f64>().map_err(|_| {
-                    Failure::request(format!("{name}: line {}: `{}` is no number", index + 1, cell.trim()))
-                        .fix("write one number per coordinate, separated by commas")
+                    Failure::request(format!(
+                        "{name}: line {}: `{}` is no number",
+                        index + 1,
+                        cell.trim()
+                    ))
+                    .fix("write one number per coordinate, separated by commas")
                 })
             })
             .collect::<Result<Vec<f64>, Failure>>()?;
@@ -149,16 +193,26 @@ fn table(file: &Path, alone: bool) -> Result<(Vec<Coordinate>, Vec<Vec<f64>>), F
             Some("twist") => CoordinateKind::Twist,
             Some("pyramid") => CoordinateKind::Pyramid,
             _ => {
-                return Err(Failure::request(format!("{name}: `{cell}` names no coordinate"))
-                    .fix("write a heading such as `bend 2-1-3,stretch 1-2`"));
+                return Err(
+                    Failure::request(format!("{name}: `{cell}` names no coordinate"))
+                        .fix("write a heading such as `bend 2-1-3,stretch 1-2`"),
+                );
             }
         };
         let values = rows.iter().filter_map(|row| row.get(column).copied());
         let low = values.clone().fold(f64::INFINITY, f64::min);
         let high = values.fold(f64::NEG_INFINITY, f64::max);
         // The rows hold the values; a range only has to be one.
-        let (low, high) = if high > low { (low, high) } else { (0.999 * high, high) };
-        let text = format!("{}={low}..{high}:{}", words.get(1).copied().unwrap_or_default(), high - low);
+        let (low, high) = if high > low {
+            (low, high)
+        } else {
+            (0.999 * high, high)
+        };
+        let text = format!(
+            "{}={low}..{high}:{}",
+            words.get(1).copied().unwrap_or_default(),
+            high - low
+        );
         let mut coordinate = Coordinate::parse(kind, &text)
             .map_err(|error| Failure::request(format!("{name}: {error}")))?;
         coordinate.alone = alone;

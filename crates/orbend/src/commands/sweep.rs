@@ -1,11 +1,12 @@
 //! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
 
 use orbend_report::{
-    FigureOptions, passport_text, sweep_csv, sweep_document, sweep_document_with_orbitals, sweep_figure, sweep_page,
-    sweep_text, to_json,
+    FigureOptions, passport_text, sweep_csv, sweep_document, sweep_document_with_orbitals,
+    sweep_figure, sweep_page, sweep_text, to_json,
 };
 use orbend_scan::Sweep;
 
+use super::geometry_text::geometry_text;
 use super::route::{movement, route};
 use super::{csv, figure_options, provenance, resolve, text_options};
 use crate::arguments::{NumberingChoice, SweepArguments};
@@ -19,14 +20,26 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "html", "xyz"])?;
     let figure = figure_options(&arguments.figure, output.numbering)?;
     let movement = movement(&arguments.coordinates)?;
-    let mut resolved =
-        resolve(&arguments.geometry, movement.coordinates.clone(), &arguments.model, output.numbering)?;
-    resolved.request.route =
-        route(&movement, &arguments.coordinates, &mut resolved.geometry, &arguments.model)?;
-    let plan = resolved.request.plan().map_err(|error| Failure::scan(&error))?;
-    let sweep = in_pool(arguments.jobs, || Sweep::run(plan))?.map_err(|error| Failure::scan(&error))?;
+    let mut resolved = resolve(
+        &arguments.geometry,
+        movement.coordinates.clone(),
+        &arguments.model,
+        output.numbering,
+    )?;
+    resolved.request.route = route(
+        &movement,
+        &arguments.coordinates,
+        &mut resolved.geometry,
+        &arguments.model,
+    )?;
+    let plan = resolved
+        .request
+        .plan()
+        .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
+    let sweep = in_pool(arguments.jobs, || Sweep::run(plan))?
+        .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
     let document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
-        .map_err(|error| Failure::running(error.to_string()))?;
+        .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
     outputs.write(|ending| {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
@@ -43,7 +56,9 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     } else if arguments.passport {
         write_stdout(passport_text(&document, &text_options(output.numbering)).as_bytes())
     } else {
-        write_stdout(sweep_text(&document, &text_options(output.numbering)).as_bytes())
+        let options = text_options(output.numbering);
+        let start = geometry_text(&resolved.geometry, options.width);
+        write_stdout((start + &sweep_text(&document, &options)).as_bytes())
     }
 }
 
@@ -56,16 +71,22 @@ fn page(
 ) -> Result<Vec<u8>, Failure> {
     let document = sweep_document_with_orbitals(sweep, &provenance(geometry, numbering))
         .map_err(|error| Failure::running(error.to_string()))?;
-    let page = sweep_page(&document, figure).map_err(|error| Failure::request(error.to_string()))?;
+    let page =
+        sweep_page(&document, figure).map_err(|error| Failure::request(error.to_string()))?;
     Ok(page.into_bytes())
 }
 
 /// Runs on a pool of its own when a number of threads is asked for.
-fn in_pool<T: Send>(jobs: Option<usize>, work: impl FnOnce() -> T + Send) -> Result<T, Failure> {
+pub(crate) fn in_pool<T: Send>(
+    jobs: Option<usize>,
+    work: impl FnOnce() -> T + Send,
+) -> Result<T, Failure> {
     let Some(jobs) = jobs else { return Ok(work()) };
     if !(1..=1024).contains(&jobs) {
-        return Err(Failure::request(format!("--jobs {jobs}: not a usable number of threads"))
-            .fix("give a number from 1 to 1024"));
+        return Err(
+            Failure::request(format!("--jobs {jobs}: not a usable number of threads"))
+                .fix("give a number from 1 to 1024"),
+        );
     }
     let pool = rayon::ThreadPoolBuilder::new()
         .num_threads(jobs)

@@ -200,7 +200,9 @@ pub struct Certificate {
 }
 
 /// Kinds of evidence, strongest first.
-#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Serialize, Deserialize, JsonSchema)]
+#[derive(
+    Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Serialize, Deserialize, JsonSchema,
+)]
 #[serde(rename_all = "lowercase")]
 pub enum CertificateKind {
     /// Energy order within an irrep of the path group (von Neumann and Wigner 1929).

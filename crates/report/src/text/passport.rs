@@ -15,8 +15,14 @@ pub fn passport_text(document: &SweepDocument, options: &TextOptions) -> String 
     let mut out = String::new();
     heading(&mut out, options, &document.molecule, &document.method);
     let symmetry = &document.symmetry;
-    options.paragraph(&mut out, &format!("path group {}; {}", symmetry.path_group, symmetry.axes));
-    for (title, valence) in [("core orbitals counted", false), ("valence levels only", true)] {
+    options.paragraph(
+        &mut out,
+        &format!("path group {}; {}", symmetry.path_group, symmetry.axes),
+    );
+    for (title, valence) in [
+        ("core orbitals counted", false),
+        ("valence levels only", true),
+    ] {
         out.push_str(&format!("\n{title}\n"));
         out.push_str(&names(document, valence, options).render(usize::MAX));
     }
@@ -39,13 +45,21 @@ fn names(document: &SweepDocument, valence: bool, options: &TextOptions) -> Tabl
             .map(|(index, _)| index)
             .collect()
     });
-    let unit = document.coordinates.first().map(|coordinate| coordinate.unit);
+    let unit = document
+        .coordinates
+        .first()
+        .map(|coordinate| coordinate.unit);
     let place = |at: Option<f64>, group: &str| {
-        let at = at.zip(unit).map(|(at, unit)| value_with_unit(at, unit)).unwrap_or_default();
+        let at = at
+            .zip(unit)
+            .map(|(at, unit)| value_with_unit(at, unit))
+            .unwrap_or_default();
         format!("{group} {at}")
     };
     let group = |point: Option<&crate::document::Point>| {
-        point.map(|point| point.point_group.clone()).unwrap_or_default()
+        point
+            .map(|point| point.point_group.clone())
+            .unwrap_or_default()
     };
     let mut heads = vec![
         document.symmetry.path_group.clone(),
@@ -57,7 +71,10 @@ fn names(document: &SweepDocument, valence: bool, options: &TextOptions) -> Tabl
         heads.push(place(Some(label.at.get()), &label.point_group));
     }
     heads.push(place(ends.last().copied(), &group(document.points.last())));
-    let columns: Vec<(&str, Align)> = heads.iter().map(|head| (head.as_str(), Align::Left)).collect();
+    let columns: Vec<(&str, Align)> = heads
+        .iter()
+        .map(|head| (head.as_str(), Align::Left))
+        .collect();
     let mut table = Table::new(&columns);
     for line in lines.iter().rev() {
         let passport = &line.passport;
@@ -69,7 +86,11 @@ fn names(document: &SweepDocument, valence: bool, options: &TextOptions) -> Tabl
         ];
         for &index in &between {
             let label = passport.special.get(index);
-            cells.push(label.map(|label| pick(&label.label, &label.valence_label)).unwrap_or_default());
+            cells.push(
+                label
+                    .map(|label| pick(&label.label, &label.valence_label))
+                    .unwrap_or_default(),
+            );
         }
         cells.push(pick(&passport.end, &passport.end_valence));
         table.row(cells);
@@ -85,10 +106,17 @@ mod tests {
     #[test]
     fn both_numberings_and_all_groups() {
         let text = passport_text(&synthetic::hydrogen_sulfide(), &TextOptions::default());
-        for word in ["other axes", "core orbitals counted", "valence levels only", "C2v"] {
+        for word in [
+            "other axes",
+            "core orbitals counted",
+            "valence levels only",
+            "C2v",
+        ] {
             assert!(text.contains(word), "{text}");
         }
-        let names = text.lines().filter(|line| line.starts_with("5a₁") || line.starts_with("2a₁"));
+        let names = text
+            .lines()
+            .filter(|line| line.starts_with("5a₁") || line.starts_with("2a₁"));
         assert!(names.count() >= 2, "{text}");
     }
 }
