@@ -8,6 +8,7 @@ use clap::{Args, Parser, Subcommand, ValueEnum};
 const EXAMPLES: &str = "\
 Examples:
   orbend sweep SiF2 --bend 2-1-3=80..180:2 --out sif2.svg
+  orbend shape SiF2 CF2 NF2
   orbend levels PF3
   orbend params Si F
 
@@ -34,6 +35,8 @@ pub(crate) enum Command {
     Levels(LevelsArguments),
     /// The correlation (Walsh) diagram along a coordinate, or a grid over two
     Sweep(SweepArguments),
+    /// The shape of a molecule, or of a series, with its reasons and its doubts
+    Shape(ShapeArguments),
     /// The parameter values in use, each with its source
     Params(ParamsArguments),
     /// Print a completion script for a shell
@@ -73,6 +76,48 @@ pub(crate) struct SweepArguments {
     /// Every line's names along the path instead of the usual text
     #[arg(long, conflicts_with = "json")]
     pub(crate) passport: bool,
+    /// Threads; the output is the same bytes for every number
+    #[arg(long, value_name = "N")]
+    pub(crate) jobs: Option<usize>,
+}
+
+#[derive(Debug, Args)]
+pub(crate) struct ShapeArguments {
+    /// Files (XYZ, extended XYZ), `-`, or formulas; several make a series
+    #[arg(required = true)]
+    pub(crate) geometries: Vec<String>,
+    /// Charge of the molecule
+    #[arg(long, value_name = "Q", allow_hyphen_values = true)]
+    pub(crate) charge: Option<i32>,
+    /// A series of charges of the same atoms: -1..+2
+    #[arg(long, value_name = "FROM..TO", allow_hyphen_values = true, conflicts_with = "charge")]
+    pub(crate) charges: Option<String>,
+    /// Unpaired electrons, or `all` fillings within 10 eV [default: the lowest possible]
+    #[arg(long, value_name = "N|all")]
+    pub(crate) unpaired: Option<String>,
+    /// An explicit configuration of valence levels: "2a1:2 1b2:2 3a1:1 1b1:1"
+    #[arg(long, value_name = "CONFIGURATION")]
+    pub(crate) occupy: Option<String>,
+    /// The atom about which the shape is judged, counted from 1 [default: the only one possible]
+    #[arg(long, value_name = "ATOM")]
+    pub(crate) centre: Option<usize>,
+    /// Parameter set, or a TOML file that overlays the default set
+    #[arg(long, value_name = "SET|FILE")]
+    pub(crate) params: Option<String>,
+    /// A named variant of one element's values: S:B (may be repeated)
+    #[arg(long, value_name = "ELEMENT:VARIANT")]
+    pub(crate) variant: Vec<String>,
+    /// Bond length in an ideal geometry, Å: Si-F=1.59 (may be repeated)
+    #[arg(long, value_name = "A-B=LENGTH")]
+    pub(crate) bond: Vec<String>,
+    /// Unit of the numbers in a geometry file
+    #[arg(long, value_enum, default_value_t = UnitChoice::Angstrom)]
+    pub(crate) unit: UnitChoice,
+    /// How far atoms may be from a symmetry operation, Å
+    #[arg(long, value_name = "Å", default_value_t = 0.001)]
+    pub(crate) tolerance: f64,
+    #[command(flatten)]
+    pub(crate) output: OutputArguments,
     /// Threads; the output is the same bytes for every number
     #[arg(long, value_name = "N")]
     pub(crate) jobs: Option<usize>,

@@ -57,6 +57,7 @@ fn run(arguments: &Arguments) -> Result<(), Failure> {
     match &arguments.command {
         Command::Levels(arguments) => commands::levels::run(arguments),
         Command::Sweep(arguments) => commands::sweep::run(arguments),
+        Command::Shape(arguments) => commands::shape::run(arguments),
         Command::Params(arguments) => commands::params::run(arguments),
         Command::Completions { shell } => {
             let mut script = Vec::new();

@@ -151,7 +151,7 @@ pub fn levels_document(
     })
 }
 
-fn molecule_record(plan: &SweepPlan, provenance: &Provenance) -> Result<MoleculeRecord, NotFinite> {
+pub(crate) fn molecule_record(plan: &SweepPlan, provenance: &Provenance) -> Result<MoleculeRecord, NotFinite> {
     let molecule = plan.molecule();
     let electrons = plan.electrons();
     let positions = molecule
@@ -184,7 +184,7 @@ fn molecule_record(plan: &SweepPlan, provenance: &Provenance) -> Result<Molecule
     })
 }
 
-fn method_record(plan: &SweepPlan, provenance: &Provenance) -> Result<Method, NotFinite> {
+pub(crate) fn method_record(plan: &SweepPlan, provenance: &Provenance) -> Result<Method, NotFinite> {
     let request = plan.request();
     let mut elements = request.molecule.elements.clone();
     elements.sort();
@@ -237,7 +237,7 @@ pub(crate) fn shell_values(
     })
 }
 
-fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFinite> {
+pub(crate) fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFinite> {
     let path = plan.path();
     let kind = match &plan.request().route {
         Route::Coordinates => None,
@@ -530,7 +530,7 @@ fn overlap_populations(populations: &Populations) -> Result<Vec<OverlapPopulatio
     Ok(records)
 }
 
-fn warnings(plan: &SweepPlan, provenance: &Provenance) -> Vec<Warning> {
+pub(crate) fn warnings(plan: &SweepPlan, provenance: &Provenance) -> Vec<Warning> {
     plan.notices()
         .iter()
         .map(|notice| Warning {

@@ -19,6 +19,7 @@ mod from_parameters;
 mod from_scan;
 mod from_scan_lines;
 mod from_scan_orbitals;
+mod from_shape;
 mod lettering;
 mod page;
 #[cfg(test)]
@@ -29,10 +30,11 @@ pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
 pub use figure::{
     ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering, Theme,
-    levels_figure, sweep_figure,
+    levels_figure, shape_figure, sweep_figure,
 };
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
 pub use from_scan_orbitals::sweep_document_with_orbitals;
+pub use from_shape::shape_document;
 pub use page::{PageError, sweep_page};
-pub use text::{TextOptions, levels_text, params_text, passport_text, sweep_text};
+pub use text::{TextOptions, levels_text, params_text, passport_text, shape_text, sweep_text};

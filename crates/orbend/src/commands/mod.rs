@@ -4,6 +4,7 @@ mod geometry_text;
 pub(crate) mod levels;
 pub(crate) mod params;
 mod route;
+pub(crate) mod shape;
 pub(crate) mod sweep;
 
 use std::io::IsTerminal;

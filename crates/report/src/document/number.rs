@@ -47,10 +47,7 @@ impl Number {
     ) -> Option<Self> {
         let number = Self::new(value).ok();
         if number.is_none() {
-            missing.push(Missing {
-                path: path.to_owned(),
-                reason: reason.to_owned(),
-            });
+            missing.push(Missing { path: path.to_owned(), reason: reason.to_owned() });
         }
         number
     }

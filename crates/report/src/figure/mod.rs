@@ -10,6 +10,7 @@ mod metadata;
 mod options;
 mod panel;
 pub(crate) mod scale;
+mod series;
 mod sheet;
 mod sum;
 pub(crate) mod sweep;
@@ -22,4 +23,5 @@ pub use ladder::levels_figure;
 pub use options::{
     ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering, Theme,
 };
+pub use series::shape_figure;
 pub use sweep::sweep_figure;

@@ -4,12 +4,14 @@ mod diagram;
 mod levels;
 mod params;
 mod passport;
+mod shape;
 mod sweep;
 mod table;
 
 pub use levels::levels_text;
 pub use params::params_text;
 pub use passport::passport_text;
+pub use shape::shape_text;
 pub use sweep::sweep_text;
 
 use crate::document::{Method, MoleculeRecord, Warning};
@@ -35,12 +37,7 @@ pub struct TextOptions {
 
 impl Default for TextOptions {
     fn default() -> Self {
-        Self {
-            width: 80,
-            unicode: true,
-            drawing: true,
-            numbering: Numbering::Core,
-        }
+        Self { width: 80, unicode: true, drawing: true, numbering: Numbering::Core }
     }
 }
 
@@ -51,11 +48,7 @@ impl TextOptions {
 
     /// A plain label as the terminal can show it.
     fn label(&self, plain: &str) -> String {
-        if self.unicode {
-            Lettering::level(plain).unicode()
-        } else {
-            plain.to_owned()
-        }
+        if self.unicode { Lettering::level(plain).unicode() } else { plain.to_owned() }
     }
 
     /// Words with units as the terminal can show them.
@@ -63,14 +56,8 @@ impl TextOptions {
         if self.unicode {
             return text.to_owned();
         }
-        let plain = text
-            .replace('°', " degree")
-            .replace('Å', "angstrom")
-            .replace('\u{2212}', "-");
-        plain
-            .chars()
-            .map(|c| if c.is_ascii() { c } else { '?' })
-            .collect()
+        let plain = text.replace('°', " degree").replace('Å', "angstrom").replace('\u{2212}', "-");
+        plain.chars().map(|c| if c.is_ascii() { c } else { '?' }).collect()
     }
 
     /// Which label of a pair the numbering asks for; the other one where it is empty.
@@ -102,11 +89,7 @@ fn heading(out: &mut String, options: &TextOptions, molecule: &MoleculeRecord, m
             molecule.valence_electrons
         ),
     );
-    let polarised = if method.polarised_hydrogen {
-        ", H with a 2p shell"
-    } else {
-        ""
-    };
+    let polarised = if method.polarised_hydrogen { ", H with a 2p shell" } else { "" };
     options.paragraph(
         out,
         &format!(

@@ -11,7 +11,7 @@ const SAFETY: f64 = 2.0;
 /// Gaps (eV) up to this are looked at for avoided crossings.
 pub const AVOIDED_GAP_EV: f64 = 1.0;
 /// Gaps (eV) below this count as none: some thousand times the rounding.
-pub(super) const ZERO_EV: f64 = 1e-9;
+pub(crate) const ZERO_EV: f64 = 1e-9;
 
 /// Nodes along the path, in path order, and the energies there.
 pub(super) struct Table {
@@ -24,10 +24,7 @@ impl Table {
     /// Solves the nodes and halves intervals until every pair of levels is
     /// settled or the halvings are used up.
     pub(super) fn new<M: LevelModel>(model: &M, nodes: &[f64]) -> Result<Self, M::Error> {
-        let mut table = Self {
-            at: nodes.to_vec(),
-            energies: solve(model, nodes)?,
-        };
+        let mut table = Self { at: nodes.to_vec(), energies: solve(model, nodes)? };
         let mut open: Vec<bool> = vec![true; nodes.len().saturating_sub(1)];
         for _ in 0..HALVINGS {
             let halved: Vec<bool> = (0..open.len())
@@ -46,9 +43,7 @@ impl Table {
             for (k, row) in table.energies.drain(..).enumerate() {
                 at.push(table.at[k]);
                 energies.push(row);
-                let Some(&halve) = halved.get(k) else {
-                    continue;
-                };
+                let Some(&halve) = halved.get(k) else { continue };
                 next.push(halve);
                 if halve && let Some((middle, row)) = made.next() {
                     at.push(middle);
@@ -118,10 +113,7 @@ fn solve<M: LevelModel>(model: &M, at: &[f64]) -> Result<Vec<Vec<f64>>, M::Error
             |room, batch| {
                 let mut out = vec![0.0; batch.len() * columns];
                 model.energies(room, batch, &mut out)?;
-                Ok(out
-                    .chunks_exact(columns.max(1))
-                    .map(<[f64]>::to_vec)
-                    .collect())
+                Ok(out.chunks_exact(columns.max(1)).map(<[f64]>::to_vec).collect())
             },
         )
         .collect();

@@ -7,6 +7,9 @@ use crate::error::ScanError;
 
 use super::motion::Motion;
 
+/// √3/2.
+const SIN_120: f64 = 0.866_025_403_784_438_6;
+
 /// The centre and its ligands, counted from 0.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub struct Centre {
@@ -152,6 +155,32 @@ impl Centre {
         } else {
             Motion::Pyramid
         }
+    }
+
+    /// Whether the molecule is the centre with single atoms around it.
+    pub(crate) fn is_whole(&self, molecule: &Molecule) -> bool {
+        molecule.len() == self.ligands.len() + 1
+    }
+
+    /// The linear or planar form of such a molecule with its own bond lengths, Å.
+    pub(crate) fn symmetric_form(&self, molecule: &Molecule) -> Vec<[f64; 3]> {
+        let mut positions = vec![[0.0; 3]; molecule.len()];
+        let directions: &[[f64; 3]] = match self.motion() {
+            Motion::Bend => &[[0.0, 0.0, 1.0], [0.0, 0.0, -1.0]],
+            Motion::Pyramid => &[[1.0, 0.0, 0.0], [-0.5, SIN_120, 0.0], [-0.5, -SIN_120, 0.0]],
+        };
+        for (&ligand, direction) in self.ligands.iter().zip(directions) {
+            let length = (0..3)
+                .map(|axis| {
+                    let difference =
+                        molecule.positions[ligand][axis] - molecule.positions[self.atom][axis];
+                    difference * difference
+                })
+                .sum::<f64>()
+                .sqrt();
+            positions[ligand] = direction.map(|component| component * length);
+        }
+        positions
     }
 
     /// Moves each ligand, with what hangs on it, so that its bond is `scale` times as long.

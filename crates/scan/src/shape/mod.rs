@@ -18,6 +18,11 @@
 //! mixing, which the weighted form was made to damp (there water has 131° and H3O⁺ is planar). That
 //! is why the polarised sum with constant K leads and the weighted form stands beside it.
 
+#![allow(
+    clippy::needless_range_loop,
+    reason = "lanes of several arrays share an index"
+)]
+
 mod arguments;
 mod centre;
 mod charge;

@@ -33,8 +33,8 @@ pub struct Evidence {
     pub frontier_single: bool,
     /// Whether all ligands are hydrogen and the centre is in period 1 or 2.
     ///
-    /// Stated class: in a first-row radical AH3 the half-filled line falls, but one electron does
-    /// not pay for the pyramid (CH3, NH3⁺); against a sum that says planar such a line is silent.
+    /// Stated class: in a first-row hydride radical the half-filled line falls, but one electron
+    /// does not pay for the pyramid (CH3, NH3⁺); against a sum that says planar such a line is silent.
     pub light_hydride: bool,
     /// Whether the centre is Ca, Sr or Ba.
     ///

@@ -2,6 +2,7 @@
 
 use orbend_hamiltonian::{Basis, Coupling, Method, ParameterSet};
 
+use crate::error::ScanError;
 use crate::plan::SweepPlan;
 use crate::request::Request;
 
@@ -166,7 +167,15 @@ impl ShapeRequest {
             ..Method::with_coupling(Coupling::Constant)
         };
         request.coordinates = vec![motion.coordinate(centre)?];
-        Ok(request.plan()?)
+        match request.plan() {
+            // In a bent start two ligands may count as bonded (Li···Li in Li₂O): the symmetric form
+            // with the same bond lengths is as good a start.
+            Err(ScanError::Path(_)) if centre.is_whole(&request.molecule) => {
+                request.molecule.positions = centre.symmetric_form(&request.molecule);
+                Ok(request.plan()?)
+            }
+            other => Ok(other?),
+        }
     }
 
     /// The sums in the minimal basis; without hydrogen they are the polarised ones.

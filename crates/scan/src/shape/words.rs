@@ -76,8 +76,11 @@ pub(crate) fn doubts(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String>
         shape
     };
     if evidence.frontier != Favour::Silent && evidence.frontier != reference {
-        let class = if evidence.light_hydride && evidence.frontier_single {
-            "; in a first-row radical AH3 a single electron in that line does not decide"
+        let exempt = evidence.light_hydride
+            && evidence.frontier_single
+            && evidence.frontier == Favour::Distorted;
+        let class = if exempt {
+            "; in a first-row hydride radical a single electron in that line does not decide"
         } else {
             ""
         };
@@ -136,6 +139,12 @@ pub(crate) fn doubts(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String>
             "inverted polarity: the p level of a ligand lies more than {INVERTED_EV} eV above that of the centre"
         ));
     }
+    if let Some((pair, difference)) = most_ionic(verdict).filter(|one| one.1 > IONIC) {
+        out.push(format!(
+            "strongly ionic bond {pair} (electronegativities differ by {difference:.1}): shallow curves \
+             that hang on the charge response"
+        ));
+    }
     if second_order_jahn_teller(verdict) {
         out.push(
             "seven-electron AH3 of a heavier centre: a low-lying antibonding line mixes in on \
@@ -168,6 +177,29 @@ pub(crate) fn doubts(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String>
         );
     }
     out
+}
+
+/// Difference of electronegativities (Pauling) from which on a bond is called strongly ionic.
+const IONIC: f64 = 2.3;
+
+/// The bond of the centre with the largest difference of electronegativities.
+fn most_ionic(verdict: &ShapeVerdict) -> Option<(String, f64)> {
+    let elements = &verdict.plan.molecule().elements;
+    let centre = elements[verdict.centre.atom];
+    let own = centre.electronegativity()?;
+    verdict
+        .centre
+        .ligands
+        .iter()
+        .filter_map(|&ligand| {
+            let element = elements[ligand];
+            let difference = (element.electronegativity()? - own).abs();
+            Some((
+                format!("{}-{}", centre.symbol(), element.symbol()),
+                difference,
+            ))
+        })
+        .max_by(|a, b| a.1.total_cmp(&b.1))
 }
 
 fn second_order_jahn_teller(verdict: &ShapeVerdict) -> bool {
