@@ -73,6 +73,9 @@ pub(crate) struct SweepArguments {
     pub(crate) output: OutputArguments,
     #[command(flatten)]
     pub(crate) figure: FigureArguments,
+    /// Every line's names along the path instead of the usual text
+    #[arg(long, conflicts_with = "json")]
+    pub(crate) passport: bool,
     /// Threads; the output is the same bytes for every number
     #[arg(long, value_name = "N")]
     pub(crate) jobs: Option<usize>,
@@ -135,6 +138,30 @@ pub(crate) struct CoordinateArguments {
     /// Common ligand–centre–ligand angle at a three-coordinate atom, degrees: 1=90..120:1
     #[arg(long, value_name = "A=FROM..TO:STEP", allow_hyphen_values = true)]
     pub(crate) pyramid: Vec<String>,
+    /// Moves in step with the first coordinate: 2-1-3=100..120:2 (as many points)
+    #[arg(long, value_name = "A-B-C=FROM..TO:STEP", allow_hyphen_values = true)]
+    pub(crate) with_bend: Vec<String>,
+    /// Moves in step with the first coordinate: 1-2=1.60..1.55:-0.005
+    #[arg(long, value_name = "A-B=FROM..TO:STEP", allow_hyphen_values = true)]
+    pub(crate) with_stretch: Vec<String>,
+    /// Moves in step with the first coordinate
+    #[arg(long, value_name = "A-B-C-D=FROM..TO:STEP", allow_hyphen_values = true)]
+    pub(crate) with_twist: Vec<String>,
+    /// Moves in step with the first coordinate
+    #[arg(long, value_name = "A=FROM..TO:STEP", allow_hyphen_values = true)]
+    pub(crate) with_pyramid: Vec<String>,
+    /// A CSV table of coordinate values: a heading such as `bend 2-1-3,stretch 1-2`, one row per point
+    #[arg(long, value_name = "FILE", conflicts_with_all = ["toward", "along_mode"])]
+    pub(crate) table: Option<PathBuf>,
+    /// A path from this geometry to that of another file
+    #[arg(long, value_name = "FILE", conflicts_with = "along_mode")]
+    pub(crate) toward: Option<PathBuf>,
+    /// Points of the path to another geometry
+    #[arg(long, value_name = "N", default_value_t = 41)]
+    pub(crate) steps: usize,
+    /// Along the displacement vectors of an extended XYZ file: amplitudes -1..1:0.1
+    #[arg(long, value_name = "FROM..TO:STEP", allow_hyphen_values = true)]
+    pub(crate) along_mode: Option<String>,
     /// Move the named atoms only, not their partners by symmetry
     #[arg(long)]
     pub(crate) alone: bool,
@@ -170,6 +197,9 @@ pub(crate) struct ModelArguments {
     /// Unit of the numbers in a geometry file
     #[arg(long, value_enum, default_value_t = UnitChoice::Angstrom)]
     pub(crate) unit: UnitChoice,
+    /// Move the atoms onto the group that they have within this distance, Å
+    #[arg(long, value_name = "Å")]
+    pub(crate) symmetrize: Option<f64>,
     /// How far atoms may be from a symmetry operation, Å
     #[arg(long, value_name = "Å", default_value_t = 0.001)]
     pub(crate) tolerance: f64,

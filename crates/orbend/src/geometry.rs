@@ -4,9 +4,10 @@ use std::io::Read;
 use std::path::Path;
 
 use orbend_report::{BondLength, Number, Warning};
+use orbend_scan::{ScanError, symmetrized};
 use orbend_structure::{
-    BondOverride, Formula, LengthUnit, Molecule, XyzOptions, ideal_geometry, read_xyz_bytes,
-    write_xyz,
+    Angstrom, BondOverride, Formula, LengthUnit, Molecule, XyzOptions, ideal_geometry,
+    read_xyz_bytes, write_xyz,
 };
 
 use crate::arguments::{ModelArguments, UnitChoice};
@@ -15,6 +16,10 @@ use crate::failure::Failure;
 /// A molecule and how it came about.
 pub(crate) struct Geometry {
     pub(crate) molecule: Molecule,
+    /// All geometries of the file.
+    pub(crate) frames: Vec<Molecule>,
+    /// A displacement vector per atom, where the file has them.
+    pub(crate) displacement: Option<Vec<[f64; 3]>>,
     pub(crate) record: orbend_report::Geometry,
     pub(crate) warnings: Vec<Warning>,
 }
@@ -55,6 +60,22 @@ pub(crate) fn read(word: &str, model: &ModelArguments) -> Result<Geometry, Failu
     }
     if model.unpaired.is_some() {
         geometry.molecule.unpaired = model.unpaired;
+    }
+    let (charge, unpaired) = (geometry.molecule.charge, geometry.molecule.unpaired);
+    for frame in &mut geometry.frames {
+        frame.charge = charge;
+        frame.unpaired = unpaired;
+    }
+    if let Some(tolerance) = model.symmetrize {
+        let fail =
+            |error: ScanError| Failure::request(format!("--symmetrize {tolerance}: {error}"));
+        let (molecule, group, moved) =
+            symmetrized(&geometry.molecule, Angstrom(tolerance)).map_err(fail)?;
+        geometry.molecule = molecule;
+        geometry.warnings.push(Warning {
+            code: "symmetrized".to_owned(),
+            text: format!("atoms moved by up to {moved:.4} Å onto {group}, which the geometry has within {tolerance} Å"),
+        });
     }
     Ok(geometry)
 }
@@ -102,18 +123,21 @@ fn from_bytes(name: &str, bytes: &[u8], model: &ModelArguments) -> Result<Geomet
             text,
         })
         .collect();
-    let more = frames.count();
-    if more > 0 {
+    let mut all = vec![frame.molecule.clone()];
+    all.extend(frames.map(|frame| frame.molecule));
+    if all.len() > 1 {
         warnings.push(Warning {
             code: "first-frame".to_owned(),
             text: format!(
                 "{name} holds {} geometries; the first one is used",
-                more + 1
+                all.len()
             ),
         });
     }
     Ok(Geometry {
         molecule: frame.molecule,
+        frames: all,
+        displacement: frame.displacement,
         record: orbend_report::Geometry {
             origin: if name == "standard input" {
                 name
@@ -165,6 +189,8 @@ fn from_formula(word: &str, model: &ModelArguments) -> Result<Geometry, Failure>
             ],
             bonds,
         },
+        frames: vec![molecule.clone()],
+        displacement: None,
         molecule,
         warnings: Vec::new(),
     })

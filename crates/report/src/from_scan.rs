@@ -2,16 +2,17 @@
 //! made.
 
 use orbend_hamiltonian as hamiltonian;
-use orbend_scan::{MeetingKind, Populations, ScanError, Sweep, SweepPlan};
+use orbend_scan::{Populations, Route, ScanError, Sweep, SweepPlan};
 use orbend_structure::CoordinateKind;
 
 use crate::document::{
     AtomCharge, AtomPosition, BasisFunction, Certificate, CertificateKind, Checked,
-    CoordinateRecord, CoordinateUnit, CrossingKind, CrossingRecord, CrossingSearch, Geometry, LevelRecord, LevelsDocument, LevelsSchema,
+    CoordinateRecord, CoordinateUnit, Geometry, LevelRecord, LevelsDocument, LevelsSchema,
     LineRecord, Method, Missing, MoleculeRecord, MotionKind, NearMiss, NotFinite, Number,
     OverlapPopulation, Passport, Point, Program, ShellPopulation, ShellValues, SpecialLabel,
     SumMinimum, SweepDocument, SweepSchema, SymmetryRecord, Units, Warning,
 };
+use crate::from_scan_lines::{crossing_records, crossing_search, followed_records};
 
 /// What the scan does not know about its input and its reader.
 #[derive(Clone, Debug, Default)]
@@ -34,7 +35,9 @@ pub enum FromScanError {
     #[error(transparent)]
     NotFinite(#[from] NotFinite),
     /// An element is not in the set.
-    #[error("the set `{set}` has no values for {element}; lay a file with its Hii and zeta over the set (--params FILE)")]
+    #[error(
+        "the set `{set}` has no values for {element}; lay a file with its Hii and zeta over the set (--params FILE)"
+    )]
     NoParameters {
         /// Element symbol.
         element: String,
@@ -47,7 +50,10 @@ pub enum FromScanError {
 ///
 /// # Errors
 /// A position or coordinate that is not finite.
-pub fn sweep_document(sweep: &Sweep, provenance: &Provenance) -> Result<SweepDocument, FromScanError> {
+pub fn sweep_document(
+    sweep: &Sweep,
+    provenance: &Provenance,
+) -> Result<SweepDocument, FromScanError> {
     let plan = sweep.plan();
     let mut missing = Vec::new();
     let mut points = (0..sweep.points())
@@ -56,9 +62,28 @@ pub fn sweep_document(sweep: &Sweep, provenance: &Provenance) -> Result<SweepDoc
     let single = plan.path().axes().len() == 1;
     if !single {
         // A grid has no lines that a level could name.
-        points.iter_mut().flat_map(|point| &mut point.levels).for_each(|level| level.line = None);
+        points
+            .iter_mut()
+            .flat_map(|point| &mut point.levels)
+            .for_each(|level| level.line = None);
     }
-    let lines = if single { Some(line_records(sweep)?) } else { None };
+    // With a large group the irreps say which line is which.
+    let group = plan.path_group();
+    let little = single && !group.linear && group.order() <= 2 && sweep.points() > 1;
+    let followed = if little {
+        sweep.followed()?
+    } else {
+        Vec::new()
+    };
+    let mut lines = if single {
+        Some(line_records(sweep)?)
+    } else {
+        None
+    };
+    let followed = followed_records(sweep, &followed)?;
+    for (line, record) in lines.iter_mut().flatten().zip(&followed) {
+        line.certificate = Some(record.certificate.clone());
+    }
     Ok(SweepDocument {
         schema: SweepSchema,
         program: Program::this(),
@@ -71,7 +96,12 @@ pub fn sweep_document(sweep: &Sweep, provenance: &Provenance) -> Result<SweepDoc
         minimum: if single { sum_minimum(&points) } else { None },
         points,
         lines,
-        crossings: if single { Some(crossing_records(sweep)?) } else { None },
+        followed: little.then_some(followed),
+        crossings: if single {
+            Some(crossing_records(sweep)?)
+        } else {
+            None
+        },
         crossing_search: if single { crossing_search(plan)? } else { None },
         warnings: warnings(plan, provenance),
         missing,
@@ -82,7 +112,10 @@ pub fn sweep_document(sweep: &Sweep, provenance: &Provenance) -> Result<SweepDoc
 ///
 /// # Errors
 /// A position that is not finite.
-pub fn levels_document(sweep: &Sweep, provenance: &Provenance) -> Result<LevelsDocument, FromScanError> {
+pub fn levels_document(
+    sweep: &Sweep,
+    provenance: &Provenance,
+) -> Result<LevelsDocument, FromScanError> {
     let plan = sweep.plan();
     let mut missing = Vec::new();
     let mut point = point_record(sweep, 0, &mut missing)?;
@@ -95,7 +128,11 @@ pub fn levels_document(sweep: &Sweep, provenance: &Provenance) -> Result<LevelsD
     for level in &mut point.levels {
         let Some(line) = level.line else { continue };
         let row = orbitals.coefficients.row(line as usize);
-        level.coefficients = Some(row.iter().map(|&c| Number::new(c)).collect::<Result<_, _>>()?);
+        level.coefficients = Some(
+            row.iter()
+                .map(|&c| Number::new(c))
+                .collect::<Result<_, _>>()?,
+        );
         level.populations = Some(shell_populations(plan, &populations, line as usize)?);
     }
     point.charges = Some(charges(plan, &populations)?);
@@ -123,12 +160,20 @@ pub(crate) fn molecule_record(plan: &SweepPlan, provenance: &Provenance) -> Resu
         .zip(&molecule.elements)
         .zip(1..)
         .map(|((&at, element), atom)| {
-            Ok(AtomPosition { atom, element: element.symbol().to_owned(), at: Number::triple(at)? })
+            Ok(AtomPosition {
+                atom,
+                element: element.symbol().to_owned(),
+                at: Number::triple(at)?,
+            })
         })
         .collect::<Result<_, _>>()?;
     Ok(MoleculeRecord {
         formula: molecule.formula(),
-        elements: molecule.elements.iter().map(|element| element.symbol().to_owned()).collect(),
+        elements: molecule
+            .elements
+            .iter()
+            .map(|element| element.symbol().to_owned())
+            .collect(),
         charge: molecule.charge,
         unpaired: electrons.unpaired(),
         valence_electrons: electrons.total(),
@@ -146,7 +191,9 @@ pub(crate) fn method_record(plan: &SweepPlan, provenance: &Provenance) -> Result
     elements.dedup();
     let mut values = Vec::new();
     for element in elements {
-        let Some(parameters) = request.parameters.element(element) else { continue };
+        let Some(parameters) = request.parameters.element(element) else {
+            continue;
+        };
         for shell in parameters.shells() {
             values.push(shell_values(element.symbol(), shell)?);
         }
@@ -157,7 +204,12 @@ pub(crate) fn method_record(plan: &SweepPlan, provenance: &Provenance) -> Result
         coupling: request.method.coupling.name().to_owned(),
         k: Number::new(request.method.k)?,
         polarised_hydrogen: request.method.polarised_hydrogen,
-        numbering: if provenance.valence_numbering { "valence" } else { "core" }.to_owned(),
+        numbering: if provenance.valence_numbering {
+            "valence"
+        } else {
+            "core"
+        }
+        .to_owned(),
         notes: Vec::new(),
         values,
     })
@@ -187,30 +239,70 @@ pub(crate) fn shell_values(
 
 pub(crate) fn coordinate_records(plan: &SweepPlan) -> Result<Vec<CoordinateRecord>, NotFinite> {
     let path = plan.path();
+    let kind = match &plan.request().route {
+        Route::Coordinates => None,
+        Route::Together => (path.axes().len() > 1).then_some(MotionKind::Table),
+        Route::Table { .. } => path
+            .axes()
+            .first()
+            .is_some_and(|axis| axis.unit == "1")
+            .then_some(MotionKind::Table),
+        Route::Frames { .. } => Some(MotionKind::Frames),
+        Route::Toward { .. } => Some(MotionKind::Toward),
+        Route::AlongMode { .. } => Some(MotionKind::Mode),
+    };
     let moved = path.moved_along();
     let described: Vec<&str> = path.describe().lines().collect();
-    path.coordinates()
+    path.axes()
         .iter()
-        .zip(moved)
         .enumerate()
-        .map(|(index, (coordinate, moved))| {
+        .map(|(index, axis)| {
+            let coordinate = if kind.is_none() {
+                path.coordinates().get(index)
+            } else {
+                None
+            };
+            let ends = |at: Option<&f64>| at.map(|&at| Number::new(at)).transpose();
+            let steps = (axis.values.len() as f64 - 1.0).max(1.0);
+            let even = axis
+                .values
+                .last()
+                .zip(axis.values.first())
+                .map(|(to, from)| (to - from).abs() / steps);
             Ok(CoordinateRecord {
-                kind: match coordinate.kind {
-                    CoordinateKind::Bend => MotionKind::Bend,
-                    CoordinateKind::Stretch => MotionKind::Stretch,
-                    CoordinateKind::Twist => MotionKind::Twist,
-                    CoordinateKind::Pyramid => MotionKind::Pyramid,
+                kind: kind.unwrap_or(match coordinate.map(|coordinate| coordinate.kind) {
+                    Some(CoordinateKind::Bend) => MotionKind::Bend,
+                    Some(CoordinateKind::Stretch) => MotionKind::Stretch,
+                    Some(CoordinateKind::Twist) => MotionKind::Twist,
+                    Some(CoordinateKind::Pyramid) => MotionKind::Pyramid,
+                    None => MotionKind::Table,
+                }),
+                atoms: coordinate
+                    .map(|coordinate| numbers(&coordinate.atoms))
+                    .unwrap_or_default(),
+                unit: match axis.unit.as_str() {
+                    "degree" => CoordinateUnit::Degree,
+                    "angstrom" => CoordinateUnit::Angstrom,
+                    _ if kind == Some(MotionKind::Toward) => CoordinateUnit::Share,
+                    _ => CoordinateUnit::Number,
                 },
-                atoms: numbers(&coordinate.atoms),
-                unit: match coordinate.kind {
-                    CoordinateKind::Stretch => CoordinateUnit::Angstrom,
-                    _ => CoordinateUnit::Degree,
+                moved_along: coordinate
+                    .and_then(|_| moved.get(index))
+                    .map(|moved| moved.iter().map(|atoms| numbers(atoms)).collect())
+                    .unwrap_or_default(),
+                from: ends(axis.values.first())?,
+                to: ends(axis.values.last())?,
+                step: match (coordinate, &plan.request().route) {
+                    (Some(_), Route::Table { .. }) => None,
+                    (Some(coordinate), _) => Some(Number::new(coordinate.range.step)?),
+                    (None, _) => even.map(Number::new).transpose()?,
                 },
-                moved_along: moved.iter().map(|atoms| numbers(atoms)).collect(),
-                from: Some(Number::new(coordinate.range.from)?),
-                to: Some(Number::new(coordinate.range.to)?),
-                step: Some(Number::new(coordinate.range.step)?),
-                text: described.get(index).copied().unwrap_or_default().to_owned(),
+                text: match plan.request().route {
+                    Route::Coordinates => {
+                        described.get(index).copied().unwrap_or_default().to_owned()
+                    }
+                    _ => path.describe().to_owned(),
+                },
             })
         })
         .collect()
@@ -241,7 +333,11 @@ fn symmetry_record(plan: &SweepPlan) -> Result<SymmetryRecord, NotFinite> {
     })
 }
 
-fn point_record(sweep: &Sweep, index: usize, missing: &mut Vec<Missing>) -> Result<Point, FromScanError> {
+fn point_record(
+    sweep: &Sweep,
+    index: usize,
+    missing: &mut Vec<Missing>,
+) -> Result<Point, FromScanError> {
     let plan = sweep.plan();
     let point = sweep.point(index)?;
     let levels = point
@@ -267,10 +363,23 @@ fn point_record(sweep: &Sweep, index: usize, missing: &mut Vec<Missing>) -> Resu
         })
         .collect::<Result<_, NotFinite>>()?;
     Ok(Point {
-        at: point.at.iter().map(|&value| Number::new(value)).collect::<Result<_, _>>()?,
-        positions: point.positions.iter().map(|&p| Number::triple(p)).collect::<Result<_, _>>()?,
+        at: point
+            .at
+            .iter()
+            .map(|&value| Number::new(value))
+            .collect::<Result<_, _>>()?,
+        positions: point
+            .positions
+            .iter()
+            .map(|&p| Number::triple(p))
+            .collect::<Result<_, _>>()?,
         point_group: point.point_group,
-        sum: Number::or_missing(point.sum, &format!("/points/{index}/sum"), "not a finite number", missing),
+        sum: Number::or_missing(
+            point.sum,
+            &format!("/points/{index}/sum"),
+            "not a finite number",
+            missing,
+        ),
         smallest_overlap_eigenvalue: Number::or_missing(
             point.smallest_overlap_eigenvalue,
             &format!("/points/{index}/smallest_overlap_eigenvalue"),
@@ -329,46 +438,13 @@ fn line_records(sweep: &Sweep) -> Result<Vec<LineRecord>, FromScanError> {
                     .into_iter()
                     .map(|energy| Ok(Some(Number::new(energy)?)))
                     .collect::<Result<_, NotFinite>>()?,
-                certificate: Some(Certificate { kind: CertificateKind::Symmetry, intervals: Vec::new() }),
+                certificate: Some(Certificate {
+                    kind: CertificateKind::Symmetry,
+                    intervals: Vec::new(),
+                }),
             })
         })
         .collect()
-}
-
-fn crossing_records(sweep: &Sweep) -> Result<Vec<CrossingRecord>, FromScanError> {
-    let lines = sweep.plan().lines();
-    sweep
-        .crossings()?
-        .into_iter()
-        .map(|crossing| {
-            let (a, b) = crossing.lines;
-            let number = |value: Option<f64>| value.map(Number::new).transpose();
-            Ok(CrossingRecord {
-                kind: match crossing.kind {
-                    MeetingKind::Crossing => CrossingKind::Crossing,
-                    MeetingKind::Avoided => CrossingKind::Avoided,
-                    MeetingKind::Touching => CrossingKind::Touching,
-                },
-                lines: [a as u32, b as u32],
-                labels: [lines[a].name.plain.clone(), lines[b].name.plain.clone()],
-                at: Number::new(crossing.at)?,
-                energy: Some(Number::new(crossing.energy)?),
-                gap: number(crossing.gap)?,
-                exchange: number(crossing.exchange)?,
-                changes_configuration: crossing.changes_configuration,
-            })
-        })
-        .collect()
-}
-
-fn crossing_search(plan: &SweepPlan) -> Result<Option<CrossingSearch>, NotFinite> {
-    let [axis] = plan.path().axes() else { return Ok(None) };
-    let (low, high) = axis.limits();
-    Ok(Some(CrossingSearch {
-        spacing: Number::new(orbend_scan::resolution(&axis.unit, high - low))?,
-        largest_gap: Number::new(orbend_scan::AVOIDED_GAP_EV)?,
-        smallest_exchange: Number::new(orbend_scan::SMALLEST_EXCHANGE)?,
-    }))
 }
 
 /// The lowest sum among the points.
@@ -393,7 +469,8 @@ pub(crate) fn basis_functions(plan: &SweepPlan) -> Vec<BasisFunction> {
         .map(|function| BasisFunction {
             atom: function.atom as u32 + 1,
             shell: shell_name(function.n, function.l),
-            function: orbend_overlap::harmonics::function_name(function.l, function.index).to_owned(),
+            function: orbend_overlap::harmonics::function_name(function.l, function.index)
+                .to_owned(),
         })
         .collect()
 }
@@ -430,7 +507,11 @@ fn charges(plan: &SweepPlan, populations: &Populations) -> Result<Vec<AtomCharge
         .zip(&populations.charges)
         .zip(1..)
         .map(|((element, &charge), atom)| {
-            Ok(AtomCharge { atom, element: element.symbol().to_owned(), charge: Number::new(charge)? })
+            Ok(AtomCharge {
+                atom,
+                element: element.symbol().to_owned(),
+                charge: Number::new(charge)?,
+            })
         })
         .collect()
 }
@@ -452,7 +533,10 @@ fn overlap_populations(populations: &Populations) -> Result<Vec<OverlapPopulatio
 pub(crate) fn warnings(plan: &SweepPlan, provenance: &Provenance) -> Vec<Warning> {
     plan.notices()
         .iter()
-        .map(|notice| Warning { code: notice.code.to_owned(), text: notice.text.clone() })
+        .map(|notice| Warning {
+            code: notice.code.to_owned(),
+            text: notice.text.clone(),
+        })
         .chain(provenance.warnings.iter().cloned())
         .collect()
 }

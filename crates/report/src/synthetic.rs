@@ -92,7 +92,11 @@ fn molecule(frame: &Frame<'_>) -> MoleculeRecord {
         core_orbitals: 5,
         title: String::new(),
         positions: vec![],
-        geometry: Geometry { origin: "formula".into(), notes: vec![], bonds: vec![] },
+        geometry: Geometry {
+            origin: "formula".into(),
+            notes: vec![],
+            bonds: vec![],
+        },
     }
 }
 
@@ -153,6 +157,7 @@ pub(crate) fn sweep(frame: &Frame<'_>, xs: &[f64], sketches: &[Sketch]) -> Sweep
         lines: Some(lines),
         crossings: Some(crossings),
         crossing_search: None,
+        followed: None,
         minimum: None,
         warnings: vec![],
         missing: vec![],
@@ -161,7 +166,12 @@ pub(crate) fn sweep(frame: &Frame<'_>, xs: &[f64], sketches: &[Sketch]) -> Sweep
 
 fn point(frame: &Frame<'_>, xs: &[f64], k: usize, lines: &[LineRecord]) -> Point {
     let mut order: Vec<&LineRecord> = lines.iter().collect();
-    order.sort_by(|a, b| a.energies[k].unwrap().get().total_cmp(&b.energies[k].unwrap().get()));
+    order.sort_by(|a, b| {
+        a.energies[k]
+            .unwrap()
+            .get()
+            .total_cmp(&b.energies[k].unwrap().get())
+    });
     let mut left = f64::from(frame.electrons);
     let mut levels = Vec::new();
     let mut sum = 0.0;
@@ -215,8 +225,7 @@ fn point(frame: &Frame<'_>, xs: &[f64], k: usize, lines: &[LineRecord]) -> Point
 }
 
 fn meetings(xs: &[f64], a: &LineRecord, b: &LineRecord) -> Vec<CrossingRecord> {
-    let difference =
-        |k: usize| a.energies[k].unwrap().get() - b.energies[k].unwrap().get();
+    let difference = |k: usize| a.energies[k].unwrap().get() - b.energies[k].unwrap().get();
     let record = |kind, at, energy, gap| CrossingRecord {
         exchange: None,
         changes_configuration: false,
@@ -233,15 +242,28 @@ fn meetings(xs: &[f64], a: &LineRecord, b: &LineRecord) -> Vec<CrossingRecord> {
         if before * after < 0.0 && a.irrep != b.irrep {
             let t = before / (before - after);
             let at = xs[k - 1] + t * (xs[k] - xs[k - 1]);
-            let (low, high) = (a.energies[k - 1].unwrap().get(), a.energies[k].unwrap().get());
-            found.push(record(CrossingKind::Crossing, at, Some(n(low + t * (high - low))), None));
+            let (low, high) = (
+                a.energies[k - 1].unwrap().get(),
+                a.energies[k].unwrap().get(),
+            );
+            found.push(record(
+                CrossingKind::Crossing,
+                at,
+                Some(n(low + t * (high - low))),
+                None,
+            ));
         }
         let local = k + 1 < xs.len()
             && difference(k).abs() < difference(k - 1).abs()
             && difference(k).abs() < difference(k + 1).abs()
             && difference(k).abs() < 1.5;
         if a.irrep == b.irrep && local {
-            found.push(record(CrossingKind::Avoided, xs[k], None, Some(n(difference(k).abs()))));
+            found.push(record(
+                CrossingKind::Avoided,
+                xs[k],
+                None,
+                Some(n(difference(k).abs())),
+            ));
         }
     }
     found
@@ -271,12 +293,32 @@ pub(crate) fn hydrogen_sulfide() -> SweepDocument {
         electrons: 8,
     };
     let lines = [
-        sketch(("4a1", "1a1", "a1"), ("4a1", "4sigma_g+"), shape(&xs, &[-23.4, 1.9, -0.6])),
-        sketch(("2b2", "1b2", "b2"), ("2b2", "3sigma_u+"), shape(&xs, &[-13.1, -5.2, 2.6])),
-        sketch(("5a1", "2a1", "a1"), ("5a1", "2pi_u"), shape(&xs, &[-15.4, 1.2, 1.4, 1.8])),
+        sketch(
+            ("4a1", "1a1", "a1"),
+            ("4a1", "4sigma_g+"),
+            shape(&xs, &[-23.4, 1.9, -0.6]),
+        ),
+        sketch(
+            ("2b2", "1b2", "b2"),
+            ("2b2", "3sigma_u+"),
+            shape(&xs, &[-13.1, -5.2, 2.6]),
+        ),
+        sketch(
+            ("5a1", "2a1", "a1"),
+            ("5a1", "2pi_u"),
+            shape(&xs, &[-15.4, 1.2, 1.4, 1.8]),
+        ),
         sketch(("2b1", "1b1", "b1"), ("2b1", "2pi_u"), shape(&xs, &[-11.0])),
-        sketch(("6a1", "3a1", "a1"), ("6a1", "5sigma_g+"), shape(&xs, &[-1.0, 5.2, -1.9, 1.1])),
-        sketch(("3b2", "2b2", "b2"), ("3b2", "4sigma_u+"), shape(&xs, &[-3.5, 9.0, -1.0, 3.5])),
+        sketch(
+            ("6a1", "3a1", "a1"),
+            ("6a1", "5sigma_g+"),
+            shape(&xs, &[-1.0, 5.2, -1.9, 1.1]),
+        ),
+        sketch(
+            ("3b2", "2b2", "b2"),
+            ("3b2", "4sigma_u+"),
+            shape(&xs, &[-3.5, 9.0, -1.0, 3.5]),
+        ),
     ];
     sweep(&frame, &xs, &lines)
 }
@@ -294,18 +336,62 @@ pub(crate) fn silicon_difluoride() -> SweepDocument {
         electrons: 18,
     };
     let lines = [
-        sketch(("5a1", "1a1", "a1"), ("5a1", "5sigma_g+"), shape(&xs, &[-40.9, 0.1])),
-        sketch(("3b2", "1b2", "b2"), ("3b2", "4sigma_u+"), shape(&xs, &[-40.3, -0.3])),
-        sketch(("6a1", "2a1", "a1"), ("6a1", "6sigma_g+"), shape(&xs, &[-20.2, 0.9, -0.2])),
-        sketch(("4b2", "2b2", "b2"), ("4b2", "5sigma_u+"), shape(&xs, &[-19.2, -0.8, 0.3])),
-        sketch(("2b1", "1b1", "b1"), ("2b1", "2pi_u"), shape(&xs, &[-18.9, 0.1])),
-        sketch(("7a1", "3a1", "a1"), ("7a1", "2pi_u"), shape(&xs, &[-18.6, 0.2, -0.4])),
-        sketch(("5b2", "3b2", "b2"), ("5b2", "1pi_g"), shape(&xs, &[-17.7, -0.7, 0.3])),
+        sketch(
+            ("5a1", "1a1", "a1"),
+            ("5a1", "5sigma_g+"),
+            shape(&xs, &[-40.9, 0.1]),
+        ),
+        sketch(
+            ("3b2", "1b2", "b2"),
+            ("3b2", "4sigma_u+"),
+            shape(&xs, &[-40.3, -0.3]),
+        ),
+        sketch(
+            ("6a1", "2a1", "a1"),
+            ("6a1", "6sigma_g+"),
+            shape(&xs, &[-20.2, 0.9, -0.2]),
+        ),
+        sketch(
+            ("4b2", "2b2", "b2"),
+            ("4b2", "5sigma_u+"),
+            shape(&xs, &[-19.2, -0.8, 0.3]),
+        ),
+        sketch(
+            ("2b1", "1b1", "b1"),
+            ("2b1", "2pi_u"),
+            shape(&xs, &[-18.9, 0.1]),
+        ),
+        sketch(
+            ("7a1", "3a1", "a1"),
+            ("7a1", "2pi_u"),
+            shape(&xs, &[-18.6, 0.2, -0.4]),
+        ),
+        sketch(
+            ("5b2", "3b2", "b2"),
+            ("5b2", "1pi_g"),
+            shape(&xs, &[-17.7, -0.7, 0.3]),
+        ),
         sketch(("1a2", "1a2", "a2"), ("1a2", "1pi_g"), shape(&xs, &[-18.1])),
-        sketch(("8a1", "4a1", "a1"), ("8a1", "3pi_u"), shape(&xs, &[-13.9, 1.4, 3.6])),
-        sketch(("3b1", "2b1", "b1"), ("3b1", "3pi_u"), shape(&xs, &[-8.3, -0.6])),
-        sketch(("9a1", "5a1", "a1"), ("9a1", "7sigma_g+"), shape(&xs, &[1.8, 5.0, 7.0])),
-        sketch(("6b2", "4b2", "b2"), ("6b2", "6sigma_u+"), shape(&xs, &[4.0, 9.0, 12.0])),
+        sketch(
+            ("8a1", "4a1", "a1"),
+            ("8a1", "3pi_u"),
+            shape(&xs, &[-13.9, 1.4, 3.6]),
+        ),
+        sketch(
+            ("3b1", "2b1", "b1"),
+            ("3b1", "3pi_u"),
+            shape(&xs, &[-8.3, -0.6]),
+        ),
+        sketch(
+            ("9a1", "5a1", "a1"),
+            ("9a1", "7sigma_g+"),
+            shape(&xs, &[1.8, 5.0, 7.0]),
+        ),
+        sketch(
+            ("6b2", "4b2", "b2"),
+            ("6b2", "6sigma_u+"),
+            shape(&xs, &[4.0, 9.0, 12.0]),
+        ),
     ];
     let mut document = sweep(&frame, &xs, &lines);
     document.molecule.title = "SiF2".into();
@@ -324,18 +410,49 @@ pub(crate) fn boron_trifluoride() -> SweepDocument {
         groups: ("C3v", "C3v", "D3h"),
         electrons: 24,
     };
-    let set = |names, ends, energies| Sketch { degeneracy: 2, ..sketch(names, ends, energies) };
+    let set = |names, ends, energies| Sketch {
+        degeneracy: 2,
+        ..sketch(names, ends, energies)
+    };
     let lines = [
-        sketch(("3a1", "1a1", "a1"), ("3a1", "3a1'"), shape(&xs, &[-41.9, 0.2])),
+        sketch(
+            ("3a1", "1a1", "a1"),
+            ("3a1", "3a1'"),
+            shape(&xs, &[-41.9, 0.2]),
+        ),
         set(("2e", "1e", "e"), ("2e", "2e'"), shape(&xs, &[-40.2, -0.4])),
-        sketch(("4a1", "2a1", "a1"), ("4a1", "4a1'"), shape(&xs, &[-20.7, 0.3])),
+        sketch(
+            ("4a1", "2a1", "a1"),
+            ("4a1", "4a1'"),
+            shape(&xs, &[-20.7, 0.3]),
+        ),
         set(("3e", "2e", "e"), ("3e", "3e'"), shape(&xs, &[-18.7, -0.9])),
-        sketch(("5a1", "3a1", "a1"), ("5a1", "1a2''"), shape(&xs, &[-19.4, 0.4, -0.3])),
+        sketch(
+            ("5a1", "3a1", "a1"),
+            ("5a1", "1a2''"),
+            shape(&xs, &[-19.4, 0.4, -0.3]),
+        ),
         set(("4e", "3e", "e"), ("4e", "4e'"), shape(&xs, &[-17.9, -0.2])),
-        set(("5e", "4e", "e"), ("5e", "1e''"), shape(&xs, &[-17.4, -0.4])),
-        sketch(("1a2", "1a2", "a2"), ("1a2", "1a2'"), shape(&xs, &[-16.9, -0.3])),
-        sketch(("6a1", "4a1", "a1"), ("6a1", "2a2''"), shape(&xs, &[-10.8, 3.0, 1.1])),
-        set(("6e", "5e", "e"), ("6e", "5e'"), shape(&xs, &[4.0, 6.0, 5.0])),
+        set(
+            ("5e", "4e", "e"),
+            ("5e", "1e''"),
+            shape(&xs, &[-17.4, -0.4]),
+        ),
+        sketch(
+            ("1a2", "1a2", "a2"),
+            ("1a2", "1a2'"),
+            shape(&xs, &[-16.9, -0.3]),
+        ),
+        sketch(
+            ("6a1", "4a1", "a1"),
+            ("6a1", "2a2''"),
+            shape(&xs, &[-10.8, 3.0, 1.1]),
+        ),
+        set(
+            ("6e", "5e", "e"),
+            ("6e", "5e'"),
+            shape(&xs, &[4.0, 6.0, 5.0]),
+        ),
     ];
     sweep(&frame, &xs, &lines)
 }
@@ -381,14 +498,23 @@ pub(crate) fn random(seed: u64) -> SweepDocument {
     let from = random.between(0.5, 120.0);
     let range = random.between(0.2, 120.0);
     let count = 2 + random.below(60) as usize;
-    let xs: Vec<f64> =
-        (0..count).map(|k| from + range * k as f64 / (count - 1) as f64).collect();
+    let xs: Vec<f64> = (0..count)
+        .map(|k| from + range * k as f64 / (count - 1) as f64)
+        .collect();
     let angles = random.below(2) == 0;
     let frame = Frame {
         formula: ["H2S", "C6H6", "CClF3", "C12H22O11"][random.below(4) as usize],
         elements: &["S", "H", "H"],
-        kind: if angles { MotionKind::Bend } else { MotionKind::Stretch },
-        unit: if angles { CoordinateUnit::Degree } else { CoordinateUnit::Angstrom },
+        kind: if angles {
+            MotionKind::Bend
+        } else {
+            MotionKind::Stretch
+        },
+        unit: if angles {
+            CoordinateUnit::Degree
+        } else {
+            CoordinateUnit::Angstrom
+        },
         atoms: &[2, 1, 3],
         groups: ("C2v", "C1", "Dinfh"),
         electrons: 1 + random.below(40) as u32,
@@ -401,9 +527,15 @@ pub(crate) fn random(seed: u64) -> SweepDocument {
             let label = format!("{}{irrep}", number + 1);
             let base = random.between(-30.0, 10.0) - 12.0 * random.below(2) as f64;
             let bends = [base, random.between(-8.0, 8.0), random.between(-9.0, 9.0)];
-            let ends = (format!("{}{irrep}", number + 1), format!("{}{end}", number + 1));
+            let ends = (
+                format!("{}{irrep}", number + 1),
+                format!("{}{end}", number + 1),
+            );
             let energies = shape(&xs, &bends);
-            Sketch { degeneracy, ..sketch((&label, &label, irrep), (&ends.0, &ends.1), energies) }
+            Sketch {
+                degeneracy,
+                ..sketch((&label, &label, irrep), (&ends.0, &ends.1), energies)
+            }
         })
         .collect();
     sweep(&frame, &xs, &lines)

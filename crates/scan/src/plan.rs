@@ -2,7 +2,7 @@
 //! symmetry-adapted combinations and names, all fixed once.
 
 use orbend_hamiltonian::{Basis, HamiltonianPlan};
-use orbend_structure::{Element, Molecule, PathPlan};
+use orbend_structure::{Element, FrameValues, Molecule, PathPlan};
 use orbend_symmetry::{
     AdaptedBasis, GroupScreen, NearMiss, Nucleus, OrbitalShell, PointGroup, path_group, symmetrize,
 };
@@ -11,7 +11,7 @@ use crate::error::ScanError;
 use crate::filling::{Electrons, Filling};
 use crate::line::{LineHead, line_heads};
 use crate::naming::Name;
-use crate::request::{Numbering, Request};
+use crate::request::{Numbering, Request, Route};
 use crate::solve::Workspace;
 
 /// Atoms farther than this (Å) from their symmetric places are moved onto them
@@ -63,7 +63,11 @@ impl SweepPlan {
     /// electrons that do not fit, a geometry without a usable overlap matrix.
     pub fn new(request: &Request) -> Result<Self, ScanError> {
         let mut notices = Vec::new();
-        let basis = Basis::new(&request.molecule.elements, &request.parameters, &request.method)?;
+        let basis = Basis::new(
+            &request.molecule.elements,
+            &request.parameters,
+            &request.method,
+        )?;
         let electrons = Electrons::new(
             basis.valence_electrons,
             request.molecule.charge,
@@ -74,9 +78,13 @@ impl SweepPlan {
 
         let mut molecule = request.molecule.clone();
         let tolerance = request.tolerance.0;
-        let start = orbend_symmetry::find(&nuclei(&molecule.elements, &molecule.positions), tolerance)?;
+        let start =
+            orbend_symmetry::find(&nuclei(&molecule.elements, &molecule.positions), tolerance)?;
         if start.deviation_angstrom > EXACT_ANGSTROM {
-            let (places, moved) = symmetrize(&nuclei(&molecule.elements, &molecule.positions), &start.group);
+            let (places, moved) = symmetrize(
+                &nuclei(&molecule.elements, &molecule.positions),
+                &start.group,
+            );
             molecule.positions = places.iter().map(|nucleus| nucleus.position).collect();
             notices.push(Notice {
                 code: "moved-onto-symmetry",
@@ -86,26 +94,41 @@ impl SweepPlan {
                 ),
             });
         }
-        let permutations: Vec<Vec<usize>> =
-            start.group.operations.iter().map(|operation| operation.permutation.clone()).collect();
-        let path = if request.coordinates.is_empty() {
-            PathPlan::fixed(&molecule)?
-        } else {
-            PathPlan::new(&molecule, &request.coordinates, &permutations)?
-        };
+        let permutations: Vec<Vec<usize>> = start
+            .group
+            .operations
+            .iter()
+            .map(|operation| operation.permutation.clone())
+            .collect();
+        let mut path =
+            request
+                .route
+                .path(&molecule, &request.coordinates, &permutations, tolerance)?;
+        if matches!(request.route, Route::Frames { .. }) {
+            let (moved, notice) = frames_onto_group(&path, &molecule, tolerance)?;
+            path = moved;
+            molecule.positions.clone_from(&path.start().positions);
+            notices.extend(notice);
+        }
 
         let samples = sample_geometries(&path, molecule.positions.len())?;
         let moving = hamiltonian.moving_pairs(samples.iter().map(Vec::as_slice));
         let reference = samples[0].clone();
         let kinds = kinds(&molecule.elements);
         let kept = path_group(&kinds, &samples, tolerance)?;
-        let screen = GroupScreen::new(&nuclei(&molecule.elements, &samples[kept.axes_from]), tolerance)?;
+        let screen = GroupScreen::new(
+            &nuclei(&molecule.elements, &samples[kept.axes_from]),
+            tolerance,
+        )?;
         let group = kept.group;
 
         let shells = basis
             .shells
             .iter()
-            .map(|shell| OrbitalShell { atom: shell.atom, l: shell.l })
+            .map(|shell| OrbitalShell {
+                atom: shell.atom,
+                l: shell.l,
+            })
             .collect::<Vec<_>>();
         let core_shells = basis
             .core_shells
@@ -147,7 +170,10 @@ impl SweepPlan {
                 .collect();
             let order: Vec<usize> = (0..plan.lines.len()).collect();
             let occupations = configuration.occupations(&electrons, &labels, &order)?;
-            plan.filling = Filling::ByLine { electrons, occupations };
+            plan.filling = Filling::ByLine {
+                electrons,
+                occupations,
+            };
         }
         Ok(plan)
     }
@@ -207,7 +233,8 @@ impl SweepPlan {
         let head = &self.lines[line];
         let plain = self.group.other_axes(&self.group.irreps[head.irrep].plain);
         let irrep = self.group.irrep(&plain).unwrap_or(head.irrep);
-        head.name.renamed(&self.group.irreps[head.irrep], &self.group.irreps[irrep])
+        head.name
+            .renamed(&self.group.irreps[head.irrep], &self.group.irreps[irrep])
     }
 
     /// What a reader should know about how the request was understood.
@@ -221,12 +248,59 @@ pub(crate) fn nuclei(elements: &[Element], positions: &[[f64; 3]]) -> Vec<Nucleu
     elements
         .iter()
         .zip(positions)
-        .map(|(element, &position)| Nucleus { kind: u32::from(element.number()), position })
+        .map(|(element, &position)| Nucleus {
+            kind: u32::from(element.number()),
+            position,
+        })
         .collect()
 }
 
 fn kinds(elements: &[Element]) -> Vec<u32> {
-    elements.iter().map(|element| u32::from(element.number())).collect()
+    elements
+        .iter()
+        .map(|element| u32::from(element.number()))
+        .collect()
+}
+
+/// Given geometries moved onto the group that all of them keep, with a notice
+/// where that moved an atom noticeably.
+fn frames_onto_group(
+    path: &PathPlan,
+    molecule: &Molecule,
+    tolerance: f64,
+) -> Result<(PathPlan, Option<Notice>), ScanError> {
+    let kinds = kinds(&molecule.elements);
+    let all = (0..path.points())
+        .map(|point| Ok(path.molecule(&path.values(point))?))
+        .collect::<Result<Vec<Molecule>, ScanError>>()?;
+    let places: Vec<Vec<[f64; 3]>> = all.iter().map(|frame| frame.positions.clone()).collect();
+    let group = path_group(&kinds, &places, tolerance)?.group;
+    let mut worst = 0.0_f64;
+    let frames: Vec<Molecule> = all
+        .into_iter()
+        .map(|mut frame| {
+            let (places, moved) = symmetrize(&nuclei(&frame.elements, &frame.positions), &group);
+            frame.positions = places.iter().map(|nucleus| nucleus.position).collect();
+            worst = worst.max(moved);
+            frame
+        })
+        .collect();
+    let Some(axis) = path.axes().first() else {
+        return Ok((path.clone(), None));
+    };
+    let values = FrameValues::Given {
+        name: axis.name.clone(),
+        unit: axis.unit.clone(),
+        values: axis.values.clone(),
+    };
+    let notice = (worst > EXACT_ANGSTROM).then(|| Notice {
+        code: "frames-moved-onto-symmetry",
+        text: format!(
+            "atoms of the given geometries were moved by up to {worst:.1e} Å onto {}; a smaller --tolerance keeps them where they are",
+            group.name
+        ),
+    });
+    Ok((PathPlan::frames(&frames, &values)?, notice))
 }
 
 /// Both ends and points between them, evenly spread.
@@ -235,7 +309,11 @@ fn sample_geometries(path: &PathPlan, atoms: usize) -> Result<Vec<Vec<[f64; 3]>>
     let count = points.min(SAMPLES);
     let mut samples = Vec::with_capacity(count);
     for sample in 0..count {
-        let point = if count == 1 { 0 } else { sample * (points - 1) / (count - 1) };
+        let point = if count == 1 {
+            0
+        } else {
+            sample * (points - 1) / (count - 1)
+        };
         let mut positions = vec![[0.0; 3]; atoms];
         path.positions(&path.values(point), &mut positions)?;
         samples.push(positions);

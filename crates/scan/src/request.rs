@@ -1,11 +1,11 @@
 //! What a scan is asked to do: typed, checked, units attached.
 
 use orbend_hamiltonian::{Method, ParameterSet};
-use orbend_structure::{Angstrom, Coordinate, Molecule};
+use orbend_structure::{Angstrom, Coordinate, FrameValues, Molecule, PathPlan, Range};
 
 use crate::error::ScanError;
 use crate::filling::Configuration;
-use crate::plan::SweepPlan;
+use crate::plan::{SweepPlan, nuclei};
 use crate::sweep::Sweep;
 
 /// Which numbering a user's labels follow.
@@ -18,6 +18,87 @@ pub enum Numbering {
     Valence,
 }
 
+/// How the geometry moves.
+#[derive(Clone, Debug, Default, PartialEq)]
+pub enum Route {
+    /// Along the coordinates of the request: none for a single geometry, one
+    /// for a line, two for a grid.
+    #[default]
+    Coordinates,
+    /// All coordinates of the request in step with the first one.
+    Together,
+    /// Through a table of values, one row per point, one column per coordinate.
+    Table {
+        /// The rows, degrees and Å.
+        rows: Vec<Vec<f64>>,
+    },
+    /// Through given geometries; the request's molecule is the first.
+    Frames {
+        /// All of them.
+        frames: Vec<Molecule>,
+        /// What tells them apart.
+        values: FrameValues,
+    },
+    /// From the request's molecule to another geometry.
+    Toward {
+        /// The end.
+        other: Box<Molecule>,
+        /// Points, both ends included.
+        points: usize,
+    },
+    /// Along a displacement vector per atom (Å).
+    AlongMode {
+        /// One vector per atom.
+        displacement: Vec<[f64; 3]>,
+        /// Amplitudes that multiply it.
+        range: Range,
+    },
+}
+
+impl Route {
+    /// The path of a molecule that has the atom permutations `equivalences`.
+    pub(crate) fn path(
+        &self,
+        molecule: &Molecule,
+        coordinates: &[Coordinate],
+        equivalences: &[Vec<usize>],
+        tolerance: f64,
+    ) -> Result<PathPlan, ScanError> {
+        Ok(match self {
+            Self::Coordinates if coordinates.is_empty() => PathPlan::fixed(molecule)?,
+            Self::Coordinates => PathPlan::new(molecule, coordinates, equivalences)?,
+            Self::Together => PathPlan::together(molecule, coordinates, equivalences)?,
+            Self::Table { rows } => PathPlan::following(molecule, coordinates, rows, equivalences)?,
+            Self::Frames { frames, values } => PathPlan::frames(frames, values)?,
+            Self::Toward { other, points } => {
+                let (other, ..) = symmetrized(other, Angstrom(tolerance))?;
+                PathPlan::toward(molecule, &other, *points, None)?.0
+            }
+            Self::AlongMode {
+                displacement,
+                range,
+            } => PathPlan::along(molecule, displacement, *range)?,
+        })
+    }
+}
+
+/// A molecule moved onto the group that it has within a tolerance; the group's
+/// plain name and the largest distance (Å) that an atom was moved.
+///
+/// # Errors
+/// A tolerance outside 1e-8 to 0.5 Å or a geometry that is not usable.
+pub fn symmetrized(
+    molecule: &Molecule,
+    tolerance: Angstrom,
+) -> Result<(Molecule, String, f64), ScanError> {
+    let places = nuclei(&molecule.elements, &molecule.positions);
+    let group = orbend_symmetry::find(&places, tolerance.0)?.group;
+    let (places, moved) = orbend_symmetry::symmetrize(&places, &group);
+    let mut molecule = molecule.clone();
+    molecule.positions = places.iter().map(|nucleus| nucleus.position).collect();
+    Ok((molecule, group.name, moved))
+}
+
 /// A molecule, what moves, and the model.
 #[derive(Clone, Debug)]
 pub struct Request {
@@ -25,6 +106,8 @@ pub struct Request {
     pub molecule: Molecule,
     /// What moves; none for a single geometry.
     pub coordinates: Vec<Coordinate>,
+    /// How they move, or another kind of path.
+    pub route: Route,
     /// Values of Hᵢᵢ and ζ.
     pub parameters: ParameterSet,
     /// The Wolfsberg–Helmholz form, K and the basis.
@@ -44,6 +127,7 @@ impl Request {
         Self {
             molecule,
             coordinates: Vec::new(),
+            route: Route::Coordinates,
             parameters: ParameterSet::default(),
             method: Method::default(),
             configuration: None,

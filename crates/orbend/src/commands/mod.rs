@@ -3,6 +3,7 @@
 mod geometry_text;
 pub(crate) mod levels;
 pub(crate) mod params;
+mod route;
 pub(crate) mod shape;
 pub(crate) mod sweep;
 
@@ -11,7 +12,7 @@ use std::path::Path;
 
 use orbend_hamiltonian::{Coupling, Method, ParameterError, ParameterSet};
 use orbend_report::{FigureOptions, FigureWidth, Numbering, Provenance, TextOptions, Theme};
-use orbend_scan::{Configuration, Request};
+use orbend_scan::{Configuration, Request, Route};
 use orbend_structure::{Angstrom, Coordinate};
 
 use crate::arguments::{
@@ -64,6 +65,7 @@ pub(crate) fn resolve(
     let request = Request {
         molecule: geometry.molecule.clone(),
         coordinates,
+        route: Route::Coordinates,
         parameters: parameter_set(model.params.as_deref(), &model.variant)?,
         method,
         configuration,

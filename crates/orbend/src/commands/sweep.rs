@@ -1,15 +1,15 @@
 //! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
 
 use orbend_report::{
-    FigureOptions, sweep_csv, sweep_document, sweep_document_with_orbitals, sweep_figure,
-    sweep_page, sweep_text, to_json,
+    FigureOptions, passport_text, sweep_csv, sweep_document, sweep_document_with_orbitals,
+    sweep_figure, sweep_page, sweep_text, to_json,
 };
 use orbend_scan::Sweep;
-use orbend_structure::{Coordinate, CoordinateKind};
 
 use super::geometry_text::geometry_text;
+use super::route::{movement, route};
 use super::{csv, figure_options, provenance, resolve, text_options};
-use crate::arguments::{CoordinateArguments, NumberingChoice, SweepArguments};
+use crate::arguments::{NumberingChoice, SweepArguments};
 use crate::failure::Failure;
 use crate::geometry::Geometry;
 use crate::outputs::Outputs;
@@ -19,12 +19,18 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let output = &arguments.output;
     let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "html", "xyz"])?;
     let figure = figure_options(&arguments.figure, output.numbering)?;
-    let coordinates = coordinates(&arguments.coordinates)?;
-    let resolved = resolve(
+    let movement = movement(&arguments.coordinates)?;
+    let mut resolved = resolve(
         &arguments.geometry,
-        coordinates,
+        movement.coordinates.clone(),
         &arguments.model,
         output.numbering,
+    )?;
+    resolved.request.route = route(
+        &movement,
+        &arguments.coordinates,
+        &mut resolved.geometry,
+        &arguments.model,
     )?;
     let plan = resolved
         .request
@@ -47,6 +53,8 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     })?;
     if output.json {
         write_stdout(to_json(&document).map_err(Failure::document)?.as_bytes())
+    } else if arguments.passport {
+        write_stdout(passport_text(&document, &text_options(output.numbering)).as_bytes())
     } else {
         let options = text_options(output.numbering);
         let start = geometry_text(&resolved.geometry, options.width);
@@ -66,35 +74,6 @@ fn page(
     let page =
         sweep_page(&document, figure).map_err(|error| Failure::request(error.to_string()))?;
     Ok(page.into_bytes())
-}
-
-fn coordinates(arguments: &CoordinateArguments) -> Result<Vec<Coordinate>, Failure> {
-    let kinds = [
-        (CoordinateKind::Bend, &arguments.bend),
-        (CoordinateKind::Stretch, &arguments.stretch),
-        (CoordinateKind::Twist, &arguments.twist),
-        (CoordinateKind::Pyramid, &arguments.pyramid),
-    ];
-    let mut coordinates = Vec::new();
-    for (kind, texts) in kinds {
-        for text in texts {
-            let mut coordinate = Coordinate::parse(kind, text)
-                .map_err(|error| Failure::request(format!("--{error}")))?;
-            coordinate.alone = arguments.alone;
-            coordinates.push(coordinate);
-        }
-    }
-    match coordinates.len() {
-        0 => Err(
-            Failure::request("no coordinate: a sweep needs something that moves")
-                .fix("add for example --bend 2-1-3=90..180:2, --stretch, --twist or --pyramid"),
-        ),
-        1 | 2 => Ok(coordinates),
-        more => Err(
-            Failure::request(format!("{more} coordinates: a grid has two at most"))
-                .fix("leave some out, or run one sweep for each value"),
-        ),
-    }
 }
 
 /// Runs on a pool of its own when a number of threads is asked for.

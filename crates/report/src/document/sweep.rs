@@ -33,6 +33,10 @@ pub struct SweepDocument {
     /// Orbitals followed from point to point; left out on a grid.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub lines: Option<Vec<LineRecord>>,
+    /// The same lines followed by character (overlap of neighbouring points) instead of energy
+    /// order; left out where the symmetry of the path says which line is which.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub followed: Option<Vec<FollowedRecord>>,
     /// Crossings and avoided crossings; left out on a grid.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub crossings: Option<Vec<CrossingRecord>>,
@@ -88,6 +92,12 @@ pub enum MotionKind {
     Pyramid,
     /// Path to another geometry.
     Toward,
+    /// Given geometries.
+    Frames,
+    /// A displacement vector times an amplitude.
+    Mode,
+    /// The rows of a table of coordinate values.
+    Table,
 }
 
 /// Unit of a coordinate's values.
@@ -100,6 +110,8 @@ pub enum CoordinateUnit {
     Angstrom,
     /// Share of the path, 0 to 1.
     Share,
+    /// A bare number.
+    Number,
 }
 
 /// One orbital followed from point to point.
@@ -188,7 +200,9 @@ pub struct Certificate {
 }
 
 /// Kinds of evidence, strongest first.
-#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Serialize, Deserialize, JsonSchema)]
+#[derive(
+    Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Serialize, Deserialize, JsonSchema,
+)]
 #[serde(rename_all = "lowercase")]
 pub enum CertificateKind {
     /// Energy order within an irrep of the path group (von Neumann and Wigner 1929).
@@ -237,6 +251,17 @@ pub struct CrossingRecord {
     /// occupied and the lowest empty line cross.
     #[serde(default)]
     pub changes_configuration: bool,
+}
+
+/// One orbital character followed from point to point: the other view of the lines.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+pub struct FollowedRecord {
+    /// The line that has it at the first point.
+    pub id: u32,
+    /// The line (energy order within its irrep) that has it, one per point.
+    pub lines: Vec<u32>,
+    /// What this rests on.
+    pub certificate: Certificate,
 }
 
 /// How crossings were looked for.

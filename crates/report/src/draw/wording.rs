@@ -2,7 +2,9 @@
 
 use orbend_structure::Formula;
 
-use crate::document::{CoordinateRecord, CoordinateUnit, MoleculeRecord, MotionKind, SweepDocument};
+use crate::document::{
+    CoordinateRecord, CoordinateUnit, MoleculeRecord, MotionKind, SweepDocument,
+};
 
 use super::ticks;
 
@@ -28,13 +30,20 @@ pub(crate) fn coordinate_name(
             format!("{ligand}{dash}{chain}{dash}{ligand} angle")
         }
         MotionKind::Toward => "share of the path".to_owned(),
+        MotionKind::Frames => "frame".to_owned(),
+        MotionKind::Mode => "amplitude".to_owned(),
+        MotionKind::Table => "row of the table".to_owned(),
     }
 }
 
 /// The ligands' element where a four-atom molecule leaves no doubt.
 fn only_ligand<'a>(coordinate: &CoordinateRecord, molecule: &'a MoleculeRecord) -> Option<&'a str> {
     let centre = (*coordinate.atoms.first()? as usize).checked_sub(1)?;
-    let mut others = molecule.elements.iter().enumerate().filter(|(k, _)| *k != centre);
+    let mut others = molecule
+        .elements
+        .iter()
+        .enumerate()
+        .filter(|(k, _)| *k != centre);
     let first = others.next()?.1;
     let alike = others.all(|(_, element)| element == first);
     (molecule.elements.len() == 4 && alike).then_some(first.as_str())
@@ -44,8 +53,14 @@ fn only_ligand<'a>(coordinate: &CoordinateRecord, molecule: &'a MoleculeRecord) 
 /// (`SiF2`), else in Hill order (`F2Si`).
 pub(crate) fn heading_formula(molecule: &MoleculeRecord) -> &str {
     let title = molecule.title.trim();
-    let Ok(formula) = Formula::parse(title) else { return &molecule.formula };
-    let mut written: Vec<&str> = formula.elements().iter().map(|element| element.symbol()).collect();
+    let Ok(formula) = Formula::parse(title) else {
+        return &molecule.formula;
+    };
+    let mut written: Vec<&str> = formula
+        .elements()
+        .iter()
+        .map(|element| element.symbol())
+        .collect();
     let mut present: Vec<&str> = molecule.elements.iter().map(String::as_str).collect();
     written.sort_unstable();
     present.sort_unstable();
@@ -65,7 +80,7 @@ pub(crate) fn unit_symbol(unit: CoordinateUnit) -> &'static str {
     match unit {
         CoordinateUnit::Degree => "°",
         CoordinateUnit::Angstrom => "Å",
-        CoordinateUnit::Share => "",
+        CoordinateUnit::Share | CoordinateUnit::Number => "",
     }
 }
 
@@ -74,7 +89,7 @@ pub(crate) fn value_with_unit(value: f64, unit: CoordinateUnit) -> String {
     match unit {
         CoordinateUnit::Degree => format!("{}°", ticks::short(value, 1)),
         CoordinateUnit::Angstrom => format!("{} Å", ticks::short(value, 3)),
-        CoordinateUnit::Share => ticks::short(value, 3),
+        CoordinateUnit::Share | CoordinateUnit::Number => ticks::short(value, 3),
     }
 }
 

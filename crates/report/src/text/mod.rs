@@ -3,12 +3,14 @@
 mod diagram;
 mod levels;
 mod params;
+mod passport;
 mod shape;
 mod sweep;
 mod table;
 
 pub use levels::levels_text;
 pub use params::params_text;
+pub use passport::passport_text;
 pub use shape::shape_text;
 pub use sweep::sweep_text;
 
