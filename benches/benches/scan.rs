@@ -1,6 +1,11 @@
 //! Labelled points and whole sweeps: overlap, Hamiltonian, blocks, eigenvalues,
 //! names and lines together.
 
+#![allow(
+    clippy::expect_used,
+    reason = "a bench whose input fails has nothing to measure"
+)]
+
 use std::hint::black_box;
 
 use criterion::{BatchSize, Criterion, Throughput, criterion_group, criterion_main};
@@ -9,19 +14,39 @@ use orbend_structure::{Coordinate, CoordinateKind, Formula, ideal_geometry};
 
 fn request(formula: &str, kind: CoordinateKind, coordinate: &str) -> Request {
     let formula = Formula::parse(formula).expect("formula");
-    let molecule = ideal_geometry(&formula, None, &[]).expect("geometry").molecule;
+    let molecule = ideal_geometry(&formula, None, &[])
+        .expect("geometry")
+        .molecule;
     let coordinate = Coordinate::parse(kind, coordinate).expect("coordinate");
     Request::new(molecule).coordinate(coordinate)
 }
 
 /// Time per labelled point: sweeps of some 4000 points on one thread, planned before.
 fn points(criterion: &mut Criterion) {
-    let pool = rayon::ThreadPoolBuilder::new().num_threads(1).build().expect("pool");
+    let pool = rayon::ThreadPoolBuilder::new()
+        .num_threads(1)
+        .build()
+        .expect("pool");
     let mut group = criterion.benchmark_group("labelled point");
     for (name, formula, kind, coordinate) in [
-        ("H2S bend", "H2S", CoordinateKind::Bend, "2-1-3=90..172:0.02"),
-        ("SiF2 bend", "SiF2", CoordinateKind::Bend, "2-1-3=90..172:0.02"),
-        ("PF3 pyramid", "PF3", CoordinateKind::Pyramid, "1=90..110:0.005"),
+        (
+            "H2S bend",
+            "H2S",
+            CoordinateKind::Bend,
+            "2-1-3=90..172:0.02",
+        ),
+        (
+            "SiF2 bend",
+            "SiF2",
+            CoordinateKind::Bend,
+            "2-1-3=90..172:0.02",
+        ),
+        (
+            "PF3 pyramid",
+            "PF3",
+            CoordinateKind::Pyramid,
+            "1=90..110:0.005",
+        ),
     ] {
         let request = request(formula, kind, coordinate);
         let points = request.plan().expect("plan").points();

@@ -43,12 +43,15 @@ pub fn energies(molecule: &Molecule, set: &ParameterSet, method: &Method) -> Vec
     orbend_eigen::solve(m.n, &m.h, &m.s).expect("solved").values
 }
 
+/// An element's symbol and its shells: name, Hii and ζ (bohr⁻¹).
+pub type ElementValues<'a> = (&'a str, &'a [(&'a str, f64, f64)]);
+
 /// The default set with other values of some elements: symbol, then shells with name, Hii and ζ
 /// (bohr⁻¹); `unit` is the unit of Hii.
 ///
 /// # Panics
 /// Values that are refused.
-pub fn set_of(unit: &str, elements: &[(&str, &[(&str, f64, f64)])]) -> ParameterSet {
+pub fn set_of(unit: &str, elements: &[ElementValues<'_>]) -> ParameterSet {
     let mut text = format!("[set]\nname = \"check\"\nenergy = \"{unit}\"\nexponent = \"1/bohr\"\n");
     for (symbol, shells) in elements {
         writeln!(

@@ -5,7 +5,7 @@ mod engine;
 mod geometry;
 mod invariants;
 
-pub use engine::{Matrices, energies, matrices, set_of};
+pub use engine::{ElementValues, Matrices, energies, matrices, set_of};
 pub use geometry::{atoms, file, moved, named, random_motion, ring};
 pub use invariants::{Residuals, check_point};
 

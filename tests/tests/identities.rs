@@ -223,6 +223,7 @@ fn small_blocks_against_the_whole_problem() {
         let to_p = slater_overlap(p, one, 0, bohr).expect("overlap").abs();
         let third = 3.0_f64.sqrt() / 2.0;
         let c = length / 3.0_f64.sqrt();
+        #[allow(clippy::type_complexity, reason = "a table that is read once")]
         let shapes: [(&str, Vec<[f64; 3]>, f64, f64, f64, f64, f64); 3] = [
             // name, ligands, H···H distance, partners in phase and across, weights of s and p, copies of the p level
             (

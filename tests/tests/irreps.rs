@@ -56,7 +56,7 @@ fn irrep_content_of_published_examples() {
         }
         let wanted: BTreeMap<String, usize> = row["content"]
             .split('|')
-            .map(|word| split(word))
+            .map(split)
             .map(|(n, irrep)| (irrep.to_owned(), n))
             .collect();
         assert_eq!(found, wanted, "{}", row["molecule"]);

@@ -34,7 +34,7 @@ pub(crate) enum Command {
     /// One geometry: energies, labels, occupations, populations
     Levels(LevelsArguments),
     /// The correlation (Walsh) diagram along a coordinate, or a grid over two
-    Sweep(SweepArguments),
+    Sweep(Box<SweepArguments>),
     /// The shape of a molecule, or of a series, with its reasons and its doubts
     Shape(ShapeArguments),
     /// The parameter values in use, each with its source
@@ -90,7 +90,12 @@ pub(crate) struct ShapeArguments {
     #[arg(long, value_name = "Q", allow_hyphen_values = true)]
     pub(crate) charge: Option<i32>,
     /// A series of charges of the same atoms: -1..+2
-    #[arg(long, value_name = "FROM..TO", allow_hyphen_values = true, conflicts_with = "charge")]
+    #[arg(
+        long,
+        value_name = "FROM..TO",
+        allow_hyphen_values = true,
+        conflicts_with = "charge"
+    )]
     pub(crate) charges: Option<String>,
     /// Unpaired electrons, or `all` fillings within 10 eV [default: the lowest possible]
     #[arg(long, value_name = "N|all")]

@@ -37,18 +37,31 @@ pub struct CsvWriter<W: Write> {
 impl<W: Write> CsvWriter<W> {
     /// Starts a table with that many coordinates (none for a single geometry) and writes its header.
     pub fn new(output: W, coordinates: usize) -> Result<Self, CsvError> {
-        let mut writer = WriterBuilder::new().terminator(Terminator::CRLF).from_writer(output);
+        let mut writer = WriterBuilder::new()
+            .terminator(Terminator::CRLF)
+            .from_writer(output);
         let mut header = vec!["point".to_owned()];
         header.extend((1..=coordinates).map(|number| format!("at_{number}")));
         header.extend(
             [
-                "level", "energy_ev", "occupation", "label", "valence_label", "full_label", "irrep",
-                "line", "point_group",
+                "level",
+                "energy_ev",
+                "occupation",
+                "label",
+                "valence_label",
+                "full_label",
+                "irrep",
+                "line",
+                "point_group",
             ]
             .map(str::to_owned),
         );
         writer.write_record(&header)?;
-        Ok(Self { writer, coordinates, points: 0 })
+        Ok(Self {
+            writer,
+            coordinates,
+            points: 0,
+        })
     }
 
     /// Appends all levels of the next point.
@@ -62,11 +75,18 @@ impl<W: Write> CsvWriter<W> {
             }
             self.writer.write_field((rank + 1).to_string())?;
             self.writer.write_field(level.energy.get().to_string())?;
-            self.writer.write_field(level.occupation.get().to_string())?;
-            for field in [&level.label, &level.valence_label, &level.full_label, &level.irrep] {
+            self.writer
+                .write_field(level.occupation.get().to_string())?;
+            for field in [
+                &level.label,
+                &level.valence_label,
+                &level.full_label,
+                &level.irrep,
+            ] {
                 self.writer.write_field(field)?;
             }
-            self.writer.write_field(level.line.map(|id| id.to_string()).unwrap_or_default())?;
+            self.writer
+                .write_field(level.line.map(|id| id.to_string()).unwrap_or_default())?;
             self.writer.write_field(&point.point_group)?;
             self.writer.write_record(None::<&[u8]>)?;
         }

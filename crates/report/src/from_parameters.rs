@@ -11,8 +11,14 @@ use crate::from_scan::{FromScanError, shell_values};
 ///
 /// # Errors
 /// An element that the set does not have.
-pub fn params_document(set: &ParameterSet, elements: &[Element]) -> Result<ParamsDocument, FromScanError> {
-    if let Some(&missing) = elements.iter().find(|&&element| set.element(element).is_none()) {
+pub fn params_document(
+    set: &ParameterSet,
+    elements: &[Element],
+) -> Result<ParamsDocument, FromScanError> {
+    if let Some(&missing) = elements
+        .iter()
+        .find(|&&element| set.element(element).is_none())
+    {
         return Err(FromScanError::NoParameters {
             element: missing.symbol().to_owned(),
             set: set.name().to_owned(),
@@ -40,7 +46,9 @@ pub fn params_document(set: &ParameterSet, elements: &[Element]) -> Result<Param
                 });
             }
         }
-        let unused = parameters.unused_shells().map(|shell| shell_values(element.symbol(), shell));
+        let unused = parameters
+            .unused_shells()
+            .map(|shell| shell_values(element.symbol(), shell));
         let unused = unused.collect::<Result<Vec<_>, _>>()?;
         for shell in unused {
             variants.push(Variant {

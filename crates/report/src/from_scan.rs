@@ -151,7 +151,10 @@ pub fn levels_document(
     })
 }
 
-pub(crate) fn molecule_record(plan: &SweepPlan, provenance: &Provenance) -> Result<MoleculeRecord, NotFinite> {
+pub(crate) fn molecule_record(
+    plan: &SweepPlan,
+    provenance: &Provenance,
+) -> Result<MoleculeRecord, NotFinite> {
     let molecule = plan.molecule();
     let electrons = plan.electrons();
     let positions = molecule
@@ -184,7 +187,10 @@ pub(crate) fn molecule_record(plan: &SweepPlan, provenance: &Provenance) -> Resu
     })
 }
 
-pub(crate) fn method_record(plan: &SweepPlan, provenance: &Provenance) -> Result<Method, NotFinite> {
+pub(crate) fn method_record(
+    plan: &SweepPlan,
+    provenance: &Provenance,
+) -> Result<Method, NotFinite> {
     let request = plan.request();
     let mut elements = request.molecule.elements.clone();
     elements.sort();

@@ -26,7 +26,11 @@ impl Run {
 
     /// Size relative to the text.
     pub(crate) fn scale(&self) -> f64 {
-        if self.shift == Shift::None || self.is_prime() { 1.0 } else { SMALL }
+        if self.shift == Shift::None || self.is_prime() {
+            1.0
+        } else {
+            SMALL
+        }
     }
 }
 
@@ -79,7 +83,11 @@ impl Lettering {
     pub(crate) fn formula(formula: &str, charge: &str) -> Self {
         let mut lettering = Self::default();
         for c in formula.chars() {
-            let shift = if c.is_ascii_digit() { Shift::Sub } else { Shift::None };
+            let shift = if c.is_ascii_digit() {
+                Shift::Sub
+            } else {
+                Shift::None
+            };
             match lettering.runs.last_mut() {
                 Some(run) if run.shift == shift => run.text.push(c),
                 _ => lettering.push(c, shift),
@@ -129,8 +137,13 @@ impl Lettering {
 }
 
 fn irrep_parts(irrep: &str) -> Option<(String, String, String)> {
-    const GREEK: [(&str, char); 5] =
-        [("sigma", 'σ'), ("pi", 'π'), ("delta", 'δ'), ("phi", 'φ'), ("gamma", 'γ')];
+    const GREEK: [(&str, char); 5] = [
+        ("sigma", 'σ'),
+        ("pi", 'π'),
+        ("delta", 'δ'),
+        ("phi", 'φ'),
+        ("gamma", 'γ'),
+    ];
     let tail = irrep.trim_start_matches(|c: char| c.is_ascii_alphanumeric() || c == '_');
     let body = &irrep[..irrep.len() - tail.len()];
     let sup = match tail {
@@ -151,7 +164,9 @@ fn irrep_parts(irrep: &str) -> Option<(String, String, String)> {
     let mut letters = body.chars();
     let base = letters.next().filter(|c| "abegtghi".contains(*c))?;
     let rest = letters.as_str();
-    let fits = rest.chars().all(|c| c.is_ascii_digit() || c == 'g' || c == 'u');
+    let fits = rest
+        .chars()
+        .all(|c| c.is_ascii_digit() || c == 'g' || c == 'u');
     fits.then(|| (base.to_string(), rest.to_owned(), sup.to_owned()))
 }
 
@@ -215,7 +230,10 @@ mod tests {
             assert_eq!(Lettering::level(plain).unicode(), display);
         }
         assert_eq!(Lettering::group("Dinfh").runs[1].text, "∞h");
-        assert_eq!(Lettering::formula("PtCl4", "2\u{2212}").unicode(), "PtCl₄²⁻");
+        assert_eq!(
+            Lettering::formula("PtCl4", "2\u{2212}").unicode(),
+            "PtCl₄²⁻"
+        );
     }
 
     #[test]

@@ -20,25 +20,36 @@ impl Character {
         let orbitals = plan.orbitals(values)?;
         let n = plan.basis.functions.len();
         let overlap: Vec<f64> = orbitals.overlap.iter().copied().collect();
-        let unit: Vec<f64> = (0..n * n).map(|k| f64::from(u8::from(k % (n + 1) == 0))).collect();
+        let unit: Vec<f64> = (0..n * n)
+            .map(|k| f64::from(u8::from(k % (n + 1) == 0)))
+            .collect();
         let mut room = Workspace::new(n);
-        room.solve(&overlap, &unit).map_err(|error| ScanError::Eigen {
-            at: plan.path.place(values),
-            cause: error.to_string(),
-        })?;
+        room.solve(&overlap, &unit)
+            .map_err(|error| ScanError::Eigen {
+                at: plan.path.place(values),
+                cause: error.to_string(),
+            })?;
         let (roots, basis) = (room.values(), room.vectors());
         let mut vectors = vec![0.0; plan.lines.len() * n];
         for (line, target) in vectors.chunks_exact_mut(n.max(1)).enumerate() {
             for (root, eigenvector) in roots.iter().zip(basis.chunks_exact(n)) {
-                let amount: f64 =
-                    orbitals.coefficients.row(line).iter().zip(eigenvector).map(|(c, x)| c * x).sum();
+                let amount: f64 = orbitals
+                    .coefficients
+                    .row(line)
+                    .iter()
+                    .zip(eigenvector)
+                    .map(|(c, x)| c * x)
+                    .sum();
                 let amount = amount * root.max(0.0).sqrt();
                 for (t, x) in target.iter_mut().zip(eigenvector) {
                     *t += amount * x;
                 }
             }
         }
-        Ok(Self { functions: n, vectors })
+        Ok(Self {
+            functions: n,
+            vectors,
+        })
     }
 
     /// The vector of a line.

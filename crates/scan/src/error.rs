@@ -6,7 +6,9 @@ use thiserror::Error;
 #[derive(Clone, Debug, PartialEq, Error)]
 pub enum FillingError {
     /// More positive charge than valence electrons.
-    #[error("charge {charge:+} takes more electrons than the {valence} valence electrons; the highest possible charge is {valence:+}")]
+    #[error(
+        "charge {charge:+} takes more electrons than the {valence} valence electrons; the highest possible charge is {valence:+}"
+    )]
     ChargeTooHigh {
         /// The charge asked for.
         charge: i32,
@@ -14,7 +16,9 @@ pub enum FillingError {
         valence: u32,
     },
     /// More electrons than the basis holds.
-    #[error("charge {charge:+} needs {electrons} valence electrons, but the basis holds {capacity}")]
+    #[error(
+        "charge {charge:+} needs {electrons} valence electrons, but the basis holds {capacity}"
+    )]
     ChargeTooLow {
         /// The charge asked for.
         charge: i32,
@@ -24,7 +28,10 @@ pub enum FillingError {
         capacity: i64,
     },
     /// A number of unpaired electrons that the count does not allow.
-    #[error("{unpaired} unpaired electrons are impossible with {electrons} valence electrons; possible: {}", list(legal))]
+    #[error(
+        "{unpaired} unpaired electrons are impossible with {electrons} valence electrons; possible: {}",
+        list(legal)
+    )]
     Unpaired {
         /// Unpaired electrons asked for.
         unpaired: u32,
@@ -64,7 +71,9 @@ pub enum FillingError {
         capacity: f64,
     },
     /// A configuration whose electrons do not add up.
-    #[error("the configuration names {named} electrons, but the molecule has {electrons} valence electrons; levels that are not named are filled from below with the rest")]
+    #[error(
+        "the configuration names {named} electrons, but the molecule has {electrons} valence electrons; levels that are not named are filled from below with the rest"
+    )]
     ConfigurationSum {
         /// Electrons named.
         named: f64,
@@ -100,7 +109,9 @@ pub enum ScanError {
     #[error(transparent)]
     Filling(#[from] FillingError),
     /// The overlap matrix is singular: two functions say the same.
-    #[error("at {at} the overlap matrix is nearly singular (smallest eigenvalue {eigenvalue:.1e}): atoms {first} and {second} nearly coincide for this basis; move them apart or leave that range out")]
+    #[error(
+        "at {at} the overlap matrix is nearly singular (smallest eigenvalue {eigenvalue:.1e}): atoms {first} and {second} nearly coincide for this basis; move them apart or leave that range out"
+    )]
     Singular {
         /// The coordinate values, with names, or `this geometry`.
         at: String,

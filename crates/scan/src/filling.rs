@@ -30,10 +30,17 @@ impl Electrons {
         let total = i64::from(neutral) - i64::from(charge);
         let capacity = 2 * orbitals as i64;
         if total < 0 {
-            return Err(FillingError::ChargeTooHigh { charge, valence: neutral });
+            return Err(FillingError::ChargeTooHigh {
+                charge,
+                valence: neutral,
+            });
         }
         if total > capacity {
-            return Err(FillingError::ChargeTooLow { charge, electrons: total, capacity });
+            return Err(FillingError::ChargeTooLow {
+                charge,
+                electrons: total,
+                capacity,
+            });
         }
         let total = total as u32;
         let parity = total % 2;
@@ -105,9 +112,7 @@ fn add_spin(electrons: f64, order: &[usize], energies: &[f64], out: &mut [f64]) 
     let mut first = 0;
     while first < order.len() && left > 0.0 {
         let mut end = first + 1;
-        while end < order.len()
-            && energies[order[end]] - energies[order[end - 1]] < DEGENERACY_EV
-        {
+        while end < order.len() && energies[order[end]] - energies[order[end - 1]] < DEGENERACY_EV {
             end += 1;
         }
         let size = (end - first) as f64;
@@ -135,19 +140,25 @@ impl Configuration {
     pub fn parse(text: &str) -> Result<Self, FillingError> {
         let mut entries: Vec<(String, f64)> = Vec::new();
         for word in text.split([' ', ',', '\t']).filter(|word| !word.is_empty()) {
-            let bad = || FillingError::ConfigurationWord { word: word.to_owned() };
+            let bad = || FillingError::ConfigurationWord {
+                word: word.to_owned(),
+            };
             let (label, count) = word.rsplit_once(':').ok_or_else(bad)?;
             let count: f64 = count.parse().map_err(|_| bad())?;
             if label.is_empty() || !count.is_finite() || count < 0.0 {
                 return Err(bad());
             }
             if entries.iter().any(|(seen, _)| seen == label) {
-                return Err(FillingError::ConfigurationTwice { label: label.to_owned() });
+                return Err(FillingError::ConfigurationTwice {
+                    label: label.to_owned(),
+                });
             }
             entries.push((label.to_owned(), count));
         }
         if entries.is_empty() {
-            return Err(FillingError::ConfigurationWord { word: text.to_owned() });
+            return Err(FillingError::ConfigurationWord {
+                word: text.to_owned(),
+            });
         }
         Ok(Self { entries })
     }
@@ -217,7 +228,10 @@ impl Configuration {
                 electrons: electrons.total,
             });
         }
-        Ok(occupations.into_iter().map(Option::unwrap_or_default).collect())
+        Ok(occupations
+            .into_iter()
+            .map(Option::unwrap_or_default)
+            .collect())
     }
 }
 
@@ -256,10 +270,16 @@ mod tests {
         let electrons = Electrons::new(6, 0, Some(2), 4).unwrap();
         let labels: Vec<String> = ["2a1", "1b2", "3a1", "1b1"].map(str::to_owned).to_vec();
         let configuration = Configuration::parse("1b2:2 3a1:1 1b1:1").unwrap();
-        let filled = configuration.occupations(&electrons, &labels, &[0, 1, 2, 3]).unwrap();
+        let filled = configuration
+            .occupations(&electrons, &labels, &[0, 1, 2, 3])
+            .unwrap();
         assert_eq!(filled, vec![2.0, 2.0, 1.0, 1.0]);
         assert!(Configuration::parse("1b2=2").is_err());
         let unknown = Configuration::parse("7a1:2").unwrap();
-        assert!(unknown.occupations(&electrons, &labels, &[0, 1, 2, 3]).is_err());
+        assert!(
+            unknown
+                .occupations(&electrons, &labels, &[0, 1, 2, 3])
+                .is_err()
+        );
     }
 }

@@ -41,7 +41,11 @@ pub(crate) fn line_heads(
         let irrep = &group.irreps[block.irrep];
         for place in 0..block.size() {
             // In a paired block every level comes twice.
-            let position = if block.paired { place / irrep.dimension } else { place };
+            let position = if block.paired {
+                place / irrep.dimension
+            } else {
+                place
+            };
             let name = Name::new(irrep, position, core_counts[block.irrep]);
             for row in 0..block.row_count() {
                 heads.push(LineHead {
@@ -59,7 +63,10 @@ pub(crate) fn line_heads(
         }
     }
     heads.sort_by(|a, b| {
-        energies[a.slot].total_cmp(&energies[b.slot]).then(a.slot.cmp(&b.slot)).then(a.row.cmp(&b.row))
+        energies[a.slot]
+            .total_cmp(&energies[b.slot])
+            .then(a.slot.cmp(&b.slot))
+            .then(a.row.cmp(&b.row))
     });
     heads
 }

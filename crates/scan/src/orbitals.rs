@@ -43,7 +43,11 @@ impl Orbitals {
         }
         let occupations = Array1::from(occupations.to_vec());
         let gross = occupations.dot(&products);
-        let mut charges: Vec<f64> = basis.atoms.iter().map(|atom| f64::from(atom.valence_electrons)).collect();
+        let mut charges: Vec<f64> = basis
+            .atoms
+            .iter()
+            .map(|atom| f64::from(atom.valence_electrons))
+            .collect();
         for (index, function) in basis.functions.iter().enumerate() {
             charges[function.atom] -= gross[index];
         }
@@ -58,7 +62,11 @@ impl Orbitals {
                 }
             }
         }
-        Populations { charges, pairs, shares }
+        Populations {
+            charges,
+            pairs,
+            shares,
+        }
     }
 }
 
@@ -73,7 +81,8 @@ impl SweepPlan {
         self.path.positions(values, &mut positions)?;
         let mut overlap = vec![0.0; n * n];
         let mut hamiltonian = vec![0.0; n * n];
-        self.hamiltonian.fill(&positions, &mut overlap, &mut hamiltonian);
+        self.hamiltonian
+            .fill(&positions, &mut overlap, &mut hamiltonian);
         let mut coefficients = Array2::zeros((self.lines.len(), n));
         for (index, block) in self.adapted.blocks.iter().enumerate() {
             let m = block.size();
@@ -91,12 +100,17 @@ impl SweepPlan {
                     if head.block == index && head.row == row {
                         let vector = &mut expanded[head.place * n..(head.place + 1) * n];
                         fix_sign(vector);
-                        coefficients.row_mut(line).assign(&ndarray::ArrayView1::from(&*vector));
+                        coefficients
+                            .row_mut(line)
+                            .assign(&ndarray::ArrayView1::from(&*vector));
                     }
                 }
             }
         }
         let overlap = Array2::from_shape_fn((n, n), |(i, j)| overlap[i * n + j]);
-        Ok(Orbitals { coefficients, overlap })
+        Ok(Orbitals {
+            coefficients,
+            overlap,
+        })
     }
 }

@@ -111,7 +111,8 @@ impl SweepPlan {
         let used = at.len().min(LANES);
         for lane in 0..LANES {
             if lane < used {
-                self.path.positions(&at[lane..=lane], &mut workspace.positions)?;
+                self.path
+                    .positions(&at[lane..=lane], &mut workspace.positions)?;
             }
             workspace.load(lane);
         }
@@ -205,25 +206,40 @@ impl SweepPlan {
         let functions = self.basis.functions.len();
         *smallest = [f64::INFINITY; LANES];
         let mut slot = 0;
-        for (index, (block, room)) in
-            self.adapted.blocks.iter().zip(&mut workspace.blocks).enumerate()
+        for (index, (block, room)) in self
+            .adapted
+            .blocks
+            .iter()
+            .zip(&mut workspace.blocks)
+            .enumerate()
         {
             block.transform_lanes(functions, &workspace.overlap, &mut room.overlap);
             block.transform_lanes(functions, &workspace.hamiltonian, &mut room.hamiltonian);
             let status = room
                 .eigen
                 .solve(&room.hamiltonian, &room.overlap, false)
-                .map_err(|error| LaneFailure { lane: 0, error, block: index })?;
+                .map_err(|error| LaneFailure {
+                    lane: 0,
+                    error,
+                    block: index,
+                })?;
             for (lane, status) in status.into_iter().enumerate().take(used) {
                 if let LaneStatus::Failed(error) = status {
-                    return Err(LaneFailure { lane, error, block: index });
+                    return Err(LaneFailure {
+                        lane,
+                        error,
+                        block: index,
+                    });
                 }
             }
             for values in room.eigen.values() {
                 store(slot, values);
                 slot += 1;
             }
-            for (least, value) in smallest.iter_mut().zip(room.eigen.smallest_overlap_eigenvalues()) {
+            for (least, value) in smallest
+                .iter_mut()
+                .zip(room.eigen.smallest_overlap_eigenvalues())
+            {
                 *least = least.min(*value);
             }
         }
@@ -245,8 +261,15 @@ impl SweepPlan {
             [] => "this geometry".to_owned(),
             values => self.path.place(values),
         };
-        let EigenError::Singular { eigenvalue, weights } = error else {
-            return ScanError::Eigen { at, cause: error.to_string() };
+        let EigenError::Singular {
+            eigenvalue,
+            weights,
+        } = error
+        else {
+            return ScanError::Eigen {
+                at,
+                cause: error.to_string(),
+            };
         };
         let mut shares = vec![0.0; self.basis.atoms.len()];
         for (column, weight) in adapted.blocks[block].first.iter().zip(weights) {
@@ -257,9 +280,16 @@ impl SweepPlan {
         let mut order: Vec<usize> = (0..shares.len()).collect();
         order.sort_by(|&a, &b| shares[b].total_cmp(&shares[a]).then(a.cmp(&b)));
         let name = |place: usize| {
-            order.get(place).map_or_else(String::new, |&atom| self.molecule.atom_name(atom))
+            order
+                .get(place)
+                .map_or_else(String::new, |&atom| self.molecule.atom_name(atom))
         };
-        ScanError::Singular { at, eigenvalue, first: name(0), second: name(1) }
+        ScanError::Singular {
+            at,
+            eigenvalue,
+            first: name(0),
+            second: name(1),
+        }
     }
 }
 

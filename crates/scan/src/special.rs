@@ -56,7 +56,9 @@ pub(crate) fn label_in_own_group(
         .lines
         .iter()
         .map(|line| {
-            let level = by_irrep[line.irrep].get(line.position).map(|&index| &levels[index]);
+            let level = by_irrep[line.irrep]
+                .get(line.position)
+                .map(|&index| &levels[index]);
             match level {
                 Some(level) => Ok((level.name.clone(), own.irreps[level.irrep].dimension)),
                 None => Err(ScanError::Eigen {
@@ -66,7 +68,10 @@ pub(crate) fn label_in_own_group(
             }
         })
         .collect::<Result<_, _>>()?;
-    Ok(Some(SpecialPoint { group: own.name, names }))
+    Ok(Some(SpecialPoint {
+        group: own.name,
+        names,
+    }))
 }
 
 /// Levels of the own group by rising energy, sets once.
@@ -79,7 +84,8 @@ fn own_levels(
     let n = plan.basis.functions.len();
     let mut overlap = vec![0.0; n * n];
     let mut hamiltonian = vec![0.0; n * n];
-    plan.hamiltonian.fill(positions, &mut overlap, &mut hamiltonian);
+    plan.hamiltonian
+        .fill(positions, &mut overlap, &mut hamiltonian);
     let core = own.count(&plan.core_shells)?;
     let adapted: AdaptedBasis = own.adapt(&plan.shells)?;
     let mut levels = Vec::new();
@@ -90,7 +96,8 @@ fn own_levels(
         block.transform(n, &overlap, &mut s);
         block.transform(n, &hamiltonian, &mut h);
         let mut room = EigenWorkspace::new(m);
-        room.solve(&h, &s).map_err(|error| plan.explain(&adapted, index, error, values))?;
+        room.solve(&h, &s)
+            .map_err(|error| plan.explain(&adapted, index, error, values))?;
         let irrep = &own.irreps[block.irrep];
         let step = if block.paired { irrep.dimension } else { 1 };
         for (position, &energy) in room.values().iter().step_by(step).enumerate() {

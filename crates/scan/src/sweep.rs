@@ -79,14 +79,22 @@ impl Sweep {
             .map_init(
                 || Workspace::new(&plan),
                 |workspace, (chunk, ((energies, smallest), special))| {
-                    let mut rows = Rows { energies, smallest, special };
+                    let mut rows = Rows {
+                        energies,
+                        smallest,
+                        special,
+                    };
                     plan.solve_rows(chunk * CHUNK, &mut rows, workspace)
                 },
             )
             .collect();
         outcomes.into_iter().collect::<Result<(), _>>()?;
-        let energies = Array2::from_shape_vec((points, slots), energies)
-            .map_err(|error| ScanError::Eigen { at: "the table".into(), cause: error.to_string() })?;
+        let energies = Array2::from_shape_vec((points, slots), energies).map_err(|error| {
+            ScanError::Eigen {
+                at: "the table".into(),
+                cause: error.to_string(),
+            }
+        })?;
         let flagged: Vec<usize> = (0..points).filter(|&point| flagged[point]).collect();
         let special = flagged
             .into_par_iter()
@@ -95,7 +103,12 @@ impl Sweep {
             .into_iter()
             .filter_map(|(point, special)| special.map(|special| (point, special)))
             .collect();
-        Ok(Self { plan, energies, smallest, special })
+        Ok(Self {
+            plan,
+            energies,
+            smallest,
+            special,
+        })
     }
 
     /// The plan that was run.
@@ -126,7 +139,9 @@ impl Sweep {
 
     /// All points whose own group is larger than the path group.
     pub fn special_points(&self) -> impl Iterator<Item = (usize, &SpecialPoint)> {
-        self.special.iter().map(|(&point, special)| (point, special))
+        self.special
+            .iter()
+            .map(|(&point, special)| (point, special))
     }
 
     /// Σ nᵢεᵢ at a point, eV.
@@ -140,7 +155,10 @@ impl Sweep {
     pub fn full_name(&self, line: usize, point: usize) -> (&Name, usize) {
         match self.special.get(&point) {
             Some(special) => (&special.names[line].0, special.names[line].1),
-            None => (&self.plan.lines[line].name, self.plan.lines[line].degeneracy),
+            None => (
+                &self.plan.lines[line].name,
+                self.plan.lines[line].degeneracy,
+            ),
         }
     }
 
@@ -189,7 +207,9 @@ impl Sweep {
 
     /// Schoenflies symbol of a point's own group, plain.
     pub fn point_group(&self, point: usize) -> &str {
-        self.special.get(&point).map_or(&self.plan.group.name, |special| &special.group)
+        self.special
+            .get(&point)
+            .map_or(&self.plan.group.name, |special| &special.group)
     }
 
     fn fill_point(&self, point: usize, scratch: &mut PointScratch) {
@@ -197,8 +217,12 @@ impl Sweep {
             scratch.energies[line] = self.energies[[point, head.slot]];
         }
         let energies = &scratch.energies;
-        scratch.order.sort_by(|&a, &b| energies[a].total_cmp(&energies[b]).then(a.cmp(&b)));
-        self.plan.filling.fill(&scratch.order, energies, &mut scratch.occupations);
+        scratch
+            .order
+            .sort_by(|&a, &b| energies[a].total_cmp(&energies[b]).then(a.cmp(&b)));
+        self.plan
+            .filling
+            .fill(&scratch.order, energies, &mut scratch.occupations);
         scratch.sum = scratch
             .order
             .iter()

@@ -160,6 +160,7 @@ fn model(arguments: &ShapeArguments, spins: &Spins) -> ModelArguments {
         bond: arguments.bond.clone(),
         unit: arguments.unit,
         tolerance: arguments.tolerance,
+        symmetrize: None,
     }
 }
 

@@ -18,7 +18,10 @@ impl Program {
     /// This program at this version.
     #[must_use]
     pub fn this() -> Self {
-        Self { name: "orbend".to_owned(), version: env!("CARGO_PKG_VERSION").to_owned() }
+        Self {
+            name: "orbend".to_owned(),
+            version: env!("CARGO_PKG_VERSION").to_owned(),
+        }
     }
 }
 
@@ -35,7 +38,11 @@ pub struct Units {
 
 impl Default for Units {
     fn default() -> Self {
-        Self { energy: "eV".to_owned(), length: "angstrom".to_owned(), angle: "degree".to_owned() }
+        Self {
+            energy: "eV".to_owned(),
+            length: "angstrom".to_owned(),
+            angle: "degree".to_owned(),
+        }
     }
 }
 

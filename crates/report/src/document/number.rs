@@ -47,7 +47,10 @@ impl Number {
     ) -> Option<Self> {
         let number = Self::new(value).ok();
         if number.is_none() {
-            missing.push(Missing { path: path.to_owned(), reason: reason.to_owned() });
+            missing.push(Missing {
+                path: path.to_owned(),
+                reason: reason.to_owned(),
+            });
         }
         number
     }

@@ -52,7 +52,11 @@ impl DocumentError {
     pub(crate) fn from_serde(error: serde_json::Error) -> Self {
         let text = error.to_string();
         let cause = text.split(" at line ").next().unwrap_or(&text).to_owned();
-        Self::Form { line: error.line(), column: error.column(), cause }
+        Self::Form {
+            line: error.line(),
+            column: error.column(),
+            cause,
+        }
     }
 
     fn at(place: String, cause: String) -> Self {
@@ -116,13 +120,20 @@ impl SweepDocument {
     /// Checks that the parts agree: every point has all coordinates and its levels in order of
     /// energy, every line has one entry per point, every reference to a line is to one that exists.
     pub fn check(&self) -> Result<(), DocumentError> {
-        check_points(&self.points, self.coordinates.len(), self.molecule.elements.len())?;
+        check_points(
+            &self.points,
+            self.coordinates.len(),
+            self.molecule.elements.len(),
+        )?;
         let lines = self.lines.as_deref().unwrap_or_default();
         let ids: Vec<u32> = lines.iter().map(|line| line.id).collect();
         for (index, line) in lines.iter().enumerate() {
             let place = format!("/lines/{index}");
             if ids[..index].contains(&line.id) {
-                return Err(DocumentError::at(place, format!("id {} appears twice", line.id)));
+                return Err(DocumentError::at(
+                    place,
+                    format!("id {} appears twice", line.id),
+                ));
             }
             if line.energies.len() != self.points.len() {
                 let cause = format!(
@@ -162,11 +173,18 @@ impl ShapeDocument {
     /// Checks that supports lie between 0 and 1 and that curves are complete.
     pub fn check(&self) -> Result<(), DocumentError> {
         for (index, case) in self.cases.iter().enumerate() {
-            if case.support.is_some_and(|support| !(0.0..=1.0).contains(&support.get())) {
+            if case
+                .support
+                .is_some_and(|support| !(0.0..=1.0).contains(&support.get()))
+            {
                 let place = format!("/cases/{index}/support");
                 return Err(DocumentError::at(place, "not between 0 and 1".to_owned()));
             }
-            if case.curves.iter().any(|curve| curve.at.len() != curve.energy.len()) {
+            if case
+                .curves
+                .iter()
+                .any(|curve| curve.at.len() != curve.energy.len())
+            {
                 let place = format!("/cases/{index}/curves");
                 let cause = "a curve needs one energy per value".to_owned();
                 return Err(DocumentError::at(place, cause));

@@ -15,7 +15,11 @@ fn shape_document() -> ShapeDocument {
         molecule: sweep.molecule,
         method: sweep.method,
         coordinate: sweep.coordinates.into_iter().next(),
-        ensemble: Some(Ensemble { seed: 1, members: 200, spreads: vec!["K 1.6 to 2.0".into()] }),
+        ensemble: Some(Ensemble {
+            seed: 1,
+            members: 200,
+            spreads: vec!["K 1.6 to 2.0".into()],
+        }),
         cases: vec![Case {
             formula: None,
             coordinate: None,
@@ -47,17 +51,30 @@ fn shape_document() -> ShapeDocument {
                 published_spread: Some(n(2.3)),
                 to: "linear".into(),
             }],
-            curves: vec![Curve { name: "sum".into(), at: vec![n(90.0)], energy: vec![None] }],
+            curves: vec![Curve {
+                name: "sum".into(),
+                at: vec![n(90.0)],
+                energy: vec![None],
+            }],
         }],
         ties: vec![vec![6, 7, 8]],
-        warnings: vec![Warning { code: "example".into(), text: "made up".into() }],
-        missing: vec![Missing { path: "/cases/0/curves/0/energy/0".into(), reason: "test".into() }],
+        warnings: vec![Warning {
+            code: "example".into(),
+            text: "made up".into(),
+        }],
+        missing: vec![Missing {
+            path: "/cases/0/curves/0/energy/0".into(),
+            reason: "test".into(),
+        }],
     }
 }
 
 fn params_document() -> ParamsDocument {
     let method = synthetic::method();
-    let variants = vec![Variant { name: "other".into(), values: method.values.clone() }];
+    let variants = vec![Variant {
+        name: "other".into(),
+        values: method.values.clone(),
+    }];
     ParamsDocument {
         schema: ParamsSchema,
         program: Program::this(),
@@ -74,21 +91,39 @@ fn params_document() -> ParamsDocument {
 /// A levels document with every optional part.
 fn full_levels() -> LevelsDocument {
     let mut document = synthetic::levels_of(&synthetic::hydrogen_sulfide(), 3);
-    document.basis =
-        Some(vec![BasisFunction { atom: 1, shell: "3p".into(), function: "z".into() }]);
-    let share =
-        ShellPopulation { atom: 1, element: "S".into(), shell: "3p".into(), share: n(0.75) };
+    document.basis = Some(vec![BasisFunction {
+        atom: 1,
+        shell: "3p".into(),
+        function: "z".into(),
+    }]);
+    let share = ShellPopulation {
+        atom: 1,
+        element: "S".into(),
+        shell: "3p".into(),
+        share: n(0.75),
+    };
     let point = &mut document.points[0];
     point.levels[0].coefficients = Some(vec![n(0.5)]);
     point.levels[0].populations = Some(vec![share]);
-    point.charges =
-        Some(vec![AtomCharge { atom: 1, element: "S".into(), charge: n(-0.2) }]);
-    point.overlap_populations =
-        Some(vec![OverlapPopulation { atoms: [1, 2], population: n(0.6) }]);
-    document.symmetry.near_misses =
-        vec![NearMiss { group: "D2h".into(), tolerance_angstrom: n(0.004), at: vec![] }];
-    document.molecule.positions =
-        vec![AtomPosition { atom: 1, element: "S".into(), at: [n(0.1), n(-0.0), n(1e-300)] }];
+    point.charges = Some(vec![AtomCharge {
+        atom: 1,
+        element: "S".into(),
+        charge: n(-0.2),
+    }]);
+    point.overlap_populations = Some(vec![OverlapPopulation {
+        atoms: [1, 2],
+        population: n(0.6),
+    }]);
+    document.symmetry.near_misses = vec![NearMiss {
+        group: "D2h".into(),
+        tolerance_angstrom: n(0.004),
+        at: vec![],
+    }];
+    document.molecule.positions = vec![AtomPosition {
+        atom: 1,
+        element: "S".into(),
+        at: [n(0.1), n(-0.0), n(1e-300)],
+    }];
     document.molecule.geometry.bonds = vec![BondLength {
         atoms: [1, 2],
         elements: ["S".into(), "H".into()],
@@ -122,13 +157,21 @@ fn every_document_is_valid_under_its_schema() {
         let schema = &schemas.iter().find(|(name, _)| *name == form).unwrap().1;
         let validator = jsonschema::validator_for(schema).unwrap();
         let document: Value = serde_json::from_str(&text).unwrap();
-        let errors: Vec<String> =
-            validator.iter_errors(&document).map(|error| error.to_string()).collect();
+        let errors: Vec<String> = validator
+            .iter_errors(&document)
+            .map(|error| error.to_string())
+            .collect();
         assert!(errors.is_empty(), "{form}: {errors:?}");
         for key in document.as_object().unwrap().keys() {
             let mut broken = document.clone();
-            broken.as_object_mut().unwrap().insert(key.clone(), Value::Bool(true));
-            assert!(!validator.is_valid(&broken), "{form}: the schema takes a wrong {key}");
+            broken
+                .as_object_mut()
+                .unwrap()
+                .insert(key.clone(), Value::Bool(true));
+            assert!(
+                !validator.is_valid(&broken),
+                "{form}: the schema takes a wrong {key}"
+            );
         }
     }
 }
@@ -155,7 +198,10 @@ fn the_committed_schemas_are_current() {
 fn energies_and_lengths_have_their_units_in_the_schema() {
     let [(_, levels), ..] = schemas();
     let about = |kind: &str, key: &str| {
-        levels["$defs"][kind]["properties"][key]["description"].as_str().unwrap().to_owned()
+        levels["$defs"][kind]["properties"][key]["description"]
+            .as_str()
+            .unwrap()
+            .to_owned()
     };
     assert!(about("LevelRecord", "energy").contains("eV"));
     assert!(about("AtomPosition", "at").contains("Å"));
@@ -174,8 +220,14 @@ fn reading_back_gives_the_same_document_and_bytes() {
         assert!(again.unwrap() == text, "{form}");
     }
     let sweep = synthetic::random(3);
-    assert_eq!(SweepDocument::from_json(&to_json(&sweep).unwrap()), Ok(sweep));
-    assert_eq!(LevelsDocument::from_json(&to_json(&full_levels()).unwrap()), Ok(full_levels()));
+    assert_eq!(
+        SweepDocument::from_json(&to_json(&sweep).unwrap()),
+        Ok(sweep)
+    );
+    assert_eq!(
+        LevelsDocument::from_json(&to_json(&full_levels()).unwrap()),
+        Ok(full_levels())
+    );
 }
 
 #[test]
@@ -215,12 +267,18 @@ fn documents_that_contradict_themselves_are_refused() {
 #[test]
 fn errors_of_reading_name_the_place() {
     let unknown = read_document("{\"schema\": \"orbend/sweep/9\"}").unwrap_err();
-    assert_eq!(unknown, DocumentError::UnknownSchema("orbend/sweep/9".into()));
+    assert_eq!(
+        unknown,
+        DocumentError::UnknownSchema("orbend/sweep/9".into())
+    );
     let broken = read_document("{\n  \"schema\": oops\n}").unwrap_err();
     assert!(broken.to_string().starts_with("line 2, column"), "{broken}");
     let text = to_json(&synthetic::hydrogen_sulfide()).unwrap();
     let wrong = LevelsDocument::from_json(&text).unwrap_err();
-    assert!(wrong.to_string().contains("expected \"orbend/levels/1\""), "{wrong}");
+    assert!(
+        wrong.to_string().contains("expected \"orbend/levels/1\""),
+        "{wrong}"
+    );
 }
 
 #[test]
@@ -236,7 +294,11 @@ fn tables_have_one_row_per_point_and_level() {
     );
     let mut reader = csv::Reader::from_reader(text.as_bytes());
     let rows: Vec<csv::StringRecord> = reader.records().map(Result::unwrap).collect();
-    let expected: Vec<&LevelRecord> = sweep.points.iter().flat_map(|point| &point.levels).collect();
+    let expected: Vec<&LevelRecord> = sweep
+        .points
+        .iter()
+        .flat_map(|point| &point.levels)
+        .collect();
     assert_eq!(rows.len(), expected.len());
     for (row, level) in rows.iter().zip(expected) {
         let energy: f64 = row[3].parse().unwrap();

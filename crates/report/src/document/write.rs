@@ -15,7 +15,9 @@ const OPEN_DEPTH: usize = 2;
 pub fn to_json<D: Serialize>(document: &D) -> Result<String, DocumentError> {
     let mut bytes = Vec::new();
     let mut serializer = Serializer::with_formatter(&mut bytes, Outline::default());
-    document.serialize(&mut serializer).map_err(DocumentError::from_serde)?;
+    document
+        .serialize(&mut serializer)
+        .map_err(DocumentError::from_serde)?;
     bytes.push(b'\n');
     String::from_utf8(bytes).map_err(|_| DocumentError::NotUtf8)
 }
@@ -36,7 +38,11 @@ impl Outline {
         let empty = self.empty.pop().unwrap_or(true);
         let open = self.depth <= OPEN_DEPTH;
         self.depth = self.depth.saturating_sub(1);
-        if open && !empty { self.line(writer) } else { Ok(()) }
+        if open && !empty {
+            self.line(writer)
+        } else {
+            Ok(())
+        }
     }
 
     fn line<W: ?Sized + io::Write>(&self, writer: &mut W) -> io::Result<()> {

@@ -38,7 +38,10 @@ impl Bundle {
     /// Lowest and highest energy.
     pub(crate) fn extent(&self) -> Option<(f64, f64)> {
         let known = || self.energies.iter().flatten().copied();
-        Some((known().min_by(f64::total_cmp)?, known().max_by(f64::total_cmp)?))
+        Some((
+            known().min_by(f64::total_cmp)?,
+            known().max_by(f64::total_cmp)?,
+        ))
     }
 
     /// Whether any point has electrons in it.
@@ -49,12 +52,20 @@ impl Bundle {
 
 /// Coordinates of all points.
 pub(crate) fn abscissae(document: &SweepDocument) -> Vec<f64> {
-    document.points.iter().filter_map(|point| point.at.first()).map(|at| at.get()).collect()
+    document
+        .points
+        .iter()
+        .filter_map(|point| point.at.first())
+        .map(|at| at.get())
+        .collect()
 }
 
 /// Whether the document's numbers are angles.
 pub(crate) fn in_degrees(document: &SweepDocument) -> bool {
-    document.coordinates.first().is_some_and(|c| c.unit == CoordinateUnit::Degree)
+    document
+        .coordinates
+        .first()
+        .is_some_and(|c| c.unit == CoordinateUnit::Degree)
 }
 
 /// All bundles of a sweep in the order of the document's lines.
@@ -73,7 +84,9 @@ pub(crate) fn bundles(document: &SweepDocument, core: bool) -> Vec<Bundle> {
         }
     }
     let xs = abscissae(document);
-    sets.iter().map(|set| bundle(document, set, &xs, core)).collect()
+    sets.iter()
+        .map(|set| bundle(document, set, &xs, core))
+        .collect()
 }
 
 fn bundle(document: &SweepDocument, set: &[&LineRecord], xs: &[f64], core: bool) -> Bundle {
@@ -99,16 +112,33 @@ fn bundle(document: &SweepDocument, set: &[&LineRecord], xs: &[f64], core: bool)
                 .filter(|level| level.line.is_some_and(|id| ids.contains(&id)))
                 .map(|level| level.occupation.get())
                 .collect();
-            if held.is_empty() { 0.0 } else { held.iter().sum::<f64>() / held.len() as f64 }
+            if held.is_empty() {
+                0.0
+            } else {
+                held.iter().sum::<f64>() / held.len() as f64
+            }
         })
         .collect();
     let passport = &first.passport;
-    let label = if core { &first.label } else { &first.valence_label };
-    let or_label = |name: &str| if name.is_empty() { label.clone() } else { name.to_owned() };
+    let label = if core {
+        &first.label
+    } else {
+        &first.valence_label
+    };
+    let or_label = |name: &str| {
+        if name.is_empty() {
+            label.clone()
+        } else {
+            name.to_owned()
+        }
+    };
     let (start, end) = if core {
         (or_label(&passport.start), or_label(&passport.end))
     } else {
-        (or_label(&passport.start_valence), or_label(&passport.end_valence))
+        (
+            or_label(&passport.start_valence),
+            or_label(&passport.end_valence),
+        )
     };
     let mut names = vec![
         first.label.clone(),

@@ -17,8 +17,9 @@ impl Curve {
     pub(crate) fn new(xs: &[f64], ys: &[f64]) -> Self {
         let count = xs.len().min(ys.len());
         let (xs, ys) = (xs[..count].to_vec(), ys[..count].to_vec());
-        let secants: Vec<f64> =
-            (1..count).map(|k| (ys[k] - ys[k - 1]) / (xs[k] - xs[k - 1])).collect();
+        let secants: Vec<f64> = (1..count)
+            .map(|k| (ys[k] - ys[k - 1]) / (xs[k] - xs[k - 1]))
+            .collect();
         let mut slopes = vec![0.0; count];
         if let (Some(first), Some(last)) = (secants.first(), secants.last()) {
             slopes[0] = *first;
@@ -51,9 +52,10 @@ impl Curve {
         if let [only] = self.xs.as_slice() {
             return ((x - only).abs() < 1e-12).then(|| self.ys[0]);
         }
-        let k = self.xs.windows(2).position(|pair| {
-            (pair[0] <= x && x <= pair[1]) || (pair[1] <= x && x <= pair[0])
-        })?;
+        let k = self
+            .xs
+            .windows(2)
+            .position(|pair| (pair[0] <= x && x <= pair[1]) || (pair[1] <= x && x <= pair[0]))?;
         let width = self.xs[k + 1] - self.xs[k];
         let t = (x - self.xs[k]) / width;
         let [(_, a), (_, b), (_, c), (_, d)] = self.piece(k);
@@ -95,7 +97,11 @@ impl Curve {
 /// The part of a Bézier piece between two parameters (de Casteljau).
 fn cut(piece: Piece, start: f64, end: f64) -> Piece {
     let tail = split(piece, start).1;
-    let rest = if start < 1.0 { (end - start) / (1.0 - start) } else { 1.0 };
+    let rest = if start < 1.0 {
+        (end - start) / (1.0 - start)
+    } else {
+        1.0
+    };
     split(tail, rest).0
 }
 

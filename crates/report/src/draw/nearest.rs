@@ -2,11 +2,17 @@
 
 /// Up to three of `offered` nearest to `asked`, nearest first.
 pub(crate) fn nearest(asked: &str, offered: &[String]) -> Vec<String> {
-    let mut ranked: Vec<(usize, &String)> =
-        offered.iter().map(|name| (distance(asked, name), name)).collect();
+    let mut ranked: Vec<(usize, &String)> = offered
+        .iter()
+        .map(|name| (distance(asked, name), name))
+        .collect();
     ranked.sort();
     ranked.dedup();
-    ranked.into_iter().take(3).map(|(_, name)| name.clone()).collect()
+    ranked
+        .into_iter()
+        .take(3)
+        .map(|(_, name)| name.clone())
+        .collect()
 }
 
 /// Number of single-character edits between two names (Levenshtein 1966).
@@ -32,7 +38,10 @@ mod tests {
     #[test]
     fn nearest_first() {
         let offered = ["4a1", "2b2", "5a1", "2b1"].map(str::to_owned);
-        assert_eq!(nearest("6a1", &offered)[..2], ["4a1", "5a1"].map(str::to_owned));
+        assert_eq!(
+            nearest("6a1", &offered)[..2],
+            ["4a1", "5a1"].map(str::to_owned)
+        );
         assert_eq!(nearest("2b", &offered)[0], "2b1");
         assert_eq!(distance("kitten", "sitting"), 3);
     }

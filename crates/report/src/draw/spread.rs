@@ -40,7 +40,10 @@ mod tests {
 
     #[test]
     fn labels_that_fit_stay_where_they_are() {
-        assert_eq!(spread(&[1.0, 5.0, 9.0], 2.0, 0.0, 10.0), vec![1.0, 5.0, 9.0]);
+        assert_eq!(
+            spread(&[1.0, 5.0, 9.0], 2.0, 0.0, 10.0),
+            vec![1.0, 5.0, 9.0]
+        );
     }
 
     #[test]

@@ -57,7 +57,11 @@ pub(crate) fn ticks(from: f64, to: f64, most: usize) -> Ticks {
     for (factor, fifth) in [(1.0, 0.5), (2.0, 1.0), (5.0, 1.0), (10.0, 5.0)] {
         let step = factor * power;
         if count(low, high, step) <= most {
-            let digits = if factor > 5.0 { decimals.saturating_sub(1) } else { decimals };
+            let digits = if factor > 5.0 {
+                decimals.saturating_sub(1)
+            } else {
+                decimals
+            };
             return build(low, high, step, fifth * power, digits);
         }
     }
@@ -88,14 +92,20 @@ fn count(low: f64, high: f64, step: f64) -> usize {
 fn build(low: f64, high: f64, step: f64, small: f64, decimals: usize) -> Ticks {
     let multiples = |step: f64| -> Vec<f64> {
         let first = first_multiple(low, step);
-        (0..count(low, high, step).min(200)).map(|k| (first + k as f64) * step).collect()
+        (0..count(low, high, step).min(200))
+            .map(|k| (first + k as f64) * step)
+            .collect()
     };
     let major = multiples(step);
     let minor = multiples(small)
         .into_iter()
         .filter(|value| !major.iter().any(|tick| (tick - value).abs() < 0.1 * small))
         .collect();
-    Ticks { major, minor, decimals }
+    Ticks {
+        major,
+        minor,
+        decimals,
+    }
 }
 
 /// A number with so many decimals and a true minus sign; never "−0".
@@ -129,9 +139,18 @@ mod tests {
 
     #[test]
     fn angles_get_the_numbers_a_chemist_expects() {
-        assert_eq!(degree_ticks(90.0, 180.0, 6).major, [90.0, 120.0, 150.0, 180.0].to_vec());
-        assert_eq!(degree_ticks(60.0, 180.0, 6).major, [60.0, 90.0, 120.0, 150.0, 180.0].to_vec());
-        assert_eq!(degree_ticks(0.0, 90.0, 6).major, [0.0, 30.0, 60.0, 90.0].to_vec());
+        assert_eq!(
+            degree_ticks(90.0, 180.0, 6).major,
+            [90.0, 120.0, 150.0, 180.0].to_vec()
+        );
+        assert_eq!(
+            degree_ticks(60.0, 180.0, 6).major,
+            [60.0, 90.0, 120.0, 150.0, 180.0].to_vec()
+        );
+        assert_eq!(
+            degree_ticks(0.0, 90.0, 6).major,
+            [0.0, 30.0, 60.0, 90.0].to_vec()
+        );
     }
 
     #[test]
@@ -139,7 +158,10 @@ mod tests {
         let lengths = ticks(0.8, 1.6, 5);
         assert_eq!(lengths.decimals, 1);
         assert_eq!(lengths.major.len(), 5);
-        assert_eq!(ticks(-22.0, 5.0, 7).major, [-20.0, -15.0, -10.0, -5.0, 0.0, 5.0].to_vec());
+        assert_eq!(
+            ticks(-22.0, 5.0, 7).major,
+            [-20.0, -15.0, -10.0, -5.0, 0.0, 5.0].to_vec()
+        );
         assert_eq!(ticks(0.0, 0.035, 4).decimals, 2);
         assert_eq!(ticks(3.0, 3.0, 4).major, [3.0].to_vec());
     }

@@ -63,13 +63,23 @@ pub(crate) fn energy_axis(
     for pair in scale.segments.windows(2) {
         for y in [pair[0].top, pair[1].bottom] {
             let half = 0.4 * measure.tick;
-            canvas.line((x - half, y + 0.5 * half), (x + half, y - 0.5 * half), colours.ink, thin);
+            canvas.line(
+                (x - half, y + 0.5 * half),
+                (x + half, y - 0.5 * half),
+                colours.ink,
+                thin,
+            );
         }
     }
     let top = scale.segments.last().map_or(0.0, |segment| segment.top);
     let bottom = scale.segments.first().map_or(0.0, |segment| segment.bottom);
     let base = measure.pad + 0.9 * measure.title;
-    canvas.upward_text((base, 0.5 * (top + bottom)), measure.title, colours.ink, title);
+    canvas.upward_text(
+        (base, 0.5 * (top + bottom)),
+        measure.title,
+        colours.ink,
+        title,
+    );
     canvas.xml.close();
 }
 
@@ -79,8 +89,11 @@ pub(crate) fn coordinate_axis(canvas: &mut Canvas, sheet: &Sheet<'_>, y: f64) ->
     let (from, to) = sheet.span();
     let widest = 4.0 * measure.tick;
     let most = (((sheet.right - sheet.left) / widest).floor() as usize).clamp(2, 7);
-    let found =
-        if in_degrees(sheet.document) { degree_ticks(from, to, most) } else { ticks(from, to, most) };
+    let found = if in_degrees(sheet.document) {
+        degree_ticks(from, to, most)
+    } else {
+        ticks(from, to, most)
+    };
     let thin = 0.45 * measure.stroke;
     let tick = TICK * measure.tick;
     canvas.xml.open("g", &[("class", "coordinate-axis")]);
@@ -93,15 +106,31 @@ pub(crate) fn coordinate_axis(canvas: &mut Canvas, sheet: &Sheet<'_>, y: f64) ->
         let x = sheet.x(*value);
         canvas.line((x, y), (x, y + tick), colours.ink, thin);
         let text = Lettering::plain(number(*value, found.decimals));
-        canvas.text((x, y + tick + 0.95 * measure.tick), Anchor::Middle, measure.tick, colours.ink, &text);
+        canvas.text(
+            (x, y + tick + 0.95 * measure.tick),
+            Anchor::Middle,
+            measure.tick,
+            colours.ink,
+            &text,
+        );
     }
     let base = y + tick + 1.35 * measure.tick + 0.95 * measure.title;
     if let Some(coordinate) = sheet.document.coordinates.first() {
         let name = coordinate_name(coordinate, &sheet.document.molecule, "–");
         let unit = unit_symbol(coordinate.unit);
-        let title = if unit.is_empty() { name } else { format!("{name} / {unit}") };
+        let title = if unit.is_empty() {
+            name
+        } else {
+            format!("{name} / {unit}")
+        };
         let middle = 0.5 * (sheet.left + sheet.right);
-        canvas.text((middle, base), Anchor::Middle, measure.title, colours.ink, &Lettering::plain(title));
+        canvas.text(
+            (middle, base),
+            Anchor::Middle,
+            measure.title,
+            colours.ink,
+            &Lettering::plain(title),
+        );
     }
     canvas.xml.close();
     base + 0.4 * measure.title

@@ -103,7 +103,8 @@ impl Canvas {
             ("text-anchor", anchor_name(anchor)),
         ];
         attributes.extend(more);
-        self.xml.with_markup("text", &attributes, &markup(lettering, size));
+        self.xml
+            .with_markup("text", &attributes, &markup(lettering, size));
     }
 
     /// Text that reads upwards, centred on `(x, y)`, `x` being its base line.
@@ -147,8 +148,12 @@ impl Canvas {
         let width = length(width);
         let dashes: Vec<String> = dashes.iter().map(|dash| length(*dash)).collect();
         let dashes = dashes.join(" ");
-        let mut attributes =
-            vec![("d", path), ("fill", "none"), ("stroke", colour), ("stroke-width", &width)];
+        let mut attributes = vec![
+            ("d", path),
+            ("fill", "none"),
+            ("stroke", colour),
+            ("stroke-width", &width),
+        ];
         if !dashes.is_empty() {
             attributes.push(("stroke-dasharray", &dashes));
         }
@@ -199,7 +204,14 @@ impl Canvas {
     }
 
     /// Two lines of equal height at the ends of a short upright line: an avoided crossing.
-    pub(crate) fn avoided(&mut self, x: f64, (top, bottom): (f64, f64), half: f64, colour: &str, width: f64) {
+    pub(crate) fn avoided(
+        &mut self,
+        x: f64,
+        (top, bottom): (f64, f64),
+        half: f64,
+        colour: &str,
+        width: f64,
+    ) {
         let path = format!(
             "M{0} {2}H{1}M{0} {3}H{1}M{4} {2}V{3}",
             length(x - half),
@@ -258,13 +270,21 @@ fn markup(lettering: &Lettering, size: f64) -> String {
         if run.shift == Shift::None && on_line {
             text.push_str(&content);
         } else {
-            let back = if run.shift == Shift::Super { below } else { 0.0 };
+            let back = if run.shift == Shift::Super {
+                below
+            } else {
+                0.0
+            };
             let font = run.scale();
             let _ = write!(text, "<tspan dy=\"{}\"", length(wanted - height));
             if back > 0.0 {
                 let _ = write!(text, " dx=\"{}\"", length(-back));
             }
-            let _ = write!(text, " font-size=\"{}\">{content}</tspan>", length(font * size));
+            let _ = write!(
+                text,
+                " font-size=\"{}\">{content}</tspan>",
+                length(font * size)
+            );
         }
         below = if run.shift == Shift::Sub {
             Lettering::plain(run.text.clone()).width(size * SMALL)

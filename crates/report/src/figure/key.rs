@@ -42,8 +42,21 @@ pub(crate) fn draw(
             x = left;
             base += 1.4 * size;
         }
-        mark(canvas, measure, colours, *kind, (x, base - 0.32 * size), sign);
-        canvas.text((x + sign + 0.4 * size, base), Anchor::Start, size, colours.soft, &text);
+        mark(
+            canvas,
+            measure,
+            colours,
+            *kind,
+            (x, base - 0.32 * size),
+            sign,
+        );
+        canvas.text(
+            (x + sign + 0.4 * size, base),
+            Anchor::Start,
+            size,
+            colours.soft,
+            &text,
+        );
         x += width + 1.3 * size;
     }
     canvas.xml.close();
@@ -62,7 +75,9 @@ fn mark(
     let ink = colours.ink;
     let thin = 0.5 * measure.stroke;
     match kind {
-        Mark::Electrons => canvas.electrons((middle, y), 2.0, 1.15 * measure.stroke, ink, colours.ground),
+        Mark::Electrons => {
+            canvas.electrons((middle, y), 2.0, 1.15 * measure.stroke, ink, colours.ground)
+        }
         Mark::Occupied => canvas.line((x, y), (x + width, y), ink, measure.line_width(2.0)),
         Mark::Empty => canvas.line((x, y), (x + width, y), ink, measure.line_width(0.0)),
         Mark::Gap => {
@@ -80,7 +95,13 @@ fn mark(
         Mark::Crossing => canvas.disc((middle, y), 1.9 * measure.stroke, "none", (ink, thin)),
         Mark::Avoided => {
             let half = 0.4 * measure.key;
-            canvas.avoided(middle, (y - half, y + half), 1.5 * measure.stroke, ink, thin);
+            canvas.avoided(
+                middle,
+                (y - half, y + half),
+                1.5 * measure.stroke,
+                ink,
+                thin,
+            );
         }
     }
 }

@@ -36,9 +36,20 @@ pub(crate) fn end_labels(sheet: &Sheet<'_>, side: Side) -> Vec<EndLabel> {
         let bundle = &sheet.all[line];
         let here = end_energy(bundle, side);
         let visible = |energy: Option<f64>| energy.is_some_and(|e| low <= e && e <= high);
-        let other = end_energy(bundle, if side == Side::Left { Side::Right } else { Side::Left });
+        let other = end_energy(
+            bundle,
+            if side == Side::Left {
+                Side::Right
+            } else {
+                Side::Left
+            },
+        );
         let Some(mut energy) = here else { continue };
-        let mut name = if side == Side::Left { bundle.start.clone() } else { bundle.end.clone() };
+        let mut name = if side == Side::Left {
+            bundle.start.clone()
+        } else {
+            bundle.end.clone()
+        };
         let mut lettering = Lettering::level(&name);
         if !visible(here) {
             if visible(other) || side == Side::Right {
@@ -87,15 +98,21 @@ fn end_energy(bundle: &Bundle, side: Side) -> Option<f64> {
 
 /// Width of the widest label.
 pub(crate) fn widest(labels: &[EndLabel], size: f64) -> f64 {
-    labels.iter().map(|label| label.lettering.width(size)).fold(0.0, f64::max)
+    labels
+        .iter()
+        .map(|label| label.lettering.width(size))
+        .fold(0.0, f64::max)
 }
 
 /// Draws the labels of one end, each beside its line; where they would collide they make way and a
 /// thin line leads to them.
 pub(crate) fn draw(canvas: &mut Canvas, sheet: &Sheet<'_>, labels: &[EndLabel], side: Side) {
     let size = sheet.measure.label;
-    let targets: Vec<f64> =
-        labels.iter().rev().map(|label| sheet.scale.y(label.energy)).collect();
+    let targets: Vec<f64> = labels
+        .iter()
+        .rev()
+        .map(|label| sheet.scale.y(label.energy))
+        .collect();
     // Centres of the text, not base lines, stand at the energies.
     let half = 0.5 * (ASCENT + DESCENT) * size;
     let places = spread(
@@ -104,7 +121,10 @@ pub(crate) fn draw(canvas: &mut Canvas, sheet: &Sheet<'_>, labels: &[EndLabel], 
         sheet.top + half,
         sheet.bottom - half,
     );
-    canvas.xml.open("g", &[("class", if side == Side::Left { "start" } else { "end" })]);
+    canvas.xml.open(
+        "g",
+        &[("class", if side == Side::Left { "start" } else { "end" })],
+    );
     for ((label, target), place) in labels.iter().rev().zip(&targets).zip(&places) {
         let (edge, sign) = match side {
             Side::Left => (sheet.left, -1.0),
@@ -113,18 +133,38 @@ pub(crate) fn draw(canvas: &mut Canvas, sheet: &Sheet<'_>, labels: &[EndLabel], 
         let leader = sheet.measure.leader();
         let (near, far) = (edge + sign * 0.2 * leader, edge + sign * 0.82 * leader);
         if (target - place).abs() > 0.08 * size {
-            canvas.line((near, *target), (far, *place), sheet.colours.soft, 0.3 * sheet.measure.stroke);
+            canvas.line(
+                (near, *target),
+                (far, *place),
+                sheet.colours.soft,
+                0.3 * sheet.measure.stroke,
+            );
         } else {
-            canvas.line((near, *target), (far, *target), sheet.colours.soft, 0.3 * sheet.measure.stroke);
+            canvas.line(
+                (near, *target),
+                (far, *target),
+                sheet.colours.soft,
+                0.3 * sheet.measure.stroke,
+            );
         }
-        let anchor = if side == Side::Left { Anchor::End } else { Anchor::Start };
+        let anchor = if side == Side::Left {
+            Anchor::End
+        } else {
+            Anchor::Start
+        };
         let colour = if label.irrep.is_some() {
             sheet.colour(&sheet.all[label.line])
         } else {
             sheet.colours.ink
         };
         let baseline = place + 0.34 * size;
-        canvas.text((edge + sign * leader, baseline), anchor, size, colour, &label.lettering);
+        canvas.text(
+            (edge + sign * leader, baseline),
+            anchor,
+            size,
+            colour,
+            &label.lettering,
+        );
     }
     canvas.xml.close();
 }

@@ -7,7 +7,9 @@ use crate::document::{
     SumMinimum,
 };
 use crate::draw::ticks::ascii_number;
-use crate::draw::wording::{bracketed_charge, coordinate_name, heading_formula, lowest_sum, value_with_unit};
+use crate::draw::wording::{
+    bracketed_charge, coordinate_name, heading_formula, lowest_sum, value_with_unit,
+};
 
 use super::options::FigureError;
 use super::sheet::Sheet;
@@ -40,7 +42,10 @@ pub(crate) fn json(sheet: &Sheet<'_>) -> Result<String, FigureError> {
         at: sheet.xs.clone(),
         sum: document.points.iter().map(|point| point.sum).collect(),
         minimum: document.minimum.as_ref(),
-        drawn: sheet.lines().flat_map(|bundle| bundle.ids.clone()).collect(),
+        drawn: sheet
+            .lines()
+            .flat_map(|bundle| bundle.ids.clone())
+            .collect(),
         lines: document.lines.as_deref().unwrap_or_default(),
         crossings: document.crossings.as_deref().unwrap_or_default(),
     };
@@ -53,7 +58,10 @@ pub(crate) fn title(sheet: &Sheet<'_>) -> String {
     let (from, to) = sheet.span();
     let range = sheet.document.coordinates.first().map(|coordinate| {
         let name = coordinate_name(coordinate, molecule, "-");
-        let (from, to) = (value_with_unit(from, coordinate.unit), value_with_unit(to, coordinate.unit));
+        let (from, to) = (
+            value_with_unit(from, coordinate.unit),
+            value_with_unit(to, coordinate.unit),
+        );
         format!(" along the {name} from {from} to {to}")
     });
     format!(
@@ -72,9 +80,19 @@ pub(crate) fn description(sheet: &Sheet<'_>) -> String {
         document.symmetry.path_group
     );
     for bundle in sheet.lines() {
-        let ends = (bundle.energies.first().copied().flatten(), bundle.energies.last().copied().flatten());
-        let filled = if bundle.ever_occupied() { "occupied" } else { "empty" };
-        text.push_str(&format!(" {} ({filled}): from {}", bundle.label, bundle.start));
+        let ends = (
+            bundle.energies.first().copied().flatten(),
+            bundle.energies.last().copied().flatten(),
+        );
+        let filled = if bundle.ever_occupied() {
+            "occupied"
+        } else {
+            "empty"
+        };
+        text.push_str(&format!(
+            " {} ({filled}): from {}",
+            bundle.label, bundle.start
+        ));
         if let (Some(start), Some(end)) = ends {
             text.push_str(&format!(
                 " at {} to {} at {}.",
@@ -86,7 +104,10 @@ pub(crate) fn description(sheet: &Sheet<'_>) -> String {
             text.push_str(&format!(" to {}.", bundle.end));
         }
     }
-    let unit = document.coordinates.first().map(|coordinate| coordinate.unit);
+    let unit = document
+        .coordinates
+        .first()
+        .map(|coordinate| coordinate.unit);
     for crossing in document.crossings.iter().flatten() {
         let verb = match crossing.kind {
             CrossingKind::Crossing => "cross",
@@ -95,11 +116,17 @@ pub(crate) fn description(sheet: &Sheet<'_>) -> String {
         };
         let at = crossing.at.get();
         let place = unit.map_or_else(|| at.to_string(), |unit| value_with_unit(at, unit));
-        text.push_str(&format!(" {} and {} {verb} at {place}.", crossing.labels[0], crossing.labels[1]));
+        text.push_str(&format!(
+            " {} and {} {verb} at {place}.",
+            crossing.labels[0], crossing.labels[1]
+        ));
     }
     if let (Some((at, _, inside)), Some(unit)) = (lowest_sum(document), unit) {
         let end = if inside { "" } else { ", an end of the range" };
-        text.push_str(&format!(" The sum is lowest at {}{end}.", value_with_unit(at, unit)));
+        text.push_str(&format!(
+            " The sum is lowest at {}{end}.",
+            value_with_unit(at, unit)
+        ));
     }
     let hidden: Vec<&str> = (0..sheet.all.len())
         .filter(|place| !sheet.drawn.contains(place))

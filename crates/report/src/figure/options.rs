@@ -150,7 +150,9 @@ pub enum FigureError {
         nearest: Vec<String>,
     },
     /// Nothing lies in the energy window.
-    #[error("no line between {from} and {to} eV: the lines lie between {lowest:.2} and {highest:.2} eV")]
+    #[error(
+        "no line between {from} and {to} eV: the lines lie between {lowest:.2} and {highest:.2} eV"
+    )]
     EmptyWindow {
         /// Lower end asked for, in eV.
         from: f64,
@@ -162,7 +164,9 @@ pub enum FigureError {
         highest: f64,
     },
     /// The window's ends are in the wrong order, equal, or not finite.
-    #[error("the energy window {from}..{to} eV is empty: the first energy has to be below the second")]
+    #[error(
+        "the energy window {from}..{to} eV is empty: the first energy has to be below the second"
+    )]
     ReversedWindow {
         /// Lower end asked for, in eV.
         from: f64,

@@ -17,10 +17,16 @@ use super::xml::length;
 pub(crate) fn shade_gap(canvas: &mut Canvas, sheet: &Sheet<'_>) -> bool {
     const SAMPLES: usize = 120;
     let aufbau = sheet.document.points.iter().all(|point| {
-        let order = point.levels.iter().map(|level| level.occupation.get() > 1e-6);
+        let order = point
+            .levels
+            .iter()
+            .map(|level| level.occupation.get() > 1e-6);
         order.is_sorted_by(|a, b| a >= b)
     });
-    let complete = sheet.all.iter().all(|bundle| bundle.energies.iter().all(Option::is_some));
+    let complete = sheet
+        .all
+        .iter()
+        .all(|bundle| bundle.energies.iter().all(Option::is_some));
     if !(aufbau && complete) {
         return false;
     }
@@ -32,7 +38,12 @@ pub(crate) fn shade_gap(canvas: &mut Canvas, sheet: &Sheet<'_>) -> bool {
         let filled = occupied_orbitals(sheet, x);
         let mut energies: Vec<f64> = Vec::new();
         for bundle in &sheet.all {
-            energies.extend(bundle.value(x).into_iter().flat_map(|e| vec![e; bundle.multiplicity]));
+            energies.extend(
+                bundle
+                    .value(x)
+                    .into_iter()
+                    .flat_map(|e| vec![e; bundle.multiplicity]),
+            );
         }
         energies.sort_by(f64::total_cmp);
         let Some((homo, lumo)) = filled
@@ -42,7 +53,12 @@ pub(crate) fn shade_gap(canvas: &mut Canvas, sheet: &Sheet<'_>) -> bool {
             return false;
         };
         let x = length(sheet.x(x));
-        let _ = write!(upper, "{}{x} {}", if sample == 0 { "M" } else { "L" }, length(sheet.scale.y(lumo)));
+        let _ = write!(
+            upper,
+            "{}{x} {}",
+            if sample == 0 { "M" } else { "L" },
+            length(sheet.scale.y(lumo))
+        );
         lower.push(format!("L{x} {}", length(sheet.scale.y(homo))));
     }
     upper.extend(lower.into_iter().rev());
@@ -54,25 +70,39 @@ pub(crate) fn shade_gap(canvas: &mut Canvas, sheet: &Sheet<'_>) -> bool {
 /// Orbitals that hold electrons at the point nearest to `x`.
 fn occupied_orbitals(sheet: &Sheet<'_>, x: f64) -> usize {
     let levels = &sheet.document.points[nearest_point(&sheet.xs, x)].levels;
-    levels.iter().filter(|level| level.occupation.get() > 1e-6).count()
+    levels
+        .iter()
+        .filter(|level| level.occupation.get() > 1e-6)
+        .count()
 }
 
 fn nearest_point(xs: &[f64], x: f64) -> usize {
     let distance = |k: &usize| (xs[*k] - x).abs();
-    (0..xs.len()).min_by(|a, b| distance(a).total_cmp(&distance(b))).unwrap_or_default()
+    (0..xs.len())
+        .min_by(|a, b| distance(a).total_cmp(&distance(b)))
+        .unwrap_or_default()
 }
 
 /// Draws one line: wide where it holds electrons, thin where it is empty.
 pub(crate) fn draw_line(canvas: &mut Canvas, sheet: &Sheet<'_>, bundle: &Bundle) {
     let ids: Vec<String> = bundle.ids.iter().map(u32::to_string).collect();
-    canvas.xml.open("g", &[("class", "line"), ("data-line", &ids.join(" "))]);
-    canvas.xml.text("title", &[], &format!("{}: {} to {}", bundle.label, bundle.start, bundle.end));
+    canvas
+        .xml
+        .open("g", &[("class", "line"), ("data-line", &ids.join(" "))]);
+    canvas.xml.text(
+        "title",
+        &[],
+        &format!("{}: {} to {}", bundle.label, bundle.start, bundle.end),
+    );
     let colour = sheet.colour(bundle);
     for (from, to, electrons) in stretches(sheet, bundle) {
         let width = sheet.measure.line_width(electrons);
         let dashes = dashes(sheet.place(bundle), sheet.measure.stroke);
-        let pieces: Vec<Vec<Piece>> =
-            bundle.curves.iter().map(|curve| curve.pieces(from, to)).collect();
+        let pieces: Vec<Vec<Piece>> = bundle
+            .curves
+            .iter()
+            .map(|curve| curve.pieces(from, to))
+            .collect();
         for offset in sheet.offsets(bundle) {
             for run in pieces.iter().filter(|run| !run.is_empty()) {
                 canvas.stroke(&path(&sheet.on_page(run, offset)), colour, width, &dashes);
@@ -116,7 +146,10 @@ fn crossings<'a>(sheet: &Sheet<'a>) -> impl Iterator<Item = &'a CrossingRecord> 
 }
 
 /// Draws electrons on the occupied lines. Returns the coordinate where they stand.
-pub(crate) fn draw_electrons(canvas: &mut Canvas, sheet: &Sheet<'_>) -> Result<Option<f64>, FigureError> {
+pub(crate) fn draw_electrons(
+    canvas: &mut Canvas,
+    sheet: &Sheet<'_>,
+) -> Result<Option<f64>, FigureError> {
     let (from, to) = sheet.span();
     let point = match sheet.options.electrons {
         ElectronMarks::None => return Ok(None),
@@ -133,7 +166,8 @@ pub(crate) fn draw_electrons(canvas: &mut Canvas, sheet: &Sheet<'_>) -> Result<O
     canvas.xml.open("g", &[("class", "electrons")]);
     for bundle in sheet.lines() {
         let electrons = bundle.occupations[point];
-        let Some(energy) = bundle.energies[point].filter(|energy| sheet.scale.shows(*energy)) else {
+        let Some(energy) = bundle.energies[point].filter(|energy| sheet.scale.shows(*energy))
+        else {
             continue;
         };
         if electrons <= 1e-6 {
@@ -145,7 +179,13 @@ pub(crate) fn draw_electrons(canvas: &mut Canvas, sheet: &Sheet<'_>) -> Result<O
         for (k, offset) in sheet.offsets(bundle).into_iter().enumerate() {
             let aside = (k as f64 - middle) * 6.4 * radius;
             let colour = sheet.colour(bundle);
-            canvas.electrons((x + aside, y + offset), electrons, radius, colour, sheet.colours.ground);
+            canvas.electrons(
+                (x + aside, y + offset),
+                electrons,
+                radius,
+                colour,
+                sheet.colours.ground,
+            );
         }
     }
     canvas.xml.close();
@@ -164,7 +204,10 @@ fn clearest_point(sheet: &Sheet<'_>) -> usize {
             .map(|energy| sheet.scale.y(energy))
             .collect();
         heights.sort_by(f64::total_cmp);
-        heights.windows(2).map(|pair| pair[1] - pair[0]).fold(f64::INFINITY, f64::min)
+        heights
+            .windows(2)
+            .map(|pair| pair[1] - pair[0])
+            .fold(f64::INFINITY, f64::min)
     };
     let mut best = margin.min(count - 1);
     for k in margin..count - margin {
@@ -187,8 +230,12 @@ pub(crate) fn mark_crossings(canvas: &mut Canvas, sheet: &Sheet<'_>) -> (bool, b
             .iter()
             .filter_map(|id| sheet.lines().find(|bundle| bundle.ids.contains(id)))
             .collect();
-        let &[first, second] = pair.as_slice() else { continue };
-        let (Some(a), Some(b)) = (first.value(at), second.value(at)) else { continue };
+        let &[first, second] = pair.as_slice() else {
+            continue;
+        };
+        let (Some(a), Some(b)) = (first.value(at), second.value(at)) else {
+            continue;
+        };
         if !(sheet.scale.shows(a) && sheet.scale.shows(b)) {
             continue;
         }
@@ -196,7 +243,10 @@ pub(crate) fn mark_crossings(canvas: &mut Canvas, sheet: &Sheet<'_>) -> (bool, b
         let energy = crossing.energy.map_or(0.5 * (a + b), |energy| energy.get());
         let y = sheet.scale.y(energy);
         // Members of a degenerate set cross at one place: one mark.
-        if marked.iter().any(|(mx, my)| (mx - x).abs() < 0.5 && (my - y).abs() < 0.5) {
+        if marked
+            .iter()
+            .any(|(mx, my)| (mx - x).abs() < 0.5 && (my - y).abs() < 0.5)
+        {
             continue;
         }
         marked.push((x, y));

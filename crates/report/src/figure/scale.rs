@@ -32,9 +32,18 @@ const EMPTY_REACH_EV: f64 = 12.0;
 /// the empty lines that come within [`EMPTY_REACH_EV`] of it (always where the lowest one comes lowest).
 pub(crate) fn automatic_window(extents: &[(f64, f64, bool)]) -> Option<(f64, f64)> {
     let lowest = extents.iter().map(|e| e.0).min_by(f64::total_cmp)?;
-    let homo = extents.iter().filter(|e| e.2).map(|e| e.1).max_by(f64::total_cmp);
+    let homo = extents
+        .iter()
+        .filter(|e| e.2)
+        .map(|e| e.1)
+        .max_by(f64::total_cmp);
     let floor = homo.unwrap_or(lowest);
-    let lumo = extents.iter().filter(|e| !e.2).map(|e| e.0).min_by(f64::total_cmp).unwrap_or(floor);
+    let lumo = extents
+        .iter()
+        .filter(|e| !e.2)
+        .map(|e| e.0)
+        .min_by(f64::total_cmp)
+        .unwrap_or(floor);
     let reach = floor + EMPTY_REACH_EV;
     let highest = extents
         .iter()
@@ -46,7 +55,10 @@ pub(crate) fn automatic_window(extents: &[(f64, f64, bool)]) -> Option<(f64, f64
 }
 
 /// Checks a window given by the user against what there is to draw.
-pub(crate) fn check_window(window: (f64, f64), extents: &[(f64, f64, bool)]) -> Result<(), FigureError> {
+pub(crate) fn check_window(
+    window: (f64, f64),
+    extents: &[(f64, f64, bool)],
+) -> Result<(), FigureError> {
     let (from, to) = window;
     if !(from.is_finite() && to.is_finite() && from < to) {
         return Err(FigureError::ReversedWindow { from, to });
@@ -54,21 +66,41 @@ pub(crate) fn check_window(window: (f64, f64), extents: &[(f64, f64, bool)]) -> 
     if extents.iter().any(|e| e.1 >= from && e.0 <= to) {
         return Ok(());
     }
-    let lowest = extents.iter().map(|e| e.0).min_by(f64::total_cmp).unwrap_or_default();
-    let highest = extents.iter().map(|e| e.1).max_by(f64::total_cmp).unwrap_or_default();
-    Err(FigureError::EmptyWindow { from, to, lowest, highest })
+    let lowest = extents
+        .iter()
+        .map(|e| e.0)
+        .min_by(f64::total_cmp)
+        .unwrap_or_default();
+    let highest = extents
+        .iter()
+        .map(|e| e.1)
+        .max_by(f64::total_cmp)
+        .unwrap_or_default();
+    Err(FigureError::EmptyWindow {
+        from,
+        to,
+        lowest,
+        highest,
+    })
 }
 
 /// Energy ranges to show: one, or several where wide empty stretches between occupied lines are left
 /// out (deep levels far below the rest).
-pub(crate) fn ranges(window: (f64, f64), padded: bool, extents: &[(f64, f64, bool)]) -> Vec<(f64, f64)> {
+pub(crate) fn ranges(
+    window: (f64, f64),
+    padded: bool,
+    extents: &[(f64, f64, bool)],
+) -> Vec<(f64, f64)> {
     let span = (window.1 - window.0).max(1e-3);
     if !padded {
         return vec![window];
     }
     let pad = (0.04 * span).max(0.25);
-    let mut inside: Vec<(f64, f64, bool)> =
-        extents.iter().copied().filter(|e| e.1 >= window.0 && e.0 <= window.1).collect();
+    let mut inside: Vec<(f64, f64, bool)> = extents
+        .iter()
+        .copied()
+        .filter(|e| e.1 >= window.0 && e.0 <= window.1)
+        .collect();
     inside.sort_by(|a, b| a.0.total_cmp(&b.0));
     let mut found = Vec::new();
     let mut start = window.0;
@@ -100,7 +132,12 @@ impl EnergyScale {
             .iter()
             .map(|&(low, high)| {
                 let height = (high - low) * per_ev;
-                let segment = Segment { low, high, bottom: base, top: base - height };
+                let segment = Segment {
+                    low,
+                    high,
+                    bottom: base,
+                    top: base - height,
+                };
                 base -= height + gap;
                 segment
             })
@@ -127,12 +164,17 @@ impl EnergyScale {
 
     /// Whether the energy is on the axis.
     pub(crate) fn shows(&self, energy: f64) -> bool {
-        self.segments.iter().any(|s| s.low - 1e-9 <= energy && energy <= s.high + 1e-9)
+        self.segments
+            .iter()
+            .any(|s| s.low - 1e-9 <= energy && energy <= s.high + 1e-9)
     }
 
     /// Round numbers for each segment in the axis unit, numbers at least `distance` points apart.
     pub(crate) fn ticks(&self, unit: EnergyUnit, distance: f64) -> Vec<Ticks> {
-        let shares = self.segments.iter().map(|s| (s.bottom - s.top) / (s.high - s.low));
+        let shares = self
+            .segments
+            .iter()
+            .map(|s| (s.bottom - s.top) / (s.high - s.low));
         let per_ev = shares.fold(f64::INFINITY, f64::min);
         let spans = self.segments.iter().map(|s| s.high - s.low);
         let longest = spans.fold(0.0, f64::max);
@@ -142,7 +184,9 @@ impl EnergyScale {
             .iter()
             .find(|s| (s.high - s.low - longest).abs() < 1e-9)
             .map(|s| ticks(unit.of_ev(s.low), unit.of_ev(s.high), most));
-        let step = main.as_ref().and_then(|t| Some(t.major.get(1)? - t.major.first()?));
+        let step = main
+            .as_ref()
+            .and_then(|t| Some(t.major.get(1)? - t.major.first()?));
         self.segments
             .iter()
             .map(|s| {
@@ -152,14 +196,20 @@ impl EnergyScale {
                     .rev()
                     .map(|count| ticks(low, high, count))
                     .find(|found| self.apart(found, unit, distance))
-                    .unwrap_or(Ticks { major: Vec::new(), minor: Vec::new(), decimals: 0 })
+                    .unwrap_or(Ticks {
+                        major: Vec::new(),
+                        minor: Vec::new(),
+                        decimals: 0,
+                    })
             })
             .collect()
     }
 
     fn apart(&self, ticks: &Ticks, unit: EnergyUnit, distance: f64) -> bool {
         let heights: Vec<f64> = ticks.major.iter().map(|t| self.y(unit.to_ev(*t))).collect();
-        heights.windows(2).all(|pair| pair[0] - pair[1] >= distance - 1e-9)
+        heights
+            .windows(2)
+            .all(|pair| pair[0] - pair[1] >= distance - 1e-9)
     }
 }
 

@@ -65,7 +65,10 @@ impl<'a> Sheet<'a> {
             // Lines that were asked for by name are shown in full.
             (None, Some(_)) => {
                 let low = extents.iter().map(|e| e.0).fold(f64::INFINITY, f64::min);
-                let high = extents.iter().map(|e| e.1).fold(f64::NEG_INFINITY, f64::max);
+                let high = extents
+                    .iter()
+                    .map(|e| e.1)
+                    .fold(f64::NEG_INFINITY, f64::max);
                 ((low, high), true)
             }
         };
@@ -92,7 +95,9 @@ impl<'a> Sheet<'a> {
             all,
             drawn,
             ranges,
-            scale: EnergyScale { segments: Vec::new() },
+            scale: EnergyScale {
+                segments: Vec::new(),
+            },
             left: 0.0,
             right: 0.0,
             top: 0.0,
@@ -127,7 +132,10 @@ impl<'a> Sheet<'a> {
 
     /// Place of a line's irrep among all irreps.
     pub(crate) fn place(&self, bundle: &Bundle) -> usize {
-        self.irreps.iter().position(|irrep| *irrep == bundle.irrep).unwrap_or_default()
+        self.irreps
+            .iter()
+            .position(|irrep| *irrep == bundle.irrep)
+            .unwrap_or_default()
     }
 
     /// Colour of a line.
@@ -146,8 +154,16 @@ impl<'a> Sheet<'a> {
 
 fn check_direction(xs: &[f64]) -> Result<(), FigureError> {
     let rises = xs[1] > xs[0];
-    let turn = xs.windows(2).position(|pair| if rises { pair[1] <= pair[0] } else { pair[1] >= pair[0] });
-    turn.map_or(Ok(()), |place| Err(FigureError::Unordered { point: place + 2 }))
+    let turn = xs.windows(2).position(|pair| {
+        if rises {
+            pair[1] <= pair[0]
+        } else {
+            pair[1] >= pair[0]
+        }
+    });
+    turn.map_or(Ok(()), |place| {
+        Err(FigureError::Unordered { point: place + 2 })
+    })
 }
 
 fn choose(all: &[Bundle], names: Option<&[String]>) -> Result<Vec<usize>, FigureError> {
@@ -171,7 +187,11 @@ fn choose(all: &[Bundle], names: Option<&[String]>) -> Result<Vec<usize>, Figure
     }
     chosen.sort_unstable();
     chosen.dedup();
-    if chosen.is_empty() { Err(FigureError::Nothing) } else { Ok(chosen) }
+    if chosen.is_empty() {
+        Err(FigureError::Nothing)
+    } else {
+        Ok(chosen)
+    }
 }
 
 /// Irreps in the order of character tables: a, b, e, t, g, h, or σ, π, δ, φ.

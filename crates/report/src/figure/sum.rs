@@ -12,7 +12,12 @@ use super::xml::length;
 
 /// Whether there is a curve to draw.
 pub(crate) fn has_curve(sheet: &Sheet<'_>) -> bool {
-    let known = sheet.document.points.iter().filter(|point| point.sum.is_some()).count();
+    let known = sheet
+        .document
+        .points
+        .iter()
+        .filter(|point| point.sum.is_some())
+        .count();
     sheet.options.sum_panel && known > 1
 }
 
@@ -20,21 +25,38 @@ pub(crate) fn has_curve(sheet: &Sheet<'_>) -> bool {
 pub(crate) fn draw(canvas: &mut Canvas, sheet: &Sheet<'_>, top: f64, bottom: f64) {
     let (measure, colours) = (&sheet.measure, sheet.colours);
     let lowest = lowest_sum(sheet.document);
-    let sums: Vec<Option<f64>> =
-        sheet.document.points.iter().map(|point| point.sum.map(|sum| sum.get())).collect();
+    let sums: Vec<Option<f64>> = sheet
+        .document
+        .points
+        .iter()
+        .map(|point| point.sum.map(|sum| sum.get()))
+        .collect();
     let least = sums.iter().flatten().copied().fold(f64::INFINITY, f64::min);
     let zero = lowest.map_or(least, |found| found.1.min(least));
     let relative: Vec<Option<f64>> = sums.iter().map(|sum| sum.map(|sum| sum - zero)).collect();
-    let highest = relative.iter().flatten().copied().fold(0.0, f64::max).max(1e-3);
-    let scale =
-        EnergyScale::new(&[(-0.14 * highest, 1.08 * highest)], top, bottom, 0.0);
+    let highest = relative
+        .iter()
+        .flatten()
+        .copied()
+        .fold(0.0, f64::max)
+        .max(1e-3);
+    let scale = EnergyScale::new(&[(-0.14 * highest, 1.08 * highest)], top, bottom, 0.0);
     let unit = sheet.options.energy_unit;
     let ticks = scale.ticks(unit, 1.9 * measure.tick);
     let title = format!("Δ sum / {}", unit.symbol());
     canvas.xml.open("g", &[("class", "sum")]);
-    energy_axis(canvas, (measure, colours), (&scale, &ticks), unit, sheet.axis, &title);
+    energy_axis(
+        canvas,
+        (measure, colours),
+        (&scale, &ticks),
+        unit,
+        sheet.axis,
+        &title,
+    );
     for curve in curves(&sheet.xs, &relative) {
-        let Some((from, to)) = curve.ends() else { continue };
+        let Some((from, to)) = curve.ends() else {
+            continue;
+        };
         let pieces: Vec<_> = curve
             .pieces(from, to)
             .iter()
@@ -44,9 +66,16 @@ pub(crate) fn draw(canvas: &mut Canvas, sheet: &Sheet<'_>, top: f64, bottom: f64
     }
     if let Some((at, sum, _)) = lowest {
         let place = (sheet.x(at), scale.y(sum - zero));
-        canvas.disc(place, 1.4 * measure.stroke, colours.ink, (colours.ground, 0.5 * measure.stroke));
+        canvas.disc(
+            place,
+            1.4 * measure.stroke,
+            colours.ink,
+            (colours.ground, 0.5 * measure.stroke),
+        );
         let height = |x: f64| {
-            let found = curves(&sheet.xs, &relative).iter().find_map(|curve| curve.value(x));
+            let found = curves(&sheet.xs, &relative)
+                .iter()
+                .find_map(|curve| curve.value(x));
             found.map(|energy| scale.y(energy))
         };
         mark(canvas, sheet, at, place, top, &height);
@@ -63,7 +92,9 @@ fn mark(
     top: f64,
     height: &impl Fn(f64) -> Option<f64>,
 ) {
-    let Some(coordinate) = sheet.document.coordinates.first() else { return };
+    let Some(coordinate) = sheet.document.coordinates.first() else {
+        return;
+    };
     let size = sheet.measure.tick;
     let text = Lettering::plain(value_with_unit(at, coordinate.unit));
     let half = 0.5 * text.width(size);
@@ -83,7 +114,14 @@ fn mark(
         ("stroke-width", &halo),
         ("stroke-linejoin", "round"),
     ];
-    canvas.styled_text((middle, base), Anchor::Middle, size, colours.ink, &text, &more);
+    canvas.styled_text(
+        (middle, base),
+        Anchor::Middle,
+        size,
+        colours.ink,
+        &text,
+        &more,
+    );
 }
 
 /// A dotted line through the main panel where the sum is lowest inside the range.
@@ -92,6 +130,11 @@ pub(crate) fn guide(canvas: &mut Canvas, sheet: &Sheet<'_>, bottom: f64) {
         let x = length(sheet.x(at));
         let path = format!("M{x} {}V{}", length(sheet.top), length(bottom));
         let dot = sheet.measure.stroke;
-        canvas.stroke(&path, sheet.colours.soft, 0.4 * dot, &[0.8 * dot, 1.6 * dot]);
+        canvas.stroke(
+            &path,
+            sheet.colours.soft,
+            0.4 * dot,
+            &[0.8 * dot, 1.6 * dot],
+        );
     }
 }

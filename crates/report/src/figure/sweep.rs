@@ -26,12 +26,18 @@ pub(crate) const FONTS: &str = "Helvetica, Arial, 'Liberation Sans', 'DejaVu San
 ///
 /// # Errors
 /// A grid, fewer than two points, an unknown line, an empty window: see [`FigureError`].
-pub fn sweep_figure(document: &SweepDocument, options: &FigureOptions) -> Result<String, FigureError> {
+pub fn sweep_figure(
+    document: &SweepDocument,
+    options: &FigureOptions,
+) -> Result<String, FigureError> {
     compose(document, options).map(|canvas| canvas.xml.finish())
 }
 
 /// The figure with the record of its text.
-pub(crate) fn compose(document: &SweepDocument, options: &FigureOptions) -> Result<Canvas, FigureError> {
+pub(crate) fn compose(
+    document: &SweepDocument,
+    options: &FigureOptions,
+) -> Result<Canvas, FigureError> {
     let mut sheet = Sheet::new(document, options)?;
     let measure = sheet.measure;
     let starts = end_labels(&sheet, Side::Left);
@@ -39,7 +45,10 @@ pub(crate) fn compose(document: &SweepDocument, options: &FigureOptions) -> Resu
 
     // Downwards: heading, groups, main panel, sum, axis, key.
     let size = measure.label;
-    let heading = Lettering::formula(heading_formula(&document.molecule), &charge(document.molecule.charge));
+    let heading = Lettering::formula(
+        heading_formula(&document.molecule),
+        &charge(document.molecule.charge),
+    );
     let titled = options.title && heading.width(measure.heading) < measure.page - 2.0 * measure.pad;
     let crowd = starts.len().max(ends.len());
     let needed = label_room(crowd, measure.label_distance()) + (ASCENT + DESCENT) * size;
@@ -61,13 +70,21 @@ pub(crate) fn compose(document: &SweepDocument, options: &FigureOptions) -> Resu
     sheet.scale = EnergyScale::new(&sheet.ranges, sheet.top, sheet.bottom, split);
     let ticks = sheet.scale.ticks(options.energy_unit, 1.9 * measure.tick);
     // The sum's numbers are at least as short as "−88.88".
-    let numbers = axes::tick_width(&ticks, measure.tick)
-        .max(Lettering::plain("88.88").width(measure.tick));
+    let numbers =
+        axes::tick_width(&ticks, measure.tick).max(Lettering::plain("88.88").width(measure.tick));
     sheet.axis = axes::room(&measure, numbers);
     let group_width = |name: &str| Lettering::group(name).width(size);
     let groups = (
-        document.points.first().map(|p| p.point_group.as_str()).unwrap_or_default(),
-        document.points.last().map(|p| p.point_group.as_str()).unwrap_or_default(),
+        document
+            .points
+            .first()
+            .map(|p| p.point_group.as_str())
+            .unwrap_or_default(),
+        document
+            .points
+            .last()
+            .map(|p| p.point_group.as_str())
+            .unwrap_or_default(),
     );
     let left_width = widest(&starts, size).max(group_width(groups.0));
     let right_width = widest(&ends, size).max(group_width(groups.1));
@@ -77,28 +94,65 @@ pub(crate) fn compose(document: &SweepDocument, options: &FigureOptions) -> Resu
     let mut canvas = Canvas::default();
     let sum_shown = sum::has_curve(&sheet);
     let sum_top = sheet.bottom + 2.0 * measure.tick;
-    let lowest = if sum_shown { sum_top + measure.sum } else { sheet.bottom };
-    draw_panels(&mut canvas, &sheet, &ticks, sum_shown.then_some((sum_top, lowest)))?;
+    let lowest = if sum_shown {
+        sum_top + measure.sum
+    } else {
+        sheet.bottom
+    };
+    draw_panels(
+        &mut canvas,
+        &sheet,
+        &ticks,
+        sum_shown.then_some((sum_top, lowest)),
+    )?;
     labels::draw(&mut canvas, &sheet, &starts, Side::Left);
     labels::draw(&mut canvas, &sheet, &ends, Side::Right);
     let group_base = sheet.top - 0.75 * size;
     let beside = measure.leader();
     let soft = sheet.colours.soft;
     let (start, end) = (Lettering::group(groups.0), Lettering::group(groups.1));
-    canvas.text((sheet.left - beside, group_base), Anchor::End, size, soft, &start);
-    canvas.text((sheet.right + beside, group_base), Anchor::Start, size, soft, &end);
+    canvas.text(
+        (sheet.left - beside, group_base),
+        Anchor::End,
+        size,
+        soft,
+        &start,
+    );
+    canvas.text(
+        (sheet.right + beside, group_base),
+        Anchor::Start,
+        size,
+        soft,
+        &end,
+    );
     if titled {
         let middle = (0.5 * (sheet.left + sheet.right))
             .min(measure.page - measure.pad - 0.5 * heading.width(measure.heading))
             .max(measure.pad + 0.5 * heading.width(measure.heading));
-        let base = if shared { group_base } else { measure.pad + measure.heading };
-        canvas.text((middle, base), Anchor::Middle, measure.heading, sheet.colours.ink, &heading);
+        let base = if shared {
+            group_base
+        } else {
+            measure.pad + measure.heading
+        };
+        canvas.text(
+            (middle, base),
+            Anchor::Middle,
+            measure.heading,
+            sheet.colours.ink,
+            &heading,
+        );
     }
     let below = axes::coordinate_axis(&mut canvas, &sheet, lowest);
     let entries = std::mem::take(&mut canvas.key);
     let below = if options.key {
         let span = (measure.pad, measure.page - measure.pad);
-        key::draw(&mut canvas, (&measure, sheet.colours), &entries, span, below)
+        key::draw(
+            &mut canvas,
+            (&measure, sheet.colours),
+            &entries,
+            span,
+            below,
+        )
     } else {
         below
     };
@@ -121,8 +175,12 @@ fn draw_panels(
 ) -> Result<(), FigureError> {
     let options = sheet.options;
     let clip = format!("url(#{}-window)", options.id_prefix);
-    let mut uprights: Vec<(f64, f64)> =
-        sheet.scale.segments.iter().map(|segment| (segment.top, segment.bottom)).collect();
+    let mut uprights: Vec<(f64, f64)> = sheet
+        .scale
+        .segments
+        .iter()
+        .map(|segment| (segment.top, segment.bottom))
+        .collect();
     uprights.extend(sum_panel);
     canvas.xml.open("g", &[("clip-path", &clip)]);
     let gap = options.gap && panel::shade_gap(canvas, sheet);
@@ -134,17 +192,30 @@ fn draw_panels(
     canvas.xml.open("g", &[("clip-path", &clip)]);
     // Occupied lines lie on top.
     for occupied in [false, true] {
-        for bundle in sheet.lines().filter(|bundle| bundle.ever_occupied() == occupied) {
+        for bundle in sheet
+            .lines()
+            .filter(|bundle| bundle.ever_occupied() == occupied)
+        {
             panel::draw_line(canvas, sheet, bundle);
         }
     }
     canvas.xml.close();
-    let (crossing, avoided) =
-        if options.crossings { panel::mark_crossings(canvas, sheet) } else { (false, false) };
+    let (crossing, avoided) = if options.crossings {
+        panel::mark_crossings(canvas, sheet)
+    } else {
+        (false, false)
+    };
     let electrons = panel::draw_electrons(canvas, sheet)?;
     let title = format!("orbital energy / {}", options.energy_unit.symbol());
     let style = (&sheet.measure, sheet.colours);
-    axes::energy_axis(canvas, style, (&sheet.scale, ticks), options.energy_unit, sheet.axis, &title);
+    axes::energy_axis(
+        canvas,
+        style,
+        (&sheet.scale, ticks),
+        options.energy_unit,
+        sheet.axis,
+        &title,
+    );
     if let Some((top, bottom)) = sum_panel {
         sum::draw(canvas, sheet, top, bottom);
     }
@@ -153,9 +224,16 @@ fn draw_panels(
         entry(Mark::Occupied, "occupied");
         entry(Mark::Empty, "empty");
     }
-    let unit = sheet.document.coordinates.first().map(|coordinate| coordinate.unit);
+    let unit = sheet
+        .document
+        .coordinates
+        .first()
+        .map(|coordinate| coordinate.unit);
     if let (Some(at), Some(unit)) = (electrons, unit) {
-        entry(Mark::Electrons, &format!("electrons at {}", value_with_unit(at, unit)));
+        entry(
+            Mark::Electrons,
+            &format!("electrons at {}", value_with_unit(at, unit)),
+        );
     }
     if gap {
         entry(Mark::Gap, "HOMO–LUMO gap");
@@ -174,8 +252,16 @@ fn frame(canvas: Canvas, sheet: &Sheet<'_>, height: f64) -> Result<Canvas, Figur
     let prefix = &sheet.options.id_prefix;
     let page = sheet.measure.page;
     let mut xml = open_page(sheet.options, page, height);
-    xml.text("title", &[("id", &format!("{prefix}-title"))], &metadata::title(sheet));
-    xml.text("desc", &[("id", &format!("{prefix}-desc"))], &metadata::description(sheet));
+    xml.text(
+        "title",
+        &[("id", &format!("{prefix}-title"))],
+        &metadata::title(sheet),
+    );
+    xml.text(
+        "desc",
+        &[("id", &format!("{prefix}-desc"))],
+        &metadata::description(sheet),
+    );
     xml.text("metadata", &[], &metadata::json(sheet)?);
     xml.open("defs", &[]);
     xml.open("clipPath", &[("id", &format!("{prefix}-window"))]);
@@ -190,9 +276,22 @@ fn frame(canvas: Canvas, sheet: &Sheet<'_>, height: f64) -> Result<Canvas, Figur
     );
     xml.close();
     xml.close();
-    xml.empty("rect", &[("width", "100%"), ("height", "100%"), ("fill", sheet.colours.ground)]);
+    xml.empty(
+        "rect",
+        &[
+            ("width", "100%"),
+            ("height", "100%"),
+            ("fill", sheet.colours.ground),
+        ],
+    );
     xml.append(canvas.xml);
-    Ok(Canvas { xml, height, boxes: canvas.boxes, area: canvas.area, key: Vec::new() })
+    Ok(Canvas {
+        xml,
+        height,
+        boxes: canvas.boxes,
+        area: canvas.area,
+        key: Vec::new(),
+    })
 }
 
 /// The root element with the page's size.
@@ -200,7 +299,10 @@ pub(crate) fn open_page(options: &FigureOptions, page: f64, height: f64) -> Writ
     let prefix = &options.id_prefix;
     let (width_text, height_text) = match options.width {
         FigureWidth::Slide => (length(page), length(height)),
-        _ => (Measure::in_millimetres(page), Measure::in_millimetres(height)),
+        _ => (
+            Measure::in_millimetres(page),
+            Measure::in_millimetres(height),
+        ),
     };
     let mut xml = Writer::default();
     xml.open(
@@ -209,7 +311,10 @@ pub(crate) fn open_page(options: &FigureOptions, page: f64, height: f64) -> Writ
             ("xmlns", "http://www.w3.org/2000/svg"),
             ("width", &width_text),
             ("height", &height_text),
-            ("viewBox", &format!("0 0 {} {}", length(page), length(height))),
+            (
+                "viewBox",
+                &format!("0 0 {} {}", length(page), length(height)),
+            ),
             ("font-family", FONTS),
             ("role", "img"),
             ("aria-labelledby", &format!("{prefix}-title {prefix}-desc")),

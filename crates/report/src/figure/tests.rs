@@ -22,18 +22,27 @@ fn assert_clean(canvas: &Canvas, width: FigureWidth, name: &str) {
     let page = Measure::of(width).page;
     for (index, text) in canvas.boxes.iter().enumerate() {
         assert!(
-            text.left >= 0.0 && text.right <= page && text.top >= 0.0 && text.bottom <= canvas.height,
+            text.left >= 0.0
+                && text.right <= page
+                && text.top >= 0.0
+                && text.bottom <= canvas.height,
             "{name} {width:?}: {text:?} is off the page of {page} × {}",
             canvas.height
         );
         for other in &canvas.boxes[index + 1..] {
-            assert!(!overlap(text, other), "{name} {width:?}: {text:?} and {other:?} overlap");
+            assert!(
+                !overlap(text, other),
+                "{name} {width:?}: {text:?} and {other:?} overlap"
+            );
         }
     }
 }
 
 fn options(width: FigureWidth) -> FigureOptions {
-    FigureOptions { width, ..FigureOptions::default() }
+    FigureOptions {
+        width,
+        ..FigureOptions::default()
+    }
 }
 
 #[test]
@@ -41,8 +50,15 @@ fn two_hundred_random_diagrams_have_no_overlapping_labels_and_none_off_the_page(
     for seed in 0..200 {
         let document = synthetic::random(seed);
         let width = WIDTHS[seed as usize % 3];
-        let unit = if seed % 2 == 0 { EnergyUnit::ElectronVolt } else { EnergyUnit::Hartree };
-        let options = FigureOptions { energy_unit: unit, ..options(width) };
+        let unit = if seed % 2 == 0 {
+            EnergyUnit::ElectronVolt
+        } else {
+            EnergyUnit::Hartree
+        };
+        let options = FigureOptions {
+            energy_unit: unit,
+            ..options(width)
+        };
         let canvas = sweep::compose(&document, &options).unwrap();
         assert!(canvas.boxes.len() > 4);
         assert_clean(&canvas, width, &format!("seed {seed}"));
@@ -56,7 +72,10 @@ fn two_hundred_random_diagrams_have_no_overlapping_labels_and_none_off_the_page(
 fn a_given_window_moves_no_label_off_the_page() {
     for seed in 200..240 {
         let document = synthetic::random(seed);
-        let window = FigureOptions { energies: Some((-20.0, -5.0)), ..options(FigureWidth::Column) };
+        let window = FigureOptions {
+            energies: Some((-20.0, -5.0)),
+            ..options(FigureWidth::Column)
+        };
         match sweep::compose(&document, &window) {
             Ok(canvas) => assert_clean(&canvas, FigureWidth::Column, &format!("seed {seed}")),
             Err(error) => assert!(matches!(error, FigureError::EmptyWindow { .. })),
@@ -68,7 +87,13 @@ fn a_given_window_moves_no_label_off_the_page() {
 fn every_font_is_legible_at_its_width() {
     for width in WIDTHS {
         let measure = Measure::of(width);
-        let fonts = [measure.label, measure.tick, measure.title, measure.heading, measure.key];
+        let fonts = [
+            measure.label,
+            measure.tick,
+            measure.title,
+            measure.heading,
+            measure.key,
+        ];
         assert!(fonts.iter().all(|font| *font >= SMALLEST_FONT));
     }
 }
@@ -77,7 +102,13 @@ fn every_font_is_legible_at_its_width() {
 fn a_degenerate_pair_at_an_end_has_one_label() {
     let document = synthetic::hydrogen_sulfide();
     let canvas = sweep::compose(&document, &options(FigureWidth::Column)).unwrap();
-    let count = |text: &str| canvas.boxes.iter().filter(|found| found.text == text).count();
+    let count = |text: &str| {
+        canvas
+            .boxes
+            .iter()
+            .filter(|found| found.text == text)
+            .count()
+    };
     assert_eq!(count("2πu"), 1);
     assert_eq!(count("2b₁"), 1);
     assert_eq!(count("5a₁"), 1);
@@ -88,13 +119,22 @@ fn the_file_is_well_formed_and_says_what_it_shows() {
     let document = synthetic::boron_trifluoride();
     let svg = sweep::sweep_figure(&document, &FigureOptions::default()).unwrap();
     let text = |from: &str, to: &str| -> String {
-        svg.split(from).nth(1).unwrap().split(to).next().unwrap().to_owned()
+        svg.split(from)
+            .nth(1)
+            .unwrap()
+            .split(to)
+            .next()
+            .unwrap()
+            .to_owned()
     };
     assert!(text("<title", "</title>").contains("BF3"));
     assert!(text("<desc", "</desc>").contains("2e (occupied)"));
     let data = text("<metadata>", "</metadata>").replace("&quot;", "\"");
     let data: serde_json::Value = serde_json::from_str(&data).unwrap();
-    assert_eq!(data["lines"].as_array().unwrap().len(), document.lines.as_ref().unwrap().len());
+    assert_eq!(
+        data["lines"].as_array().unwrap().len(),
+        document.lines.as_ref().unwrap().len()
+    );
     let opened = svg.matches("<g").count();
     assert_eq!(opened, svg.matches("</g>").count());
     assert!(!svg.contains("NaN") && !svg.contains("inf\""));
@@ -114,12 +154,23 @@ fn equal_input_gives_equal_bytes() {
 fn wrong_choices_are_refused_by_name() {
     let document = synthetic::hydrogen_sulfide();
     let ask = |options: FigureOptions| sweep::sweep_figure(&document, &options).unwrap_err();
-    let unknown = ask(FigureOptions { lines: Some(vec!["5a2".into()]), ..FigureOptions::default() });
-    assert_eq!(unknown.to_string(), "no line is called \"5a2\"; nearest: 5a1, 2b2, 3b2");
-    let empty = ask(FigureOptions { energies: Some((50.0, 60.0)), ..FigureOptions::default() });
+    let unknown = ask(FigureOptions {
+        lines: Some(vec!["5a2".into()]),
+        ..FigureOptions::default()
+    });
+    assert_eq!(
+        unknown.to_string(),
+        "no line is called \"5a2\"; nearest: 5a1, 2b2, 3b2"
+    );
+    let empty = ask(FigureOptions {
+        energies: Some((50.0, 60.0)),
+        ..FigureOptions::default()
+    });
     assert!(matches!(empty, FigureError::EmptyWindow { .. }));
-    let outside =
-        ask(FigureOptions { electrons: ElectronMarks::At(20.0), ..FigureOptions::default() });
+    let outside = ask(FigureOptions {
+        electrons: ElectronMarks::At(20.0),
+        ..FigureOptions::default()
+    });
     assert!(matches!(outside, FigureError::ElectronsOutside { .. }));
 
     let mut grid = document.clone();
@@ -132,7 +183,10 @@ fn wrong_choices_are_refused_by_name() {
     for level in grid.points.iter_mut().flat_map(|point| &mut point.levels) {
         level.line = None;
     }
-    assert_eq!(sweep::sweep_figure(&grid, &FigureOptions::default()), Err(FigureError::Grid));
+    assert_eq!(
+        sweep::sweep_figure(&grid, &FigureOptions::default()),
+        Err(FigureError::Grid)
+    );
 }
 
 #[test]
@@ -153,7 +207,13 @@ fn a_missing_energy_breaks_the_line() {
     let lines = document.lines.as_mut().unwrap();
     lines[4].energies[20] = None;
     let svg = sweep::sweep_figure(&document, &FigureOptions::default()).unwrap();
-    let line = svg.split("data-line=\"4\"").nth(1).unwrap().split("</g>").next().unwrap();
+    let line = svg
+        .split("data-line=\"4\"")
+        .nth(1)
+        .unwrap()
+        .split("</g>")
+        .next()
+        .unwrap();
     assert_eq!(line.matches("<path").count(), 2);
 }
 
@@ -182,7 +242,9 @@ fn committed_figures_are_current() {
 /// With ORBEND_FIGURES=DIRECTORY the figures are written there, to be looked at.
 #[test]
 fn figures_to_look_at() {
-    let Ok(directory) = std::env::var("ORBEND_FIGURES") else { return };
+    let Ok(directory) = std::env::var("ORBEND_FIGURES") else {
+        return;
+    };
     let write = |name: &str, svg: String| {
         std::fs::write(format!("{directory}/{name}.svg"), svg).unwrap();
     };
@@ -195,7 +257,10 @@ fn figures_to_look_at() {
     for (name, document) in &documents {
         for width in WIDTHS {
             for theme in [Theme::Light, Theme::Dark, Theme::Grey] {
-                let options = FigureOptions { theme, ..options(width) };
+                let options = FigureOptions {
+                    theme,
+                    ..options(width)
+                };
                 let file = format!("{name}-{width:?}-{theme:?}").to_lowercase();
                 write(&file, sweep::sweep_figure(document, &options).unwrap());
             }

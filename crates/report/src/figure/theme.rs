@@ -80,7 +80,10 @@ impl Colours {
 
 /// Dash lengths of the irrep at this place, for a stroke of this width.
 pub(crate) fn dashes(place: usize, width: f64) -> Vec<f64> {
-    DASHES[place % DASHES.len()].iter().map(|length| length * width).collect()
+    DASHES[place % DASHES.len()]
+        .iter()
+        .map(|length| length * width)
+        .collect()
 }
 
 #[cfg(test)]
@@ -90,7 +93,11 @@ mod tests {
     fn luminance(hex: &str) -> f64 {
         let channel = |k: usize| {
             let value = f64::from(u8::from_str_radix(&hex[k..k + 2], 16).unwrap()) / 255.0;
-            if value <= 0.04045 { value / 12.92 } else { ((value + 0.055) / 1.055).powf(2.4) }
+            if value <= 0.04045 {
+                value / 12.92
+            } else {
+                ((value + 0.055) / 1.055).powf(2.4)
+            }
         };
         0.2126 * channel(1) + 0.7152 * channel(3) + 0.0722 * channel(5)
     }

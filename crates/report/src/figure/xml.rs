@@ -23,7 +23,11 @@ pub(crate) fn escape(text: &str) -> String {
 pub(crate) fn length(value: f64) -> String {
     let text = format!("{value:.2}");
     let text = text.trim_end_matches('0').trim_end_matches('.');
-    if text == "-0" { "0".to_owned() } else { text.to_owned() }
+    if text == "-0" {
+        "0".to_owned()
+    } else {
+        text.to_owned()
+    }
 }
 
 /// An XML text under construction.

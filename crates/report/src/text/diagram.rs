@@ -33,7 +33,10 @@ pub(crate) fn draw(document: &SweepDocument, all: &[Bundle], options: &TextOptio
     };
     let shown: Vec<&Bundle> = all
         .iter()
-        .filter(|b| b.extent().is_some_and(|(low, high)| high >= window.0 && low <= window.1))
+        .filter(|b| {
+            b.extent()
+                .is_some_and(|(low, high)| high >= window.0 && low <= window.1)
+        })
         .collect();
     let rows = ROWS.max(shown.len() + 2);
     let parts = ranges(window, true, &extents);
@@ -41,7 +44,11 @@ pub(crate) fn draw(document: &SweepDocument, all: &[Bundle], options: &TextOptio
     let starts = labels(&shown, &scale, window, rows, options, true);
     let ends = labels(&shown, &scale, window, rows, options, false);
     let axis = axis_numbers(&scale, rows);
-    let axis_width = axis.iter().map(|text| length(text)).max().unwrap_or_default();
+    let axis_width = axis
+        .iter()
+        .map(|text| length(text))
+        .max()
+        .unwrap_or_default();
     let taken = axis_width + 2 + starts.width + 1 + 1 + ends.width;
     let columns = options.columns().saturating_sub(taken).clamp(20, 90);
 
@@ -72,7 +79,11 @@ pub(crate) fn draw(document: &SweepDocument, all: &[Bundle], options: &TextOptio
         let to = options.words(&value_with_unit(*last, coordinate.unit));
         let indent = axis_width + 2 + starts.width + 1;
         let space = columns.saturating_sub(length(&from) + length(&to));
-        out.push_str(&format!("{}{from}{}{to}\n", " ".repeat(indent), " ".repeat(space)));
+        out.push_str(&format!(
+            "{}{from}{}{to}\n",
+            " ".repeat(indent),
+            " ".repeat(space)
+        ));
     }
     out
 }
@@ -80,7 +91,10 @@ pub(crate) fn draw(document: &SweepDocument, all: &[Bundle], options: &TextOptio
 /// Whether a stretch of the axis is left out at this row.
 fn left_out(scale: &EnergyScale, row: usize) -> bool {
     let middle = (row as f64 + 0.5) * DOWN as f64;
-    scale.segments.windows(2).any(|pair| pair[1].bottom <= middle && middle <= pair[0].top + 0.5 * DOWN as f64)
+    scale
+        .segments
+        .windows(2)
+        .any(|pair| pair[1].bottom <= middle && middle <= pair[0].top + 0.5 * DOWN as f64)
 }
 
 fn at_row(labels: &Labels, row: usize) -> &str {
@@ -98,22 +112,41 @@ fn labels(
 ) -> Labels {
     let mut found: Vec<(f64, String)> = Vec::new();
     for bundle in shown {
-        let energy = if start { bundle.energies.first() } else { bundle.energies.last() };
-        let Some(energy) = energy.copied().flatten() else { continue };
+        let energy = if start {
+            bundle.energies.first()
+        } else {
+            bundle.energies.last()
+        };
+        let Some(energy) = energy.copied().flatten() else {
+            continue;
+        };
         if energy > window.1 + 1e-9 {
             continue;
         }
         let text = options.label(if start { &bundle.start } else { &bundle.end });
-        if !found.iter().any(|(other, name)| *name == text && (other - energy).abs() < 0.02) {
+        if !found
+            .iter()
+            .any(|(other, name)| *name == text && (other - energy).abs() < 0.02)
+        {
             found.push((energy, text));
         }
     }
     found.sort_by(|a, b| b.0.total_cmp(&a.0));
-    let targets: Vec<f64> = found.iter().map(|(e, _)| scale.y(*e) / DOWN as f64 - 0.5).collect();
+    let targets: Vec<f64> = found
+        .iter()
+        .map(|(e, _)| scale.y(*e) / DOWN as f64 - 0.5)
+        .collect();
     let placed = spread(&targets, 1.0, 0.0, (rows - 1) as f64);
     Labels {
-        rows: placed.iter().map(|row| (row + 0.5).floor().max(0.0) as usize).collect(),
-        width: found.iter().map(|(_, text)| length(text)).max().unwrap_or_default(),
+        rows: placed
+            .iter()
+            .map(|row| (row + 0.5).floor().max(0.0) as usize)
+            .collect(),
+        width: found
+            .iter()
+            .map(|(_, text)| length(text))
+            .max()
+            .unwrap_or_default(),
         texts: found.into_iter().map(|(_, text)| text).collect(),
     }
 }
@@ -125,14 +158,24 @@ fn axis_numbers(scale: &EnergyScale, rows: usize) -> Vec<String> {
         for value in &ticks.major {
             let row = (scale.y(*value) / DOWN as f64).floor().max(0.0) as usize;
             let text = number(*value, ticks.decimals).replace('\u{2212}', "-");
-            axis[row.min(rows - 1)] = if text.contains('.') { text } else { short(*value, 0) };
+            axis[row.min(rows - 1)] = if text.contains('.') {
+                text
+            } else {
+                short(*value, 0)
+            };
         }
     }
     axis
 }
 
 /// Heights of a line in dots at every dot column; `None` off the drawing.
-fn trace(bundle: &Bundle, scale: &EnergyScale, xs: &[f64], dots: usize, rows: usize) -> Vec<Option<(usize, bool)>> {
+fn trace(
+    bundle: &Bundle,
+    scale: &EnergyScale,
+    xs: &[f64],
+    dots: usize,
+    rows: usize,
+) -> Vec<Option<(usize, bool)>> {
     let (from, to) = (xs[0], xs[xs.len() - 1]);
     (0..dots)
         .map(|dot| {
@@ -140,20 +183,32 @@ fn trace(bundle: &Bundle, scale: &EnergyScale, xs: &[f64], dots: usize, rows: us
             let x = from + t * (to - from);
             let y = scale.y(bundle.value(x)?);
             let point = (t * (xs.len() - 1) as f64 + 0.5).floor() as usize;
-            let filled = bundle.occupations.get(point).is_some_and(|electrons| *electrons > 1e-6);
+            let filled = bundle
+                .occupations
+                .get(point)
+                .is_some_and(|electrons| *electrons > 1e-6);
             let inside = y >= 0.0 && y < (rows * DOWN) as f64;
             inside.then_some((y.floor() as usize, filled))
         })
         .collect()
 }
 
-fn braille(shown: &[&Bundle], scale: &EnergyScale, xs: &[f64], columns: usize, rows: usize) -> Vec<Vec<char>> {
+fn braille(
+    shown: &[&Bundle],
+    scale: &EnergyScale,
+    xs: &[f64],
+    columns: usize,
+    rows: usize,
+) -> Vec<Vec<char>> {
     // Bits of the eight dots of U+2800, by row and column.
     const BITS: [[u32; ACROSS]; DOWN] = [[0x01, 0x08], [0x02, 0x10], [0x04, 0x20], [0x40, 0x80]];
     let mut bits = vec![vec![0_u32; columns]; rows];
     for bundle in shown {
         let mut before: Option<usize> = None;
-        for (dot, found) in trace(bundle, scale, xs, columns * ACROSS, rows).into_iter().enumerate() {
+        for (dot, found) in trace(bundle, scale, xs, columns * ACROSS, rows)
+            .into_iter()
+            .enumerate()
+        {
             let Some((y, filled)) = found else {
                 before = None;
                 continue;
@@ -172,16 +227,29 @@ fn braille(shown: &[&Bundle], scale: &EnergyScale, xs: &[f64], columns: usize, r
         0 => ' ',
         bits => char::from_u32(0x2800 + bits).unwrap_or(' '),
     };
-    bits.into_iter().map(|row| row.into_iter().map(character).collect()).collect()
+    bits.into_iter()
+        .map(|row| row.into_iter().map(character).collect())
+        .collect()
 }
 
-fn ascii(shown: &[&Bundle], scale: &EnergyScale, xs: &[f64], columns: usize, rows: usize) -> Vec<Vec<char>> {
+fn ascii(
+    shown: &[&Bundle],
+    scale: &EnergyScale,
+    xs: &[f64],
+    columns: usize,
+    rows: usize,
+) -> Vec<Vec<char>> {
     let mut cells = vec![vec![' '; columns]; rows];
     // Empty lines first: occupied ones lie on top.
     for pass in [false, true] {
         for bundle in shown {
-            for (column, found) in trace(bundle, scale, xs, columns, rows).into_iter().enumerate() {
-                let Some((y, filled)) = found.filter(|(_, filled)| *filled == pass) else { continue };
+            for (column, found) in trace(bundle, scale, xs, columns, rows)
+                .into_iter()
+                .enumerate()
+            {
+                let Some((y, filled)) = found.filter(|(_, filled)| *filled == pass) else {
+                    continue;
+                };
                 if filled || column % 2 == 0 {
                     let low = y % DOWN + 1 == DOWN;
                     cells[y / DOWN][column] = match (filled, low) {

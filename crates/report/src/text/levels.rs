@@ -14,7 +14,10 @@ pub fn levels_text(document: &LevelsDocument, options: &TextOptions) -> String {
     heading(&mut out, options, &document.molecule, &document.method);
     for point in &document.points {
         let symmetry = &document.symmetry;
-        options.paragraph(&mut out, &format!("point group {}; {}", point.point_group, symmetry.axes));
+        options.paragraph(
+            &mut out,
+            &format!("point group {}; {}", point.point_group, symmetry.axes),
+        );
         for near in &symmetry.near_misses {
             let within = ascii_number(near.tolerance_angstrom.get(), 4);
             options.paragraph(&mut out, &format!("{} within {within} Å", near.group));
@@ -41,7 +44,9 @@ fn level_table(point: &Point, options: &TextOptions) -> Table {
     let mut table = Table::new(&header);
     let mut above: Option<&LevelRecord> = None;
     for level in point.levels.iter().rev() {
-        if let Some(lumo) = above.filter(|a| a.occupation.get() <= 1e-6 && level.occupation.get() > 1e-6) {
+        if let Some(lumo) =
+            above.filter(|a| a.occupation.get() <= 1e-6 && level.occupation.get() > 1e-6)
+        {
             let gap = ascii_number(lumo.energy.get() - level.energy.get(), 3);
             table.rule(&format!("------- HOMO-LUMO gap {gap} eV -------"));
         }
@@ -82,12 +87,22 @@ fn mostly(level: &LevelRecord) -> String {
 
 fn totals(out: &mut String, point: &Point, options: &TextOptions) {
     if let Some(sum) = point.sum {
-        options.paragraph(out, &format!("sum of energies {} eV", ascii_number(sum.get(), 4)));
+        options.paragraph(
+            out,
+            &format!("sum of energies {} eV", ascii_number(sum.get(), 4)),
+        );
     }
     if let Some(charges) = &point.charges {
         let words: Vec<String> = charges
             .iter()
-            .map(|one| format!("{}{} {}", one.element, one.atom, ascii_number(one.charge.get(), 3)))
+            .map(|one| {
+                format!(
+                    "{}{} {}",
+                    one.element,
+                    one.atom,
+                    ascii_number(one.charge.get(), 3)
+                )
+            })
             .collect();
         options.paragraph(out, &format!("charges: {}", words.join(", ")));
     }
@@ -119,7 +134,10 @@ mod tests {
         assert!(place("3b₂") < place("HOMO-LUMO gap"));
         assert!(place("HOMO-LUMO gap") < place("2b₁"));
         assert!(place("2b₁") < place("4a₁"));
-        let plain = TextOptions { unicode: false, ..TextOptions::default() };
+        let plain = TextOptions {
+            unicode: false,
+            ..TextOptions::default()
+        };
         assert!(levels_text(&document, &plain).is_ascii());
     }
 }

@@ -37,7 +37,12 @@ pub struct TextOptions {
 
 impl Default for TextOptions {
     fn default() -> Self {
-        Self { width: 80, unicode: true, drawing: true, numbering: Numbering::Core }
+        Self {
+            width: 80,
+            unicode: true,
+            drawing: true,
+            numbering: Numbering::Core,
+        }
     }
 }
 
@@ -48,7 +53,11 @@ impl TextOptions {
 
     /// A plain label as the terminal can show it.
     fn label(&self, plain: &str) -> String {
-        if self.unicode { Lettering::level(plain).unicode() } else { plain.to_owned() }
+        if self.unicode {
+            Lettering::level(plain).unicode()
+        } else {
+            plain.to_owned()
+        }
     }
 
     /// Words with units as the terminal can show them.
@@ -56,8 +65,14 @@ impl TextOptions {
         if self.unicode {
             return text.to_owned();
         }
-        let plain = text.replace('°', " degree").replace('Å', "angstrom").replace('\u{2212}', "-");
-        plain.chars().map(|c| if c.is_ascii() { c } else { '?' }).collect()
+        let plain = text
+            .replace('°', " degree")
+            .replace('Å', "angstrom")
+            .replace('\u{2212}', "-");
+        plain
+            .chars()
+            .map(|c| if c.is_ascii() { c } else { '?' })
+            .collect()
     }
 
     /// Which label of a pair the numbering asks for; the other one where it is empty.
@@ -89,7 +104,11 @@ fn heading(out: &mut String, options: &TextOptions, molecule: &MoleculeRecord, m
             molecule.valence_electrons
         ),
     );
-    let polarised = if method.polarised_hydrogen { ", H with a 2p shell" } else { "" };
+    let polarised = if method.polarised_hydrogen {
+        ", H with a 2p shell"
+    } else {
+        ""
+    };
     options.paragraph(
         out,
         &format!(

@@ -11,7 +11,10 @@ use super::{TextOptions, warnings};
 pub fn params_text(document: &ParamsDocument, options: &TextOptions) -> String {
     let mut out = String::new();
     let method = &document.method;
-    options.paragraph(&mut out, &format!("parameters \"{}\"", method.parameter_set));
+    options.paragraph(
+        &mut out,
+        &format!("parameters \"{}\"", method.parameter_set),
+    );
     out.push_str(&format!("{}\n\n", method.fingerprint));
     let mut sources: Vec<&str> = Vec::new();
     out.push_str(&table(&method.values, &mut sources, options));
@@ -30,7 +33,11 @@ pub fn params_text(document: &ParamsDocument, options: &TextOptions) -> String {
     out
 }
 
-fn table<'a>(values: &'a [ShellValues], sources: &mut Vec<&'a str>, options: &TextOptions) -> String {
+fn table<'a>(
+    values: &'a [ShellValues],
+    sources: &mut Vec<&'a str>,
+    options: &TextOptions,
+) -> String {
     let mut table = Table::new(&[
         ("element", Align::Left),
         ("shell", Align::Left),
@@ -53,7 +60,11 @@ fn table<'a>(values: &'a [ShellValues], sources: &mut Vec<&'a str>, options: &Te
             .iter()
             .map(|[zeta, coefficient]| {
                 let zeta = short(zeta.get(), 5);
-                if single { zeta } else { format!("{zeta} ({})", short(coefficient.get(), 5)) }
+                if single {
+                    zeta
+                } else {
+                    format!("{zeta} ({})", short(coefficient.get(), 5))
+                }
             })
             .collect();
         let checked = match value.checked {

@@ -20,8 +20,14 @@ enum Row {
 
 impl Table {
     pub(crate) fn new(header: &[(&str, Align)]) -> Self {
-        let header = header.iter().map(|(name, align)| ((*name).to_owned(), *align)).collect();
-        Self { header, rows: Vec::new() }
+        let header = header
+            .iter()
+            .map(|(name, align)| ((*name).to_owned(), *align))
+            .collect();
+        Self {
+            header,
+            rows: Vec::new(),
+        }
     }
 
     pub(crate) fn row(&mut self, cells: Vec<String>) {
@@ -41,7 +47,9 @@ impl Table {
                     Row::Cells(cells) => cells.get(column),
                     Row::Rule(_) => None,
                 });
-                cells.map(|cell| length(cell)).fold(length(&self.header[column].0), usize::max)
+                cells
+                    .map(|cell| length(cell))
+                    .fold(length(&self.header[column].0), usize::max)
             })
             .collect();
         let header: Vec<String> = self.header.iter().map(|(name, _)| name.clone()).collect();
@@ -97,10 +105,15 @@ fn cut(text: &str, columns: usize) -> String {
 pub(crate) fn wrap(text: &str, columns: usize, indent: &str) -> String {
     let mut lines: Vec<String> = vec![String::new()];
     for word in text.split_whitespace() {
-        let Some(line) = lines.last_mut() else { continue };
+        let Some(line) = lines.last_mut() else {
+            continue;
+        };
         let space = usize::from(!line.trim().is_empty());
         if !line.trim().is_empty() && length(line) + space + length(word) > columns {
-            lines.push(format!("{indent}{}", cut(word, columns.saturating_sub(length(indent)))));
+            lines.push(format!(
+                "{indent}{}",
+                cut(word, columns.saturating_sub(length(indent)))
+            ));
         } else {
             if space > 0 {
                 line.push(' ');
@@ -120,7 +133,11 @@ mod tests {
 
     #[test]
     fn words_stay_within_the_columns() {
-        let text = wrap("one two three four fiiiiiiiiiiiiiiiiiiiiiiiiive six", 12, "  ");
+        let text = wrap(
+            "one two three four fiiiiiiiiiiiiiiiiiiiiiiiiive six",
+            12,
+            "  ",
+        );
         assert!(text.lines().all(|line| length(line) <= 12), "{text}");
         assert_eq!(wrap("a b", 80, ""), "a b\n");
     }

@@ -61,7 +61,11 @@ impl<'a> PathModel<'a> {
             }
             slot += block.size();
         }
-        Self { plan, classes, slots }
+        Self {
+            plan,
+            classes,
+            slots,
+        }
     }
 }
 
@@ -81,7 +85,10 @@ impl LevelModel for PathModel<'_> {
         let slots = self.plan.slots();
         let mut all = vec![0.0; at.len() * slots];
         self.plan.batch_energies(at, room, &mut all)?;
-        for (row, all) in out.chunks_exact_mut(self.slots.len()).zip(all.chunks_exact(slots)) {
+        for (row, all) in out
+            .chunks_exact_mut(self.slots.len())
+            .zip(all.chunks_exact(slots))
+        {
             for (target, &slot) in row.iter_mut().zip(&self.slots) {
                 *target = all[slot];
             }
@@ -122,7 +129,9 @@ impl Sweep {
     /// A geometry between the points that cannot be solved.
     pub fn crossings(&self) -> Result<Vec<Crossing>, ScanError> {
         let plan = self.plan();
-        let [axis] = plan.path.axes() else { return Ok(Vec::new()) };
+        let [axis] = plan.path.axes() else {
+            return Ok(Vec::new());
+        };
         let (low, high) = axis.limits();
         let spacing = resolution(&axis.unit, high - low);
         let nodes = nodes(&axis.values, spacing);
@@ -133,7 +142,10 @@ impl Sweep {
         for meeting in found {
             let (a, b) = meeting.columns;
             let line = |column: usize| {
-                plan.lines.iter().position(|line| line.slot == model.slots[column]).unwrap_or(0)
+                plan.lines
+                    .iter()
+                    .position(|line| line.slot == model.slots[column])
+                    .unwrap_or(0)
             };
             let mut crossing = Crossing {
                 kind: meeting.kind,
@@ -146,7 +158,14 @@ impl Sweep {
             };
             match meeting.kind {
                 MeetingKind::Avoided => {
-                    let exchange = exchange(&model, &mut room, &meeting, crossing.lines, (low, high), spacing)?;
+                    let exchange = exchange(
+                        &model,
+                        &mut room,
+                        &meeting,
+                        crossing.lines,
+                        (low, high),
+                        spacing,
+                    )?;
                     if exchange < SMALLEST_EXCHANGE {
                         continue;
                     }
@@ -154,7 +173,8 @@ impl Sweep {
                     crossing.exchange = Some(exchange);
                 }
                 MeetingKind::Crossing => {
-                    crossing.changes_configuration = changes_configuration(&model, &mut room, &meeting, crossing.lines)?;
+                    crossing.changes_configuration =
+                        changes_configuration(&model, &mut room, &meeting, crossing.lines)?;
                 }
                 MeetingKind::Touching => {}
             }
@@ -207,7 +227,9 @@ fn changes_configuration(
     lines: (usize, usize),
 ) -> Result<bool, ScanError> {
     let plan = model.plan;
-    let Filling::Aufbau(electrons) = &plan.filling else { return Ok(false) };
+    let Filling::Aufbau(electrons) = &plan.filling else {
+        return Ok(false);
+    };
     let mut out = vec![0.0; model.classes.len()];
     model.energies(room, &[meeting.at], &mut out)?;
     let size = |column: usize| plan.group.irreps[model.classes[column]].dimension;

@@ -23,5 +23,10 @@ pub trait LevelModel: Sync {
     ///
     /// # Errors
     /// A point that cannot be solved.
-    fn energies(&self, room: &mut Self::Room, at: &[f64], out: &mut [f64]) -> Result<(), Self::Error>;
+    fn energies(
+        &self,
+        room: &mut Self::Room,
+        at: &[f64],
+        out: &mut [f64],
+    ) -> Result<(), Self::Error>;
 }

@@ -62,7 +62,13 @@ pub fn meetings<M: LevelModel>(model: &M, nodes: &[f64]) -> Result<Vec<Meeting>,
             if classes[i] != classes[j] {
                 different(&table, (i, j), &mut tasks);
             } else if j == i + 1 {
-                minima(&table, (i, j), AVOIDED_GAP_EV, MeetingKind::Avoided, &mut tasks);
+                minima(
+                    &table,
+                    (i, j),
+                    AVOIDED_GAP_EV,
+                    MeetingKind::Avoided,
+                    &mut tasks,
+                );
             }
         }
     }
@@ -97,7 +103,13 @@ struct Task {
 
 /// Sign changes, touchings at nodes and touchings between them.
 fn different(table: &Table, pair: (usize, usize), tasks: &mut Vec<Task>) {
-    let sign = |gap: f64| if gap.abs() < ZERO_EV { 0.0 } else { gap.signum() };
+    let sign = |gap: f64| {
+        if gap.abs() < ZERO_EV {
+            0.0
+        } else {
+            gap.signum()
+        }
+    };
     let mut before: Option<(usize, f64)> = None;
     let last = table.at.len() - 1;
     for node in 0..=last {
@@ -107,15 +119,26 @@ fn different(table: &Table, pair: (usize, usize), tasks: &mut Vec<Task>) {
         }
         let place = |place: usize, kind, sign| {
             let at = table.at[place];
-            Task { kind, pair, from: at, to: at, sign, placed: true }
+            Task {
+                kind,
+                pair,
+                from: at,
+                to: at,
+                sign,
+                placed: true,
+            }
         };
         match before {
             None if node > 0 => tasks.push(place(0, MeetingKind::Touching, here)),
             Some((from, was)) if node > from + 1 => {
-                let kind = if was == here { MeetingKind::Touching } else { MeetingKind::Crossing };
+                let kind = if was * here > 0.0 {
+                    MeetingKind::Touching
+                } else {
+                    MeetingKind::Crossing
+                };
                 tasks.push(place((from + node) / 2, kind, was));
             }
-            Some((from, was)) if was != here => tasks.push(Task {
+            Some((from, was)) if was * here < 0.0 => tasks.push(Task {
                 kind: MeetingKind::Crossing,
                 pair,
                 from: table.at[from],
@@ -131,13 +154,26 @@ fn different(table: &Table, pair: (usize, usize), tasks: &mut Vec<Task>) {
         && from < last
     {
         let at = table.at[last];
-        tasks.push(Task { kind: MeetingKind::Touching, pair, from: at, to: at, sign: was, placed: true });
+        tasks.push(Task {
+            kind: MeetingKind::Touching,
+            pair,
+            from: at,
+            to: at,
+            sign: was,
+            placed: true,
+        });
     }
     minima(table, pair, 1e-2, MeetingKind::Touching, tasks);
 }
 
 /// Inner minima of the absolute gap that stay on one side.
-fn minima(table: &Table, pair: (usize, usize), bound: f64, kind: MeetingKind, tasks: &mut Vec<Task>) {
+fn minima(
+    table: &Table,
+    pair: (usize, usize),
+    bound: f64,
+    kind: MeetingKind,
+    tasks: &mut Vec<Task>,
+) {
     for node in 1..table.at.len() - 1 {
         let gaps = [node - 1, node, node + 1].map(|k| table.gap(k, pair));
         let [a, b, c] = gaps.map(f64::abs);
@@ -159,7 +195,11 @@ fn minima(table: &Table, pair: (usize, usize), bound: f64, kind: MeetingKind, ta
 }
 
 impl Task {
-    fn refine<M: LevelModel>(&self, model: &M, room: &mut M::Room) -> Result<Option<Meeting>, M::Error> {
+    fn refine<M: LevelModel>(
+        &self,
+        model: &M,
+        room: &mut M::Room,
+    ) -> Result<Option<Meeting>, M::Error> {
         let columns = model.classes().len();
         let mut solve = |at: &[f64]| -> Result<Vec<(f64, f64)>, M::Error> {
             let mut out = vec![0.0; at.len() * columns];
@@ -183,9 +223,23 @@ impl Task {
             MeetingKind::Avoided => gap < AVOIDED_GAP_EV,
             MeetingKind::Touching => gap.abs() < TOUCHING_EV,
         };
-        let columns = if self.sign < 0.0 { (self.pair.1, self.pair.0) } else { self.pair };
-        let gap = if self.kind == MeetingKind::Avoided { gap } else { 0.0 };
-        Ok(kept.then_some(Meeting { kind: self.kind, columns, at, energy, gap }))
+        let columns = if self.sign < 0.0 {
+            (self.pair.1, self.pair.0)
+        } else {
+            self.pair
+        };
+        let gap = if self.kind == MeetingKind::Avoided {
+            gap
+        } else {
+            0.0
+        };
+        Ok(kept.then_some(Meeting {
+            kind: self.kind,
+            columns,
+            at,
+            energy,
+            gap,
+        }))
     }
 }
 
@@ -203,14 +257,21 @@ fn root<E>(
     for _ in 0..ROOT_ROUNDS {
         let at = inside(from, to);
         let values = solve(&at)?;
-        let place = values.iter().position(|value| value.0 <= 0.0).unwrap_or(at.len());
+        let place = values
+            .iter()
+            .position(|value| value.0 <= 0.0)
+            .unwrap_or(at.len());
         let low = if place == 0 { from } else { at[place - 1] };
         to = if place == at.len() { to } else { at[place] };
         from = low;
     }
     let ends = solve(&[from, to])?;
     let fall = ends[0].0 - ends[1].0;
-    let share = if fall > 0.0 { (ends[0].0 / fall).clamp(0.0, 1.0) } else { 0.5 };
+    let share = if fall > 0.0 {
+        (ends[0].0 / fall).clamp(0.0, 1.0)
+    } else {
+        0.5
+    };
     Ok(from + (to - from) * share)
 }
 
@@ -230,7 +291,11 @@ fn minimum<E>(
             }
         }
         let low = if best == 0 { from } else { at[best - 1] };
-        to = if best + 1 == at.len() { to } else { at[best + 1] };
+        to = if best + 1 == at.len() {
+            to
+        } else {
+            at[best + 1]
+        };
         from = low;
     }
     Ok(0.5 * (from + to))

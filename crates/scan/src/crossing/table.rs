@@ -24,7 +24,10 @@ impl Table {
     /// Solves the nodes and halves intervals until every pair of levels is
     /// settled or the halvings are used up.
     pub(super) fn new<M: LevelModel>(model: &M, nodes: &[f64]) -> Result<Self, M::Error> {
-        let mut table = Self { at: nodes.to_vec(), energies: solve(model, nodes)? };
+        let mut table = Self {
+            at: nodes.to_vec(),
+            energies: solve(model, nodes)?,
+        };
         let mut open: Vec<bool> = vec![true; nodes.len().saturating_sub(1)];
         for _ in 0..HALVINGS {
             let halved: Vec<bool> = (0..open.len())
@@ -43,7 +46,9 @@ impl Table {
             for (k, row) in table.energies.drain(..).enumerate() {
                 at.push(table.at[k]);
                 energies.push(row);
-                let Some(&halve) = halved.get(k) else { continue };
+                let Some(&halve) = halved.get(k) else {
+                    continue;
+                };
                 next.push(halve);
                 if halve && let Some((middle, row)) = made.next() {
                     at.push(middle);
@@ -113,7 +118,10 @@ fn solve<M: LevelModel>(model: &M, at: &[f64]) -> Result<Vec<Vec<f64>>, M::Error
             |room, batch| {
                 let mut out = vec![0.0; batch.len() * columns];
                 model.energies(room, batch, &mut out)?;
-                Ok(out.chunks_exact(columns.max(1)).map(<[f64]>::to_vec).collect())
+                Ok(out
+                    .chunks_exact(columns.max(1))
+                    .map(<[f64]>::to_vec)
+                    .collect())
             },
         )
         .collect();
