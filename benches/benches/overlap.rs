@@ -15,7 +15,8 @@ fn shell(n: u8, l: u8, terms: &[(f64, f64)]) -> Shell {
         .iter()
         .map(|&(zeta, coefficient)| Term { zeta, coefficient })
         .collect();
-    Shell { n, l, terms }
+    // Printed coefficients of double-ζ functions are rounded.
+    Shell { n, l, terms }.normalised().expect("shell")
 }
 
 fn pairs(criterion: &mut Criterion) {
