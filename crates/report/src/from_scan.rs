@@ -2,7 +2,7 @@
 //! made.
 
 use orbend_hamiltonian as hamiltonian;
-use orbend_scan::{Populations, Route, ScanError, Sweep, SweepPlan};
+use orbend_scan::{Orbitals, Populations, Route, ScanError, Sweep, SweepPlan};
 use orbend_structure::CoordinateKind;
 
 use crate::document::{
@@ -120,21 +120,7 @@ pub fn levels_document(
     let mut missing = Vec::new();
     let mut point = point_record(sweep, 0, &mut missing)?;
     let orbitals = sweep.orbitals(0)?;
-    let mut occupations = vec![0.0; plan.lines().len()];
-    for level in sweep.point(0)?.levels {
-        occupations[level.line] = level.occupation;
-    }
-    let populations = orbitals.populations(plan.basis(), &occupations);
-    for level in &mut point.levels {
-        let Some(line) = level.line else { continue };
-        let row = orbitals.coefficients.row(line as usize);
-        level.coefficients = Some(
-            row.iter()
-                .map(|&c| Number::new(c))
-                .collect::<Result<_, _>>()?,
-        );
-        level.populations = Some(shell_populations(plan, &populations, line as usize)?);
-    }
+    let populations = describe_orbitals(plan, &orbitals, &mut point)?;
     point.charges = Some(charges(plan, &populations)?);
     point.overlap_populations = Some(overlap_populations(&populations)?);
     Ok(LevelsDocument {
@@ -149,6 +135,31 @@ pub fn levels_document(
         warnings: warnings(plan, provenance),
         missing,
     })
+}
+
+/// Coefficients and shell populations of every level of a point that has lines.
+pub(crate) fn describe_orbitals(
+    plan: &SweepPlan,
+    orbitals: &Orbitals,
+    point: &mut Point,
+) -> Result<Populations, NotFinite> {
+    let mut occupations = vec![0.0; plan.lines().len()];
+    for level in &point.levels {
+        let Some(line) = level.line else { continue };
+        occupations[line as usize] = level.occupation.get();
+    }
+    let populations = orbitals.populations(plan.basis(), &occupations);
+    for level in &mut point.levels {
+        let Some(line) = level.line else { continue };
+        let row = orbitals.coefficients.row(line as usize);
+        level.coefficients = Some(
+            row.iter()
+                .map(|&c| Number::new(c))
+                .collect::<Result<_, _>>()?,
+        );
+        level.populations = Some(shell_populations(plan, &populations, line as usize)?);
+    }
+    Ok(populations)
 }
 
 pub(crate) fn molecule_record(
@@ -485,7 +496,7 @@ fn shell_name(n: u8, l: u8) -> String {
     hamiltonian::ShellName { n, l }.to_string()
 }
 
-pub(crate) fn shell_populations(
+fn shell_populations(
     plan: &SweepPlan,
     populations: &Populations,
     line: usize,

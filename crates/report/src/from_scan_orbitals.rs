@@ -2,9 +2,9 @@
 
 use orbend_scan::{Orbitals, Sweep};
 
-use crate::document::{Number, SweepDocument};
+use crate::document::SweepDocument;
 use crate::from_scan::{
-    FromScanError, Provenance, basis_functions, shell_populations, sweep_document,
+    FromScanError, Provenance, basis_functions, describe_orbitals, sweep_document,
 };
 
 /// The document of a sweep along one coordinate with the coefficients and shell populations of every
@@ -19,29 +19,13 @@ pub fn sweep_document_with_orbitals(
 ) -> Result<SweepDocument, FromScanError> {
     let mut document = sweep_document(sweep, provenance)?;
     let plan = sweep.plan();
-    let lines = plan.lines().len();
     let mut before: Option<Orbitals> = None;
     for (index, point) in document.points.iter_mut().enumerate() {
         let mut orbitals = sweep.orbitals(index)?;
         if let Some(before) = &before {
             keep_signs(before, &mut orbitals);
         }
-        let mut occupations = vec![0.0; lines];
-        for level in &point.levels {
-            let Some(line) = level.line else { continue };
-            occupations[line as usize] = level.occupation.get();
-        }
-        let populations = orbitals.populations(plan.basis(), &occupations);
-        for level in &mut point.levels {
-            let Some(line) = level.line else { continue };
-            let row = orbitals.coefficients.row(line as usize);
-            level.coefficients = Some(
-                row.iter()
-                    .map(|&c| Number::new(c))
-                    .collect::<Result<_, _>>()?,
-            );
-            level.populations = Some(shell_populations(plan, &populations, line as usize)?);
-        }
+        describe_orbitals(plan, &orbitals, point)?;
         before = Some(orbitals);
     }
     document.basis = Some(basis_functions(plan));
