@@ -127,7 +127,7 @@ pub(crate) struct OutputArguments {
     /// The result document on standard output, alone
     #[arg(long)]
     pub(crate) json: bool,
-    /// Write a file; the ending chooses .json, .csv, .svg, .html (a page) or .xyz (may be repeated)
+    /// Write a file; the ending chooses .json, .csv, .svg, .png, .html (a page) or .xyz (may be repeated)
     #[arg(long, value_name = "FILE")]
     pub(crate) out: Vec<PathBuf>,
     /// Which numbering labels show first; the document always has both

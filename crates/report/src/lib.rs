@@ -6,6 +6,7 @@
 //!   ([`to_json`], [`read_document`]) with a generated JSON Schema ([`schemas`]).
 //! - [`CsvWriter`]: one row per point and level (RFC 4180).
 //! - [`sweep_figure`], [`levels_figure`]: SVG with real text.
+//! - [`figure_png`]: the same as an image.
 //! - [`sweep_page`]: one HTML file with the figure, a slider and the orbitals.
 //! - [`levels_text`], [`sweep_text`], [`params_text`]: text for a person at a terminal.
 //!
@@ -20,6 +21,7 @@ mod from_scan;
 mod from_scan_orbitals;
 mod lettering;
 mod page;
+mod raster;
 #[cfg(test)]
 mod synthetic;
 mod text;
@@ -34,4 +36,5 @@ pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
 pub use from_scan_orbitals::sweep_document_with_orbitals;
 pub use page::{PageError, sweep_page};
+pub use raster::{ImageError, figure_png};
 pub use text::{TextOptions, levels_text, params_text, sweep_text};

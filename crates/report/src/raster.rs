@@ -22,7 +22,9 @@ pub enum ImageError {
     #[error("the drawing cannot be read: {0}")]
     Drawing(#[from] usvg::Error),
     /// The image has no pixels or too many.
-    #[error("an image of {width} by {height} pixels cannot be made: choose a smaller number of dots per inch")]
+    #[error(
+        "an image of {width} by {height} pixels cannot be made: choose a smaller number of dots per inch"
+    )]
     Size {
         /// Pixels across.
         width: u32,
@@ -40,7 +42,10 @@ pub enum ImageError {
 /// # Errors
 /// Text that is no SVG, or an image without pixels or with more than 16384 of them along an edge.
 pub fn figure_png(svg: &str, dots_per_inch: f64) -> Result<Vec<u8>, ImageError> {
-    let mut options = usvg::Options { font_family: FAMILY.to_owned(), ..usvg::Options::default() };
+    let mut options = usvg::Options {
+        font_family: FAMILY.to_owned(),
+        ..usvg::Options::default()
+    };
     let fonts = Arc::make_mut(&mut options.fontdb);
     fonts.load_font_data(FONT.to_vec());
     fonts.set_sans_serif_family(FAMILY);
@@ -68,9 +73,17 @@ fn encode(pixmap: &tiny_skia::Pixmap, dots_per_inch: f64) -> Result<Vec<u8>, Ima
     encoder.set_color(ColorType::Rgb);
     encoder.set_depth(BitDepth::Eight);
     let per_metre = (dots_per_inch * INCHES_PER_METRE).round() as u32;
-    encoder.set_pixel_dims(Some(PixelDimensions { xppu: per_metre, yppu: per_metre, unit: Unit::Meter }));
+    encoder.set_pixel_dims(Some(PixelDimensions {
+        xppu: per_metre,
+        yppu: per_metre,
+        unit: Unit::Meter,
+    }));
     // The ground is opaque: colour times opacity is the colour.
-    let colours: Vec<u8> = pixmap.data().chunks_exact(4).flat_map(|pixel| [pixel[0], pixel[1], pixel[2]]).collect();
+    let colours: Vec<u8> = pixmap
+        .data()
+        .chunks_exact(4)
+        .flat_map(|pixel| [pixel[0], pixel[1], pixel[2]])
+        .collect();
     let mut writer = encoder.write_header()?;
     writer.write_image_data(&colours)?;
     writer.finish()?;
@@ -83,7 +96,9 @@ mod tests {
     use crate::{FigureOptions, sweep_figure, synthetic};
 
     fn decoded(bytes: &[u8]) -> (u32, u32, Vec<u8>) {
-        let mut reader = png::Decoder::new(std::io::Cursor::new(bytes)).read_info().unwrap();
+        let mut reader = png::Decoder::new(std::io::Cursor::new(bytes))
+            .read_info()
+            .unwrap();
         let mut pixels = vec![0; reader.output_buffer_size().unwrap()];
         let info = reader.next_frame(&mut pixels).unwrap();
         (info.width, info.height, pixels)
@@ -91,7 +106,10 @@ mod tests {
 
     fn dark(svg: &str) -> usize {
         let (_, _, pixels) = decoded(&figure_png(svg, 96.0).unwrap());
-        pixels.chunks_exact(3).filter(|pixel| pixel[0] < 100).count()
+        pixels
+            .chunks_exact(3)
+            .filter(|pixel| pixel[0] < 100)
+            .count()
     }
 
     #[test]
@@ -113,19 +131,30 @@ mod tests {
 
     #[test]
     fn a_column_at_600_dots_per_inch() {
-        let figure = sweep_figure(&synthetic::silicon_difluoride(), &FigureOptions::default()).unwrap();
+        let figure =
+            sweep_figure(&synthetic::silicon_difluoride(), &FigureOptions::default()).unwrap();
         let bytes = figure_png(&figure, 600.0).unwrap();
         let (width, _, _) = decoded(&bytes);
         // 84 mm.
         assert_eq!(width, 1984);
-        let without = figure.split("<text").map(|part| part.split_once("</text>").map_or(part, |p| p.1)).collect::<String>();
+        let without = figure
+            .split("<text")
+            .map(|part| part.split_once("</text>").map_or(part, |p| p.1))
+            .collect::<String>();
         assert!(dark(&figure) > dark(&without) + 500);
     }
 
     #[test]
     fn too_many_pixels_are_refused() {
-        let figure = sweep_figure(&synthetic::silicon_difluoride(), &FigureOptions::default()).unwrap();
-        assert!(matches!(figure_png(&figure, 60_000.0), Err(ImageError::Size { .. })));
-        assert!(matches!(figure_png("no drawing", 96.0), Err(ImageError::Drawing(_))));
+        let figure =
+            sweep_figure(&synthetic::silicon_difluoride(), &FigureOptions::default()).unwrap();
+        assert!(matches!(
+            figure_png(&figure, 60_000.0),
+            Err(ImageError::Size { .. })
+        ));
+        assert!(matches!(
+            figure_png("no drawing", 96.0),
+            Err(ImageError::Drawing(_))
+        ));
     }
 }

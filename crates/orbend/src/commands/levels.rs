@@ -2,7 +2,7 @@
 
 use orbend_report::{FigureOptions, levels_csv, levels_document, levels_figure, levels_text, to_json};
 
-use super::{csv, figure_numbering, provenance, resolve, text_options};
+use super::{csv, drawing, figure_numbering, provenance, resolve, text_options};
 use crate::arguments::LevelsArguments;
 use crate::failure::Failure;
 use crate::outputs::Outputs;
@@ -10,7 +10,7 @@ use crate::write::write_stdout;
 
 pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "xyz"])?;
+    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "xyz"])?;
     let resolved = resolve(&arguments.geometry, Vec::new(), &arguments.model, output.numbering)?;
     let sweep = resolved.request.run().map_err(|error| Failure::scan(&error))?;
     let document = levels_document(&sweep, &provenance(&resolved.geometry, output.numbering))
@@ -20,9 +20,13 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
             "csv" => csv(|out| levels_csv(&document, out))?,
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
-            _ => levels_figure(&document, &FigureOptions { numbering: figure_numbering(output.numbering), ..FigureOptions::default() })
-                .map_err(|error| Failure::request(error.to_string()))?
-                .into_bytes(),
+            _ => {
+                let options = FigureOptions {
+                    numbering: figure_numbering(output.numbering),
+                    ..FigureOptions::default()
+                };
+                drawing(levels_figure(&document, &options), ending)?
+            }
         })
     })?;
     if output.json {

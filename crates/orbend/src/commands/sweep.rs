@@ -7,7 +7,7 @@ use orbend_report::{
 use orbend_scan::Sweep;
 use orbend_structure::{Coordinate, CoordinateKind};
 
-use super::{csv, figure_options, provenance, resolve, text_options};
+use super::{csv, drawing, figure_options, provenance, resolve, text_options};
 use crate::arguments::{CoordinateArguments, NumberingChoice, SweepArguments};
 use crate::failure::Failure;
 use crate::geometry::Geometry;
@@ -16,7 +16,7 @@ use crate::write::write_stdout;
 
 pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "html", "xyz"])?;
+    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "html", "xyz"])?;
     let figure = figure_options(&arguments.figure, output.numbering)?;
     let coordinates = coordinates(&arguments.coordinates)?;
     let resolved = resolve(&arguments.geometry, coordinates, &arguments.model, output.numbering)?;
@@ -30,9 +30,7 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
             "csv" => csv(|out| sweep_csv(&document, out))?,
             "html" => page(&sweep, &resolved.geometry, output.numbering, &figure)?,
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
-            _ => sweep_figure(&document, &figure)
-                .map_err(|error| Failure::request(error.to_string()))?
-                .into_bytes(),
+            _ => drawing(sweep_figure(&document, &figure), ending)?,
         })
     })?;
     if output.json {
