@@ -19,6 +19,7 @@ mod figure;
 mod from_parameters;
 mod from_scan;
 mod from_scan_orbitals;
+mod from_scan_pictures;
 mod lettering;
 mod page;
 mod raster;
@@ -29,12 +30,13 @@ mod text;
 pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
 pub use figure::{
-    ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering, Theme,
+    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering, OrbitalPicture, Theme,
     levels_figure, sweep_figure,
 };
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
 pub use from_scan_orbitals::sweep_document_with_orbitals;
+pub use from_scan_pictures::end_pictures;
 pub use page::{PageError, sweep_page};
 pub use raster::{ImageError, figure_png};
 pub use text::{TextOptions, levels_text, params_text, sweep_text};

@@ -1,7 +1,7 @@
 //! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
 
 use orbend_report::{
-    FigureOptions, sweep_csv, sweep_document, sweep_document_with_orbitals, sweep_figure, sweep_page,
+    FigureOptions, end_pictures, sweep_csv, sweep_document, sweep_document_with_orbitals, sweep_figure, sweep_page,
     sweep_text, to_json,
 };
 use orbend_scan::Sweep;
@@ -24,6 +24,10 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let sweep = in_pool(arguments.jobs, || Sweep::run(plan))?.map_err(|error| Failure::scan(&error))?;
     let document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
         .map_err(|error| Failure::running(error.to_string()))?;
+    let mut figure = figure;
+    if arguments.figure.orbitals && document.lines.is_some() {
+        figure.pictures = Some(end_pictures(&sweep).map_err(|error| Failure::scan(&error))?);
+    }
     outputs.write(|ending| {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),

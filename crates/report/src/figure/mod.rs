@@ -9,6 +9,7 @@ mod measure;
 mod metadata;
 mod options;
 mod panel;
+mod pictures;
 pub(crate) mod scale;
 mod sheet;
 mod sum;
@@ -18,6 +19,7 @@ mod tests;
 pub(crate) mod theme;
 pub(crate) mod xml;
 
+pub use pictures::{EndPictures, OrbitalPicture};
 pub use ladder::levels_figure;
 pub use options::{
     ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering, Theme,

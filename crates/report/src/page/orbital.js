@@ -154,7 +154,7 @@ function content(frame, plane, { psiAt, atoms }) {
 // Draws the molecule, and the orbital where `psiAt` is given, on `fine` pixels. Contours at ±0.025·2^k;
 // positive phase filled, negative phase filled and hatched.
 function drawOrbital(canvas, { frame, plane, atoms, elements, bonds, psiAt, colours, fine }) {
-  const g = canvas.getContext('2d'), size = canvas.width, half = frame.size + 1.7, c = frame.centre(atoms);
+  const g = canvas.getContext('2d'), size = canvas.width, half = frame.size + 2.1, c = frame.centre(atoms);
   const [a, b, n] = plane.axes;
   g.fillStyle = colours.ground;
   g.fillRect(0, 0, size, size);
