@@ -8,8 +8,8 @@ WORKER is the program built by
 
 Problems are written to a file that the worker reads. In every round all contenders take the same
 problems one after the other, the order reversed each round. Each problem set is cut into chunks
-short enough to run between two time slices: a round's time is the median over its chunks, so that
-other work on the machine disturbs little. Times are medians over the rounds, ratios are medians of
+short enough to run between two time slices (a round's time is the median over its chunks) or so
+long that processor time is counted, so that other work on the machine disturbs little. Times are medians over the rounds, ratios are medians of
 the ratios of each round. LAPACK is called directly (dsygv and dsygvd of the
 OpenBLAS in SciPy's wheel, or of the library named by LAPACK_LIBRARY) from a loop compiled here
 with `cc`, its workspace allocated once. SciPy is called as a user calls it: eigh(H, S).
@@ -73,8 +73,8 @@ def lapack(directory):
 
 
 def compare(worker_path, n, directory, kernels):
-    count = 512 if n <= 12 else 128 if n <= 30 else 64 if n <= 60 else 16 if n <= 200 else 1
-    chunk = 64 if n <= 6 else 32 if n <= 12 else 8 if n <= 200 else 1
+    count = 512 if n <= 12 else 256 if n <= 60 else 32 if n <= 200 else 4 if n <= 400 else 1
+    chunk = 64 if n <= 6 else 32 if n <= 12 else 16 if n <= 30 else count
     rounds = 15 if n <= 60 else 9 if n <= 200 else 5
     h, s = problems(n, count)
     path = os.path.join(directory, f"problems_{n}")
@@ -110,10 +110,10 @@ def compare(worker_path, n, directory, kernels):
     def eigh():
         parts = []
         for part in range(count // chunk):
-            start = time.perf_counter()
+            start = time.thread_time()
             for k in range(part * chunk, (part + 1) * chunk):
                 scipy.linalg.eigh(h[k], s[k])
-            parts.append(time.perf_counter() - start)
+            parts.append(time.thread_time() - start)
         return statistics.median(parts) / chunk
 
     contenders = {"scipy eigh": eigh, "dsygvd": direct(gvd, 1)}

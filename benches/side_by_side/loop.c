@@ -12,7 +12,7 @@ typedef void (*sygvd)(int *itype, char *jobz, char *uplo, int *n, double *a, int
 static double now(void)
 {
     struct timespec t;
-    clock_gettime(CLOCK_MONOTONIC, &t);
+    clock_gettime(CLOCK_THREAD_CPUTIME_ID, &t);
     return (double)t.tv_sec + 1e-9 * (double)t.tv_nsec;
 }
 

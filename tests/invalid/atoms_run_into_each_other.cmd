@@ -1,5 +1,5 @@
-# the two hydrogens meet at 0 degrees
-args: sweep water.xyz --bend 2-1-3=0..90:5
+# the two hydrogens come too close at 5 degrees
+args: sweep water.xyz --bend 2-1-3=5..90:5
 exit: 2
 says: 2
 says: 3

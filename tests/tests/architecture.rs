@@ -26,7 +26,13 @@ const FORBIDDEN: [(&str, &str); 5] = [
 #[test]
 fn arrows_run_one_way() {
     let output = Command::new(env!("CARGO"))
-        .args(["metadata", "--no-deps", "--offline", "--format-version", "1"])
+        .args([
+            "metadata",
+            "--no-deps",
+            "--offline",
+            "--format-version",
+            "1",
+        ])
         .current_dir(env!("CARGO_MANIFEST_DIR"))
         .output()
         .expect("cargo metadata runs");
@@ -44,7 +50,11 @@ fn arrows_run_one_way() {
             }
             let target = dependency["name"].as_str().expect("name");
             let Some(to) = place(target) else { continue };
-            assert!(to < from, "{name} may not depend on {target}: {}", ORDER.join(" → "));
+            assert!(
+                to < from,
+                "{name} may not depend on {target}: {}",
+                ORDER.join(" → ")
+            );
             assert!(
                 !FORBIDDEN.contains(&(name, target)),
                 "{name} knows nothing of {target}"
@@ -52,7 +62,10 @@ fn arrows_run_one_way() {
             arrows += 1;
         }
     }
-    assert!(arrows >= 10, "only {arrows} arrows were read: is the metadata complete?");
+    assert!(
+        arrows >= 10,
+        "only {arrows} arrows were read: is the metadata complete?"
+    );
 }
 
 #[test]
@@ -60,11 +73,19 @@ fn every_crate_stands_in_the_order() {
     let folder = concat!(env!("CARGO_MANIFEST_DIR"), "/../crates");
     let mut folders: Vec<String> = std::fs::read_dir(folder)
         .expect("crates folder")
-        .map(|entry| entry.expect("entry").file_name().to_string_lossy().into_owned())
+        .map(|entry| {
+            entry
+                .expect("entry")
+                .file_name()
+                .to_string_lossy()
+                .into_owned()
+        })
         .collect();
     folders.sort();
-    let mut expected: Vec<String> =
-        ORDER.iter().map(|name| name.trim_start_matches("orbend-").to_owned()).collect();
+    let mut expected: Vec<String> = ORDER
+        .iter()
+        .map(|name| name.trim_start_matches("orbend-").to_owned())
+        .collect();
     expected.sort();
     assert_eq!(folders, expected);
 }

@@ -13,7 +13,8 @@ use std::fs;
 use std::io::Write;
 use std::path::{Path, PathBuf};
 use std::process::{Command, Output, Stdio};
-use std::sync::OnceLock;
+
+use orbend_checks::orbend_binary;
 
 /// One command line with what it must lead to.
 #[derive(Default)]
@@ -32,41 +33,6 @@ struct Case {
 
 fn corpus() -> PathBuf {
     Path::new(env!("CARGO_MANIFEST_DIR")).join("invalid")
-}
-
-/// The built command line, made up to date once: this package does not depend on the binary.
-fn program() -> &'static Path {
-    static PROGRAM: OnceLock<PathBuf> = OnceLock::new();
-    PROGRAM.get_or_init(|| {
-        let test = std::env::current_exe().expect("path of this test");
-        let profile = test
-            .parent()
-            .and_then(Path::parent)
-            .expect("target/profile/deps/test");
-        let target = profile.parent().expect("target directory");
-        let mut build = Command::new(env!("CARGO"));
-        build
-            .args([
-                "build",
-                "--quiet",
-                "--offline",
-                "-p",
-                "orbend",
-                "--bin",
-                "orbend",
-                "--target-dir",
-            ])
-            .arg(target)
-            .current_dir(env!("CARGO_MANIFEST_DIR"));
-        if profile.ends_with("release") {
-            build.arg("--release");
-        }
-        assert!(
-            build.status().expect("cargo runs").success(),
-            "the binary `orbend` does not build"
-        );
-        profile.join(format!("orbend{}", std::env::consts::EXE_SUFFIX))
-    })
 }
 
 /// Words of a command line; double quotes group.
@@ -190,7 +156,7 @@ fn run(arguments: &[String], directory: &Path, stdin: Option<&Path>) -> Output {
     let input = stdin.map_or_else(Stdio::null, |path| {
         Stdio::from(fs::File::open(path).expect("input"))
     });
-    Command::new(program())
+    Command::new(orbend_binary())
         .args(arguments)
         .current_dir(directory)
         .env("NO_COLOR", "1")
@@ -361,7 +327,7 @@ fn a_million_lines_that_belong_to_no_atom() {
         &[
             "long.xyz",
             ":5: | line 5 | :1: | line 1",
-            "number of atoms | count | frame",
+            "announces | number of atoms",
         ],
     );
 }
@@ -397,7 +363,7 @@ fn a_very_long_line() {
 #[test]
 fn a_closed_pipe_is_quiet() {
     let arguments = ["sweep", "SiF2", "--bend", "2-1-3=80..180:0.1", "--json"];
-    let mut child = Command::new(program())
+    let mut child = Command::new(orbend_binary())
         .args(arguments)
         .env("NO_COLOR", "1")
         .stdin(Stdio::null())

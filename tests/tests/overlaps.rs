@@ -11,6 +11,10 @@ use orbend_overlap::{
 /// CODATA 2018, as in the units of the structure crate.
 const BOHR_ANGSTROM: f64 = 0.529_177_210_903;
 
+fn slater(n: u8, l: u8, zeta: f64) -> Primitive {
+    Primitive { n, l, zeta }
+}
+
 fn reference(name: &str) -> String {
     let path = Path::new(env!("CARGO_MANIFEST_DIR"))
         .join("reference")
@@ -34,16 +38,8 @@ fn rows() -> Vec<Row> {
     let read = |line: &str| {
         let c: Vec<&str> = line.split(',').collect();
         Row {
-            a: Primitive {
-                n: small(c[0]),
-                l: small(c[1]),
-                zeta: number(c[5]),
-            },
-            b: Primitive {
-                n: small(c[2]),
-                l: small(c[3]),
-                zeta: number(c[6]),
-            },
+            a: slater(small(c[0]), small(c[1]), number(c[5])),
+            b: slater(small(c[2]), small(c[3]), number(c[6])),
             m: small(c[4]),
             distance: number(c[7]),
             overlap: number(c[8]),
@@ -114,18 +110,7 @@ fn function(name: &str) -> (u8, u8, u8) {
 fn facing(a: &str, b: &str, zeta_a: f64, zeta_b: f64, distance: f64) -> f64 {
     let ((n_a, l_a, m), (n_b, l_b, m_b)) = (function(a), function(b));
     assert_eq!(m, m_b);
-    let (a, b) = (
-        Primitive {
-            n: n_a,
-            l: l_a,
-            zeta: zeta_a,
-        },
-        Primitive {
-            n: n_b,
-            l: l_b,
-            zeta: zeta_b,
-        },
-    );
+    let (a, b) = (slater(n_a, l_a, zeta_a), slater(n_b, l_b, zeta_b));
     let sign = if (l_b + m).is_multiple_of(2) {
         1.0
     } else {
@@ -327,18 +312,10 @@ fn printed_numbers() {
 #[test]
 fn sign_convention() {
     // Both z axes along A→B: p functions pointing the same way give +1 on one centre …
-    let p = Primitive {
-        n: 2,
-        l: 1,
-        zeta: 1.625,
-    };
+    let p = slater(2, 1, 1.625);
     assert!((slater_overlap(p, p, 0, 0.0).unwrap() - 1.0).abs() < 1e-15);
     // … and an s on A meets the negative lobe of a p on B.
-    let s = Primitive {
-        n: 2,
-        l: 0,
-        zeta: 1.625,
-    };
+    let s = slater(2, 0, 1.625);
     assert!(slater_overlap(s, p, 0, 2.5).unwrap() < -0.1);
     assert!(slater_overlap(p, s, 0, 2.5).unwrap() > 0.1);
 }
@@ -483,16 +460,8 @@ fn gradient_against_central_differences() {
 fn gradient_along_and_across_the_bond() {
     // Along the bond the gradient is dS/dR of the diatomic integrals, across it the first-order
     // turn of the functions: for s and p, ∂⟨s|p_x⟩/∂x = ⟨s|pσ⟩/R at a bond along z.
-    let p = Primitive {
-        n: 2,
-        l: 1,
-        zeta: 1.625,
-    };
-    let s = Primitive {
-        n: 3,
-        l: 0,
-        zeta: 2.1,
-    };
+    let p = slater(2, 1, 1.625);
+    let s = slater(3, 0, 2.1);
     let shells = |q: Primitive| vec![Shell::single(q.n, q.l, q.zeta)];
     let kernel = PairKernel::new(&shells(s), &shells(p)).unwrap();
     for r in [0.3, 1.9, 5.0] {

@@ -33,7 +33,9 @@ fn run(line: &str, folder: &Path) -> String {
         .expect("orbend runs");
     let mut text = String::from_utf8(output.stdout).expect("text");
     text.push_str(&String::from_utf8(output.stderr).expect("text"));
-    text.lines().map(|line| format!("{}\n", line.trim_end())).collect()
+    text.lines()
+        .map(|line| format!("{}\n", line.trim_end()))
+        .collect()
 }
 
 #[test]
@@ -83,6 +85,9 @@ fn the_tour_prints_what_it_says() {
     if std::env::var_os("ORBEND_UPDATE").is_some() {
         std::fs::write(path, &made).expect("README.md is written");
     } else {
-        assert!(made == readme, "README.md is stale; the tour now prints:\n{made}");
+        assert!(
+            made == readme,
+            "README.md is stale; the tour now prints:\n{made}"
+        );
     }
 }

@@ -13,12 +13,13 @@
 mod canonical;
 mod error;
 mod lanes;
+mod large;
 mod single;
 mod wide;
 
 pub use canonical::{fix_degenerate_set, fix_sign};
 pub use error::EigenError;
-pub use lanes::{LaneStatus, LaneWorkspace, SmallestOverlap};
+pub use lanes::{LaneStatus, LaneWorkspace};
 pub use single::{Quality, Solution, Workspace, solve, solve_into};
 
 /// Problems solved together, on every machine.
@@ -32,5 +33,10 @@ pub type Lanes = [f64; LANES];
 /// Errors of the energies grow as the inverse of that ratio: at 1e-9 about six digits are left.
 pub const SINGULAR_RATIO: f64 = 1e-9;
 
-/// From this size on a single problem is solved by blocked kernels.
+/// From this size on a single problem is solved by the blocked kernels of the faer crate, on one
+/// thread. Those use fused multiply–add where the machine has it, so the last digits may differ
+/// between machines (not between runs or numbers of threads).
 pub const LARGE: usize = 150;
+
+/// Beyond this size lanes do not pay any more: a [`LaneWorkspace`] solves its problems one by one.
+pub const MOST_IN_LANES: usize = 128;

@@ -1,9 +1,11 @@
 //! Both kernels against an independent solver and against spectra known by construction.
 
+#![allow(clippy::unwrap_used, clippy::panic)] // a failed expectation is the message
+
 mod common;
 
 use common::*;
-use orbend_eigen::{LaneStatus, LaneWorkspace, solve};
+use orbend_eigen::{EigenError, LARGE, LaneStatus, LaneWorkspace, solve};
 
 fn check_everywhere(problems: &[Problem], exact: Option<&[f64]>, slack: f64) {
     let n = problems[0].n;
@@ -212,4 +214,86 @@ fn nearly_singular_overlap_within_the_limit() {
             check(p, &lane(room.values(), l), &lane(room.vectors(), l), 1e4);
         }
     }
+}
+
+#[test]
+fn large_problems() {
+    // Both sides of the switch to blocked kernels, and a size that is no multiple of their blocks.
+    for n in [LARGE - 1, LARGE, LARGE + 47] {
+        let p = molecule_like(n, 9);
+        let one = solve(n, &p.h, &p.s).unwrap();
+        check(&p, &one.values, &one.vectors, 10.0);
+        let expected = reference_values(&p);
+        let lowest = reference_values(&Problem {
+            n,
+            h: p.s.clone(),
+            s: unit(n),
+        })[0];
+        assert!((one.smallest_overlap_eigenvalue - lowest).abs() < 1e-9 * lowest);
+        for (a, b) in one.values.iter().zip(&expected) {
+            assert!((a - b).abs() <= 1e-14 * n as f64 * largest(&expected));
+        }
+        let (h, s) = lanes_of(&[p]);
+        let mut room = LaneWorkspace::new(n);
+        let status = room.solve(&h, &s, true).unwrap();
+        assert_eq!(status[7], LaneStatus::SolvedAlone);
+        assert_eq!(lane(room.values(), 7), one.values);
+        assert_eq!(lane(room.vectors(), 2), one.vectors);
+    }
+}
+
+#[test]
+fn large_degenerate_and_singular() {
+    let n = LARGE + 10;
+    let values: Vec<f64> = (0..n).map(|k| (k / 20) as f64 - 3.0).collect();
+    let p = Problem {
+        n,
+        h: with_spectrum(&values, 3),
+        s: unit(n),
+    };
+    let one = solve(n, &p.h, &p.s).unwrap();
+    check(&p, &one.values, &one.vectors, 10.0);
+    for (a, b) in one.values.iter().zip(&values) {
+        assert!((a - b).abs() <= 1e-14 * n as f64 * largest(&values));
+    }
+    let mut spectrum = vec![1.0; n];
+    spectrum[0] = 1e-11;
+    let s = with_spectrum(&spectrum, 4);
+    assert!(matches!(
+        solve(n, &p.h, &s),
+        Err(EigenError::Singular { .. })
+    ));
+}
+
+#[test]
+fn smallest_overlap_in_lanes() {
+    for n in [1, 2, 6, 15, 40] {
+        let problems: Vec<Problem> = (0..8).map(|seed| molecule_like(n, seed)).collect();
+        let (h, s) = lanes_of(&problems);
+        let mut room = LaneWorkspace::new(n);
+        room.set_smallest_overlap(true);
+        room.solve(&h, &s, true).unwrap();
+        for (l, p) in problems.iter().enumerate() {
+            let lowest = reference_values(&Problem {
+                n,
+                h: p.s.clone(),
+                s: unit(n),
+            })[0];
+            let found = room.smallest_overlap_eigenvalues()[l];
+            assert!(
+                (found - lowest).abs() < 1e-14 * n as f64,
+                "{found} {lowest}"
+            );
+        }
+    }
+    // All eigenvalues of S equal.
+    let (h, s) = lanes_of(&[Problem {
+        n: 5,
+        h: vec![0.0; 25],
+        s: unit(5),
+    }]);
+    let mut room = LaneWorkspace::new(5);
+    room.set_smallest_overlap(true);
+    room.solve(&h, &s, true).unwrap();
+    assert!((room.smallest_overlap_eigenvalues()[0] - 1.0).abs() < 1e-15);
 }

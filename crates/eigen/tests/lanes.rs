@@ -1,5 +1,7 @@
 //! What lanes promise: independence, reports per lane, refusals.
 
+#![allow(clippy::unwrap_used, clippy::panic)] // a failed expectation is the message
+
 mod common;
 
 use common::*;

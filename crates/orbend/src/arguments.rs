@@ -16,7 +16,13 @@ Examples:
 /// Which way does this molecule bend, which orbitals trade places on the way,
 /// and how far can that be trusted?
 #[derive(Debug, Parser)]
-#[command(name = "orbend", version, long_version = None, before_help = EXAMPLES, max_term_width = 96)]
+#[command(
+    name = "orbend",
+    version,
+    before_help = EXAMPLES,
+    max_term_width = 96,
+    color = clap::ColorChoice::Never
+)]
 pub(crate) struct Arguments {
     #[command(subcommand)]
     pub(crate) command: Command,
@@ -47,6 +53,9 @@ pub(crate) struct LevelsArguments {
     pub(crate) model: ModelArguments,
     #[command(flatten)]
     pub(crate) output: OutputArguments,
+    /// Threads; the output is the same bytes for every number
+    #[arg(long, value_name = "N")]
+    pub(crate) jobs: Option<usize>,
 }
 
 #[derive(Debug, Args)]

@@ -13,12 +13,20 @@ pub(crate) struct Failure {
 impl Failure {
     /// Something is wrong with the request or the input: exit code 2.
     pub(crate) fn request(message: impl Into<String>) -> Self {
-        Self { message: message.into(), fix: None, code: 2 }
+        Self {
+            message: message.into(),
+            fix: None,
+            code: 2,
+        }
     }
 
     /// Something failed while running: exit code 1.
     pub(crate) fn running(message: impl Into<String>) -> Self {
-        Self { message: message.into(), fix: None, code: 1 }
+        Self {
+            message: message.into(),
+            fix: None,
+            code: 1,
+        }
     }
 
     /// What the user can do about it.
@@ -45,12 +53,44 @@ impl fmt::Display for Failure {
 }
 
 impl Failure {
+    /// A message of a library, `cause; fix`.
+    pub(crate) fn from_library(error: impl fmt::Display) -> Self {
+        let text = error.to_string();
+        match text.rsplit_once("; ") {
+            Some((cause, fix)) => Self::request(cause).fix(fix),
+            None => Self::request(text),
+        }
+    }
+
+    /// The same message with its place before it: the geometry it is about.
+    #[must_use]
+    pub(crate) fn within(mut self, geometry: &str) -> Self {
+        let place = if geometry == "-" {
+            "standard input"
+        } else {
+            geometry
+        };
+        self.message = format!("{place}: {}", self.message);
+        self
+    }
+
     /// A scan that could not be planned (bad request) or run.
     pub(crate) fn scan(error: &orbend_scan::ScanError) -> Self {
+        use orbend_hamiltonian::BasisError;
         use orbend_scan::ScanError;
         match error {
             ScanError::Eigen { .. } | ScanError::Threads { .. } => Self::running(error.to_string()),
-            _ => Self::request(error.to_string()),
+            ScanError::Basis(BasisError::MissingElement { .. }) => Self::from_library(error)
+                .fix("give them in a TOML file and lay it over the set: --params FILE"),
+            _ => Self::from_library(error),
+        }
+    }
+
+    /// A result that could not become a document.
+    pub(crate) fn result(error: &orbend_report::FromScanError) -> Self {
+        match error {
+            orbend_report::FromScanError::Scan(error) => Self::scan(error),
+            other => Self::running(other.to_string()),
         }
     }
 

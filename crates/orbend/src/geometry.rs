@@ -5,7 +5,8 @@ use std::path::Path;
 
 use orbend_report::{BondLength, Number, Warning};
 use orbend_structure::{
-    BondOverride, Formula, LengthUnit, Molecule, XyzOptions, ideal_geometry, read_xyz, write_xyz,
+    BondOverride, Formula, LengthUnit, Molecule, XyzOptions, ideal_geometry, read_xyz_bytes,
+    write_xyz,
 };
 
 use crate::arguments::{ModelArguments, UnitChoice};
@@ -35,16 +36,19 @@ pub(crate) fn read(word: &str, model: &ModelArguments) -> Result<Geometry, Failu
         from_bytes("standard input", &bytes, model)?
     } else if is_file_name(word) {
         let bytes = std::fs::read(word).map_err(|error| {
-            Failure::request(format!("cannot read {word}: {error}"))
-                .fix("name an XYZ file that exists, `-` for standard input, or a formula such as SiF2")
+            Failure::request(format!("cannot read {word}: {error}")).fix(
+                "name an XYZ file that exists, `-` for standard input, or a formula such as SiF2",
+            )
         })?;
         from_bytes(word, &bytes, model)?
     } else {
         return from_formula(word, model);
     };
     if !model.bond.is_empty() {
-        return Err(Failure::request("--bond sets lengths of an ideal geometry, but a file was given")
-            .fix("change the file, or give a formula"));
+        return Err(Failure::request(
+            "--bond sets lengths of an ideal geometry, but a file was given",
+        )
+        .fix("change the file, or give a formula"));
     }
     if let Some(charge) = model.charge {
         geometry.molecule.charge = charge;
@@ -60,17 +64,27 @@ fn is_file_name(word: &str) -> bool {
     word.contains(['.', '/', '\\']) || Path::new(word).exists()
 }
 
+/// Atoms beyond this number are refused: matrices grow with its square, time with its cube.
+const MOST_ATOMS: usize = 500;
+
 fn from_bytes(name: &str, bytes: &[u8], model: &ModelArguments) -> Result<Geometry, Failure> {
-    let text = std::str::from_utf8(bytes).map_err(|error| {
-        Failure::request(format!("{name}: byte {} is not UTF-8 text", error.valid_up_to() + 1))
-            .fix("give an XYZ file: the number of atoms, a comment line, then one atom per line")
-    })?;
     let unit = match model.unit {
         UnitChoice::Angstrom => LengthUnit::Angstrom,
         UnitChoice::Bohr => LengthUnit::Bohr,
     };
-    let frames = read_xyz(text, &XyzOptions { unit })
-        .map_err(|error| Failure::request(format!("{name}: {error}")))?;
+    if let Some(atoms) = announced_atoms(bytes).filter(|&atoms| atoms > MOST_ATOMS) {
+        return Err(Failure::request(format!(
+            "{name}:1:1: {atoms} atoms are announced, more than the {MOST_ATOMS} that can be treated"
+        ))
+        .fix("give one molecule of that size or smaller, its number of atoms on the first line"));
+    }
+    let frames = read_xyz_bytes(bytes, &XyzOptions { unit }).map_err(|error| {
+        Failure::request(format!(
+            "{name}:{}:{}: {}",
+            error.line, error.column, error.cause
+        ))
+        .fix(error.fix)
+    })?;
     let mut frames = frames.into_iter();
     let Some(frame) = frames.next() else {
         return Err(Failure::request(format!("{name}: no geometry in it"))
@@ -83,19 +97,30 @@ fn from_bytes(name: &str, bytes: &[u8], model: &ModelArguments) -> Result<Geomet
     let mut warnings: Vec<Warning> = frame
         .notes
         .into_iter()
-        .map(|text| Warning { code: "geometry-file".to_owned(), text })
+        .map(|text| Warning {
+            code: "geometry-file".to_owned(),
+            text,
+        })
         .collect();
     let more = frames.count();
     if more > 0 {
         warnings.push(Warning {
             code: "first-frame".to_owned(),
-            text: format!("{name} holds {} geometries; the first one is used", more + 1),
+            text: format!(
+                "{name} holds {} geometries; the first one is used",
+                more + 1
+            ),
         });
     }
     Ok(Geometry {
         molecule: frame.molecule,
         record: orbend_report::Geometry {
-            origin: if name == "standard input" { name } else { "file" }.to_owned(),
+            origin: if name == "standard input" {
+                name
+            } else {
+                "file"
+            }
+            .to_owned(),
             notes,
             bonds: Vec::new(),
         },
@@ -109,10 +134,10 @@ fn from_formula(word: &str, model: &ModelArguments) -> Result<Geometry, Failure>
         .iter()
         .map(|text| text.parse::<BondOverride>())
         .collect::<Result<Vec<_>, _>>()
-        .map_err(|error| Failure::request(format!("--bond: {error}")))?;
-    let formula = Formula::parse(word).map_err(|error| Failure::request(error.to_string()))?;
-    let ideal = ideal_geometry(&formula, model.charge, &overrides)
-        .map_err(|error| Failure::request(error.to_string()))?;
+        .map_err(|error| Failure::from_library(format!("--bond: {error}")))?;
+    let formula = Formula::parse(word).map_err(Failure::from_library)?;
+    let ideal =
+        ideal_geometry(&formula, model.charge, &overrides).map_err(Failure::from_library)?;
     let mut molecule = ideal.molecule;
     formula.text.clone_into(&mut molecule.title);
     molecule.unpaired = model.unpaired;
@@ -122,7 +147,9 @@ fn from_formula(word: &str, model: &ModelArguments) -> Result<Geometry, Failure>
         .map(|bond| {
             Ok(BondLength {
                 atoms: bond.atoms.map(|atom| atom as u32 + 1),
-                elements: bond.atoms.map(|atom| molecule.elements[atom].symbol().to_owned()),
+                elements: bond
+                    .atoms
+                    .map(|atom| molecule.elements[atom].symbol().to_owned()),
                 length: Number::new(bond.length.0)?,
                 source: bond.source.clone(),
             })
@@ -141,4 +168,12 @@ fn from_formula(word: &str, model: &ModelArguments) -> Result<Geometry, Failure>
         molecule,
         warnings: Vec::new(),
     })
+}
+
+/// The number alone on the first line that holds anything, if it is one.
+fn announced_atoms(bytes: &[u8]) -> Option<usize> {
+    let line = bytes
+        .split(|&byte| byte == b'\n' || byte == b'\r')
+        .find(|line| !line.trim_ascii().is_empty())?;
+    std::str::from_utf8(line.trim_ascii()).ok()?.parse().ok()
 }

@@ -10,13 +10,14 @@ mod write;
 
 use std::process::ExitCode;
 
-use clap::{CommandFactory, Parser};
+use clap::{CommandFactory, FromArgMatches};
+use orbend_hamiltonian::ParameterSet;
 
 use arguments::{Arguments, Command};
 use failure::Failure;
 
 fn main() -> ExitCode {
-    let arguments = match Arguments::try_parse() {
+    let arguments = match parse() {
         Ok(arguments) => arguments,
         Err(error) => {
             // Help and version are answers; everything else is a bad request.
@@ -33,6 +34,23 @@ fn main() -> ExitCode {
             ExitCode::from(failure.code())
         }
     }
+}
+
+fn parse() -> Result<Arguments, clap::Error> {
+    let mut command = Arguments::command();
+    // The long form names the values in use; they are read only when asked for.
+    if std::env::args_os().any(|word| word == "--version") {
+        let set = ParameterSet::default();
+        let text = format!(
+            "{}\nparameter set {}\n{}",
+            env!("CARGO_PKG_VERSION"),
+            set.name(),
+            set.fingerprint()
+        );
+        // Kept for the rest of the run, which ends with printing it.
+        command = command.long_version(&*text.leak());
+    }
+    Arguments::from_arg_matches(&command.try_get_matches()?)
 }
 
 fn run(arguments: &Arguments) -> Result<(), Failure> {

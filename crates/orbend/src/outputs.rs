@@ -20,7 +20,8 @@ impl<'a> Outputs<'a> {
                 .map(|ending| ending.to_string_lossy().to_ascii_lowercase())
                 .unwrap_or_default();
             if !endings.contains(&ending.as_str()) {
-                let known: Vec<String> = endings.iter().map(|ending| format!(".{ending}")).collect();
+                let known: Vec<String> =
+                    endings.iter().map(|ending| format!(".{ending}")).collect();
                 return Err(Failure::request(format!(
                     "--out {}: cannot tell what to write from the ending",
                     file.display()
@@ -28,10 +29,14 @@ impl<'a> Outputs<'a> {
                 .fix(format!("end the name in {}", known.join(", "))));
             }
             if checked.iter().any(|(seen, _)| *seen == file.as_path()) {
-                return Err(Failure::request(format!("--out {}: named twice", file.display()))
-                    .fix("name each file once"));
+                return Err(
+                    Failure::request(format!("--out {}: named twice", file.display()))
+                        .fix("name each file once"),
+                );
             }
-            let folder = file.parent().filter(|folder| !folder.as_os_str().is_empty());
+            let folder = file
+                .parent()
+                .filter(|folder| !folder.as_os_str().is_empty());
             if let Some(folder) = folder
                 && !folder.is_dir()
             {
@@ -48,7 +53,10 @@ impl<'a> Outputs<'a> {
     }
 
     /// Makes every file's bytes first and writes them then.
-    pub(crate) fn write(&self, make: impl Fn(&str) -> Result<Vec<u8>, Failure>) -> Result<(), Failure> {
+    pub(crate) fn write(
+        &self,
+        make: impl Fn(&str) -> Result<Vec<u8>, Failure>,
+    ) -> Result<(), Failure> {
         let made = self
             .files
             .iter()

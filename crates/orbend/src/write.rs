@@ -16,8 +16,10 @@ pub(crate) fn write_whole(path: &Path, bytes: &[u8]) -> Result<(), Failure> {
         _ => Path::new("."),
     };
     if path.is_dir() {
-        return Err(Failure::request(format!("cannot write {}: it is a folder", path.display()))
-            .fix("name a file in it"));
+        return Err(
+            Failure::request(format!("cannot write {}: it is a folder", path.display()))
+                .fix("name a file in it"),
+        );
     }
     let mut file = tempfile::NamedTempFile::new_in(folder).map_err(fail)?;
     file.write_all(bytes).map_err(fail)?;
@@ -36,9 +38,9 @@ pub(crate) fn write_whole(path: &Path, bytes: &[u8]) -> Result<(), Failure> {
 pub(crate) fn write_stdout(bytes: &[u8]) -> Result<(), Failure> {
     let mut out = std::io::stdout().lock();
     match out.write_all(bytes).and_then(|()| out.flush()) {
-        Err(error) if error.kind() != std::io::ErrorKind::BrokenPipe => {
-            Err(Failure::running(format!("cannot write to standard output: {error}")))
-        }
+        Err(error) if error.kind() != std::io::ErrorKind::BrokenPipe => Err(Failure::running(
+            format!("cannot write to standard output: {error}"),
+        )),
         _ => Ok(()),
     }
 }

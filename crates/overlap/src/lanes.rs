@@ -37,6 +37,14 @@ pub(crate) fn accumulate<const N: usize>(sum: &mut [f64; N], factor: f64, a: &[f
     }
 }
 
+/// The next `count` items of a list that is read front to back.
+#[inline(always)]
+pub(crate) fn next<'a, T>(rest: &mut &'a [T], count: u8) -> &'a [T] {
+    let (now, later) = rest.split_at(usize::from(count).min(rest.len()));
+    *rest = later;
+    now
+}
+
 /// Taylor coefficients 1/k!, k = 2..=13.
 const INVERSE_FACTORIALS: [f64; 12] = [
     1.0 / 2.0,

@@ -310,17 +310,15 @@ impl Part {
         if DERIVATIVE {
             let mut tangential = [[[0.0; N]; Y]; 3];
             tangential_gradient(&unit, degree, &harmonics, &mut tangential);
-            let size = gradient.len() / 3;
-            for (axis, block) in gradient.chunks_exact_mut(size.max(1)).take(3).enumerate() {
-                for pair in &self.pairs {
-                    pair.spread_slope::<N, T, Y, Z>(
-                        (&values, &slopes),
-                        &direction,
-                        (axis, &tangential[axis]),
-                        stride,
-                        block,
-                    );
-                }
+            let size = (gradient.len() / 3).max(1);
+            for pair in &self.pairs {
+                pair.spread_slope::<N, T, Y, Z>(
+                    (&values, &slopes),
+                    &direction,
+                    &tangential,
+                    (stride, size),
+                    gradient,
+                );
             }
         }
     }

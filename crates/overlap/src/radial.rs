@@ -7,7 +7,7 @@
 //! ordinary point. C and the contraction coefficients are folded into the t_ij.
 
 use crate::auxiliary::{SWITCH, a_integrals, b_integrals, v_integrals};
-use crate::lanes::{accumulate, exp_negative, mul};
+use crate::lanes::{accumulate, exp_negative, mul, next};
 use crate::polynomial::{Monomial, Quantum, shifted, spheroidal};
 use crate::shell::{factorial, integer_power};
 
@@ -47,13 +47,13 @@ impl Table {
         scaling: &[f64; N],
         [values, slopes]: [&mut [[f64; N]; T]; 2],
     ) {
-        let mut rows = self.rows.iter();
-        let mut terms = self.terms.iter();
+        let mut rows = self.rows.as_slice();
+        let mut terms = self.terms.as_slice();
         for &(target, count) in &self.integrals {
             let (mut sum, mut slope) = ([0.0; N], [0.0; N]);
-            for &(i, count) in rows.by_ref().take(usize::from(count)) {
+            for &(i, count) in next(&mut rows, count) {
                 let (mut inner, mut turned) = ([0.0; N], [0.0; N]);
-                for &(j, coefficient) in terms.by_ref().take(usize::from(count)) {
+                for &(j, coefficient) in next(&mut terms, count) {
                     let j = usize::from(j) & (K - 1);
                     accumulate(&mut inner, coefficient, &second[j]);
                     if DERIVATIVE {

@@ -1,7 +1,7 @@
 //! From diatomic integrals and a direction to the block of two shells.
 
 use crate::coupling::Coupling;
-use crate::lanes::{accumulate, mul};
+use crate::lanes::{accumulate, mul, next};
 
 /// Unit vectors from A to B and what follows from them.
 pub(crate) struct Direction<'a, const N: usize, const Y: usize> {
@@ -128,41 +128,40 @@ impl ShellPair {
         }
     }
 
-    /// Writes the derivative of the block with respect to one component of the displacement.
+    /// Writes the derivatives of the block with respect to the three components of the
+    /// displacement, one block of `size` numbers after the other.
     #[inline(always)]
     pub(crate) fn spread_slope<const N: usize, const T: usize, const Y: usize, const Z: usize>(
         &self,
         (values, slopes): (&[[f64; N]; T], &[[f64; N]; T]),
         direction: &Direction<'_, N, Y>,
-        (axis, tangential): (usize, &[[f64; N]; Y]),
-        stride: usize,
+        tangential: &[[[f64; N]; Y]; 3],
+        (stride, size): (usize, usize),
         out: &mut [[f64; N]],
     ) {
-        let (mut along, mut across) = (self.reduced(slopes), self.reduced(values));
-        let unit = &direction.unit[axis];
-        for (d, (along, across)) in along.iter_mut().zip(&mut across).enumerate() {
+        let (along, mut across) = (self.reduced(slopes), self.reduced(values));
+        for (d, (along, across)) in along.iter().zip(&mut across).enumerate() {
             // At R = 0 the harmonics of degree 1 grow linearly: κ/R there is the slope.
             let linear = self.l.0.abs_diff(self.l.1) == 1 && d == 0;
             for lane in 0..N {
                 let limit = if linear { along[lane] } else { 0.0 };
                 let inverse = direction.inverse[lane];
-                across[lane] = if inverse > 0.0 {
-                    across[lane] * inverse
-                } else {
-                    limit
-                };
-                along[lane] *= unit[lane];
+                let quotient = across[lane] * inverse;
+                across[lane] = if inverse > 0.0 { quotient } else { limit };
             }
         }
-        let mut components = [[0.0; N]; Z];
-        for (component, &(d, at)) in components.iter_mut().zip(&self.coupling.components) {
-            let (d, at) = (usize::from(d) & 3, usize::from(at) % Y);
-            for lane in 0..N {
-                component[lane] = along[d][lane] * direction.harmonics[at][lane]
-                    + across[d][lane] * tangential[at][lane];
+        for (axis, block) in out.chunks_exact_mut(size).take(3).enumerate() {
+            let unit = &direction.unit[axis];
+            let mut components = [[0.0; N]; Z];
+            for (component, &(d, at)) in components.iter_mut().zip(&self.coupling.components) {
+                let (d, at) = (usize::from(d) & 3, usize::from(at) % Y);
+                for lane in 0..N {
+                    component[lane] = (along[d][lane] * unit[lane]) * direction.harmonics[at][lane]
+                        + across[d][lane] * tangential[axis][at][lane];
+                }
             }
+            self.write(&components, stride, block);
         }
-        self.write(&components, stride, out);
     }
 
     /// κ_L from the diatomic integrals.
@@ -191,14 +190,14 @@ impl ShellPair {
         out: &mut [[f64; N]],
     ) {
         let mut entries = self.coupling.entries.iter();
-        let mut terms = self.coupling.terms.iter();
+        let mut terms = self.coupling.terms.as_slice();
         let (rows, columns) = (2 * self.l.0 + 1, 2 * self.l.1 + 1);
         let begin = self.row * stride + self.column;
         for i in 0..rows {
             let from = if self.coupling.symmetric { i } else { 0 };
             for (j, &count) in (from..columns).zip(&mut entries) {
                 let mut sum = [0.0; N];
-                for &(component, weight) in terms.by_ref().take(usize::from(count)) {
+                for &(component, weight) in next(&mut terms, count) {
                     accumulate(
                         &mut sum,
                         weight,

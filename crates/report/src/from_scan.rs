@@ -2,12 +2,12 @@
 //! made.
 
 use orbend_hamiltonian as hamiltonian;
-use orbend_scan::{Populations, ScanError, Sweep, SweepPlan};
+use orbend_scan::{MeetingKind, Populations, ScanError, Sweep, SweepPlan};
 use orbend_structure::CoordinateKind;
 
 use crate::document::{
     AtomCharge, AtomPosition, BasisFunction, Certificate, CertificateKind, Checked,
-    CoordinateRecord, CoordinateUnit, Geometry, LevelRecord, LevelsDocument, LevelsSchema,
+    CoordinateRecord, CoordinateUnit, CrossingKind, CrossingRecord, CrossingSearch, Geometry, LevelRecord, LevelsDocument, LevelsSchema,
     LineRecord, Method, Missing, MoleculeRecord, MotionKind, NearMiss, NotFinite, Number,
     OverlapPopulation, Passport, Point, Program, ShellPopulation, ShellValues, SpecialLabel,
     SumMinimum, SweepDocument, SweepSchema, SymmetryRecord, Units, Warning,
@@ -50,10 +50,14 @@ pub enum FromScanError {
 pub fn sweep_document(sweep: &Sweep, provenance: &Provenance) -> Result<SweepDocument, FromScanError> {
     let plan = sweep.plan();
     let mut missing = Vec::new();
-    let points = (0..sweep.points())
+    let mut points = (0..sweep.points())
         .map(|index| point_record(sweep, index, &mut missing))
         .collect::<Result<Vec<_>, _>>()?;
     let single = plan.path().axes().len() == 1;
+    if !single {
+        // A grid has no lines that a level could name.
+        points.iter_mut().flat_map(|point| &mut point.levels).for_each(|level| level.line = None);
+    }
     let lines = if single { Some(line_records(sweep)?) } else { None };
     Ok(SweepDocument {
         schema: SweepSchema,
@@ -67,7 +71,8 @@ pub fn sweep_document(sweep: &Sweep, provenance: &Provenance) -> Result<SweepDoc
         minimum: if single { sum_minimum(&points) } else { None },
         points,
         lines,
-        crossings: None,
+        crossings: if single { Some(crossing_records(sweep)?) } else { None },
+        crossing_search: if single { crossing_search(plan)? } else { None },
         warnings: warnings(plan, provenance),
         missing,
     })
@@ -328,6 +333,42 @@ fn line_records(sweep: &Sweep) -> Result<Vec<LineRecord>, FromScanError> {
             })
         })
         .collect()
+}
+
+fn crossing_records(sweep: &Sweep) -> Result<Vec<CrossingRecord>, FromScanError> {
+    let lines = sweep.plan().lines();
+    sweep
+        .crossings()?
+        .into_iter()
+        .map(|crossing| {
+            let (a, b) = crossing.lines;
+            let number = |value: Option<f64>| value.map(Number::new).transpose();
+            Ok(CrossingRecord {
+                kind: match crossing.kind {
+                    MeetingKind::Crossing => CrossingKind::Crossing,
+                    MeetingKind::Avoided => CrossingKind::Avoided,
+                    MeetingKind::Touching => CrossingKind::Touching,
+                },
+                lines: [a as u32, b as u32],
+                labels: [lines[a].name.plain.clone(), lines[b].name.plain.clone()],
+                at: Number::new(crossing.at)?,
+                energy: Some(Number::new(crossing.energy)?),
+                gap: number(crossing.gap)?,
+                exchange: number(crossing.exchange)?,
+                changes_configuration: crossing.changes_configuration,
+            })
+        })
+        .collect()
+}
+
+fn crossing_search(plan: &SweepPlan) -> Result<Option<CrossingSearch>, NotFinite> {
+    let [axis] = plan.path().axes() else { return Ok(None) };
+    let (low, high) = axis.limits();
+    Ok(Some(CrossingSearch {
+        spacing: Number::new(orbend_scan::resolution(&axis.unit, high - low))?,
+        largest_gap: Number::new(orbend_scan::AVOIDED_GAP_EV)?,
+        smallest_exchange: Number::new(orbend_scan::SMALLEST_EXCHANGE)?,
+    }))
 }
 
 /// The lowest sum among the points.

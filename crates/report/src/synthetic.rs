@@ -152,6 +152,7 @@ pub(crate) fn sweep(frame: &Frame<'_>, xs: &[f64], sketches: &[Sketch]) -> Sweep
         points,
         lines: Some(lines),
         crossings: Some(crossings),
+        crossing_search: None,
         minimum: None,
         warnings: vec![],
         missing: vec![],
@@ -217,6 +218,8 @@ fn meetings(xs: &[f64], a: &LineRecord, b: &LineRecord) -> Vec<CrossingRecord> {
     let difference =
         |k: usize| a.energies[k].unwrap().get() - b.energies[k].unwrap().get();
     let record = |kind, at, energy, gap| CrossingRecord {
+        exchange: None,
+        changes_configuration: false,
         kind,
         lines: [a.id, b.id],
         labels: [a.label.clone(), b.label.clone()],

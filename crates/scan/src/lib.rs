@@ -8,6 +8,8 @@
 //!
 //! Not for: reading or writing files, printing, or drawing.
 
+mod character;
+mod crossing;
 mod error;
 mod filling;
 mod line;
@@ -16,10 +18,15 @@ mod orbitals;
 mod plan;
 mod plane;
 mod request;
+pub mod shape;
 mod solve;
 mod special;
 mod sweep;
 
+pub use crossing::{
+    AVOIDED_GAP_EV, BATCH, Crossing, LevelModel, Meeting, MeetingKind, SMALLEST_EXCHANGE, meetings,
+    resolution,
+};
 pub use error::{FillingError, ScanError};
 pub use filling::{Configuration, DEGENERACY_EV, Electrons, Filling};
 pub use line::LineHead;

@@ -22,7 +22,6 @@ pub(crate) struct Workspace {
 struct BlockWorkspace {
     overlap: Vec<Lanes>,
     hamiltonian: Vec<Lanes>,
-    unit: Vec<Lanes>,
     eigen: LaneWorkspace,
 }
 
@@ -36,13 +35,12 @@ impl Workspace {
             .iter()
             .map(|block| {
                 let m = block.size();
+                let mut eigen = LaneWorkspace::new(m);
+                eigen.set_smallest_overlap(true);
                 BlockWorkspace {
                     overlap: vec![[0.0; LANES]; m * m],
                     hamiltonian: vec![[0.0; LANES]; m * m],
-                    unit: (0..m * m)
-                        .map(|index| [f64::from(u8::from(index % (m + 1) == 0)); LANES])
-                        .collect(),
-                    eigen: LaneWorkspace::new(m),
+                    eigen,
                 }
             })
             .collect();
@@ -99,6 +97,34 @@ impl SweepPlan {
         })
         .map_err(|failure| self.explain(&self.adapted, failure.block, failure.error, values))?;
         Ok(energies)
+    }
+
+    /// Energies by slot at up to eight values of a path with one parameter,
+    /// `at.len() × slots`.
+    pub(crate) fn batch_energies(
+        &self,
+        at: &[f64],
+        workspace: &mut Workspace,
+        out: &mut [f64],
+    ) -> Result<(), ScanError> {
+        let slots = self.slots();
+        let used = at.len().min(LANES);
+        for lane in 0..LANES {
+            if lane < used {
+                self.path.positions(&at[lane..=lane], &mut workspace.positions)?;
+            }
+            workspace.load(lane);
+        }
+        let mut smallest = [0.0; LANES];
+        self.solve_loaded(workspace, used, &mut smallest, |slot, lanes| {
+            for lane in 0..used {
+                out[lane * slots + slot] = lanes[lane];
+            }
+        })
+        .map_err(|failure| {
+            let values = [at[failure.lane.min(used - 1)]];
+            self.explain(&self.adapted, failure.block, failure.error, &values)
+        })
     }
 
     /// Solves the points `first .. first + rows.smallest.len()`.
@@ -197,14 +223,8 @@ impl SweepPlan {
                 store(slot, values);
                 slot += 1;
             }
-            // Eigenvalues of S itself: the same problem with the unit matrix in its place.
-            room.eigen
-                .solve(&room.overlap, &room.unit, false)
-                .map_err(|error| LaneFailure { lane: 0, error, block: index })?;
-            if let Some(lowest) = room.eigen.values().first() {
-                for (least, value) in smallest.iter_mut().zip(lowest) {
-                    *least = least.min(*value);
-                }
+            for (least, value) in smallest.iter_mut().zip(room.eigen.smallest_overlap_eigenvalues()) {
+                *least = least.min(*value);
             }
         }
         Ok(())

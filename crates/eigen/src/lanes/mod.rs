@@ -3,7 +3,8 @@
 pub(crate) mod assemble;
 pub(crate) mod chain;
 mod reduce;
+mod smallest;
 mod tridiagonal;
 mod workspace;
 
-pub use workspace::{LaneStatus, LaneWorkspace, SmallestOverlap};
+pub use workspace::{LaneStatus, LaneWorkspace};

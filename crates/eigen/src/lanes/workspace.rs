@@ -5,10 +5,12 @@ use pulp::Simd;
 use super::assemble::{load, scales, signs, sort};
 use super::chain::{Rotations, buffered_sweeps, implicit_ql};
 use super::reduce::{back_substitute, factor_and_reduce};
+use super::smallest::smallest_eigenvalues;
 use super::tridiagonal::{form_q, tridiagonalise};
 use crate::error::EigenError;
+use crate::single::Workspace;
 use crate::wide::{OctWork, Wide, run};
-use crate::{LANES, Lanes, SINGULAR_RATIO};
+use crate::{LANES, Lanes, MOST_IN_LANES, SINGULAR_RATIO};
 
 /// How one lane ended.
 #[derive(Clone, Debug, PartialEq)]
@@ -21,17 +23,9 @@ pub enum LaneStatus {
     Failed(EigenError),
 }
 
-/// What a lane solve finds out about the smallest eigenvalue of S.
-#[derive(Copy, Clone, Debug, PartialEq, Eq, Default)]
-pub enum SmallestOverlap {
-    /// Nothing.
-    #[default]
-    Skip,
-}
-
 /// Room for eight problems of one size.
 ///
-/// Nothing is allocated after [`new`](Self::new) unless a lane fails.
+/// Nothing is allocated after [`new`](Self::new) unless a lane has to be solved alone.
 #[derive(Clone, Debug)]
 pub struct LaneWorkspace {
     n: usize,
@@ -48,34 +42,61 @@ pub struct LaneWorkspace {
     order: Vec<[u32; LANES]>,
     values: Vec<Lanes>,
     vectors: Vec<Lanes>,
+    want_smallest: bool,
+    smallest: Lanes,
+    alone: Option<Box<Alone>>,
+}
+
+/// Room for one lane on its own.
+#[derive(Clone, Debug)]
+struct Alone {
+    room: Workspace,
+    h: Vec<f64>,
+    s: Vec<f64>,
 }
 
 impl LaneWorkspace {
     /// Room for problems of `n` functions.
     pub fn new(n: usize) -> Self {
-        let row = || vec![[0.0; LANES]; n];
-        let square = || vec![[0.0; LANES]; n * n];
+        let inside = if n > MOST_IN_LANES { 0 } else { n };
+        let row = || vec![[0.0; LANES]; inside];
+        let square = || vec![[0.0; LANES]; inside * inside];
         LaneWorkspace {
             n,
             arch: pulp::Arch::new(),
             h: square(),
             s: square(),
             z: square(),
-            rotations: vec![[0.0; LANES]; 2 * n * buffered_sweeps(n)],
+            rotations: vec![[0.0; LANES]; 2 * inside * buffered_sweeps(n)],
             inverse_diagonal: row(),
             d: row(),
             e: row(),
             factors: row(),
-            scratch: vec![[0.0; LANES]; 2 * n],
-            order: vec![[0; LANES]; n],
-            values: row(),
-            vectors: square(),
+            scratch: vec![[0.0; LANES]; 2 * inside],
+            order: vec![[0; LANES]; inside],
+            values: vec![[0.0; LANES]; n],
+            vectors: vec![[0.0; LANES]; n * n],
+            want_smallest: false,
+            smallest: [0.0; LANES],
+            alone: None,
         }
     }
 
     /// Number of functions.
     pub fn size(&self) -> usize {
         self.n
+    }
+
+    /// Whether to find the smallest eigenvalue of S in each lane (off by default: it costs about a
+    /// fifth of a solve). Without it a lane's S is refused by the pivots of its Cholesky factor
+    /// alone, which may let one pass that is below [`SINGULAR_RATIO`] by a small factor.
+    pub fn set_smallest_overlap(&mut self, wanted: bool) {
+        self.want_smallest = wanted;
+    }
+
+    /// Smallest eigenvalues of S in the last solve, exact to rounding; 0 when they were not wanted.
+    pub fn smallest_overlap_eigenvalues(&self) -> &Lanes {
+        &self.smallest
     }
 
     /// Solves the eight problems in `h` and `s` (n × n octets each, row-major; only elements with
@@ -102,20 +123,24 @@ impl LaneWorkspace {
         if self.n == 0 {
             return Ok([const { LaneStatus::Solved }; LANES]);
         }
-        let arch = self.arch;
-        let good = run(
-            arch,
-            Solve {
-                room: self,
-                h,
-                s,
-                vectors,
-            },
-        );
+        let good = if self.n > MOST_IN_LANES {
+            [false; LANES]
+        } else {
+            let arch = self.arch;
+            run(
+                arch,
+                Solve {
+                    room: self,
+                    h,
+                    s,
+                    vectors,
+                },
+            )
+        };
         let mut status = [const { LaneStatus::Solved }; LANES];
         for lane in 0..LANES {
             if !good[lane] {
-                status[lane] = self.solve_alone(h, s, vectors, lane);
+                status[lane] = self.solve_alone(h, s, lane);
             }
         }
         Ok(status)
@@ -131,25 +156,40 @@ impl LaneWorkspace {
         &self.vectors
     }
 
-    #[cold]
-    fn solve_alone(&mut self, h: &[Lanes], s: &[Lanes], vectors: bool, lane: usize) -> LaneStatus {
-        let pick = |m: &[Lanes]| m.iter().map(|x| x[lane]).collect::<Vec<f64>>();
-        match crate::solve(self.n, &pick(h), &pick(s)) {
-            Ok(solution) => {
-                for (to, from) in self.values.iter_mut().zip(&solution.values) {
+    fn solve_alone(&mut self, h: &[Lanes], s: &[Lanes], lane: usize) -> LaneStatus {
+        let n = self.n;
+        let alone = self.alone.get_or_insert_with(|| {
+            Box::new(Alone {
+                room: Workspace::new(n),
+                h: vec![0.0; n * n],
+                s: vec![0.0; n * n],
+            })
+        });
+        for (to, from) in [(&mut alone.h, h), (&mut alone.s, s)] {
+            for (to, from) in to.iter_mut().zip(from) {
+                *to = from[lane];
+            }
+        }
+        // A lane that was given up must not pass unseen: its S is looked at in any case.
+        alone
+            .room
+            .set_smallest_overlap(self.want_smallest || n <= MOST_IN_LANES);
+        match alone.room.solve(&alone.h, &alone.s) {
+            Ok(()) => {
+                for (to, from) in self.values.iter_mut().zip(alone.room.values()) {
                     to[lane] = *from;
                 }
-                if vectors {
-                    for (to, from) in self.vectors.iter_mut().zip(&solution.vectors) {
-                        to[lane] = *from;
-                    }
+                for (to, from) in self.vectors.iter_mut().zip(alone.room.vectors()) {
+                    to[lane] = *from;
                 }
+                self.smallest[lane] = alone.room.smallest_overlap_eigenvalue();
                 LaneStatus::SolvedAlone
             }
             Err(error) => {
                 for to in self.values.iter_mut().chain(&mut self.vectors) {
                     to[lane] = 0.0;
                 }
+                self.smallest[lane] = 0.0;
                 LaneStatus::Failed(error)
             }
         }
@@ -185,8 +225,24 @@ impl OctWork for Solve<'_> {
         let use_lane = flag(good);
         load(w, n, h_in, h, &h_scale.factor, use_lane, 0.0);
         load(w, n, s_in, s, &s_scale.factor, use_lane, 1.0);
-        let inverse_diagonal = w.view_mut(&mut room.inverse_diagonal);
         let scratch = w.view_mut(&mut room.scratch);
+        let factors = w.view_mut(&mut room.factors);
+        let z = w.view_mut(&mut room.z);
+        room.smallest = [0.0; LANES];
+        if room.want_smallest {
+            for (i, (to, from)) in z.chunks_exact_mut(n).zip(s.chunks_exact(n)).enumerate() {
+                to[..i + 1].copy_from_slice(&from[..i + 1]);
+            }
+            let (d, e) = (w.view_mut(&mut room.d), w.view_mut(&mut room.e));
+            tridiagonalise(w, n, z, d, e, factors, scratch);
+            let (smallest, size) = smallest_eigenvalues(w, d, e);
+            let (smallest, size) = (w.array(smallest), w.array(size));
+            for lane in 0..LANES {
+                room.smallest[lane] = smallest[lane] / s_scale.factor[lane];
+                good[lane] &= smallest[lane] > SINGULAR_RATIO * size[lane];
+            }
+        }
+        let inverse_diagonal = w.view_mut(&mut room.inverse_diagonal);
         let fine = factor_and_reduce(w, n, h, s, inverse_diagonal, scratch, SINGULAR_RATIO);
         let fine_lanes = w.array(w.select(fine, one, w.splat(0.0)));
         if fine_lanes.iter().any(|x| *x < 0.5) {
@@ -199,7 +255,6 @@ impl OctWork for Solve<'_> {
                 good[lane] &= fine_lanes[lane] > 0.5;
             }
         }
-        let factors = w.view_mut(&mut room.factors);
         tridiagonalise(
             w,
             n,
@@ -209,7 +264,6 @@ impl OctWork for Solve<'_> {
             factors,
             scratch,
         );
-        let z = w.view_mut(&mut room.z);
         let converged = if self.vectors {
             form_q(w, n, h, factors, z, scratch);
             let rotations = Rotations::new(n, w.view_mut(&mut room.rotations));

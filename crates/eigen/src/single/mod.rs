@@ -3,7 +3,7 @@
 mod chain;
 mod check;
 mod dense;
-mod smallest;
+pub(crate) mod smallest;
 mod tridiagonal;
 mod workspace;
 

@@ -1,5 +1,5 @@
 //! Problems with known properties, and one check for every solution.
-#![allow(dead_code)] // each test file uses a part
+#![allow(dead_code, clippy::unwrap_used, clippy::needless_range_loop)] // shared by the test files, each uses a part
 
 /// A small generator of numbers in −1 … 1 (linear congruence of Knuth, MMIX).
 pub(crate) struct Numbers(u64);

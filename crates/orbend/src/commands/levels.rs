@@ -1,7 +1,11 @@
 //! `orbend levels`: one geometry.
 
-use orbend_report::{FigureOptions, levels_csv, levels_document, levels_figure, levels_text, to_json};
+use orbend_report::{
+    FigureOptions, levels_csv, levels_document, levels_figure, levels_text, to_json,
+};
 
+use super::geometry_text::geometry_text;
+use super::sweep::in_pool;
 use super::{csv, drawing, figure_numbering, provenance, resolve, text_options};
 use crate::arguments::LevelsArguments;
 use crate::failure::Failure;
@@ -11,10 +15,16 @@ use crate::write::write_stdout;
 pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     let output = &arguments.output;
     let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "xyz"])?;
-    let resolved = resolve(&arguments.geometry, Vec::new(), &arguments.model, output.numbering)?;
-    let sweep = resolved.request.run().map_err(|error| Failure::scan(&error))?;
+    let resolved = resolve(
+        &arguments.geometry,
+        Vec::new(),
+        &arguments.model,
+        output.numbering,
+    )?;
+    let sweep = in_pool(arguments.jobs, || resolved.request.run())?
+        .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
     let document = levels_document(&sweep, &provenance(&resolved.geometry, output.numbering))
-        .map_err(|error| Failure::running(error.to_string()))?;
+        .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
     outputs.write(|ending| {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
@@ -32,6 +42,8 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     if output.json {
         write_stdout(to_json(&document).map_err(Failure::document)?.as_bytes())
     } else {
-        write_stdout(levels_text(&document, &text_options(output.numbering)).as_bytes())
+        let options = text_options(output.numbering);
+        let start = geometry_text(&resolved.geometry, options.width);
+        write_stdout((start + &levels_text(&document, &options)).as_bytes())
     }
 }

@@ -1,9 +1,11 @@
 //! One file per command; what several need stands here.
 
+mod geometry_text;
 pub(crate) mod levels;
 pub(crate) mod params;
 pub(crate) mod sweep;
 
+use std::io::IsTerminal;
 use std::path::Path;
 
 use orbend_hamiltonian::{Coupling, Method, ParameterError, ParameterSet};
@@ -32,12 +34,17 @@ pub(crate) fn resolve(
 ) -> Result<Resolved, Failure> {
     let geometry = geometry::read(geometry, model)?;
     if !(1e-8..=0.5).contains(&model.tolerance) {
-        return Err(Failure::request(format!("--tolerance {}: not a usable distance", model.tolerance))
-            .fix("give a distance from 1e-8 to 0.5 Å; 0.001 is the default"));
+        return Err(Failure::request(format!(
+            "--tolerance {}: not a usable distance",
+            model.tolerance
+        ))
+        .fix("give a distance from 1e-8 to 0.5 Å; 0.001 is the default"));
     }
     if !(model.k.is_finite() && (0.5..=4.0).contains(&model.k)) {
-        return Err(Failure::request(format!("--k {}: not a usable constant", model.k))
-            .fix("give a number from 0.5 to 4; 1.75 is customary"));
+        return Err(
+            Failure::request(format!("--k {}: not a usable constant", model.k))
+                .fix("give a number from 0.5 to 4; 1.75 is customary"),
+        );
     }
     let method = Method {
         coupling: match model.coupling {
@@ -69,7 +76,10 @@ pub(crate) fn resolve(
 }
 
 /// A built-in set by name, or the default set overlaid by a file.
-pub(crate) fn parameter_set(name: Option<&str>, variants: &[String]) -> Result<ParameterSet, Failure> {
+pub(crate) fn parameter_set(
+    name: Option<&str>,
+    variants: &[String],
+) -> Result<ParameterSet, Failure> {
     let set = match name {
         None => ParameterSet::default(),
         Some(name) if Path::new(name).extension().is_some() || name.contains(['/', '\\']) => {
@@ -77,11 +87,14 @@ pub(crate) fn parameter_set(name: Option<&str>, variants: &[String]) -> Result<P
                 Failure::request(format!("cannot read the parameter file {name}: {cause}"))
                     .fix("name a TOML file that exists, or a built-in set")
             })?;
-            ParameterSet::default().overlay(&text, name).map_err(|error| parameter_failure(&error))?
+            ParameterSet::default()
+                .overlay(&text, name)
+                .map_err(|error| parameter_failure(&error))?
         }
         Some(name) => ParameterSet::builtin(name).map_err(|error| parameter_failure(&error))?,
     };
-    set.choose(variants).map_err(|error| parameter_failure(&error))
+    set.choose(variants)
+        .map_err(|error| parameter_failure(&error))
 }
 
 fn parameter_failure(error: &ParameterError) -> Failure {
@@ -105,7 +118,11 @@ pub(crate) fn figure_options(
     arguments: &FigureArguments,
     numbering: NumberingChoice,
 ) -> Result<FigureOptions, Failure> {
-    let energies = arguments.energies.as_deref().map(energy_window).transpose()?;
+    let energies = arguments
+        .energies
+        .as_deref()
+        .map(energy_window)
+        .transpose()?;
     Ok(FigureOptions {
         width: match arguments.width {
             WidthChoice::Column => FigureWidth::Column,
@@ -143,7 +160,16 @@ fn energy_window(text: &str) -> Result<(f64, f64), Failure> {
 
 /// How text is laid out on this standard output.
 pub(crate) fn text_options(numbering: NumberingChoice) -> TextOptions {
-    TextOptions { numbering: figure_numbering(numbering), ..TextOptions::default() }
+    let width = if std::io::stdout().is_terminal() {
+        terminal_size::terminal_size().map_or(80, |(width, _)| usize::from(width.0).min(120))
+    } else {
+        80
+    };
+    TextOptions {
+        width,
+        numbering: figure_numbering(numbering),
+        ..TextOptions::default()
+    }
 }
 
 /// The bytes of a table.

@@ -25,8 +25,8 @@ pub(crate) fn run(arguments: &ParamsArguments) -> Result<(), Failure> {
         })
         .collect::<Result<Vec<_>, _>>()?;
     let set = parameter_set(arguments.params.as_deref(), &arguments.variant)?;
-    let document = params_document(&set, &elements)
-        .map_err(|error| Failure::request(error.to_string()))?;
+    let document =
+        params_document(&set, &elements).map_err(|error| Failure::request(error.to_string()))?;
     outputs.write(|_| Ok(to_json(&document).map_err(Failure::document)?.into_bytes()))?;
     if arguments.json {
         write_stdout(to_json(&document).map_err(Failure::document)?.as_bytes())

@@ -1,12 +1,13 @@
 //! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
 
 use orbend_report::{
-    FigureOptions, end_pictures, sweep_csv, sweep_document, sweep_document_with_orbitals, sweep_figure, sweep_page,
-    sweep_text, to_json,
+    FigureOptions, end_pictures, sweep_csv, sweep_document, sweep_document_with_orbitals,
+    sweep_figure, sweep_page, sweep_text, to_json,
 };
 use orbend_scan::Sweep;
 use orbend_structure::{Coordinate, CoordinateKind};
 
+use super::geometry_text::geometry_text;
 use super::{csv, drawing, figure_options, provenance, resolve, text_options};
 use crate::arguments::{CoordinateArguments, NumberingChoice, SweepArguments};
 use crate::failure::Failure;
@@ -19,11 +20,20 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "html", "xyz"])?;
     let figure = figure_options(&arguments.figure, output.numbering)?;
     let coordinates = coordinates(&arguments.coordinates)?;
-    let resolved = resolve(&arguments.geometry, coordinates, &arguments.model, output.numbering)?;
-    let plan = resolved.request.plan().map_err(|error| Failure::scan(&error))?;
-    let sweep = in_pool(arguments.jobs, || Sweep::run(plan))?.map_err(|error| Failure::scan(&error))?;
+    let resolved = resolve(
+        &arguments.geometry,
+        coordinates,
+        &arguments.model,
+        output.numbering,
+    )?;
+    let plan = resolved
+        .request
+        .plan()
+        .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
+    let sweep = in_pool(arguments.jobs, || Sweep::run(plan))?
+        .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
     let document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
-        .map_err(|error| Failure::running(error.to_string()))?;
+        .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
     let mut figure = figure;
     if arguments.figure.orbitals && document.lines.is_some() {
         figure.pictures = Some(end_pictures(&sweep).map_err(|error| Failure::scan(&error))?);
@@ -40,7 +50,9 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     if output.json {
         write_stdout(to_json(&document).map_err(Failure::document)?.as_bytes())
     } else {
-        write_stdout(sweep_text(&document, &text_options(output.numbering)).as_bytes())
+        let options = text_options(output.numbering);
+        let start = geometry_text(&resolved.geometry, options.width);
+        write_stdout((start + &sweep_text(&document, &options)).as_bytes())
     }
 }
 
@@ -53,7 +65,8 @@ fn page(
 ) -> Result<Vec<u8>, Failure> {
     let document = sweep_document_with_orbitals(sweep, &provenance(geometry, numbering))
         .map_err(|error| Failure::running(error.to_string()))?;
-    let page = sweep_page(&document, figure).map_err(|error| Failure::request(error.to_string()))?;
+    let page =
+        sweep_page(&document, figure).map_err(|error| Failure::request(error.to_string()))?;
     Ok(page.into_bytes())
 }
 
@@ -74,20 +87,29 @@ fn coordinates(arguments: &CoordinateArguments) -> Result<Vec<Coordinate>, Failu
         }
     }
     match coordinates.len() {
-        0 => Err(Failure::request("no coordinate: a sweep needs something that moves")
-            .fix("add for example --bend 2-1-3=90..180:2, --stretch, --twist or --pyramid")),
+        0 => Err(
+            Failure::request("no coordinate: a sweep needs something that moves")
+                .fix("add for example --bend 2-1-3=90..180:2, --stretch, --twist or --pyramid"),
+        ),
         1 | 2 => Ok(coordinates),
-        more => Err(Failure::request(format!("{more} coordinates: a grid has two at most"))
-            .fix("leave some out, or run one sweep for each value")),
+        more => Err(
+            Failure::request(format!("{more} coordinates: a grid has two at most"))
+                .fix("leave some out, or run one sweep for each value"),
+        ),
     }
 }
 
 /// Runs on a pool of its own when a number of threads is asked for.
-fn in_pool<T: Send>(jobs: Option<usize>, work: impl FnOnce() -> T + Send) -> Result<T, Failure> {
+pub(crate) fn in_pool<T: Send>(
+    jobs: Option<usize>,
+    work: impl FnOnce() -> T + Send,
+) -> Result<T, Failure> {
     let Some(jobs) = jobs else { return Ok(work()) };
     if !(1..=1024).contains(&jobs) {
-        return Err(Failure::request(format!("--jobs {jobs}: not a usable number of threads"))
-            .fix("give a number from 1 to 1024"));
+        return Err(
+            Failure::request(format!("--jobs {jobs}: not a usable number of threads"))
+                .fix("give a number from 1 to 1024"),
+        );
     }
     let pool = rayon::ThreadPoolBuilder::new()
         .num_threads(jobs)

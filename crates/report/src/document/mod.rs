@@ -27,7 +27,7 @@ pub use schema::{LevelsSchema, ParamsSchema, ShapeSchema, SweepSchema, schemas};
 pub use shape::{Argument, Case, Curve, Ensemble, Flip, ShapeDocument};
 pub use sweep::{
     Certificate, CertificateInterval, CertificateKind, CoordinateRecord, CoordinateUnit,
-    CrossingKind, CrossingRecord, LineRecord, MotionKind, Passport, SpecialLabel, SumMinimum,
+    CrossingKind, CrossingRecord, CrossingSearch, LineRecord, MotionKind, Passport, SpecialLabel, SumMinimum,
     SweepDocument,
 };
 pub use write::to_json;

@@ -36,6 +36,9 @@ pub struct SweepDocument {
     /// Crossings and avoided crossings; left out on a grid.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub crossings: Option<Vec<CrossingRecord>>,
+    /// How crossings were looked for; left out where they were not.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub crossing_search: Option<CrossingSearch>,
     /// The lowest sum, found by the calculation itself; left out where it was not asked for.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub minimum: Option<SumMinimum>,
@@ -227,6 +230,25 @@ pub struct CrossingRecord {
     /// Smallest distance in eV of two lines that avoid each other.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub gap: Option<Number>,
+    /// Share of character that lines of an avoided crossing exchange, 0 to 1.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub exchange: Option<Number>,
+    /// Whether the ground configuration is another one behind it: the highest
+    /// occupied and the lowest empty line cross.
+    #[serde(default)]
+    pub changes_configuration: bool,
+}
+
+/// How crossings were looked for.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+pub struct CrossingSearch {
+    /// Spacing in the coordinate's unit: crossings of one pair of lines that
+    /// are farther apart are all found, whatever the step of the sweep.
+    pub spacing: Number,
+    /// Avoided crossings are listed up to this gap, in eV.
+    pub largest_gap: Number,
+    /// Avoided crossings are listed from this exchange of character on.
+    pub smallest_exchange: Number,
 }
 
 /// Kind of a meeting.

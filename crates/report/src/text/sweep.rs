@@ -118,11 +118,20 @@ fn crossings(out: &mut String, document: &SweepDocument, all: &[Bundle], options
         let text = match crossing.kind {
             CrossingKind::Crossing => {
                 let energy = crossing.energy.map(|e| format!(" ({} eV)", ascii_number(e.get(), 2)));
-                format!("{a} and {b} cross at {at}{}", energy.unwrap_or_default())
+                let marked = if crossing.changes_configuration {
+                    ": the ground configuration changes"
+                } else {
+                    ""
+                };
+                format!("{a} and {b} cross at {at}{}{marked}", energy.unwrap_or_default())
             }
             CrossingKind::Avoided => {
                 let gap = crossing.gap.map(|gap| format!(" (gap {} eV)", ascii_number(gap.get(), 2)));
-                format!("{a} and {b} avoid each other at {at}{}", gap.unwrap_or_default())
+                let exchanged = crossing.exchange.map(|share| {
+                    format!(", {} % of their character exchanged", ascii_number(100.0 * share.get(), 0))
+                });
+                let (gap, exchanged) = (gap.unwrap_or_default(), exchanged.unwrap_or_default());
+                format!("{a} and {b} avoid each other at {at}{gap}{exchanged}")
             }
             CrossingKind::Touching => format!("{a} and {b} become one set at {at}"),
         };

@@ -188,6 +188,19 @@ impl<'a> Lengths<'a> {
         self.overrides.get(index)
     }
 
+    /// The bonds asked for so far, each pair of elements once: `C–O, C–H`.
+    pub(crate) fn pairs(&self, elements: &[Element]) -> String {
+        let mut names: Vec<String> = Vec::new();
+        for bond in &self.used {
+            let [first, second] = bond.atoms.map(|atom| elements[atom]);
+            let name = format!("{first}-{second}");
+            if !names.contains(&name) {
+                names.push(name);
+            }
+        }
+        names.join(", ")
+    }
+
     pub(crate) fn into_used(mut self) -> Vec<BondLengthUsed> {
         self.used.sort_by_key(|bond| bond.atoms);
         self.used

@@ -83,7 +83,7 @@ pub fn ideal_geometry(
                 "the length given for {}–{} is not used: there is no such bond",
                 unused.first, unused.second
             ),
-            "name a bond of the molecule",
+            format!("the bonds of the molecule are {}", lengths.pairs(&built.elements)),
         ));
     }
     let bonds = lengths.into_used();
