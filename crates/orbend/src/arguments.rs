@@ -216,7 +216,7 @@ pub(crate) struct OutputArguments {
     /// The result document on standard output, alone
     #[arg(long)]
     pub(crate) json: bool,
-    /// Write a file; the ending chooses .json, .csv, .svg, .html (a page) or .xyz (may be repeated)
+    /// Write a file; the ending chooses .json, .csv, .svg, .png, .html (a page) or .xyz (may be repeated)
     #[arg(long, value_name = "FILE")]
     pub(crate) out: Vec<PathBuf>,
     /// Which numbering labels show first; the document always has both
@@ -236,6 +236,9 @@ pub(crate) struct FigureArguments {
     /// Energy window of the figure, eV: -20..0
     #[arg(long, value_name = "FROM..TO", allow_hyphen_values = true)]
     pub(crate) energies: Option<String>,
+    /// Contour pictures of the orbitals beside the labels (ψ = ±0.05 bohr^(-3/2); filled is positive)
+    #[arg(long)]
+    pub(crate) orbitals: bool,
     /// Only these lines in the figure, by label: 4a1,2b2
     #[arg(long, value_name = "LABELS", value_delimiter = ',')]
     pub(crate) lines: Vec<String>,

@@ -6,6 +6,7 @@
 //!   ([`to_json`], [`read_document`]) with a generated JSON Schema ([`schemas`]).
 //! - [`CsvWriter`]: one row per point and level (RFC 4180).
 //! - [`sweep_figure`], [`levels_figure`]: SVG with real text.
+//! - [`figure_png`]: the same as an image.
 //! - [`sweep_page`]: one HTML file with the figure, a slider and the orbitals.
 //! - [`levels_text`], [`sweep_text`], [`params_text`]: text for a person at a terminal.
 //!
@@ -19,9 +20,11 @@ mod from_parameters;
 mod from_scan;
 mod from_scan_lines;
 mod from_scan_orbitals;
+mod from_scan_pictures;
 mod from_shape;
 mod lettering;
 mod page;
+mod raster;
 #[cfg(test)]
 mod synthetic;
 mod text;
@@ -29,12 +32,14 @@ mod text;
 pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
 pub use figure::{
-    ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering, Theme,
-    levels_figure, shape_figure, sweep_figure,
+    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering,
+    OrbitalPicture, Theme, levels_figure, shape_figure, sweep_figure,
 };
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
 pub use from_scan_orbitals::sweep_document_with_orbitals;
+pub use from_scan_pictures::end_pictures;
 pub use from_shape::shape_document;
 pub use page::{PageError, sweep_page};
+pub use raster::{ImageError, figure_png};
 pub use text::{TextOptions, levels_text, params_text, passport_text, shape_text, sweep_text};

@@ -6,7 +6,7 @@ use orbend_report::{
 
 use super::geometry_text::geometry_text;
 use super::sweep::in_pool;
-use super::{csv, figure_numbering, provenance, resolve, text_options};
+use super::{csv, drawing, figure_numbering, provenance, resolve, text_options};
 use crate::arguments::LevelsArguments;
 use crate::failure::Failure;
 use crate::outputs::Outputs;
@@ -14,7 +14,7 @@ use crate::write::write_stdout;
 
 pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "xyz"])?;
+    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "xyz"])?;
     let resolved = resolve(
         &arguments.geometry,
         Vec::new(),
@@ -30,15 +30,13 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
             "csv" => csv(|out| levels_csv(&document, out))?,
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
-            _ => levels_figure(
-                &document,
-                &FigureOptions {
+            _ => {
+                let options = FigureOptions {
                     numbering: figure_numbering(output.numbering),
                     ..FigureOptions::default()
-                },
-            )
-            .map_err(|error| Failure::request(error.to_string()))?
-            .into_bytes(),
+                };
+                drawing(levels_figure(&document, &options), ending)?
+            }
         })
     })?;
     if output.json {

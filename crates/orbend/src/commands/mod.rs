@@ -11,7 +11,9 @@ use std::io::IsTerminal;
 use std::path::Path;
 
 use orbend_hamiltonian::{Coupling, Method, ParameterError, ParameterSet};
-use orbend_report::{FigureOptions, FigureWidth, Numbering, Provenance, TextOptions, Theme};
+use orbend_report::{
+    FigureOptions, FigureWidth, Numbering, Provenance, TextOptions, Theme, figure_png,
+};
 use orbend_scan::{Configuration, Request, Route};
 use orbend_structure::{Angstrom, Coordinate};
 
@@ -182,4 +184,19 @@ pub(crate) fn csv(
     let mut bytes = Vec::new();
     table(&mut bytes).map_err(Failure::document)?;
     Ok(bytes)
+}
+
+/// Dots per inch of figures as images: what journals ask for.
+const DOTS_PER_INCH: f64 = 600.0;
+
+/// The bytes of a figure, as an image where the ending asks for one.
+pub(crate) fn drawing(
+    figure: Result<String, orbend_report::FigureError>,
+    ending: &str,
+) -> Result<Vec<u8>, Failure> {
+    let figure = figure.map_err(|error| Failure::request(error.to_string()))?;
+    match ending {
+        "png" => figure_png(&figure, DOTS_PER_INCH).map_err(Failure::document),
+        _ => Ok(figure.into_bytes()),
+    }
 }

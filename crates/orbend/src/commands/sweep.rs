@@ -1,14 +1,14 @@
 //! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
 
 use orbend_report::{
-    FigureOptions, passport_text, sweep_csv, sweep_document, sweep_document_with_orbitals,
-    sweep_figure, sweep_page, sweep_text, to_json,
+    FigureOptions, end_pictures, passport_text, sweep_csv, sweep_document,
+    sweep_document_with_orbitals, sweep_figure, sweep_page, sweep_text, to_json,
 };
 use orbend_scan::Sweep;
 
 use super::geometry_text::geometry_text;
 use super::route::{movement, route};
-use super::{csv, figure_options, provenance, resolve, text_options};
+use super::{csv, drawing, figure_options, provenance, resolve, text_options};
 use crate::arguments::{NumberingChoice, SweepArguments};
 use crate::failure::Failure;
 use crate::geometry::Geometry;
@@ -17,7 +17,7 @@ use crate::write::write_stdout;
 
 pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "html", "xyz"])?;
+    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "html", "xyz"])?;
     let figure = figure_options(&arguments.figure, output.numbering)?;
     let movement = movement(&arguments.coordinates)?;
     let mut resolved = resolve(
@@ -40,15 +40,17 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
     let document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
         .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
+    let mut figure = figure;
+    if arguments.figure.orbitals && document.lines.is_some() {
+        figure.pictures = Some(end_pictures(&sweep).map_err(|error| Failure::scan(&error))?);
+    }
     outputs.write(|ending| {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
             "csv" => csv(|out| sweep_csv(&document, out))?,
             "html" => page(&sweep, &resolved.geometry, output.numbering, &figure)?,
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
-            _ => sweep_figure(&document, &figure)
-                .map_err(|error| Failure::request(error.to_string()))?
-                .into_bytes(),
+            _ => drawing(sweep_figure(&document, &figure), ending)?,
         })
     })?;
     if output.json {

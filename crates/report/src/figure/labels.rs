@@ -5,6 +5,7 @@ use crate::draw::spread::spread;
 use crate::lettering::Lettering;
 
 use super::canvas::{ASCENT, Anchor, Canvas, DESCENT};
+use super::pictures;
 use super::sheet::Sheet;
 
 /// Which end of the lines.
@@ -114,10 +115,11 @@ pub(crate) fn draw(canvas: &mut Canvas, sheet: &Sheet<'_>, labels: &[EndLabel], 
         .map(|label| sheet.scale.y(label.energy))
         .collect();
     // Centres of the text, not base lines, stand at the energies.
-    let half = 0.5 * (ASCENT + DESCENT) * size;
+    let edge_length = sheet.picture_edge();
+    let half = 0.5 * ((ASCENT + DESCENT) * size).max(edge_length);
     let places = spread(
         &targets,
-        sheet.measure.label_distance(),
+        sheet.label_distance(),
         sheet.top + half,
         sheet.bottom - half,
     );
@@ -165,6 +167,28 @@ pub(crate) fn draw(canvas: &mut Canvas, sheet: &Sheet<'_>, labels: &[EndLabel], 
             colour,
             &label.lettering,
         );
+        let pictures = sheet.options.pictures.as_ref().map(|pictures| match side {
+            Side::Left => &pictures.start,
+            Side::Right => &pictures.end,
+        });
+        let id = sheet.all[label.line].ids.first();
+        let picture = pictures.and_then(|all| all.iter().find(|picture| Some(&picture.line) == id));
+        if let Some(picture) = picture {
+            let near = leader + widest(labels, size) + 0.4 * size;
+            let x = if side == Side::Left {
+                edge - near - edge_length
+            } else {
+                edge + near
+            };
+            pictures::draw(
+                canvas,
+                sheet,
+                picture,
+                (x, place - 0.5 * edge_length),
+                edge_length,
+                colour,
+            );
+        }
     }
     canvas.xml.close();
 }

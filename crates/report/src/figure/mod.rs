@@ -9,6 +9,7 @@ mod measure;
 mod metadata;
 mod options;
 mod panel;
+mod pictures;
 pub(crate) mod scale;
 mod series;
 mod sheet;
@@ -23,5 +24,6 @@ pub use ladder::levels_figure;
 pub use options::{
     ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering, Theme,
 };
+pub use pictures::{EndPictures, OrbitalPicture};
 pub use series::shape_figure;
 pub use sweep::sweep_figure;

@@ -4,6 +4,8 @@ use orbend_structure::HARTREE_IN_EV;
 
 use crate::document::DocumentError;
 
+use super::pictures::EndPictures;
+
 /// Width of the page.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
 pub enum FigureWidth {
@@ -112,6 +114,8 @@ pub struct FigureOptions {
     pub title: bool,
     /// A line below that explains the marks.
     pub key: bool,
+    /// Contour pictures of the orbitals beside the labels.
+    pub pictures: Option<EndPictures>,
     /// Start of every `id` in the file: choose another one per figure when several share a page.
     pub id_prefix: String,
 }
@@ -132,6 +136,7 @@ impl Default for FigureOptions {
             axis_breaks: true,
             title: true,
             key: true,
+            pictures: None,
             id_prefix: "orbend".to_owned(),
         }
     }

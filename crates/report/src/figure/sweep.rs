@@ -51,7 +51,8 @@ pub(crate) fn compose(
     );
     let titled = options.title && heading.width(measure.heading) < measure.page - 2.0 * measure.pad;
     let crowd = starts.len().max(ends.len());
-    let needed = label_room(crowd, measure.label_distance()) + (ASCENT + DESCENT) * size;
+    let needed = label_room(crowd, sheet.label_distance())
+        + ((ASCENT + DESCENT) * size).max(sheet.picture_edge());
     // The groups stand outside the curves, so that a short heading fits between them.
     let row = 1.6 * size;
     let shared = heading.width(measure.heading) < 0.4 * measure.page;
@@ -88,6 +89,12 @@ pub(crate) fn compose(
     );
     let left_width = widest(&starts, size).max(group_width(groups.0));
     let right_width = widest(&ends, size).max(group_width(groups.1));
+    let pictures = if options.pictures.is_some() {
+        sheet.picture_edge() + 0.4 * size
+    } else {
+        0.0
+    };
+    let (left_width, right_width) = (left_width + pictures, right_width + pictures);
     sheet.left = sheet.axis + 0.5 * size + left_width + measure.leader();
     sheet.right = measure.page - measure.pad - right_width - measure.leader();
 

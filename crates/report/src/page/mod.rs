@@ -57,6 +57,7 @@ pub fn sweep_page(document: &SweepDocument, options: &FigureOptions) -> Result<S
         width: FigureWidth::Page,
         theme: Theme::Light,
         title: false,
+        pictures: None,
         ..options.clone()
     };
     let canvas = compose(document, &options)?;

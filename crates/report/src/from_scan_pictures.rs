@@ -1,0 +1,34 @@
+//! Pictures of the orbitals at both ends of a sweep.
+
+use orbend_scan::{ScanError, Sweep};
+
+use crate::figure::{EndPictures, OrbitalPicture};
+
+/// Points along an edge of a picture's lattice.
+const POINTS: usize = 49;
+
+/// Pictures of every line at the first and the last point of a sweep.
+///
+/// # Errors
+/// A point that cannot be read back.
+pub fn end_pictures(sweep: &Sweep) -> Result<EndPictures, ScanError> {
+    let at = |point: usize| -> Result<Vec<OrbitalPicture>, ScanError> {
+        (0..sweep.plan().lines().len())
+            .map(|line| {
+                let found = sweep.picture(line, point, POINTS)?;
+                Ok(OrbitalPicture {
+                    line: line as u32,
+                    plane: found.plane.words.to_owned(),
+                    points: found.values.points,
+                    half: found.values.half,
+                    values: found.values.values,
+                    nuclei: found.nuclei,
+                })
+            })
+            .collect()
+    };
+    Ok(EndPictures {
+        start: at(0)?,
+        end: at(sweep.points() - 1)?,
+    })
+}
