@@ -56,9 +56,22 @@ pub(crate) struct LevelsArguments {
     pub(crate) model: ModelArguments,
     #[command(flatten)]
     pub(crate) output: OutputArguments,
+    #[command(flatten)]
+    pub(crate) surface: SurfaceArguments,
     /// Threads; the output is the same bytes for every number
     #[arg(long, value_name = "N")]
     pub(crate) jobs: Option<usize>,
+}
+
+#[derive(Debug, Args)]
+#[command(next_help_heading = "Surface")]
+pub(crate) struct SurfaceArguments {
+    /// Surfaces of these orbitals, side by side, in a .glb file: 5a1,6e or 6e:1 for one of a set
+    #[arg(long, value_name = "LABELS", value_delimiter = ',')]
+    pub(crate) surface: Vec<String>,
+    /// Share of the density that a surface encloses, 0.01 to 0.99
+    #[arg(long, value_name = "SHARE", default_value_t = 0.8, allow_hyphen_values = true)]
+    pub(crate) share: f64,
 }
 
 #[derive(Debug, Args)]
@@ -216,7 +229,7 @@ pub(crate) struct OutputArguments {
     /// The result document on standard output, alone
     #[arg(long)]
     pub(crate) json: bool,
-    /// Write a file; the ending chooses .json, .csv, .svg, .png, .html (a page) or .xyz (may be repeated)
+    /// Write a file; the ending chooses .json, .csv, .svg, .png, .html (a page), .glb (surfaces) or .xyz (may be repeated)
     #[arg(long, value_name = "FILE")]
     pub(crate) out: Vec<PathBuf>,
     /// Which numbering labels show first; the document always has both

@@ -52,6 +52,11 @@ impl<'a> Outputs<'a> {
         Ok(Self { files: checked })
     }
 
+    /// Whether a file has this ending.
+    pub(crate) fn ends_in(&self, ending: &str) -> bool {
+        self.files.iter().any(|(_, own)| own == ending)
+    }
+
     /// Makes every file's bytes first and writes them then.
     pub(crate) fn write(
         &self,

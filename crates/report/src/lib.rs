@@ -8,6 +8,7 @@
 //! - [`sweep_figure`], [`levels_figure`]: SVG with real text.
 //! - [`figure_png`]: the same as an image.
 //! - [`sweep_page`]: one HTML file with the figure, a slider and the orbitals.
+//! - [`surfaces_glb`]: orbital surfaces as glTF binary.
 //! - [`levels_text`], [`sweep_text`], [`params_text`]: text for a person at a terminal.
 //!
 //! It is not for: physics, symmetry, following lines, or writing to files and streams.
@@ -21,10 +22,12 @@ mod from_scan;
 mod from_scan_lines;
 mod from_scan_orbitals;
 mod from_scan_pictures;
+mod from_scan_surfaces;
 mod from_shape;
 mod lettering;
 mod page;
 mod raster;
+mod scene;
 #[cfg(test)]
 mod synthetic;
 mod text;
@@ -39,7 +42,9 @@ pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
 pub use from_scan_orbitals::sweep_document_with_orbitals;
 pub use from_scan_pictures::end_pictures;
+pub use from_scan_surfaces::{SurfaceChoiceError, named_surfaces};
 pub use from_shape::shape_document;
 pub use page::{PageError, sweep_page};
 pub use raster::{ImageError, figure_png};
+pub use scene::{PhaseMesh, SceneError, SurfaceRecord, surfaces_glb};
 pub use text::{TextOptions, levels_text, params_text, passport_text, shape_text, sweep_text};

@@ -105,6 +105,9 @@ pub enum ScanError {
     /// No point group could be assigned.
     #[error(transparent)]
     Symmetry(#[from] orbend_symmetry::SymmetryError),
+    /// A surface that cannot be made.
+    #[error(transparent)]
+    Surface(#[from] crate::surface::SurfaceError),
     /// The electrons do not fit.
     #[error(transparent)]
     Filling(#[from] FillingError),

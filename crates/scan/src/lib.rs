@@ -11,6 +11,7 @@
 mod character;
 mod crossing;
 mod error;
+mod field;
 mod filling;
 mod follow;
 mod line;
@@ -22,6 +23,7 @@ mod request;
 pub mod shape;
 mod solve;
 mod special;
+mod surface;
 mod sweep;
 
 pub use crossing::{
@@ -29,13 +31,15 @@ pub use crossing::{
     resolution,
 };
 pub use error::{FillingError, ScanError};
+pub use field::OrbitalField;
 pub use filling::{Configuration, DEGENERACY_EV, Electrons, Filling};
 pub use follow::{Ambiguity, CLEAR_OVERLAP, Followed};
 pub use line::LineHead;
 pub use naming::Name;
 pub use orbitals::{Orbitals, Populations};
 pub use plan::{Notice, SweepPlan};
-pub use plane::{OrbitalPicture, Plane, PlaneValues, orbital_value};
+pub use plane::{OrbitalPicture, Plane, PlaneValues};
 pub use request::{Numbering, Request, Route, symmetrized};
 pub use special::SpecialPoint;
+pub use surface::{Mesh, OrbitalSurface, SURFACE_SHARES, SurfaceError, orbital_surface};
 pub use sweep::{Level, Point, Sweep};

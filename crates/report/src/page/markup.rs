@@ -19,6 +19,7 @@ pub(crate) struct Parts<'a> {
     pub(crate) style: &'a str,
     pub(crate) script: &'a str,
     pub(crate) figure: &'a str,
+    pub(crate) narrow: &'a str,
     pub(crate) json: &'a str,
 }
 
@@ -45,6 +46,7 @@ pub(crate) fn page(parts: &Parts<'_>) -> String {
             "style" => page.push_str(parts.style),
             "script" => page.push_str(parts.script),
             "figure" => page.push_str(parts.figure),
+            "narrow" => page.push_str(parts.narrow),
             "data" => page.push_str(parts.json),
             _ => {}
         }

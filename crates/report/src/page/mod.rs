@@ -18,8 +18,12 @@ use crate::figure::{FigureError, FigureOptions, FigureWidth, Theme};
 const LARGEST: usize = 20_000_000;
 
 const STYLE: &str = include_str!("page.css");
-/// Evaluation and drawing of orbitals, then the page itself.
-const SCRIPT: [&str; 2] = [include_str!("orbital.js"), include_str!("page.js")];
+/// Evaluation and drawing of orbitals, the diagram with its cursor, then the page itself.
+const SCRIPT: [&str; 3] = [
+    include_str!("orbital.js"),
+    include_str!("stage.js"),
+    include_str!("page.js"),
+];
 
 /// Why a page cannot be made.
 #[derive(Clone, Debug, PartialEq, thiserror::Error)]
@@ -60,10 +64,17 @@ pub fn sweep_page(document: &SweepDocument, options: &FigureOptions) -> Result<S
         pictures: None,
         ..options.clone()
     };
-    let canvas = compose(document, &options)?;
-    let data = data::PageData::new(document, &options, &canvas);
+    // A telephone shows the figure at the width of a column.
+    let narrow_options = FigureOptions {
+        width: FigureWidth::Column,
+        id_prefix: format!("{}-narrow", options.id_prefix),
+        ..options.clone()
+    };
+    let wide = compose(document, &options)?;
+    let narrow = compose(document, &narrow_options)?;
+    let data = data::PageData::new(document, &options, [&wide, &narrow]);
     let json = serde_json::to_string(&data).map_err(|error| PageError::Data(error.to_string()))?;
-    let figure = without_metadata(canvas.xml.finish());
+    let [figure, narrow] = [wide, narrow].map(|canvas| without_metadata(canvas.xml.finish()));
     let style = format!("{STYLE}{}", markup::dark_figure());
     let script = SCRIPT.concat();
     let policy = format!(
@@ -78,6 +89,7 @@ pub fn sweep_page(document: &SweepDocument, options: &FigureOptions) -> Result<S
         style: &style,
         script: &script,
         figure: &figure,
+        narrow: &narrow,
         // A data block ends at "</script": "<" never stands in it.
         json: &json.replace('<', "\\u003c"),
     });

@@ -1,19 +1,17 @@
 (() => {
   const data = JSON.parse(document.getElementById('data').textContent);
   const $ = (id) => document.getElementById(id);
-  const SVG = 'http://www.w3.org/2000/svg';
   const count = data.at.length, functions = data.shells.reduce((sum, s) => sum + 2 * s.l + 1, 0);
   const byId = new Map(data.lines.map((line) => [line.id, line]));
   const shells = data.shells.filter((shell) => shell.zeta.length).map(prepareShell);
   const frame = frameOf(data.positions), planes = planesOf(frame), chosenPlane = new Map();
-  const bundles = data.area.lines.map((ids) => ids.map((id) => byId.get(id))).filter((set) => set[0]);
   const state = { point: 0, hovered: null, pinned: null, cut: 'auto' };
 
   // ---- words
   const minus = (text) => text.replace('-', '\u2212');
   const fixed = (value, digits) => (value === null || value === undefined ? '–' : minus(value.toFixed(digits)));
   const trim = (value) => minus(String(Math.round(value * 1000) / 1000));
-  const withUnit = (value) => trim(value) + { degree: '°', angstrom: ' Å', share: '' }[data.unit];
+  const withUnit = (value) => trim(value) + ({ degree: '°', angstrom: ' Å' }[data.unit] || '');
   const labelOf = (line) => (data.core ? line.label : line.valence);
   const GREEK = { sigma: 'σ', pi: 'π', delta: 'δ', phi: 'φ', gamma: 'γ' };
   // "3sigma_g+" → 3σ, g below, + above.
@@ -37,138 +35,12 @@
     made.append(...content);
     return made;
   }
-  function drawn(name, attributes, parent) {
-    const made = document.createElementNS(SVG, name);
-    for (const [key, value] of Object.entries(attributes)) made.setAttribute(key, value);
-    if (parent) parent.append(made);
-    return made;
-  }
   function ownLabel(line, point) {
     const special = line.passport.special.find((s) => Math.abs(s.at - data.at[point]) < 1e-6);
     if (!special) return labelOf(line);
     return (!data.core && special.valence_label) || special.label;
   }
 
-  // ---- the figure
-  const svg = $('figure').querySelector('svg');
-  const box = svg.viewBox.baseVal, area = data.area;
-  svg.setAttribute('role', 'group');
-  const across = (point) => area.across[0] + (data.at[point] - data.at[0]) / (data.at[count - 1] - data.at[0]) * (area.across[1] - area.across[0]);
-  function height(energy) {
-    let below = null;
-    for (const [low, high, bottom, top] of area.energies) {
-      if (energy <= high) {
-        if (below && energy < low) return below[3] + (energy - below[1]) / (low - below[1]) * (bottom - below[3]);
-        return bottom - (energy - low) / (high - low) * (bottom - top);
-      }
-      below = [low, high, bottom, top];
-    }
-    const [low, high, bottom, top] = below;
-    return bottom - (energy - low) / (high - low) * (bottom - top);
-  }
-  const shown = (energy) => energy >= area.energies[0][0] && energy <= area.energies[area.energies.length - 1][1];
-  const cursor = drawn('g', { class: 'cursor' }, svg);
-  const cursorLine = drawn('path', { d: '' }, cursor);
-  const cursorDots = drawn('g', {}, cursor);
-  const groups = new Map();
-  for (const g of svg.querySelectorAll('g.line')) {
-    const ids = g.dataset.line.split(' ').map(Number), line = byId.get(ids[0]);
-    if (!line) continue;
-    for (const id of ids) groups.set(id, g);
-    g.querySelector('title').remove();
-    g.setAttribute('tabindex', '0');
-    g.setAttribute('role', 'button');
-    g.setAttribute('aria-pressed', 'false');
-    g.setAttribute('aria-label', `Line ${labelOf(line)}`);
-    for (const path of [...g.querySelectorAll('path')]) {
-      const wide = path.cloneNode();
-      wide.removeAttribute('stroke-dasharray');
-      wide.setAttribute('class', 'reach');
-      g.append(wide);
-    }
-    listen(g, line.id);
-    listenToKeys(g, line.id);
-  }
-  function listen(target, id) {
-    target.addEventListener('pointerenter', () => hover(id));
-    target.addEventListener('pointerleave', () => hover(null));
-    target.addEventListener('click', () => { if (!dragged) pin(state.pinned === id ? null : id); });
-  }
-  // Not for the ladder: its rungs are made anew, and the table below has them as buttons.
-  function listenToKeys(target, id) {
-    target.addEventListener('focus', () => hover(id));
-    target.addEventListener('blur', () => hover(null));
-    target.addEventListener('keydown', (event) => {
-      if (event.key === 'Enter' || event.key === ' ') { event.preventDefault(); pin(state.pinned === id ? null : id); }
-    });
-  }
-  // Dragging anywhere on the diagram moves along the path.
-  let dragging = false, dragged = false, startX = 0;
-  const atPointer = (event) => {
-    const r = svg.getBoundingClientRect(), x = (event.clientX - r.left) / r.width * box.width;
-    const share = (x - area.across[0]) / (area.across[1] - area.across[0]);
-    const value = data.at[0] + Math.max(0, Math.min(1, share)) * (data.at[count - 1] - data.at[0]);
-    return nearest(value);
-  };
-  const nearest = (value) => data.at.reduce((best, at, k) => (Math.abs(at - value) < Math.abs(data.at[best] - value) ? k : best), 0);
-  svg.addEventListener('pointerdown', (event) => { dragging = true; dragged = false; startX = event.clientX; });
-  svg.addEventListener('pointermove', (event) => {
-    if (!dragging) return;
-    if (Math.abs(event.clientX - startX) > 4) dragged = true;
-    if (dragged) go(atPointer(event));
-  });
-  window.addEventListener('pointerup', () => { dragging = false; });
-
-  // ---- the ladder, on the figure's scale
-  const ladderWidth = 150;
-  const ladder = drawn('svg', { viewBox: `0 0 ${ladderWidth} ${box.height}` }, $('ladder'));
-  $('ladder').style.flexGrow = String(ladderWidth / box.width);
-  function colourOf(id) { const g = groups.get(id); return g ? g.querySelector('path').getAttribute('stroke') : '#656d76'; }
-  function drawLadder() {
-    ladder.replaceChildren();
-    const p = state.point, rows = [];
-    const title = drawn('text', { x: 14, y: area.down[0] - 8, class: 'where' }, ladder);
-    title.textContent = withUnit(data.at[p]);
-    for (const set of bundles) {
-      const energy = set[0].energies[p];
-      if (energy === null || !shown(energy)) continue;
-      rows.push({ set, y: height(energy), place: height(energy) });
-    }
-    rows.sort((a, b) => a.y - b.y);
-    // Labels keep their distance: pushed down, then up from the bottom.
-    const gap = 11.5, floor = Math.max(area.energies[0][2], area.down[0] + gap * rows.length);
-    rows.forEach((row, k) => { if (k) row.place = Math.max(row.place, rows[k - 1].place + gap); });
-    for (let k = rows.length - 1, limit = floor; k >= 0; k--) { rows[k].place = Math.min(rows[k].place, limit); limit = rows[k].place - gap; }
-    // Rungs that would lie on each other share the width.
-    for (let from = 0; from < rows.length;) {
-      let to = from + 1;
-      while (to < rows.length && rows[to].y - rows[to - 1].y < 4) to += 1;
-      const members = rows.slice(from, to).reduce((sum, row) => sum + row.set.length, 0);
-      let column = 0;
-      for (const row of rows.slice(from, to)) { row.column = column; row.width = 50 / members; column += row.set.length; }
-      from = to;
-    }
-    for (const { set, y, place, column, width } of rows) {
-      const line = set[0], colour = colourOf(line.id), on = set.some((l) => l.id === active());
-      const g = drawn('g', { class: on ? 'rung on' : 'rung' }, ladder), gap = Math.min(4, width / 4), r = Math.min(2.6, width / 7);
-      set.forEach((member, k) => {
-        const x = 14 + (column + k) * width;
-        drawn('path', { d: `M${x} ${y}H${x + width - gap}`, stroke: colour, 'stroke-width': on ? 3 : 1.6 }, g);
-        const electrons = member.electrons[p], whole = Math.ceil(electrons - 1e-6);
-        for (let e = 0; e < whole; e++) {
-          const part = e + 1 > electrons + 1e-6;
-          drawn('circle', { cx: x + (width - gap) / 2 + (e - (whole - 1) / 2) * 2.7 * r, cy: y, r: part ? 0.85 * r : r, fill: part ? 'var(--ground)' : colour, stroke: colour, 'stroke-width': 0.6 }, g);
-        }
-      });
-      drawn('path', { d: `M64 ${y}L74 ${place}`, stroke: '#656d76', 'stroke-width': 0.5, fill: 'none' }, g);
-      const text = drawn('text', { x: 77, y: place + 3.3, fill: colour }, g);
-      text.textContent = plainText(ownLabel(line, p));
-      const value = drawn('text', { x: ladderWidth - 3, y: place + 3.3, class: 'value' }, g);
-      value.textContent = fixed(line.energies[p], 2);
-      drawn('rect', { x: 8, y: Math.min(y, place) - 5, width: ladderWidth - 8, height: Math.abs(y - place) + 10, class: 'reach' }, g);
-      listen(g, line.id);
-    }
-  }
   const SUB = (text) => text.replace(/\d/g, (d) => String.fromCharCode(0x2080 + Number(d)));
   function plainText(plain) {
     const found = /^(\d*)(sigma|pi|delta|phi|gamma|[abegthi])_?([0-9gu]*)(['+-]*)$/.exec(plain);
@@ -176,6 +48,34 @@
     const tail = found[4].replace("''", '″').replace("'", '′').replace('+', '⁺').replace('-', '⁻');
     return found[1] + (GREEK[found[2]] || found[2]) + SUB(found[3]) + tail;
   }
+
+  // ---- the diagram, wide or narrow, and the ladder beside it
+  const nearest = (value) => data.at.reduce((best, at, k) => (Math.abs(at - value) < Math.abs(data.at[best] - value) ? k : best), 0);
+  const hands = {
+    dragged: false,
+    moveTo: (value) => go(nearest(value)),
+    listen(target, id) {
+      target.addEventListener('pointerenter', () => hover(id));
+      target.addEventListener('pointerleave', () => hover(null));
+      target.addEventListener('click', () => { if (!hands.dragged) turn(id); });
+    },
+    // Not for the ladder: its rungs are made anew, and the table below has them as buttons.
+    listenToKeys(target, id) {
+      target.addEventListener('focus', () => hover(id));
+      target.addEventListener('blur', () => hover(null));
+      target.addEventListener('keydown', (event) => {
+        if (event.key === 'Enter' || event.key === ' ') { event.preventDefault(); turn(id); }
+      });
+    },
+  };
+  window.addEventListener('pointerdown', () => { hands.dragged = false; }, true);
+  const book = { data, byId, labelOf };
+  const stages = ['wide', 'narrow'].map((name, k) => makeStage($(name), data.areas[k], book, hands));
+  const small = window.matchMedia('(max-width: 720px)');
+  small.addEventListener('change', () => later());
+  let printing = false;
+  const stage = () => stages[small.matches && !printing ? 1 : 0];
+  const ladder = drawn('svg', {}, $('ladder'));
 
   // ---- moving
   const slider = $('slider');
@@ -198,29 +98,31 @@
     later();
   }
   function hover(id) { state.hovered = id; later(); }
-  function pin(id) { state.pinned = id; later(); }
+  function pin(id) {
+    state.pinned = id;
+    const line = byId.get(id);
+    $('said').textContent = line
+      ? `${plainText(labelOf(line))} kept, ${fixed(line.energies[state.point], 2)} eV, ${trim(line.electrons[state.point])} electrons`
+      : 'No line kept';
+    later();
+  }
+  const turn = (id) => pin(state.pinned === id ? null : id);
   const active = () => (state.pinned !== null ? state.pinned : state.hovered);
 
   // ---- drawing everything that depends on the state
   function draw() {
-    const p = state.point, id = active(), x = across(p);
+    const p = state.point, id = active();
     slider.value = String(p);
     const sum = data.sum[p];
     slider.setAttribute('aria-valuetext', `${withUnit(data.at[p])}, sum ${fixed(sum, 2)} eV`);
     $('here').textContent = `${withUnit(data.at[p])} · sum ${fixed(sum, 3)} eV`;
-    cursorLine.setAttribute('d', `M${x} ${area.down[0]}V${area.down[1]}`);
-    cursorDots.replaceChildren();
-    for (const set of bundles) {
-      const energy = set[0].energies[p];
-      if (energy !== null && shown(energy)) drawn('circle', { cx: x, cy: height(energy), r: 2.2, fill: colourOf(set[0].id) }, cursorDots);
-    }
-    const marked = id === null ? null : groups.get(id);
-    svg.classList.toggle('chosen', Boolean(marked));
-    for (const g of new Set(groups.values())) {
-      g.classList.toggle('on', g === marked);
-      g.setAttribute('aria-pressed', String(state.pinned !== null && g === groups.get(state.pinned)));
-    }
-    drawLadder();
+    stage().show(p, id, state.pinned);
+    drawLadder(ladder, stage(), p, id, {
+      title: withUnit(data.at[p]),
+      labelAt: (line, point) => plainText(ownLabel(line, point)),
+      energyText: (energy) => fixed(energy, 2),
+      listen: hands.listen,
+    });
     drawCard();
     drawPicture();
     // A reader of the table waits until things rest.
@@ -319,7 +221,7 @@
       button.type = 'button';
       button.dataset.row = String(line.id);
       button.setAttribute('aria-pressed', String(state.pinned === line.id));
-      button.addEventListener('click', () => pin(state.pinned === line.id ? null : line.id));
+      button.addEventListener('click', () => turn(line.id));
       const head = element('th', button);
       head.scope = 'row';
       const top = mostly(line, p).sort((a, b) => b.share - a.share).slice(0, 2).map((part) => `${part.name} ${Math.round(100 * part.share)} %`).join(', ');
@@ -341,7 +243,7 @@
     const more = meeting.gap !== undefined ? `, gap ${fixed(meeting.gap, 2)} eV` : meeting.energy !== undefined ? `, ${fixed(meeting.energy, 2)} eV` : '';
     const button = element('button', lettered(labelOf(a)), verb, lettered(labelOf(b)), ` at ${withUnit(meeting.at)}${more}`);
     button.type = 'button';
-    button.addEventListener('click', () => { state.pinned = a.id; go(nearest(meeting.at)); later(); });
+    button.addEventListener('click', () => { go(nearest(meeting.at)); pin(a.id); });
     meetings.append(element('li', button));
   }
   function csv() {
@@ -375,11 +277,12 @@
     document.documentElement.dataset.theme = dark ? 'dark' : 'light';
     $('theme').setAttribute('aria-pressed', String(dark));
   }
-  let ownTheme = false;
-  $('theme').addEventListener('click', () => { ownTheme = true; dress(theme() !== 'dark'); later(); });
-  wish.addEventListener('change', () => { if (!ownTheme) { dress(wish.matches); later(); } });
-  window.addEventListener('beforeprint', () => { dress(false); draw(); });
-  window.addEventListener('afterprint', () => { dress(ownTheme ? false : wish.matches); draw(); });
+  let ownTheme = false, worn = wish.matches;
+  function wear(dark) { worn = dark; dress(dark); later(); }
+  $('theme').addEventListener('click', () => { ownTheme = true; wear(!worn); });
+  wish.addEventListener('change', () => { if (!ownTheme) wear(wish.matches); });
+  window.addEventListener('beforeprint', () => { printing = true; dress(false); draw(); });
+  window.addEventListener('afterprint', () => { printing = false; dress(worn); draw(); });
   $('print').addEventListener('click', () => window.print());
   document.addEventListener('keydown', (event) => { if (event.key === 'Escape') pin(null); });
 
