@@ -70,7 +70,12 @@ pub(crate) struct SurfaceArguments {
     #[arg(long, value_name = "LABELS", value_delimiter = ',')]
     pub(crate) surface: Vec<String>,
     /// Share of the density that a surface encloses, 0.01 to 0.99
-    #[arg(long, value_name = "SHARE", default_value_t = 0.8, allow_hyphen_values = true)]
+    #[arg(
+        long,
+        value_name = "SHARE",
+        default_value_t = 0.8,
+        allow_hyphen_values = true
+    )]
     pub(crate) share: f64,
 }
 

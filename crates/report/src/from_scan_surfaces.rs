@@ -20,7 +20,9 @@ pub enum SurfaceChoiceError {
         nearest: Vec<String>,
     },
     /// The set has fewer components.
-    #[error("\"{name}\": {set} has {size} components; write {set}:1 to {set}:{size}, or {set} for all")]
+    #[error(
+        "\"{name}\": {set} has {size} components; write {set}:1 to {set}:{size}, or {set} for all"
+    )]
     Component {
         /// The name as written.
         name: String,

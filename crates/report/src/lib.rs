@@ -47,4 +47,6 @@ pub use from_shape::shape_document;
 pub use page::{PageError, sweep_page};
 pub use raster::{ImageError, figure_png};
 pub use scene::{PhaseMesh, SceneError, SurfaceRecord, surfaces_glb};
-pub use text::{TextOptions, levels_text, params_text, passport_text, shape_text, sweep_text};
+pub use text::{
+    TextOptions, levels_text, params_text, passport_text, shape_text, surfaces_text, sweep_text,
+};

@@ -53,7 +53,10 @@ impl OrbitalField {
                     centre: positions[shell.atom].map(|c| Bohr::from(Angstrom(c)).0),
                     n,
                     l: shell.l,
-                    smallest_zeta: terms.iter().map(|term| term.0).fold(f64::INFINITY, f64::min),
+                    smallest_zeta: terms
+                        .iter()
+                        .map(|term| term.0)
+                        .fold(f64::INFINITY, f64::min),
                     terms,
                     own,
                 })

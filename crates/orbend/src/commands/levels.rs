@@ -2,7 +2,7 @@
 
 use orbend_report::{
     FigureOptions, SurfaceChoiceError, levels_csv, levels_document, levels_figure, levels_text,
-    named_surfaces, surfaces_glb, to_json,
+    named_surfaces, surfaces_glb, surfaces_text, to_json,
 };
 use orbend_scan::SURFACE_SHARES;
 
@@ -60,7 +60,8 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     } else {
         let options = text_options(output.numbering);
         let start = geometry_text(&resolved.geometry, options.width);
-        write_stdout((start + &levels_text(&document, &options)).as_bytes())
+        let text = start + &levels_text(&document, &options) + &surfaces_text(&surfaces, &options);
+        write_stdout(text.as_bytes())
     }
 }
 
@@ -69,8 +70,10 @@ fn check_surface(arguments: &LevelsArguments, outputs: &Outputs<'_>) -> Result<(
     let asked = &arguments.surface;
     match (asked.surface.is_empty(), outputs.ends_in("glb")) {
         (true, true) => {
-            return Err(Failure::request("a .glb file holds the surfaces of orbitals, but none is named")
-                .fix("name them: --surface 5a1"));
+            return Err(Failure::request(
+                "a .glb file holds the surfaces of orbitals, but none is named",
+            )
+            .fix("name them: --surface 5a1"));
         }
         (false, false) => {
             return Err(Failure::request(format!(

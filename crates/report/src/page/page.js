@@ -70,12 +70,28 @@
   };
   window.addEventListener('pointerdown', () => { hands.dragged = false; }, true);
   const book = { data, byId, labelOf };
-  const stages = ['wide', 'narrow'].map((name, k) => makeStage($(name), data.areas[k], book, hands));
-  const small = window.matchMedia('(max-width: 720px)');
+  // The narrow drawing is for telephones: made when it is first asked for.
+  const small = window.matchMedia('(max-width: 720px)'), stages = {};
+  function stage() {
+    const name = small.matches && !printing ? 'narrow' : 'wide';
+    if (!stages[name]) {
+      const made = makeStage($(name), data.areas[name === 'wide' ? 0 : 1], book, hands);
+      const holder = element('div');
+      holder.className = name;
+      $('ladder').append(holder);
+      if (name === 'wide') $('ladder').style.flexGrow = String(LADDER_WIDTH / made.box.width);
+      const ladder = makeLadder(holder, made, {
+        titleAt: (point) => withUnit(data.at[point]),
+        labelAt: (line, point) => plainText(ownLabel(line, point)),
+        energyText: (energy) => fixed(energy, 2),
+        listen: hands.listen,
+      });
+      stages[name] = { show(point, id, pinned) { made.show(point, id, pinned); ladder.show(point, id); } };
+    }
+    return stages[name];
+  }
   small.addEventListener('change', () => later());
   let printing = false;
-  const stage = () => stages[small.matches && !printing ? 1 : 0];
-  const ladder = drawn('svg', {}, $('ladder'));
 
   // ---- moving
   const slider = $('slider');
@@ -115,14 +131,8 @@
     slider.value = String(p);
     const sum = data.sum[p];
     slider.setAttribute('aria-valuetext', `${withUnit(data.at[p])}, sum ${fixed(sum, 2)} eV`);
-    $('here').textContent = `${withUnit(data.at[p])} · sum ${fixed(sum, 3)} eV`;
+    put($('here'), `${withUnit(data.at[p])} · sum ${fixed(sum, 3)} eV`);
     stage().show(p, id, state.pinned);
-    drawLadder(ladder, stage(), p, id, {
-      title: withUnit(data.at[p]),
-      labelAt: (line, point) => plainText(ownLabel(line, point)),
-      energyText: (energy) => fixed(energy, 2),
-      listen: hands.listen,
-    });
     drawCard();
     drawPicture();
     // A reader of the table waits until things rest.
@@ -133,10 +143,7 @@
     light: { ground: '#ffffff', paper: [255, 255, 255], ink: '#1b1f24', plus: [11, 111, 92], minus: [139, 43, 120] },
     dark: { ground: '#14181d', paper: [20, 24, 29], ink: '#eef1f4', plus: [111, 208, 185], minus: [221, 154, 208] },
   };
-  function psiOf(line, point) {
-    const atoms = data.positions[point];
-    return (x, y, z) => psi(shells, line.coefficients, point * functions, atoms, x, y, z) * 1e-4;
-  }
+  const psiOf = (line, point) => orbitalAt(shells, line.coefficients, point * functions, data.positions[point]);
   function planeOf(line) {
     if (!chosenPlane.has(line.id)) {
       const sample = [0, (count - 1) >> 1, count - 1].map((k) => ({ atoms: data.positions[k], psiAt: psiOf(line, k) }));
@@ -146,10 +153,12 @@
   }
   // Coarse while things move, fine when they rest.
   let rest = 0;
-  function drawPicture(fine = 360) {
+  function drawPicture(fine = 240) {
     clearTimeout(rest);
     if (fine < 720) rest = setTimeout(() => { drawPicture(720); drawTable(); }, 160);
     const line = byId.get(active()), p = state.point, has = line && line.coefficients.length > 0 && shells.length > 0;
+    const size = fine < 720 ? 360 : 720;
+    if ($('orbital').width !== size) $('orbital').width = $('orbital').height = size;
     const index = state.cut !== 'auto' ? Number(state.cut) : has ? planeOf(line) : 0;
     const plane = planes[index];
     drawOrbital($('orbital'), {
@@ -160,9 +169,9 @@
     $('orbital').setAttribute('aria-label', has
       ? `Contours of orbital ${label} of ${data.name} at ${withUnit(data.at[p])}, in ${plane.words}`
       : `The atoms of ${data.name} at ${withUnit(data.at[p])}`);
-    $('plane').textContent = has
+    put($('plane'), has
       ? `ψ in ${plane.words}; plain green positive, hatched purple negative; contours ±0.025, 0.05, 0.1 … bohr⁻³ᐟ²`
-      : `${data.name} at ${withUnit(data.at[p])}` + (functions ? '. Choose a line to see its orbital.' : '');
+      : `${data.name} at ${withUnit(data.at[p])}` + (functions ? '. Choose a line to see its orbital.' : ''));
   }
   const mostly = (line, point) => {
     const from = point * data.shells.length;
@@ -171,19 +180,30 @@
       .filter((part) => Number.isFinite(part.share));
   };
   function term(list, name, ...content) { list.append(element('dt', name), element('dd', ...content)); }
+  // The card is made anew for another line only; what changes along the path is written into it.
+  let shownCard = { id: undefined };
   function drawCard() {
-    const line = byId.get(active()), p = state.point, card = $('card');
+    const line = byId.get(active()), p = state.point;
     $('release').hidden = state.pinned === null;
-    card.replaceChildren();
-    if (!line) {
-      $('line-title').textContent = 'No line chosen';
-      card.append(element('p', 'Point at a line of the diagram, or walk to one with the Tab key.'));
-      return;
-    }
+    if (shownCard.id !== line?.id) shownCard = line ? makeCard(line) : emptyCard();
+    if (!line) return;
     const electrons = line.electrons[p];
-    $('line-title').replaceChildren(lettered(labelOf(line)), element('small', electrons > 0 ? ` ${trim(electrons)} electron${electrons === 1 ? '' : 's'}` : ' empty'));
-    const list = document.createElement('dl');
-    term(list, 'Energy here', `${fixed(line.energies[p], 3)} eV`);
+    put(shownCard.electrons, electrons > 0 ? ` ${trim(electrons)} electron${electrons === 1 ? '' : 's'}` : ' empty');
+    put(shownCard.energy, `${fixed(line.energies[p], 3)} eV`);
+    mostly(line, p).forEach(({ share }, k) => {
+      shownCard.meters[k].style.setProperty('--share', String(Math.max(0, Math.min(1, share))));
+      put(shownCard.percents[k], `${fixed(100 * share, 1)} %`);
+    });
+  }
+  function emptyCard() {
+    put($('line-title'), 'No line chosen');
+    $('card').replaceChildren(element('p', 'Point at a line of the diagram, or walk to one with the Tab key.'));
+    return { id: undefined };
+  }
+  function makeCard(line) {
+    const electrons = element('small'), energy = element('span'), list = document.createElement('dl');
+    $('line-title').replaceChildren(lettered(labelOf(line)), electrons);
+    term(list, 'Energy here', energy);
     term(list, 'Start to end', `${fixed(line.energies[0], 2)} → ${fixed(line.energies[count - 1], 2)} eV`);
     term(list, 'In the path group', lettered(line.irrep), line.degeneracy > 1 ? ` (${line.degeneracy}-fold)` : '');
     term(list, 'At the start', lettered(ownLabel(line, 0)), ' in ', groupName(data.group[0]));
@@ -196,18 +216,20 @@
     }
     term(list, data.core ? 'Counting valence levels' : 'Counting core levels', lettered(data.core ? line.valence : line.label));
     if (line.evidence) term(list, 'Followed by', { symmetry: 'symmetry', overlap: 'overlap of neighbours', ambiguous: 'more than one way is possible' }[line.evidence]);
-    card.append(list);
-    const parts = mostly(line, p);
-    if (!parts.length) return;
+    const card = { id: line.id, electrons, energy, meters: [], percents: [] }, parts = mostly(line, 0);
+    $('card').replaceChildren(list);
+    if (!parts.length) return card;
     const bars = element('ul');
     bars.className = 'shares';
-    for (const { name, share } of parts) {
-      const meter = document.createElement('span');
+    for (const { name } of parts) {
+      const meter = element('span'), percent = element('span');
       meter.className = 'bar';
-      meter.style.setProperty('--share', String(Math.max(0, Math.min(1, share))));
-      bars.append(element('li', element('span', name), meter, element('span', `${fixed(100 * share, 1)} %`)));
+      card.meters.push(meter);
+      card.percents.push(percent);
+      bars.append(element('li', element('span', name), meter, percent));
     }
-    card.append(element('h3', 'Made of'), bars);
+    $('card').append(element('h3', 'Made of'), bars);
+    return card;
   }
 
   // ---- table, crossings, tools

@@ -6,12 +6,17 @@ function drawn(name, attributes, parent) {
   return made;
 }
 
+const round = (value) => String(Math.round(value * 100) / 100);
+// Only what changes is written.
+function set(node, name, value) { if (node.getAttribute(name) !== value) node.setAttribute(name, value); }
+function put(node, text) { if (node.textContent !== text) node.textContent = text; }
+
 // One drawing of the diagram with its cursor. `book` holds the data and their words; `hands` what
 // happens when a line is pointed at or pressed, or the diagram dragged.
 function makeStage(holder, area, book, hands) {
   const { data, byId, labelOf } = book, count = data.at.length;
   const svg = holder.querySelector('svg'), box = svg.viewBox.baseVal;
-  const bundles = area.lines.map((ids) => ids.map((id) => byId.get(id))).filter((set) => set[0]);
+  const bundles = area.lines.map((ids) => ids.map((id) => byId.get(id))).filter((lines) => lines[0]);
   svg.setAttribute('role', 'group');
   const across = (point) => area.across[0] + (data.at[point] - data.at[0]) / (data.at[count - 1] - data.at[0]) * (area.across[1] - area.across[0]);
   function height(energy) {
@@ -53,7 +58,7 @@ function makeStage(holder, area, book, hands) {
 
   const cursor = drawn('g', { class: 'cursor' }, svg);
   const cursorLine = drawn('path', { d: `M0 ${area.down[0]}V${area.down[1]}` }, cursor);
-  const dots = bundles.map((set) => drawn('circle', { r: 2.2, fill: colourOf(set[0].id) }, cursor));
+  const dots = bundles.map((lines) => drawn('circle', { r: 2.2, fill: colourOf(lines[0].id) }, cursor));
 
   // Dragging anywhere on the diagram moves along the path.
   let dragging = false, startX = 0;
@@ -70,63 +75,89 @@ function makeStage(holder, area, book, hands) {
 
   function show(point, active, pinned) {
     const x = across(point), marked = active === null ? null : groups.get(active);
-    cursorLine.setAttribute('transform', `translate(${x} 0)`);
-    bundles.forEach((set, k) => {
-      const energy = set[0].energies[point];
-      dots[k].setAttribute('visibility', shown(energy) ? 'visible' : 'hidden');
-      if (shown(energy)) { dots[k].setAttribute('cx', x); dots[k].setAttribute('cy', height(energy)); }
+    set(cursorLine, 'transform', `translate(${round(x)} 0)`);
+    bundles.forEach((lines, k) => {
+      const energy = lines[0].energies[point];
+      set(dots[k], 'visibility', shown(energy) ? 'visible' : 'hidden');
+      if (shown(energy)) { set(dots[k], 'cx', round(x)); set(dots[k], 'cy', round(height(energy))); }
     });
     svg.classList.toggle('chosen', Boolean(marked));
     for (const g of sets) {
       g.classList.toggle('on', g === marked);
-      g.setAttribute('aria-pressed', String(pinned !== null && g === groups.get(pinned)));
+      set(g, 'aria-pressed', String(pinned !== null && g === groups.get(pinned)));
     }
   }
   return { area, box, bundles, height, shown, colourOf, show };
 }
 
-// The levels of one point as rungs on the scale of a stage, with their electrons and labels.
+// The levels of a point as rungs on the scale of a stage, with their electrons and labels. Made once;
+// `show` moves what is there, which costs a browser far less than new elements.
 const LADDER_WIDTH = 150;
-function drawLadder(ladder, stage, point, active, { title, labelAt, energyText, listen }) {
-  const { area, box, bundles, height, shown, colourOf } = stage, rows = [];
-  ladder.replaceChildren();
-  ladder.setAttribute('viewBox', `0 0 ${LADDER_WIDTH} ${box.height}`);
-  ladder.parentNode.style.flexGrow = String(LADDER_WIDTH / box.width);
-  drawn('text', { x: 14, y: area.down[0] - 8, class: 'where' }, ladder).textContent = title;
-  for (const set of bundles) {
-    const energy = set[0].energies[point];
-    if (shown(energy)) rows.push({ set, y: height(energy), place: height(energy) });
+function makeLadder(holder, stage, { titleAt, labelAt, energyText, listen }) {
+  const { area, box, bundles, height, shown, colourOf } = stage;
+  const svg = drawn('svg', { viewBox: `0 0 ${LADDER_WIDTH} ${box.height}` }, holder);
+  const title = drawn('text', { x: 14, y: area.down[0] - 8, class: 'where' }, svg);
+  const rungs = bundles.map((set) => {
+    const colour = colourOf(set[0].id), g = drawn('g', { class: 'rung' }, svg);
+    const members = set.map((line) => ({
+      line,
+      bar: drawn('path', { stroke: colour, 'stroke-width': 1.6 }, g),
+      electrons: [0, 1].map(() => drawn('circle', { stroke: colour, 'stroke-width': 0.6 }, g)),
+    }));
+    const rung = {
+      set, g, colour, members,
+      leader: drawn('path', { stroke: '#656d76', 'stroke-width': 0.5, fill: 'none' }, g),
+      label: drawn('text', { x: 77, fill: colour }, g),
+      value: drawn('text', { x: LADDER_WIDTH - 3, class: 'value' }, g),
+      reach: drawn('rect', { x: 8, width: LADDER_WIDTH - 8, class: 'reach' }, g),
+    };
+    listen(g, set[0].id);
+    return rung;
+  });
+  function show(point, active) {
+    put(title, titleAt(point));
+    const rows = rungs.filter((rung) => shown(rung.set[0].energies[point]));
+    for (const rung of rungs) set(rung.g, 'visibility', 'hidden');
+    for (const row of rows) { row.y = row.place = height(row.set[0].energies[point]); set(row.g, 'visibility', 'visible'); }
+    rows.sort((a, b) => a.y - b.y);
+    // Labels keep their distance: pushed down, then up from the bottom.
+    const gap = 11.5, floor = Math.max(area.energies[0][2], area.down[0] + gap * rows.length);
+    rows.forEach((row, k) => { if (k) row.place = Math.max(row.place, rows[k - 1].place + gap); });
+    for (let k = rows.length - 1, limit = floor; k >= 0; k--) { rows[k].place = Math.min(rows[k].place, limit); limit = rows[k].place - gap; }
+    // Rungs that would lie on each other share the width.
+    for (let from = 0; from < rows.length;) {
+      let to = from + 1;
+      while (to < rows.length && rows[to].y - rows[to - 1].y < 4) to += 1;
+      const members = rows.slice(from, to).reduce((sum, row) => sum + row.set.length, 0);
+      let column = 0;
+      for (const row of rows.slice(from, to)) { row.column = column; row.width = 50 / members; column += row.set.length; }
+      from = to;
+    }
+    for (const row of rows) place(row, point, row.set.some((line) => line.id === active));
   }
-  rows.sort((a, b) => a.y - b.y);
-  // Labels keep their distance: pushed down, then up from the bottom.
-  const gap = 11.5, floor = Math.max(area.energies[0][2], area.down[0] + gap * rows.length);
-  rows.forEach((row, k) => { if (k) row.place = Math.max(row.place, rows[k - 1].place + gap); });
-  for (let k = rows.length - 1, limit = floor; k >= 0; k--) { rows[k].place = Math.min(rows[k].place, limit); limit = rows[k].place - gap; }
-  // Rungs that would lie on each other share the width.
-  for (let from = 0; from < rows.length;) {
-    let to = from + 1;
-    while (to < rows.length && rows[to].y - rows[to - 1].y < 4) to += 1;
-    const members = rows.slice(from, to).reduce((sum, row) => sum + row.set.length, 0);
-    let column = 0;
-    for (const row of rows.slice(from, to)) { row.column = column; row.width = 50 / members; column += row.set.length; }
-    from = to;
-  }
-  for (const { set, y, place, column, width } of rows) {
-    const line = set[0], colour = colourOf(line.id), on = set.some((l) => l.id === active);
-    const g = drawn('g', { class: on ? 'rung on' : 'rung' }, ladder), apart = Math.min(4, width / 4), r = Math.min(2.6, width / 7);
-    set.forEach((member, k) => {
-      const x = 14 + (column + k) * width;
-      drawn('path', { d: `M${x} ${y}H${x + width - apart}`, stroke: colour, 'stroke-width': on ? 3 : 1.6 }, g);
-      const electrons = member.electrons[point], whole = Math.ceil(electrons - 1e-6);
-      for (let e = 0; e < whole; e++) {
-        const part = e + 1 > electrons + 1e-6;
-        drawn('circle', { cx: x + (width - apart) / 2 + (e - (whole - 1) / 2) * 2.7 * r, cy: y, r: part ? 0.85 * r : r, fill: part ? 'var(--ground)' : colour, stroke: colour, 'stroke-width': 0.6 }, g);
-      }
+  function place({ set: lines, g, colour, members, leader, label, value, reach, y, place: at, column, width }, point, on) {
+    const apart = Math.min(4, width / 4), r = Math.min(2.6, width / 7), here = round(y);
+    g.classList.toggle('on', on);
+    members.forEach(({ line, bar, electrons }, k) => {
+      const x = 14 + (column + k) * width, held = line.electrons[point], whole = Math.ceil(held - 1e-6);
+      set(bar, 'd', `M${round(x)} ${here}h${round(width - apart)}`);
+      electrons.forEach((circle, e) => {
+        set(circle, 'visibility', e < whole ? 'inherit' : 'hidden');
+        if (e >= whole) return;
+        const part = e + 1 > held + 1e-6;
+        set(circle, 'cx', round(x + (width - apart) / 2 + (e - (whole - 1) / 2) * 2.7 * r));
+        set(circle, 'cy', here);
+        set(circle, 'r', round(part ? 0.85 * r : r));
+        set(circle, 'fill', part ? 'var(--ground)' : colour);
+      });
     });
-    drawn('path', { d: `M64 ${y}L74 ${place}`, stroke: '#656d76', 'stroke-width': 0.5, fill: 'none' }, g);
-    drawn('text', { x: 77, y: place + 3.3, fill: colour }, g).textContent = labelAt(line, point);
-    drawn('text', { x: LADDER_WIDTH - 3, y: place + 3.3, class: 'value' }, g).textContent = energyText(line.energies[point]);
-    drawn('rect', { x: 8, y: Math.min(y, place) - 5, width: LADDER_WIDTH - 8, height: Math.abs(y - place) + 10, class: 'reach' }, g);
-    listen(g, line.id);
+    set(leader, 'd', `M64 ${here}L74 ${round(at)}`);
+    set(label, 'y', round(at + 3.3));
+    put(label, labelAt(lines[0], point));
+    set(value, 'y', round(at + 3.3));
+    put(value, energyText(lines[0].energies[point]));
+    set(reach, 'y', round(Math.min(y, at) - 5));
+    set(reach, 'height', round(Math.abs(y - at) + 10));
   }
+  return { show };
 }

@@ -113,8 +113,8 @@ impl Builder {
         self.root.buffers.push(Buffer {
             byte_length: self.buffer.len(),
         });
-        let mut json = serde_json::to_vec(&self.root)
-            .map_err(|error| SceneError::Data(error.to_string()))?;
+        let mut json =
+            serde_json::to_vec(&self.root).map_err(|error| SceneError::Data(error.to_string()))?;
         // Chunks are whole words: the text ends in blanks; the buffer holds words only.
         while json.len() % 4 != 0 {
             json.push(b' ');

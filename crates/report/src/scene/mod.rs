@@ -11,11 +11,11 @@ mod solid;
 mod tests;
 
 use crate::document::{LevelsDocument, Program};
+use crate::draw::wording::heading_formula;
 use glb::Builder;
 use gltf::{Material, Node, Root};
 use place::{frame_matrix, span};
 use serde_json::{Value, json};
-
 
 /// Metres in the scene for 1 Å.
 const METRES_PER_ANGSTROM: f64 = 0.1;
@@ -63,7 +63,9 @@ pub struct SurfaceRecord {
 #[non_exhaustive]
 pub enum SceneError {
     /// More bytes than the form can count.
-    #[error("the surfaces would fill {bytes} bytes, more than a .glb file can hold; ask for fewer orbitals")]
+    #[error(
+        "the surfaces would fill {bytes} bytes, more than a .glb file can hold; ask for fewer orbitals"
+    )]
     TooLarge {
         /// Bytes of the file.
         bytes: u64,
@@ -87,8 +89,11 @@ pub fn surfaces_glb(
         format!("{} {}", Program::this().name, Program::this().version),
         description(document),
     ));
-    let inks = [("positive", [0.16, 0.55, 0.45, 0.82]), ("negative", [0.42, 0.09, 0.36, 0.82])]
-        .map(|(name, colour)| builder.material(Material::new(name, colour)));
+    let inks = [
+        ("positive", [0.16, 0.55, 0.45, 0.82]),
+        ("negative", [0.42, 0.09, 0.36, 0.82]),
+    ]
+    .map(|(name, colour)| builder.material(Material::new(name, colour)));
     let mut shapes = solid::Shapes::new();
     let mut groups = Vec::with_capacity(surfaces.len());
     let mut right = 0.0;
@@ -123,7 +128,7 @@ pub fn surfaces_glb(
     }
     let middle = -0.5 * (right - GAP).max(0.0) * METRES_PER_ANGSTROM;
     let root = builder.node(Node {
-        name: document.molecule.formula.clone(),
+        name: heading_formula(&document.molecule).to_owned(),
         scale: Some([METRES_PER_ANGSTROM; 3]),
         translation: Some([middle, 0.0, 0.0]),
         children: groups,
@@ -150,7 +155,7 @@ fn positions(document: &LevelsDocument) -> Vec<[f64; 3]> {
 fn description(document: &LevelsDocument) -> Value {
     let (molecule, method) = (&document.molecule, &document.method);
     json!({
-        "molecule": molecule.formula,
+        "molecule": heading_formula(molecule),
         "charge": molecule.charge,
         "unit_of_positions": "angstrom",
         "metres_per_angstrom": METRES_PER_ANGSTROM,

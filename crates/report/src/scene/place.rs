@@ -31,7 +31,12 @@ pub(super) fn between(from: [f64; 3], to: [f64; 3], thickness: f64) -> [f64; 16]
     let size = dot(across, across).sqrt();
     let x = across.map(|c| c / size);
     let y = cross(z, x);
-    let columns = [x.map(|c| c * thickness), y.map(|c| c * thickness), along, from];
+    let columns = [
+        x.map(|c| c * thickness),
+        y.map(|c| c * thickness),
+        along,
+        from,
+    ];
     core::array::from_fn(|k| match (k / 4, k % 4) {
         (3, 3) => 1.0,
         (_, 3) => 0.0,

@@ -64,7 +64,11 @@ fn accessors_lie_in_the_buffer_and_hold_the_vertices() {
     assert_eq!(accessor["min"], serde_json::json!([0.0, 0.0, 0.0]));
     assert_eq!(accessor["max"], serde_json::json!([1.0, 1.0, 1.0]));
     assert_eq!(json["asset"]["extras"]["unit_of_positions"], "angstrom");
-    let orbital = json["nodes"].as_array().unwrap().iter().find(|node| node["name"] == "5a1");
+    let orbital = json["nodes"]
+        .as_array()
+        .unwrap()
+        .iter()
+        .find(|node| node["name"] == "5a1");
     assert_eq!(orbital.unwrap()["extras"]["isovalue"], 0.07);
 }
 

@@ -5,6 +5,7 @@ mod levels;
 mod params;
 mod passport;
 mod shape;
+mod surfaces;
 mod sweep;
 mod table;
 
@@ -12,6 +13,7 @@ pub use levels::levels_text;
 pub use params::params_text;
 pub use passport::passport_text;
 pub use shape::shape_text;
+pub use surfaces::surfaces_text;
 pub use sweep::sweep_text;
 
 use crate::document::{Method, MoleculeRecord, Warning};

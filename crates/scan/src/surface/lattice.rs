@@ -47,9 +47,8 @@ impl Lattice {
     fn filling(low: [f64; 3], high: [f64; 3], step: f64) -> Self {
         let counts = core::array::from_fn(|k| ((high[k] - low[k]) / step).ceil() as usize + 2);
         // The same room on both sides.
-        let origin = core::array::from_fn(|k| {
-            0.5 * (low[k] + high[k] - (counts[k] - 1) as f64 * step)
-        });
+        let origin =
+            core::array::from_fn(|k| 0.5 * (low[k] + high[k] - (counts[k] - 1) as f64 * step));
         Self {
             origin,
             step,

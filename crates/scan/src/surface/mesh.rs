@@ -61,7 +61,9 @@ impl Mesh {
                 .collect(),
         };
         if mesh.volume() < 0.0 {
-            mesh.triangles.iter_mut().for_each(|corner| corner.swap(1, 2));
+            mesh.triangles
+                .iter_mut()
+                .for_each(|corner| corner.swap(1, 2));
         }
         mesh
     }
@@ -76,9 +78,9 @@ impl Mesh {
         }
         edges.sort_unstable();
         edges.len() % 2 == 0
-            && edges
-                .chunks_exact(2)
-                .all(|pair| pair[0].0 == pair[1].0 && pair[0].1 == pair[1].1 && pair[0].2 != pair[1].2)
+            && edges.chunks_exact(2).all(|pair| {
+                pair[0].0 == pair[1].0 && pair[0].1 == pair[1].1 && pair[0].2 != pair[1].2
+            })
             && edges
                 .windows(3)
                 .all(|three| (three[0].0, three[0].1) != (three[2].0, three[2].1))
@@ -119,9 +121,8 @@ fn onto(field: &OrbitalField, start: [f64; 3], level: f64, step: f64) -> ([f64; 
             break;
         }
         // Gradients are per bohr, places in Å: the step is turned over in bohr.
-        let by = gradient.map(|g| {
-            orbend_structure::Angstrom::from(orbend_structure::Bohr(away * g / square)).0
-        });
+        let by = gradient
+            .map(|g| orbend_structure::Angstrom::from(orbend_structure::Bohr(away * g / square)).0);
         let length = dot(by, by).sqrt();
         let share = (0.5 * step / length).min(1.0);
         at = core::array::from_fn(|k| at[k] + share * by[k]);

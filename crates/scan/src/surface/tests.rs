@@ -60,8 +60,8 @@ fn a_1s_orbital_has_a_sphere_of_known_radius_and_volume() {
         let area = mesh.area() / (4.0 * PI * most * most);
         assert!(area > 0.995 && area < 1.0, "{share}: {area}");
         for (at, normal) in mesh.vertices.iter().zip(&mesh.normals) {
-            let along = (at[0] - 0.3) * normal[0] + (at[1] + 0.2) * normal[1]
-                + (at[2] - 0.1) * normal[2];
+            let along =
+                (at[0] - 0.3) * normal[0] + (at[1] + 0.2) * normal[1] + (at[2] - 0.1) * normal[2];
             assert!((along / most - 1.0).abs() < 1e-9);
         }
     }
@@ -146,7 +146,14 @@ fn shares_and_lines_that_cannot_be() {
         let error = orbital_surface(&basis, &[1.0], &[[0.0; 3]], share).unwrap_err();
         assert!(error.to_string().contains("from 0.01 to 0.99"));
     }
-    let atom = Molecule::new(vec![Element::from_symbol("H").unwrap()], vec![[0.0; 3]], 0, None, "").unwrap();
+    let atom = Molecule::new(
+        vec![Element::from_symbol("H").unwrap()],
+        vec![[0.0; 3]],
+        0,
+        None,
+        "",
+    )
+    .unwrap();
     let sweep = Request::new(atom).run().unwrap();
     let error = sweep.surface(7, 0, 0.8).unwrap_err().to_string();
     assert_eq!(error, "there is no line 7, the last one is 0");
