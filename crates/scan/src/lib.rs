@@ -19,6 +19,7 @@ mod naming;
 mod orbitals;
 mod plan;
 mod plane;
+pub mod reasons;
 mod request;
 pub mod shape;
 mod solve;
