@@ -18,10 +18,12 @@ mod naming;
 mod orbitals;
 mod plan;
 mod plane;
+mod point_levels;
 mod request;
 pub mod shape;
 mod solve;
 mod special;
+mod stretch;
 mod sweep;
 
 pub use crossing::{
@@ -36,6 +38,8 @@ pub use naming::Name;
 pub use orbitals::{Orbitals, Populations};
 pub use plan::{Notice, SweepPlan};
 pub use plane::{OrbitalPicture, Plane, PlaneValues, orbital_value};
+pub use point_levels::PointLevels;
 pub use request::{Numbering, Request, Route, symmetrized};
 pub use special::SpecialPoint;
+pub use stretch::Stretch;
 pub use sweep::{Level, Point, Sweep};
