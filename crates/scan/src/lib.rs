@@ -19,6 +19,7 @@ mod orbitals;
 mod plan;
 mod plane;
 mod point_levels;
+pub mod reasons;
 mod request;
 pub mod shape;
 mod solve;
