@@ -85,7 +85,10 @@ fn a_point_that_cannot_be_solved_leaves_no_file() {
     let wide = "[set]\nname = \"wide\"\nenergy = \"eV\"\nexponent = \"1/bohr\"\n\n[Li]\n\
         source = \"a test\"\nchecked = \"memory\"\nshells = [\n\
         { shell = \"2s\", hii = -5.4, zeta = 0.2 },\n{ shell = \"2p\", hii = -3.5, zeta = 0.2 },\n]\n";
-    let inputs = [("chain.xyz", format!("6\n\n{chain}")), ("wide.toml", wide.to_owned())];
+    let inputs = [
+        ("chain.xyz", format!("6\n\n{chain}")),
+        ("wide.toml", wide.to_owned()),
+    ];
     for (name, text) in &inputs {
         std::fs::write(folder.path().join(name), text).expect("written");
     }
@@ -97,7 +100,10 @@ fn a_point_that_cannot_be_solved_leaves_no_file() {
         .expect("orbend runs");
     assert_eq!(output.status.code(), Some(2));
     let said = String::from_utf8_lossy(&output.stderr);
-    assert!(said.contains("at stretch 3-4 = 0.3") && said.contains("Li3 and Li4"), "{said}");
+    assert!(
+        said.contains("at stretch 3-4 = 0.3") && said.contains("Li3 and Li4"),
+        "{said}"
+    );
     let left = std::fs::read_dir(folder.path()).expect("a folder").count();
     assert_eq!(left, inputs.len(), "a part of the table was left behind");
 }
@@ -121,7 +127,10 @@ fn the_command_line_says_what_it_drew() {
     assert!(one.contains("in Dinfh"), "{one}");
     let bytes = |name: &str| std::fs::read(folder.path().join(name)).expect("the table");
     assert!(bytes("one.csv") == bytes("two.csv"));
-    let rows = bytes("one.csv").iter().filter(|&&byte| byte == b'\n').count();
+    let rows = bytes("one.csv")
+        .iter()
+        .filter(|&&byte| byte == b'\n')
+        .count();
     assert_eq!(rows, 1 + 6 * 18_001);
 }
 
@@ -140,5 +149,7 @@ fn memory_does_not_grow_with_the_points() {
         .status()
         .expect("orbend runs");
     assert!(status.success());
-    assert!(std::fs::metadata(folder.path().join("a.csv")).is_ok_and(|file| file.len() > 30_000_000));
+    assert!(
+        std::fs::metadata(folder.path().join("a.csv")).is_ok_and(|file| file.len() > 30_000_000)
+    );
 }

@@ -28,7 +28,9 @@ impl Case {
             "ab2" => (ideal("SiF2")?, CoordinateKind::Bend, "2-1-3=90..172:0.02"),
             "ab3" => (ideal("PF3")?, CoordinateKind::Pyramid, "1=90..110:0.005"),
             "benzene" => {
-                let molecule = read_xyz(BENZENE, &XyzOptions::default())?.remove(0).molecule;
+                let molecule = read_xyz(BENZENE, &XyzOptions::default())?
+                    .remove(0)
+                    .molecule;
                 (molecule, CoordinateKind::Stretch, "1-7=1.0..1.2:0.0001")
             }
             other => return Err(format!("{other}: ah2, ab2, ab3 or benzene").into()),

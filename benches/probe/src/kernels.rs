@@ -41,11 +41,7 @@ fn overlap(repetitions: usize) -> Result<(), Box<dyn Error>> {
     let at: Lanes = std::array::from_fn(|lane| 1.9 + 0.1 * lane as f64);
     let displacement = [at, at.map(|x| 0.3 * x), at.map(|x| 1.0 - x)];
     let mut out: Vec<Lanes> = vec![[0.0; LANES]; 81];
-    for (a, b) in [
-        (&carbon, &oxygen),
-        (&silicon, &silicon),
-        (&nickel, &nickel),
-    ] {
+    for (a, b) in [(&carbon, &oxygen), (&silicon, &silicon), (&nickel, &nickel)] {
         let kernel = PairKernel::new(a, b)?;
         for _ in 0..repetitions {
             kernel.block_lanes(black_box(&displacement), black_box(&mut out));
@@ -67,7 +63,11 @@ fn eigen(repetitions: usize) -> Result<(), Box<dyn Error>> {
                 for lane in 0..LANES {
                     let (a, b) = (at(lane, i), at(lane, j));
                     let square: f64 = (0..3).map(|x| (a[x] - b[x]).powi(2)).sum();
-                    let value = if i == j { 1.0 } else { 0.95 * (-0.4 * square).exp() };
+                    let value = if i == j {
+                        1.0
+                    } else {
+                        0.95 * (-0.4 * square).exp()
+                    };
                     s[i * n + j][lane] = value;
                     h[i * n + j][lane] = if i == j {
                         level(i)

@@ -26,7 +26,9 @@ fn main() -> Result<(), Box<dyn Error>> {
         ["matrices", case, count, file] => {
             whole::write_matrices(&Case::named(case)?, count.parse()?, file)
         }
-        _ => Err("count KERNEL REPETITIONS, serve CASE THREADS, or matrices CASE COUNT FILE".into()),
+        _ => {
+            Err("count KERNEL REPETITIONS, serve CASE THREADS, or matrices CASE COUNT FILE".into())
+        }
     }
 }
 

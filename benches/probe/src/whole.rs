@@ -30,7 +30,10 @@ pub(crate) fn solve(plan: &SweepPlan) -> Result<f64, Box<dyn Error>> {
         }
         hamiltonian.fill_lanes(&lanes, &mut s, &mut h);
         let status = room.solve(&h, &s, false)?;
-        if status.iter().any(|lane| matches!(lane, LaneStatus::Failed(_))) {
+        if status
+            .iter()
+            .any(|lane| matches!(lane, LaneStatus::Failed(_)))
+        {
             return Err("a point could not be solved".into());
         }
         total += room.values().iter().flatten().sum::<f64>();

@@ -185,7 +185,12 @@ impl LargeRoom {
         )
         .map_err(|_| LargeFailure::NotConverged)?;
         reflect(
-            MatRef::from_column_major_slice(&self.a, n, n).submatrix(1, 0, reflections, reflections),
+            MatRef::from_column_major_slice(&self.a, n, n).submatrix(
+                1,
+                0,
+                reflections,
+                reflections,
+            ),
             MatRef::from_column_major_slice(&self.factors, block, reflections),
             Conj::No,
             vectors.rb_mut().subrows_mut(1, reflections),

@@ -24,10 +24,11 @@ impl<'a> Whole<'a> {
             _ => Path::new("."),
         };
         if path.is_dir() {
-            return Err(
-                Failure::request(format!("cannot write {}: it is a folder", path.display()))
-                    .fix("name a file in it"),
-            );
+            return Err(Failure::request(format!(
+                "cannot write {}: it is a folder",
+                path.display()
+            ))
+            .fix("name a file in it"));
         }
         let file =
             tempfile::NamedTempFile::new_in(folder).map_err(|cause| unwritable(path, cause))?;

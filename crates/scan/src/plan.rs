@@ -316,11 +316,7 @@ fn kinds(elements: &[Element]) -> Vec<u32> {
 }
 
 /// The pairs of different atoms whose elements the blocks read, in order.
-fn pairs_read(
-    basis: &Basis,
-    hamiltonian: &HamiltonianPlan,
-    adapted: &AdaptedBasis,
-) -> Vec<usize> {
+fn pairs_read(basis: &Basis, hamiltonian: &HamiltonianPlan, adapted: &AdaptedBasis) -> Vec<usize> {
     let atoms = basis.atoms.len();
     let mut wanted = vec![false; atoms * atoms];
     for (row, column) in adapted.blocks.iter().flat_map(|block| block.reads()) {

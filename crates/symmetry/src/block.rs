@@ -101,10 +101,13 @@ impl Block {
     /// The elements of a full matrix, as (row, column), that [`Block::transform`] reads; some come
     /// more than once.
     pub fn reads(&self) -> impl Iterator<Item = (usize, usize)> + '_ {
-        self.rows.iter().zip(&self.reach).flat_map(|(&row, &reach)| {
-            let columns = self.first[..reach].iter().flatten();
-            columns.map(move |&(column, _)| (row, column))
-        })
+        self.rows
+            .iter()
+            .zip(&self.reach)
+            .flat_map(|(&row, &reach)| {
+                let columns = self.first[..reach].iter().flatten();
+                columns.map(move |&(column, _)| (row, column))
+            })
     }
 
     /// Coefficients of all functions from block vectors: `vectors[k * size + i]` is the
