@@ -1,14 +1,15 @@
 //! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
 
 use orbend_report::{
-    FigureOptions, end_pictures, passport_text, sweep_csv, sweep_document,
+    FigureOptions, Support, end_pictures, passport_text, sweep_csv, sweep_document,
     sweep_document_with_orbitals, sweep_figure, sweep_page, sweep_text, to_json,
 };
 use orbend_scan::Sweep;
 
+use super::figure::{self, Rendering};
 use super::geometry_text::geometry_text;
 use super::route::{movement, route};
-use super::{csv, drawing, figure_options, provenance, resolve, text_options};
+use super::{csv, provenance, resolve, text_options};
 use crate::arguments::{NumberingChoice, SweepArguments};
 use crate::failure::Failure;
 use crate::geometry::Geometry;
@@ -17,8 +18,11 @@ use crate::write::write_stdout;
 
 pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "html", "xyz"])?;
-    let figure = figure_options(&arguments.figure, output.numbering)?;
+    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "pdf", "html", "xyz"])?;
+    let mut figure = figure::options(&arguments.figure, output.numbering)?;
+    let rendering = Rendering::new(&arguments.figure)?;
+    let shape = arguments.figure.shape.as_deref();
+    let shape = shape.map(figure::shape_document).transpose()?;
     let movement = movement(&arguments.coordinates)?;
     let mut resolved = resolve(
         &arguments.geometry,
@@ -40,7 +44,10 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
     let document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
         .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
-    let mut figure = figure;
+    if let Some(shape) = &shape {
+        let support = Support::of(shape, &document).map_err(|error| figure::failure(&error))?;
+        figure.support = Some(support);
+    }
     if arguments.figure.orbitals && document.lines.is_some() {
         figure.pictures = Some(end_pictures(&sweep).map_err(|error| Failure::scan(&error))?);
     }
@@ -50,7 +57,7 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
             "csv" => csv(|out| sweep_csv(&document, out))?,
             "html" => page(&sweep, &resolved.geometry, output.numbering, &figure)?,
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
-            _ => drawing(sweep_figure(&document, &figure), ending)?,
+            _ => rendering.bytes(sweep_figure(&document, &figure), ending)?,
         })
     })?;
     if output.json {

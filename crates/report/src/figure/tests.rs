@@ -6,6 +6,8 @@ use crate::synthetic;
 use super::canvas::{Canvas, TextBox};
 use super::measure::{Measure, SMALLEST_FONT};
 use super::options::{ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Theme};
+use super::pictures::{EndPictures, OrbitalPicture};
+use super::support::Support;
 use super::{ladder, sweep};
 
 const WIDTHS: [FigureWidth; 3] = [FigureWidth::Column, FigureWidth::Page, FigureWidth::Slide];
@@ -81,6 +83,136 @@ fn a_given_window_moves_no_label_off_the_page() {
             Err(error) => assert!(matches!(error, FigureError::EmptyWindow { .. })),
         }
     }
+}
+
+/// A picture of every line: one or two lobes of a size of their own on one of three planes.
+fn pictures_of(document: &SweepDocument, seed: u64) -> EndPictures {
+    let (points, half) = (25, 3.0);
+    let picture = |line: u32, end: u64| {
+        let number = (seed * 31 + u64::from(line) * 7 + end * 3) % 11;
+        let size = 0.6 + 0.15 * number as f64;
+        let values = (0..points * points)
+            .map(|k| {
+                let place = |k: usize| k as f64 * 2.0 * half / (points - 1) as f64 - half;
+                let (x, y) = (place(k % points), -place(k / points));
+                let sign = if number % 3 == 0 { 1.0 } else { x };
+                0.3 * sign * (-(x * x + 2.0 * y * y) / (size * size)).exp()
+            })
+            .collect();
+        OrbitalPicture {
+            line,
+            plane: ["the plane of the atoms", "above it", "an upright plane"]
+                [number as usize % 3]
+                .to_owned(),
+            points,
+            half,
+            values,
+            nuclei: vec![[-1.0, 0.2, 0.0], [0.0, 0.0, 0.3], [1.0, 0.2, 0.0]],
+            bonds: vec![(0, 1), (1, 2)],
+        }
+    };
+    let all = |end: u64| {
+        let lines = document.lines.iter().flatten();
+        lines.map(|line| picture(line.id, end)).collect()
+    };
+    EndPictures {
+        start: all(0),
+        end: all(1),
+    }
+}
+
+#[test]
+fn pictures_collide_with_nothing_and_stay_on_the_page() {
+    for seed in 0..60 {
+        let document = synthetic::random(seed);
+        let width = WIDTHS[seed as usize % 3];
+        let with = FigureOptions {
+            pictures: Some(pictures_of(&document, seed)),
+            ..options(width)
+        };
+        let canvas = sweep::compose(&document, &with).unwrap();
+        let shown = canvas.boxes.iter().filter(|b| b.text == "orbital").count();
+        assert!(shown >= 2, "seed {seed}: {shown} pictures");
+        assert_clean(&canvas, width, &format!("seed {seed}"));
+        let svg = sweep::sweep_figure(&document, &with).unwrap();
+        assert!(svg.contains("cut: "), "the planes are stated");
+    }
+}
+
+#[test]
+fn a_verdict_has_its_band_below_the_lines() {
+    let document = synthetic::silicon_difluoride();
+    let with = FigureOptions {
+        support: Some(Support {
+            verdict: "bent".into(),
+            share: Some(0.97),
+            angle: Some(101.0),
+            range: Some((96.0, 104.6)),
+        }),
+        ..FigureOptions::default()
+    };
+    let (plain, banded) = (
+        sweep::sweep_figure(&document, &FigureOptions::default()).unwrap(),
+        sweep::sweep_figure(&document, &with).unwrap(),
+    );
+    assert!(banded.contains("bent, support 0.97: 101° (96° to 105°)"));
+    let band = super::theme::Colours::of(Theme::Light).band;
+    // In the panel and in the key.
+    assert_eq!(banded.matches(band).count(), 2);
+    assert!(!plain.contains(band));
+}
+
+/// Electrons of neighbouring lines do not lie on one another, nor on the mark of a crossing.
+#[test]
+fn electrons_of_crowded_lines_make_way() {
+    let document = synthetic::silicon_difluoride();
+    let svg = sweep::sweep_figure(&document, &FigureOptions::default()).unwrap();
+    let part = svg.split("<g class=\"electrons\">").nth(1).unwrap();
+    let part = part.split("</g>").next().unwrap();
+    let number = |text: &str, key: &str| -> f64 {
+        let rest = text.split(&format!(" {key}=\"")).nth(1).unwrap();
+        rest.split('"').next().unwrap().parse().unwrap()
+    };
+    let discs: Vec<(f64, f64, f64)> = part
+        .split("<circle")
+        .skip(1)
+        .map(|disc| (number(disc, "cx"), number(disc, "cy"), number(disc, "r")))
+        .collect();
+    assert!(discs.len() > 10);
+    for (k, a) in discs.iter().enumerate() {
+        for b in &discs[..k] {
+            let distance = (a.0 - b.0).hypot(a.1 - b.1);
+            assert!(distance > 2.0 * a.2, "{a:?} {b:?}");
+        }
+    }
+}
+
+/// Where a pair holds two electrons at the last point only, no wedge is shaded beside it.
+#[test]
+fn the_gap_is_shaded_for_one_number_of_filled_orbitals() {
+    let mut document = synthetic::silicon_difluoride();
+    let before = sweep::sweep_figure(&document, &FigureOptions::default()).unwrap();
+    let last = document.points.last_mut().unwrap();
+    let homo = last
+        .levels
+        .iter()
+        .rposition(|level| level.occupation.get() > 1e-6)
+        .unwrap();
+    last.levels[homo].occupation = synthetic::n(1.0);
+    last.levels[homo + 1].occupation = synthetic::n(1.0);
+    let after = sweep::sweep_figure(&document, &FigureOptions::default()).unwrap();
+    let gap = super::theme::Colours::of(Theme::Light).gap;
+    let area = |svg: &str| -> String {
+        let path = svg.split(&format!("\" fill=\"{gap}\"")).next().unwrap();
+        path.rsplit('"').next().unwrap().to_owned()
+    };
+    let right = |path: &str| -> f64 {
+        path.split(['M', 'L', 'Z'])
+            .filter_map(|at| at.split(' ').next()?.parse().ok())
+            .fold(0.0, f64::max)
+    };
+    assert_eq!(area(&after).matches('M').count(), 1);
+    assert!(right(&area(&after)) < right(&area(&before)));
 }
 
 #[test]
