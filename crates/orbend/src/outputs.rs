@@ -52,6 +52,13 @@ impl<'a> Outputs<'a> {
         Ok(Self { files: checked })
     }
 
+    /// Whether a file with one of these endings is asked for.
+    pub(crate) fn any(&self, endings: &[&str]) -> bool {
+        self.files
+            .iter()
+            .any(|(_, ending)| endings.contains(&ending.as_str()))
+    }
+
     /// Makes every file's bytes first and writes them then.
     pub(crate) fn write(
         &self,

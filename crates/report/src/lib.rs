@@ -22,6 +22,7 @@ mod from_scan;
 mod from_scan_lines;
 mod from_scan_orbitals;
 mod from_scan_pictures;
+mod from_scan_populations;
 mod from_shape;
 mod lettering;
 mod page;

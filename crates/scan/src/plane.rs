@@ -117,11 +117,7 @@ impl Sweep {
     ///
     /// # Errors
     /// As for the run itself.
-    pub fn pictures(
-        &self,
-        point: usize,
-        points: usize,
-    ) -> Result<Vec<OrbitalPicture>, ScanError> {
+    pub fn pictures(&self, point: usize, points: usize) -> Result<Vec<OrbitalPicture>, ScanError> {
         let orbitals = self.orbitals(point)?;
         let positions = self.point(point)?.positions;
         let last = self.points() - 1;
@@ -138,9 +134,8 @@ impl Sweep {
             .map(|line| {
                 let row = orbitals.coefficients.row(line).to_vec();
                 let orbital = (self.plan().basis(), row.as_slice(), positions.as_slice());
-                let mut plane = frame.best(|plane| {
-                    PlaneValues::new(orbital, plane, (half, 24)).content()
-                });
+                let mut plane =
+                    frame.best(|plane| PlaneValues::new(orbital, plane, (half, 24)).content());
                 let nuclei: Vec<[f64; 3]> = positions
                     .iter()
                     .map(|at| {
@@ -281,7 +276,9 @@ impl Frame {
         let inside: Vec<String> = (0..atoms)
             .filter(|&atom| {
                 let places = self.away.iter().skip(atom).step_by(atoms.max(1));
-                places.map(|at| dot(*at, out)).all(|height| height.abs() < 0.05)
+                places
+                    .map(|at| dot(*at, out))
+                    .all(|height| height.abs() < 0.05)
             })
             .map(|atom| molecule.atom_name(atom))
             .collect();
@@ -423,14 +420,28 @@ mod tests {
             words.dedup();
             words
         };
-        let bend = planes("SF2", "2-1-3=100..140:20", orbend_structure::CoordinateKind::Bend);
+        let bend = planes(
+            "SF2",
+            "2-1-3=100..140:20",
+            orbend_structure::CoordinateKind::Bend,
+        );
         assert_eq!(
             bend,
-            ["0.5 Å above the plane of the atoms", "the plane of the atoms"]
+            [
+                "0.5 Å above the plane of the atoms",
+                "the plane of the atoms"
+            ]
         );
-        let pyramid = planes("BCl3", "1=100..120:10", orbend_structure::CoordinateKind::Pyramid);
+        let pyramid = planes(
+            "BCl3",
+            "1=100..120:10",
+            orbend_structure::CoordinateKind::Pyramid,
+        );
         assert!(pyramid.len() > 1, "{pyramid:?}");
-        assert!(pyramid.iter().all(|words| words.starts_with("the ")), "{pyramid:?}");
+        assert!(
+            pyramid.iter().all(|words| words.starts_with("the ")),
+            "{pyramid:?}"
+        );
         assert!(
             pyramid.contains(&"the upright plane through B1, Cl2".to_owned()),
             "{pyramid:?}"

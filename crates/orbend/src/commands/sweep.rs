@@ -1,7 +1,7 @@
 //! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
 
 use orbend_report::{
-    FigureOptions, Support, end_pictures, passport_text, sweep_csv, sweep_document,
+    FigureError, FigureOptions, Support, end_pictures, passport_text, sweep_csv, sweep_document,
     sweep_document_with_orbitals, sweep_figure, sweep_page, sweep_text, to_json,
 };
 use orbend_scan::Sweep;
@@ -18,7 +18,10 @@ use crate::write::write_stdout;
 
 pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "pdf", "html", "xyz"])?;
+    let outputs = Outputs::check(
+        &output.out,
+        &["json", "csv", "svg", "png", "pdf", "html", "xyz"],
+    )?;
     let mut figure = figure::options(&arguments.figure, output.numbering)?;
     let rendering = Rendering::new(&arguments.figure)?;
     let shape = arguments.figure.shape.as_deref();
@@ -40,6 +43,9 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
         .request
         .plan()
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
+    if plan.path().axes().len() > 1 && outputs.any(&["svg", "png", "pdf", "html"]) {
+        return Err(figure::failure(&FigureError::Grid));
+    }
     let sweep = in_pool(arguments.jobs, || Sweep::run(plan))?
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
     let document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))

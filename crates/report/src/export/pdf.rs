@@ -153,6 +153,9 @@ mod tests {
         let outlined = crate::outline_text(&figure).unwrap();
         let page = page(&outlined, false).unwrap();
         assert!(find(&page, b"LiberationSans").is_none());
-        assert!(matches!(figure_pdf("no drawing"), Err(ImageError::Drawing(_))));
+        assert!(matches!(
+            figure_pdf("no drawing"),
+            Err(ImageError::Drawing(_))
+        ));
     }
 }

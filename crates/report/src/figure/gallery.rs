@@ -32,11 +32,7 @@ const BETWEEN: f64 = 0.3;
 
 impl Gallery {
     /// The pictures that belong to the labels; `None` where none are asked for or known.
-    pub(crate) fn new(
-        sheet: &Sheet<'_>,
-        starts: &[EndLabel],
-        ends: &[EndLabel],
-    ) -> Option<Self> {
+    pub(crate) fn new(sheet: &Sheet<'_>, starts: &[EndLabel], ends: &[EndLabel]) -> Option<Self> {
         let pictures = sheet.options.pictures.as_ref()?;
         // A column of a journal has room for one orbital of a degenerate set.
         let most = match sheet.options.width {

@@ -116,8 +116,20 @@ fn mark(
             canvas.disc(at(1.0), radius, "none", (colours.soft, thin));
         }
         Mark::Nuclei => {
-            super::pictures::nucleus(canvas, measure, colours, (middle - 0.4 * measure.key, y), true);
-            super::pictures::nucleus(canvas, measure, colours, (middle + 0.4 * measure.key, y), false);
+            super::pictures::nucleus(
+                canvas,
+                measure,
+                colours,
+                (middle - 0.4 * measure.key, y),
+                true,
+            );
+            super::pictures::nucleus(
+                canvas,
+                measure,
+                colours,
+                (middle + 0.4 * measure.key, y),
+                false,
+            );
         }
         Mark::Plane => {
             let (half, tilt) = (0.28 * measure.key, 0.35 * measure.key);

@@ -144,7 +144,11 @@ pub(crate) fn draw(
     let half = |height: Option<&f64>| {
         let row = (ASCENT + DESCENT) * size;
         0.5 * height.map_or(row, |height| {
-            if gallery.is_some() { height.max(row) } else { row }
+            if gallery.is_some() {
+                height.max(row)
+            } else {
+                row
+            }
         })
     };
     let places = spread_apart(

@@ -14,6 +14,7 @@ mod panel;
 mod pictures;
 pub(crate) mod scale;
 mod series;
+mod series_classes;
 mod sheet;
 mod sum;
 mod support;

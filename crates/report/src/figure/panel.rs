@@ -50,12 +50,7 @@ pub(crate) fn shade_gap(canvas: &mut Canvas, sheet: &Sheet<'_>) -> bool {
         else {
             return false;
         };
-        samples.push((
-            filled,
-            sheet.x(x),
-            sheet.scale.y(lumo),
-            sheet.scale.y(homo),
-        ));
+        samples.push((filled, sheet.x(x), sheet.scale.y(lumo), sheet.scale.y(homo)));
     }
     // Where a set becomes degenerate its electrons may share more orbitals at one point: the gap
     // above them has nothing to do with the one beside it.

@@ -58,7 +58,12 @@ impl OrbitalPicture {
         let mut rings = Vec::new();
         for polygon in found.iter().flat_map(|contour| &contour.geometry().0) {
             for ring in std::iter::once(polygon.exterior()).chain(polygon.interiors()) {
-                rings.push(ring.0.iter().map(|at| (place(at.x), -place(at.y))).collect());
+                rings.push(
+                    ring.0
+                        .iter()
+                        .map(|at| (place(at.x), -place(at.y)))
+                        .collect(),
+                );
             }
         }
         rings

@@ -6,8 +6,8 @@ use crate::lettering::Lettering;
 
 use super::axes::energy_axis;
 use super::canvas::{ASCENT, Anchor, Canvas, path};
-use super::scale::EnergyScale;
 use super::measure::Measure;
+use super::scale::EnergyScale;
 use super::sheet::Sheet;
 use super::theme::Colours;
 use super::xml::length;

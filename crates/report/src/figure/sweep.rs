@@ -52,7 +52,8 @@ pub(crate) fn compose(
     let titled = options.title && heading.width(measure.heading) < measure.page - 2.0 * measure.pad;
     let gallery = Gallery::new(&sheet, &starts, &ends);
     let gallery = gallery.as_ref();
-    let crowd = |labels: &[EndLabel], side| -> f64 { heights(&sheet, labels, side, gallery).iter().sum() };
+    let crowd =
+        |labels: &[EndLabel], side| -> f64 { heights(&sheet, labels, side, gallery).iter().sum() };
     let needed = crowd(&starts, Side::Left).max(crowd(&ends, Side::Right))
         + (ASCENT + DESCENT) * size
         - sheet.measure.label_distance();

@@ -228,7 +228,12 @@ mod tests {
             let drawn: f64 = lengths.iter().step_by(2).sum();
             let whole: f64 = lengths.iter().sum();
             let longest = lengths.iter().step_by(2).copied().fold(0.0, f64::max);
-            let gap = lengths.iter().skip(1).step_by(2).copied().fold(0.0, f64::max);
+            let gap = lengths
+                .iter()
+                .skip(1)
+                .step_by(2)
+                .copied()
+                .fold(0.0, f64::max);
             if lengths.is_empty() {
                 [1.0, 100.0, 0.0, 0.0]
             } else {
