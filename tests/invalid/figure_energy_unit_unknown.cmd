@@ -2,5 +2,5 @@
 args: sweep water.xyz --bend 2-1-3=90..180:10 --energy-unit kcal --out w.svg
 exit: 2
 says: kcal
-says: hartree
+fix: hartree
 with: water.xyz

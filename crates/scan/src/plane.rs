@@ -260,7 +260,7 @@ impl Frame {
             plane(0.5, [u, w], "0.5 Å beside the upright plane"),
         ] {
             let own = content(&other);
-            if found <= 0.02 * own {
+            if found <= 0.15 * own {
                 best = other;
                 found = own;
             }
