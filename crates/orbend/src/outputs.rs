@@ -52,9 +52,11 @@ impl<'a> Outputs<'a> {
         Ok(Self { files: checked })
     }
 
-    /// Whether a file has this ending.
-    pub(crate) fn ends_in(&self, ending: &str) -> bool {
-        self.files.iter().any(|(_, own)| own == ending)
+    /// Whether a file with one of these endings is asked for.
+    pub(crate) fn any(&self, endings: &[&str]) -> bool {
+        self.files
+            .iter()
+            .any(|(_, ending)| endings.contains(&ending.as_str()))
     }
 
     /// The only table asked for, where everything else can do without most of the points of a long

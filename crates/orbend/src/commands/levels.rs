@@ -6,9 +6,10 @@ use orbend_report::{
 };
 use orbend_scan::SURFACE_SHARES;
 
+use super::figure::{self, Rendering};
 use super::geometry_text::geometry_text;
 use super::sweep::in_pool;
-use super::{csv, drawing, figure_numbering, provenance, resolve, text_options};
+use super::{csv, provenance, resolve, text_options};
 use crate::arguments::LevelsArguments;
 use crate::failure::Failure;
 use crate::outputs::Outputs;
@@ -16,7 +17,10 @@ use crate::write::write_stdout;
 
 pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "glb", "xyz"])?;
+    let outputs = Outputs::check(
+        &output.out,
+        &["json", "csv", "svg", "png", "pdf", "glb", "xyz"],
+    )?;
     check_surface(arguments, &outputs)?;
     let resolved = resolve(
         &arguments.geometry,
@@ -32,7 +36,7 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
         named_surfaces(
             &sweep,
             &arguments.surface.surface,
-            figure_numbering(output.numbering),
+            figure::numbering(output.numbering),
             arguments.surface.share,
         )
     })?
@@ -48,10 +52,10 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
             _ => {
                 let options = FigureOptions {
-                    numbering: figure_numbering(output.numbering),
+                    numbering: figure::numbering(output.numbering),
                     ..FigureOptions::default()
                 };
-                drawing(levels_figure(&document, &options), ending)?
+                Rendering::default().bytes(levels_figure(&document, &options), ending)?
             }
         })
     })?;
@@ -68,7 +72,7 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
 /// Surfaces need a file and a file needs surfaces, with a share that can be enclosed.
 fn check_surface(arguments: &LevelsArguments, outputs: &Outputs<'_>) -> Result<(), Failure> {
     let asked = &arguments.surface;
-    match (asked.surface.is_empty(), outputs.ends_in("glb")) {
+    match (asked.surface.is_empty(), outputs.any(&["glb"])) {
         (true, true) => {
             return Err(Failure::request(
                 "a .glb file holds the surfaces of orbitals, but none is named",
