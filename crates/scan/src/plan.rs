@@ -388,3 +388,22 @@ fn sample_geometries(path: &PathPlan, atoms: usize) -> Result<Vec<Vec<[f64; 3]>>
     }
     Ok(samples)
 }
+
+#[cfg(test)]
+mod tests {
+    use orbend_structure::{Formula, ideal_geometry};
+
+    use super::*;
+
+    #[test]
+    fn what_symmetry_says_twice_is_read_once() {
+        // Pairs of atoms in all, and those of one atom of each orbit that is enough.
+        for (formula, all, read) in [("H2S", 3, 2), ("PF3", 6, 3), ("SF6", 21, 6)] {
+            let formula = Formula::parse(formula).unwrap();
+            let molecule = ideal_geometry(&formula, None, &[]).unwrap().molecule;
+            let plan = Request::new(molecule).plan().unwrap();
+            assert_eq!(plan.hamiltonian.pairs().len(), all);
+            assert!(plan.read.len() <= read, "{:?}", plan.read);
+        }
+    }
+}
