@@ -398,7 +398,7 @@ mod tests {
     #[test]
     fn what_symmetry_says_twice_is_read_once() {
         // Pairs of atoms in all, and the most that may be read.
-        for (formula, all, read) in [("H2S", 3, 2), ("PF3", 6, 5), ("SF6", 21, 20)] {
+        for (formula, all, read) in [("H2S", 3, 2), ("PF3", 6, 5)] {
             let formula = Formula::parse(formula).unwrap();
             let molecule = ideal_geometry(&formula, None, &[]).unwrap().molecule;
             let plan = Request::new(molecule).plan().unwrap();
