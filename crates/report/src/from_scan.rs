@@ -103,6 +103,7 @@ pub fn sweep_document(
             None
         },
         crossing_search: if single { crossing_search(plan)? } else { None },
+        why: None,
         warnings: warnings(plan, provenance),
         missing,
     })

@@ -159,6 +159,7 @@ pub(crate) fn sweep(frame: &Frame<'_>, xs: &[f64], sketches: &[Sketch]) -> Sweep
         crossing_search: None,
         followed: None,
         minimum: None,
+        why: None,
         warnings: vec![],
         missing: vec![],
     }

@@ -38,8 +38,12 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
     let sweep = in_pool(arguments.jobs, || Sweep::run(plan))?
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
-    let document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
+    let asked = super::why::asked(&sweep, &arguments.why)?;
+    let mut document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
         .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
+    if !asked.is_empty() {
+        document.why = Some(super::why::records(&sweep, &asked)?);
+    }
     let mut figure = figure;
     if arguments.figure.orbitals && document.lines.is_some() {
         figure.pictures = Some(end_pictures(&sweep).map_err(|error| Failure::scan(&error))?);

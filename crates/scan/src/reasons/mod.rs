@@ -1,5 +1,9 @@
-//! Why a level moves: analytic derivatives and what they are made of.
+//! Why a level moves: analytic derivatives, the slope ledger, populations and what they say.
 
 mod gradients;
+mod ledger;
+mod words;
 
 pub use gradients::{Gradients, slope};
+pub use ledger::{Change, Mixing, ShellTerm, Slope};
+pub use words::TermGroup;
