@@ -12,6 +12,7 @@ use crate::document::{
     OverlapPopulation, Passport, Point, Program, ShellPopulation, ShellValues, SpecialLabel,
     SumMinimum, SweepDocument, SweepSchema, SymmetryRecord, Units, Warning,
 };
+use crate::from_scan_bonds::describe_bonds;
 use crate::from_scan_lines::{crossing_records, crossing_search, followed_records};
 
 /// What the scan does not know about its input and its reader.
@@ -122,8 +123,7 @@ pub fn levels_document(
     let mut point = point_record(sweep, 0, &mut missing)?;
     let orbitals = sweep.orbitals(0)?;
     let populations = describe_orbitals(plan, &orbitals, &mut point)?;
-    point.charges = Some(charges(plan, &populations)?);
-    point.overlap_populations = Some(overlap_populations(&populations)?);
+    describe_bonds(plan, &orbitals, &populations, &mut point)?;
     Ok(LevelsDocument {
         schema: LevelsSchema,
         program: Program::this(),
@@ -377,6 +377,8 @@ fn point_record(
                 full_valence_label: level.full_name.valence_plain.clone(),
                 coefficients: None,
                 populations: None,
+                bonds: None,
+                tags: None,
             })
         })
         .collect::<Result<_, NotFinite>>()?;
@@ -513,12 +515,16 @@ fn shell_populations(
                 element: elements[shell.atom].symbol().to_owned(),
                 shell: shell_name(shell.n, shell.l),
                 share: Number::new(share)?,
+                lowdin: None,
             })
         })
         .collect()
 }
 
-fn charges(plan: &SweepPlan, populations: &Populations) -> Result<Vec<AtomCharge>, NotFinite> {
+pub(crate) fn charges(
+    plan: &SweepPlan,
+    populations: &Populations,
+) -> Result<Vec<AtomCharge>, NotFinite> {
     plan.molecule()
         .elements
         .iter()
@@ -529,12 +535,15 @@ fn charges(plan: &SweepPlan, populations: &Populations) -> Result<Vec<AtomCharge
                 atom,
                 element: element.symbol().to_owned(),
                 charge: Number::new(charge)?,
+                lowdin: None,
             })
         })
         .collect()
 }
 
-fn overlap_populations(populations: &Populations) -> Result<Vec<OverlapPopulation>, NotFinite> {
+pub(crate) fn overlap_populations(
+    populations: &Populations,
+) -> Result<Vec<OverlapPopulation>, NotFinite> {
     let atoms = populations.pairs.nrows();
     let mut records = Vec::new();
     for first in 0..atoms {

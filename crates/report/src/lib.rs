@@ -18,6 +18,7 @@ mod draw;
 mod figure;
 mod from_parameters;
 mod from_scan;
+mod from_scan_bonds;
 mod from_scan_lines;
 mod from_scan_orbitals;
 mod from_scan_pictures;
@@ -38,6 +39,7 @@ pub use figure::{
 };
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
+pub use from_scan_bonds::add_populations;
 pub use from_scan_orbitals::sweep_document_with_orbitals;
 pub use from_scan_pictures::end_pictures;
 pub use from_scan_why::why_record;

@@ -204,6 +204,8 @@ fn point(frame: &Frame<'_>, xs: &[f64], k: usize, lines: &[LineRecord]) -> Point
                 full_valence_label: String::new(),
                 coefficients: None,
                 populations: None,
+                bonds: None,
+                tags: None,
             });
         }
         place += size;

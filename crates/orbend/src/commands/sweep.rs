@@ -1,7 +1,7 @@
 //! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
 
 use orbend_report::{
-    FigureOptions, end_pictures, passport_text, sweep_csv, sweep_document,
+    FigureOptions, add_populations, end_pictures, passport_text, sweep_csv, sweep_document,
     sweep_document_with_orbitals, sweep_figure, sweep_page, sweep_text, to_json,
 };
 use orbend_scan::Sweep;
@@ -41,6 +41,16 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let asked = super::why::asked(&sweep, &arguments.why)?;
     let mut document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
         .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
+    if arguments.populations {
+        if document.lines.is_none() {
+            return Err(
+                Failure::request("--populations: a grid has no lines to describe")
+                    .fix("sweep along one coordinate"),
+            );
+        }
+        add_populations(&sweep, &mut document)
+            .map_err(|error| Failure::from_library(error.to_string()))?;
+    }
     if !asked.is_empty() {
         document.why = Some(super::why::records(&sweep, &asked)?);
     }

@@ -82,9 +82,13 @@ fn find(sweep: &Sweep, label: &str) -> Option<usize> {
         let mut levels = point.levels.iter();
         let filled = |electrons: f64| electrons > 1e-6;
         if occupied {
-            levels.rfind(|level| filled(level.occupation)).map(|level| level.line)
+            levels
+                .rfind(|level| filled(level.occupation))
+                .map(|level| level.line)
         } else {
-            levels.find(|level| !filled(level.occupation)).map(|level| level.line)
+            levels
+                .find(|level| !filled(level.occupation))
+                .map(|level| level.line)
         }
     };
     match label.to_ascii_lowercase().as_str() {
@@ -107,11 +111,17 @@ fn unknown(sweep: &Sweep, word: &str, label: &str) -> Failure {
     let core = plan.request().numbering == Numbering::Core;
     let mut known: Vec<&str> = Vec::new();
     for head in plan.lines() {
-        let name = if core { &head.name.plain } else { &head.name.valence_plain };
+        let name = if core {
+            &head.name.plain
+        } else {
+            &head.name.valence_plain
+        };
         if !known.contains(&name.as_str()) {
             known.push(name);
         }
     }
-    Failure::request(format!("--why {word}: no line is called `{label}`"))
-        .fix(format!("the lines are {}, or write homo or lumo", known.join(", ")))
+    Failure::request(format!("--why {word}: no line is called `{label}`")).fix(format!(
+        "the lines are {}, or write homo or lumo",
+        known.join(", ")
+    ))
 }

@@ -14,12 +14,18 @@ const SMALLEST_EV: f64 = 0.005;
 
 /// The sentence and the table of every line asked about.
 pub(super) fn why(out: &mut String, document: &SweepDocument, options: &TextOptions) {
-    let unit = document.coordinates.first().map(|coordinate| coordinate.unit);
+    let unit = document
+        .coordinates
+        .first()
+        .map(|coordinate| coordinate.unit);
     for record in document.why.iter().flatten() {
         let place = |at: f64| unit.map_or_else(String::new, |unit| value_with_unit(at, unit));
         let label = options.label(options.pick(&record.label, &record.valence_label));
         let (from, to) = (place(record.from.get()), place(record.to.get()));
-        options.paragraph(out, &format!("why {label}, {from} to {to}: {}", record.text));
+        options.paragraph(
+            out,
+            &format!("why {label}, {from} to {to}: {}", record.text),
+        );
         out.push('\n');
         out.push_str(&table(record, options).render(options.columns()));
         let words: Vec<String> = record
@@ -75,7 +81,10 @@ fn table(record: &WhyRecord, options: &TextOptions) -> Table {
     if rest.abs() >= 0.0005 {
         table.row(vec!["other pairs".into(), signed(rest, 3), String::new()]);
     }
-    let held = format!("------- orbital held: {} eV -------", signed(record.first_order_sum.get(), 3));
+    let held = format!(
+        "------- orbital held: {} eV -------",
+        signed(record.first_order_sum.get(), 3)
+    );
     table.rule(&held);
     for mixing in &record.mixing {
         if mixing.value.get().abs() >= 0.0005 {
@@ -87,7 +96,10 @@ fn table(record: &WhyRecord, options: &TextOptions) -> Table {
     table.row(vec![
         "sum: change of the level".into(),
         signed(record.change.get(), 3),
-        format!("{} % of its character kept", ascii_number(100.0 * record.kept.get(), 0)),
+        format!(
+            "{} % of its character kept",
+            ascii_number(100.0 * record.kept.get(), 0)
+        ),
     ]);
     table
 }
@@ -102,5 +114,9 @@ fn pair_words(term: &PairTerm) -> String {
 
 fn signed(value: f64, decimals: usize) -> String {
     let text = ascii_number(value, decimals);
-    if value >= 0.0 { format!("+{text}") } else { text }
+    if value >= 0.0 {
+        format!("+{text}")
+    } else {
+        text
+    }
 }

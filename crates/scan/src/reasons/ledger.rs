@@ -104,10 +104,7 @@ impl SweepPlan {
         let speeds = self.speeds(values, axis)?;
         let orbitals = self.orbitals(values)?;
         let (s, h) = self.gradients(values)?.along(&speeds);
-        let (s, h) = (
-            orbitals.coefficients.dot(&s),
-            orbitals.coefficients.dot(&h),
-        );
+        let (s, h) = (orbitals.coefficients.dot(&s), orbitals.coefficients.dot(&h));
         let own: Vec<f64> = (0..self.lines.len())
             .map(|line| {
                 let vector = orbitals.coefficients.row(line);
@@ -162,7 +159,10 @@ impl SweepPlan {
         let set = self.set_of(line);
         let share = 1.0 / set.len() as f64;
         let energies = [&first, &last].map(|orbitals| {
-            set.iter().map(|&member| orbitals.energies[member]).sum::<f64>() * share
+            set.iter()
+                .map(|&member| orbitals.energies[member])
+                .sum::<f64>()
+                * share
         });
         let mut first_order = pairs_of_shells(&self.basis);
         let mut mixed = vec![0.0; self.lines.len()];
@@ -284,11 +284,7 @@ fn pairs_of_shells(basis: &Basis) -> Vec<ShellTerm> {
 }
 
 /// Adds the value and the overlap populations of every pair of functions to its pair of shells.
-fn add_terms(
-    basis: &Basis,
-    terms: &mut [ShellTerm],
-    of: impl Fn(usize, usize) -> (f64, [f64; 2]),
-) {
+fn add_terms(basis: &Basis, terms: &mut [ShellTerm], of: impl Fn(usize, usize) -> (f64, [f64; 2])) {
     for term in terms {
         let [left, right] = term.shells.map(|shell| {
             let shell = &basis.shells[shell];

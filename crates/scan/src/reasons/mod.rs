@@ -2,8 +2,12 @@
 
 mod gradients;
 mod ledger;
+mod populations;
 mod words;
 
 pub use gradients::{Gradients, slope};
 pub use ledger::{Change, Mixing, ShellTerm, Slope};
+pub use populations::{
+    AGAINST, BONDING, Bond, Characters, LONE_PAIR, LineCharacter, METAL_D, ONE_KIND,
+};
 pub use words::TermGroup;

@@ -71,7 +71,11 @@ impl SweepPlan {
             .map(|permutation| {
                 let [a, b] = term.atoms.map(|atom| permutation[atom]);
                 let (one, other) = ([a, place[0]], [b, place[1]]);
-                let (low, high) = if one <= other { (one, other) } else { (other, one) };
+                let (low, high) = if one <= other {
+                    (one, other)
+                } else {
+                    (other, one)
+                };
                 [low[0], low[1], high[0], high[1]]
             })
             .min()
@@ -145,7 +149,10 @@ impl SweepPlan {
             } else {
                 "adds"
             };
-            (mixing.value_ev, format!("mixing with {other} ({mostly}) {verb}"))
+            (
+                mixing.value_ev,
+                format!("mixing with {other} ({mostly}) {verb}"),
+            )
         }));
         terms.sort_by(|a, b| b.0.abs().total_cmp(&a.0.abs()));
         let largest = terms.first().map_or(0.0, |term| term.0.abs());
@@ -200,7 +207,11 @@ fn overlap_words(group: &TermGroup) -> String {
     if before.abs() < NO_OVERLAP && after.abs() < NO_OVERLAP {
         return format!("{name} coupling changes");
     }
-    let bonding = if before.abs() >= NO_OVERLAP { before } else { after } > 0.0;
+    let bonding = if before.abs() >= NO_OVERLAP {
+        before
+    } else {
+        after
+    } > 0.0;
     match (bonding, less && same_sign, same_sign) {
         (true, true, _) => format!("{name} overlap is lost"),
         (true, false, true) => format!("{name} overlap is gained"),
