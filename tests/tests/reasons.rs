@@ -35,7 +35,7 @@ fn cases() -> Vec<(Molecule, CoordinateKind, &'static str, f64)> {
         (formula("SiF2"), Bend, "2-1-3=80..180:2", 100.0),
         (formula("PF3"), Pyramid, "1=90..120:1", 104.0),
         (formula("H2S"), Stretch, "1-2=1.2..1.6:0.1", 1.4),
-        (file("ethylene"), Twist, "3-1-2-4=0..90:5", 35.0),
+        (file("ethylene"), Twist, "3-1-2-5=0..90:5", 35.0),
     ]
 }
 
@@ -272,7 +272,7 @@ fn the_ledger_does_not_depend_on_where_the_molecule_lies() {
     let order: Vec<usize> = (0..here.positions.len()).collect();
     let there = moved(&here, matrix, [1.0, -2.0, 0.4], &order);
     let plans =
-        [here, there].map(|molecule| plan(molecule, Twist, "3-1-2-4=0..90:5", Method::default()));
+        [here, there].map(|molecule| plan(molecule, Twist, "3-1-2-5=0..90:5", Method::default()));
     for line in 0..plans[0].lines().len() {
         let [a, b] = [0, 1].map(|k| plans[k].slope(line, &[35.0], 0).expect("slope"));
         for (one, other) in a.terms.iter().zip(&b.terms) {
@@ -321,7 +321,7 @@ fn arguments_of_the_textbooks() {
     let ethylene = plan(
         file("ethylene"),
         Twist,
-        "3-1-2-4=0..90:5",
+        "3-1-2-5=0..90:5",
         Method::default(),
     );
     let homo = ethylene.lines()[5].name.plain.clone();

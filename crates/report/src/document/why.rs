@@ -24,7 +24,8 @@ pub struct WhyRecord {
     /// The second energy minus the first, in eV.
     pub change: Number,
     /// What the orbital would change by if it were held as it is at `from`, in eV: the sum of
-    /// 2 cᵢcⱼ (ΔHᵢⱼ − ε ΔSᵢⱼ)/c†S′c over functions i, j of two atoms.
+    /// 2 cᵢcⱼ (ΔHᵢⱼ − ε ΔSᵢⱼ)/c†S′c over functions i, j of two atoms that move with their atoms and
+    /// turn with the bonds of their atoms.
     pub first_order_sum: Number,
     /// Its parts by pairs of shells, the largest first.
     pub first_order: Vec<PairTerm>,

@@ -12,6 +12,9 @@ const MOST_ROWS: usize = 8;
 /// Parts smaller than this (eV) are added up in one row.
 const SMALLEST_EV: f64 = 0.005;
 
+/// Slopes smaller than this (eV per unit) are none.
+const SMALLEST_SLOPE: f64 = 1e-9;
+
 /// The sentence and the table of every line asked about.
 pub(super) fn why(out: &mut String, document: &SweepDocument, options: &TextOptions) {
     let unit = document
@@ -38,12 +41,12 @@ pub(super) fn why(out: &mut String, document: &SweepDocument, options: &TextOpti
                     .take(2)
                     .map(|term| format!("{} {}", term.name, signed(term.value.get(), 4)))
                     .collect();
-                format!(
-                    "at {} {} ({})",
-                    place(slope.at.get()),
-                    signed(slope.slope.get(), 5),
-                    largest.join(", ")
-                )
+                let slope_words = signed(slope.slope.get(), 5);
+                let place = place(slope.at.get());
+                if slope.slope.get().abs() < SMALLEST_SLOPE {
+                    return format!("at {place} none");
+                }
+                format!("at {place} {slope_words} ({})", largest.join(", "))
             })
             .collect();
         if !words.is_empty() {

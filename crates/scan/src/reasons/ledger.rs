@@ -2,8 +2,10 @@
 
 use ndarray::{Array2, ArrayView1};
 use orbend_hamiltonian::Basis;
+use orbend_structure::BondGraph;
 
 use super::Gradients;
+use super::turning::{turning, turns};
 use crate::error::ScanError;
 use crate::orbitals::Orbitals;
 use crate::plan::SweepPlan;
@@ -25,7 +27,8 @@ pub struct ShellTerm {
 /// dε/dq of a line at one geometry, split over pairs of shells: the terms add up to it.
 ///
 /// dε/dq = Σ 2 cᵢcⱼ (∂Hᵢⱼ − ε ∂Sᵢⱼ) over functions i, j of two different atoms
-/// ([`Gradients`]); of a degenerate set the mean of its members, which does not depend on the
+/// ([`Gradients`]), for functions that turn with the bonds of their atoms: so a bond that swings
+/// as a whole, or a group that turns, gives nothing. Of a degenerate set the mean of its members, which does not depend on the
 /// choice of partners.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Slope {
@@ -49,7 +52,8 @@ pub struct Mixing {
 /// The change of a line's energy between two geometries, split so that the parts add up to it.
 ///
 /// The orbitals of the first geometry are carried along: coefficients held, functions moving
-/// with their atoms. In them, with h = C†H₂C and s = C†S₂C, the orbital of the second geometry
+/// with their atoms and turning with the bonds of their atoms (the rotation that lays the
+/// directions of an atom's bonds onto the new ones: Kabsch, Acta Cryst. A 32, 922 (1976)). In them, with h = C†H₂C and s = C†S₂C, the orbital of the second geometry
 /// is Σ uₖ and (h − εs)u = 0, whose row of the line itself reads
 ///
 /// ε = hₐₐ/sₐₐ + Σₖ (hₐₖ − ε sₐₖ) uₖ / (sₐₐ uₐ).
@@ -127,7 +131,19 @@ impl SweepPlan {
     pub fn slope(&self, line: usize, values: &[f64], axis: usize) -> Result<Slope, ScanError> {
         let speeds = self.speeds(values, axis)?;
         let orbitals = self.orbitals(values)?;
-        let (s, h) = self.gradients(values)?.along(&speeds);
+        let (mut s, mut h) = self.gradients(values)?.along(&speeds);
+        let turning = turning(
+            &self.basis,
+            &BondGraph::new(&self.molecule),
+            &self.places(values)?,
+            &speeds,
+        );
+        let turned = |matrix: &Array2<f64>| {
+            let half = matrix.dot(&turning);
+            &half + &half.t()
+        };
+        s += &turned(&orbitals.overlap);
+        h += &turned(&self.hamiltonian(values)?);
         let set = self.set_of(line);
         let mut terms = pairs_of_shells(&self.basis);
         for &member in &set {
@@ -153,8 +169,20 @@ impl SweepPlan {
     /// Values outside the path, a geometry that cannot be solved, a line that keeps nothing of
     /// what it was.
     pub fn change(&self, line: usize, from: f64, to: f64) -> Result<Change, ScanError> {
-        let (first, last) = (self.orbitals(&[from])?, self.orbitals(&[to])?);
-        let (h1, h2) = (self.hamiltonian(&[from])?, self.hamiltonian(&[to])?);
+        let (first, mut last) = (self.orbitals(&[from])?, self.orbitals(&[to])?);
+        let turns = turns(
+            &self.basis,
+            &BondGraph::new(&self.molecule),
+            &self.places(&[from])?,
+            &self.places(&[to])?,
+        );
+        let turned = |matrix: &Array2<f64>| turns.t().dot(matrix).dot(&turns);
+        let (h1, h2) = (
+            self.hamiltonian(&[from])?,
+            turned(&self.hamiltonian(&[to])?),
+        );
+        last.overlap = turned(&last.overlap);
+        last.coefficients = last.coefficients.dot(&turns);
         let (s1, s2) = (&first.overlap, &last.overlap);
         let set = self.set_of(line);
         let share = 1.0 / set.len() as f64;
@@ -221,11 +249,17 @@ impl SweepPlan {
             .collect()
     }
 
+    /// Positions at coordinate values, Å.
+    fn places(&self, values: &[f64]) -> Result<Vec<[f64; 3]>, ScanError> {
+        let mut positions = vec![[0.0; 3]; self.molecule.positions.len()];
+        self.path.positions(values, &mut positions)?;
+        Ok(positions)
+    }
+
     /// H at coordinate values, n × n, eV.
     pub(crate) fn hamiltonian(&self, values: &[f64]) -> Result<Array2<f64>, ScanError> {
         let n = self.basis.functions.len();
-        let mut positions = vec![[0.0; 3]; self.molecule.positions.len()];
-        self.path.positions(values, &mut positions)?;
+        let positions = self.places(values)?;
         let (mut s, mut h) = (vec![0.0; n * n], vec![0.0; n * n]);
         self.hamiltonian.fill(&positions, &mut s, &mut h);
         Ok(Array2::from_shape_fn((n, n), |(i, j)| h[i * n + j]))

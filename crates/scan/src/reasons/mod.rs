@@ -3,6 +3,7 @@
 mod gradients;
 mod ledger;
 mod populations;
+mod turning;
 mod words;
 
 pub use gradients::{Gradients, slope};

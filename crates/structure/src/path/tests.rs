@@ -479,7 +479,7 @@ fn speeds_are_the_derivatives_of_the_positions() {
     let cases: [(&Molecule, &[(CoordinateKind, &str)]); 6] = [
         (&water(), &[(Bend, "2-1-3=90..180:10")]),
         (&ammonia(), &[(Pyramid, "1=90..118:4")]),
-        (&ethylene(), &[(Twist, "3-1-2-4=0..90:10")]),
+        (&ethylene(), &[(Twist, "3-1-2-5=0..90:10")]),
         (&ethylene(), &[(Stretch, "1-2=1.2..1.6:0.1")]),
         (
             &water(),
@@ -487,7 +487,7 @@ fn speeds_are_the_derivatives_of_the_positions() {
         ),
         (
             &ethylene(),
-            &[(Bend, "3-1-4=100..130:10"), (Twist, "3-1-2-4=0..60:20")],
+            &[(Bend, "3-1-4=100..130:10"), (Twist, "3-1-2-5=0..60:20")],
         ),
     ];
     for (molecule, coordinates) in cases {
