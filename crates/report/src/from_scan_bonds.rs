@@ -3,7 +3,8 @@
 use orbend_scan::{Orbitals, Populations, Sweep, SweepPlan};
 
 use crate::document::{Number, OverlapPopulation, Point, SweepDocument};
-use crate::from_scan::{FromScanError, charges, describe_orbitals, overlap_populations};
+use crate::from_scan::FromScanError;
+use crate::from_scan_populations::{charges, describe_orbitals, overlap_populations};
 
 /// Overlap populations of a level smaller than this are left out.
 const SMALLEST: f64 = 1e-3;
