@@ -8,6 +8,7 @@ mod shape;
 mod surfaces;
 mod sweep;
 mod table;
+mod why;
 
 pub use levels::levels_text;
 pub use params::params_text;
