@@ -4,7 +4,8 @@ use std::io::Write;
 
 use csv::{Terminator, Writer, WriterBuilder};
 
-use crate::document::{LevelsDocument, Point, SweepDocument};
+use crate::document::{Case, LevelsDocument, Number, Point, ShapeDocument, SweepDocument};
+use crate::draw::wording::heading_formula;
 
 /// Why a table could not be written.
 #[derive(Debug, thiserror::Error)]
@@ -107,6 +108,66 @@ pub fn sweep_csv<W: Write>(document: &SweepDocument, output: W) -> Result<(), Cs
 /// Writes the whole table of one geometry (no `at_…` columns).
 pub fn levels_csv<W: Write>(document: &LevelsDocument, output: W) -> Result<(), CsvError> {
     table(&document.points, 0, output)
+}
+
+/// Writes the verdicts, one row per case: RFC 4180 as above. Columns
+/// `formula,charge,electrons,unpaired,configuration,verdict,confident,value,value_10,value_90,depth_ev,support`,
+/// then for each argument what it favours and (for sums) its depth in eV; `value` is in the unit of the
+/// case's coordinate, with the 10 and 90 % ends of its range. Empty where there is none.
+pub fn shape_csv<W: Write>(document: &ShapeDocument, output: W) -> Result<(), CsvError> {
+    let mut writer = WriterBuilder::new()
+        .terminator(Terminator::CRLF)
+        .from_writer(output);
+    let mut names: Vec<&str> = Vec::new();
+    for argument in document.cases.iter().flat_map(|case| &case.arguments) {
+        if !names.contains(&argument.name.as_str()) {
+            names.push(&argument.name);
+        }
+    }
+    let columns = "formula,charge,electrons,unpaired,configuration,verdict,confident,value,value_10,value_90,depth_ev,support";
+    let mut header: Vec<String> = columns.split(',').map(str::to_owned).collect();
+    for name in &names {
+        let plain = name.replace('-', "_");
+        header.push(format!("{plain}_favours"));
+        header.push(format!("{plain}_ev"));
+    }
+    writer.write_record(&header)?;
+    for case in &document.cases {
+        writer.write_record(shape_row(document, case, &names))?;
+    }
+    writer.flush().map_err(|error| CsvError(error.into()))
+}
+
+/// The change of a line stands where a sum has its depth.
+fn shape_row(document: &ShapeDocument, case: &Case, names: &[&str]) -> Vec<String> {
+    let text = |number: Option<Number>| number.map_or_else(String::new, |n| n.get().to_string());
+    let own = || heading_formula(&document.molecule);
+    let formula = case.formula.as_deref().unwrap_or_else(own);
+    let mut row = vec![
+        formula.to_owned(),
+        case.charge.to_string(),
+        case.electrons.to_string(),
+        case.unpaired.to_string(),
+        case.configuration.clone(),
+        case.verdict.clone(),
+        case.confident.to_string(),
+        text(case.angle),
+        text(case.angle_range.map(|range| range[0])),
+        text(case.angle_range.map(|range| range[1])),
+        text(case.depth),
+        text(case.support),
+    ];
+    for name in names {
+        let found = case
+            .arguments
+            .iter()
+            .find(|argument| argument.name == *name);
+        row.push(found.map_or_else(String::new, |argument| argument.favours.clone()));
+        row.push(found.map_or_else(String::new, |argument| {
+            text(argument.depth.or(argument.change))
+        }));
+    }
+    row
 }
 
 fn table<W: Write>(points: &[Point], coordinates: usize, output: W) -> Result<(), CsvError> {

@@ -29,7 +29,7 @@ mod raster;
 mod synthetic;
 mod text;
 
-pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
+pub use csv_table::{CsvError, CsvWriter, levels_csv, shape_csv, sweep_csv};
 pub use document::*;
 pub use figure::{
     ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering,
