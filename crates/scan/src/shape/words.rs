@@ -190,7 +190,7 @@ pub(crate) fn doubts(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String>
     }
     if verdict.support.restless > 0.1 {
         out.push(format!(
-            "in {} of the perturbed curves with charge response the charges did not come to rest",
+            "in {} of the perturbed curves with charge response the charges do not come to rest everywhere",
             percent(verdict.support.restless)
         ));
     }
