@@ -9,8 +9,9 @@ use orbend_scan::shape::{ShapeError, ShapeRequest, ShapeVerdict};
 
 use orbend_structure::{Coordinate, CoordinateKind};
 
+use super::figure::Rendering;
 use super::sweep::in_pool;
-use super::{csv, drawing, provenance, resolve, text_options};
+use super::{csv, provenance, resolve, text_options};
 use crate::arguments::{CouplingChoice, ModelArguments, ShapeArguments};
 use crate::failure::Failure;
 use crate::outputs::Outputs;
@@ -30,7 +31,7 @@ enum Spins {
 
 pub(crate) fn run(arguments: &ShapeArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png"])?;
+    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "pdf"])?;
     let charges = arguments.charges.as_deref().map(charges).transpose()?;
     let spins = spins(arguments.unpaired.as_deref())?;
     if arguments.centre == Some(0) {
@@ -58,7 +59,8 @@ pub(crate) fn run(arguments: &ShapeArguments) -> Result<(), Failure> {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
             "csv" => csv(|out| shape_csv(&document, out))?,
-            _ => drawing(shape_figure(&document, &FigureOptions::default()), ending)?,
+            _ => Rendering::default()
+                .bytes(shape_figure(&document, &FigureOptions::default()), ending)?,
         })
     })?;
     if output.json {
