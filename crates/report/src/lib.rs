@@ -32,7 +32,7 @@ mod text;
 pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
 pub use figure::{
-    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering,
+    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Follow, Numbering,
     OrbitalPicture, Theme, levels_figure, shape_figure, sweep_figure,
 };
 pub use from_parameters::params_document;

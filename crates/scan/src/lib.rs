@@ -23,6 +23,7 @@ pub mod shape;
 mod solve;
 mod special;
 mod sweep;
+mod toward;
 
 pub use crossing::{
     AVOIDED_GAP_EV, BATCH, Crossing, LevelModel, Meeting, MeetingKind, SMALLEST_EXCHANGE, meetings,
@@ -30,7 +31,7 @@ pub use crossing::{
 };
 pub use error::{FillingError, ScanError};
 pub use filling::{Configuration, DEGENERACY_EV, Electrons, Filling};
-pub use follow::{Ambiguity, CLEAR_OVERLAP, Followed};
+pub use follow::{CLEAR_EXCHANGE, CLEAR_OVERLAP, Followed, Stretch};
 pub use line::LineHead;
 pub use naming::Name;
 pub use orbitals::{Orbitals, Populations};
@@ -39,3 +40,4 @@ pub use plane::{OrbitalPicture, Plane, PlaneValues, orbital_value};
 pub use request::{Numbering, Request, Route, symmetrized};
 pub use special::SpecialPoint;
 pub use sweep::{Level, Point, Sweep};
+pub use toward::MappingChoice;

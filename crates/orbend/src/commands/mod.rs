@@ -12,13 +12,13 @@ use std::path::Path;
 
 use orbend_hamiltonian::{Coupling, Method, ParameterError, ParameterSet};
 use orbend_report::{
-    FigureOptions, FigureWidth, Numbering, Provenance, TextOptions, Theme, figure_png,
+    FigureOptions, FigureWidth, Follow, Numbering, Provenance, TextOptions, Theme, figure_png,
 };
 use orbend_scan::{Configuration, Request, Route};
 use orbend_structure::{Angstrom, Coordinate};
 
 use crate::arguments::{
-    CouplingChoice, FigureArguments, ModelArguments, NumberingChoice, ThemeChoice, WidthChoice,
+    CouplingChoice, FigureArguments, FollowChoice, ModelArguments, NumberingChoice, ThemeChoice, WidthChoice,
 };
 use crate::failure::Failure;
 use crate::geometry::{self, Geometry};
@@ -140,6 +140,10 @@ pub(crate) fn figure_options(
             ThemeChoice::Grey => Theme::Grey,
         },
         numbering: figure_numbering(numbering),
+        follow: match arguments.follow {
+            FollowChoice::Energy => Follow::Energy,
+            FollowChoice::Character => Follow::Character,
+        },
         energies,
         lines: (!arguments.lines.is_empty()).then(|| arguments.lines.clone()),
         ..FigureOptions::default()

@@ -171,7 +171,11 @@ pub(crate) fn draw(canvas: &mut Canvas, sheet: &Sheet<'_>, labels: &[EndLabel], 
             Side::Left => &pictures.start,
             Side::Right => &pictures.end,
         });
-        let id = sheet.all[label.line].ids.first();
+        let bundle = &sheet.all[label.line];
+        let id = match side {
+            Side::Left => bundle.ids.first(),
+            Side::Right => bundle.end_ids.first(),
+        };
         let picture = pictures.and_then(|all| all.iter().find(|picture| Some(&picture.line) == id));
         if let Some(picture) = picture {
             let near = leader + widest(labels, size) + 0.4 * size;
