@@ -26,7 +26,10 @@ fn square_pyramid(apex: &str, length: f64) -> Sweep {
     );
     molecule.charge = -5;
     let bend = Coordinate::parse(CoordinateKind::Bend, "2-1-3=80..115:5").expect("a coordinate");
-    let sweep = Request::new(molecule).coordinate(bend).run().expect("a sweep");
+    let sweep = Request::new(molecule)
+        .coordinate(bend)
+        .run()
+        .expect("a sweep");
     assert_eq!(sweep.plan().path_group().name, "C4v");
     for point in 0..sweep.points() {
         check_point(&sweep, point);
@@ -60,7 +63,9 @@ fn five_sigma_ligands() {
     // the a1 above it (z²) falls, as does the empty b1 (x² − y²).
     let sweep = square_pyramid("H", 1.65);
     let [e, b2, a1, b1] = ["4e", "1b2", "8a1", "2b1"].map(|label| change(&sweep, label));
-    println!("CrH5 5-: e {e:+.3}, b2 {b2:+.1e}, a1 {a1:+.3}, b1 {b1:+.3} eV from 90 to 115 degrees");
+    println!(
+        "CrH5 5-: e {e:+.3}, b2 {b2:+.1e}, a1 {a1:+.3}, b1 {b1:+.3} eV from 90 to 115 degrees"
+    );
     assert!(e > 0.2 && b2.abs() < 1e-9 && a1 < -0.5 && b1 < -0.3);
     let touching: Vec<Crossing> = sweep
         .crossings()
@@ -92,7 +97,10 @@ fn a_pi_donor_at_the_apex() {
         .collect();
     assert_eq!(changing.len(), 1, "{changing:?}");
     assert_eq!(pair(&sweep, changing[0]), ["12a1", "6e"]);
-    println!("CrH4Cl 5-: 6e and 12a1 cross at {:.3} degrees", changing[0].at);
+    println!(
+        "CrH4Cl 5-: 6e and 12a1 cross at {:.3} degrees",
+        changing[0].at
+    );
 }
 
 #[test]
@@ -101,12 +109,16 @@ fn frontier_levels_of_buckminsterfullerene() {
     let sweep = Request::new(named("species:C60")).run().expect("levels");
     assert_eq!(sweep.point_group(0), "Ih");
     let levels = sweep.point(0).expect("a point").levels;
-    let filled = levels.iter().filter(|level| level.occupation > 1e-9).count();
+    let filled = levels
+        .iter()
+        .filter(|level| level.occupation > 1e-9)
+        .count();
     assert_eq!(filled, 120);
     let irrep = |place: usize| {
         let name = &levels[place].full_name.plain;
         (
-            name.trim_start_matches(|c: char| c.is_ascii_digit()).to_owned(),
+            name.trim_start_matches(|c: char| c.is_ascii_digit())
+                .to_owned(),
             levels[place].degeneracy,
         )
     };

@@ -13,10 +13,36 @@ use orbend_structure::Molecule;
 
 /// Thirty molecules of 17 groups.
 const MOLECULES: [&str; 30] = [
-    "g2:H2O", "g2:SH2", "g2:SO2", "g2:O3", "g2:CO2", "g2:CS2", "g2:HCN", "g2:N2O", "g2:C2H2", "g2:NH3",
-    "g2:PF3", "g2:BF3", "g2:AlCl3", "g2:CF4", "g2:SiH4", "g2:CH3Cl", "g2:C2H4", "g2:C2H6", "g2:H2CO",
-    "g2:N2H4", "g2:HOCl", "g2:CH3CONH2", "g2:trans-butane", "g2:C3H4_D2d", "g2:C3H6_D3h", "g2:C6H6",
-    "species:PtCl4 2-", "species:PF5", "species:SF6", "species:P4",
+    "g2:H2O",
+    "g2:SH2",
+    "g2:SO2",
+    "g2:O3",
+    "g2:CO2",
+    "g2:CS2",
+    "g2:HCN",
+    "g2:N2O",
+    "g2:C2H2",
+    "g2:NH3",
+    "g2:PF3",
+    "g2:BF3",
+    "g2:AlCl3",
+    "g2:CF4",
+    "g2:SiH4",
+    "g2:CH3Cl",
+    "g2:C2H4",
+    "g2:C2H6",
+    "g2:H2CO",
+    "g2:N2H4",
+    "g2:HOCl",
+    "g2:CH3CONH2",
+    "g2:trans-butane",
+    "g2:C3H4_D2d",
+    "g2:C3H6_D3h",
+    "g2:C6H6",
+    "species:PtCl4 2-",
+    "species:PF5",
+    "species:SF6",
+    "species:P4",
 ];
 const CASES: usize = 1000;
 /// Displacement of every coordinate, Å.
@@ -50,7 +76,10 @@ fn labels(molecule: &Molecule) -> (String, Vec<String>) {
     for (_, set) in &mut sets {
         set.sort();
     }
-    (point.point_group, sets.into_iter().flat_map(|set| set.1).collect())
+    (
+        point.point_group,
+        sets.into_iter().flat_map(|set| set.1).collect(),
+    )
 }
 
 #[test]
@@ -69,7 +98,11 @@ fn a_thousand_moved_molecules_keep_their_labels() {
     for case in 0..CASES {
         let (molecule, wanted) = &known[case % known.len()];
         let turn = [random.next(), random.next(), random.next(), random.next()];
-        let shift = [5.0 * random.next(), 5.0 * random.next(), 5.0 * random.next()];
+        let shift = [
+            5.0 * random.next(),
+            5.0 * random.next(),
+            5.0 * random.next(),
+        ];
         let mut order: Vec<usize> = (0..molecule.len()).collect();
         let keys: Vec<f64> = order.iter().map(|_| random.next()).collect();
         order.sort_by(|&a, &b| keys[a].total_cmp(&keys[b]));

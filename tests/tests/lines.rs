@@ -33,11 +33,7 @@ fn listed(sweep: &Sweep) -> Vec<(MeetingKind, String, String, f64)> {
         .collect()
 }
 
-fn between<'a>(
-    sweep: &Sweep,
-    crossings: &'a [Crossing],
-    labels: [&str; 2],
-) -> Vec<&'a Crossing> {
+fn between<'a>(sweep: &Sweep, crossings: &'a [Crossing], labels: [&str; 2]) -> Vec<&'a Crossing> {
     let name = |line: usize| sweep.plan().lines()[line].name.plain.as_str();
     crossings
         .iter()
@@ -61,13 +57,20 @@ fn crossings_of_a_coarse_sweep_are_those_of_a_very_fine_one() {
     let mut worst: f64 = 0.0;
     for step in ["2", "10"] {
         let coarse = of(step);
-        assert_eq!(coarse.len(), fine.len(), "step {step}: {coarse:?}\n{fine:?}");
+        assert_eq!(
+            coarse.len(),
+            fine.len(),
+            "step {step}: {coarse:?}\n{fine:?}"
+        );
         for (a, b) in coarse.iter().zip(&fine) {
             assert_eq!((a.0, &a.1, &a.2), (b.0, &b.1, &b.2), "step {step}");
             worst = worst.max((a.3 - b.3).abs());
         }
     }
-    println!("SO2: {} meetings, positions agree to {worst:.1e} degrees", fine.len());
+    println!(
+        "SO2: {} meetings, positions agree to {worst:.1e} degrees",
+        fine.len()
+    );
     assert!(worst < 1e-6, "{worst}");
 }
 
@@ -107,9 +110,15 @@ fn ethylene_meets_at_ninety_degrees() {
     assert_eq!(fine.point_group(9), "D2d");
     let place = |label: &str| {
         let lines = fine.plan().lines();
-        lines.iter().position(|line| line.name.plain == label).expect("a line")
+        lines
+            .iter()
+            .position(|line| line.name.plain == label)
+            .expect("a line")
     };
-    let (a, b) = (fine.full_name(place("2b2"), 9), fine.full_name(place("2b3"), 9));
+    let (a, b) = (
+        fine.full_name(place("2b2"), 9),
+        fine.full_name(place("2b3"), 9),
+    );
     assert_eq!(a, b);
     assert!(a.0.plain.ends_with('e') && a.1 == 2, "{a:?}");
     check_point(&fine, 9);
@@ -154,7 +163,11 @@ fn without_symmetry_the_two_views_of_a_twist_differ() {
         }
         // Energy order: the sixth level all the way. Character: π becomes the seventh.
         let pi = &followed[5];
-        assert_eq!((pi.lines[0], pi.lines[sweep.points() - 1]), (5, 6), "step {step}");
+        assert_eq!(
+            (pi.lines[0], pi.lines[sweep.points() - 1]),
+            (5, 6),
+            "step {step}"
+        );
         assert!(pi.overlap.expect("compared") > 0.5);
         assert!(pi.ambiguous.is_empty(), "{:?}", pi.ambiguous);
         assert_eq!(pi.exchanges.len(), 1);
@@ -172,7 +185,10 @@ fn without_symmetry_the_two_views_of_a_twist_differ() {
 fn a_molecule_without_symmetry_has_certificates() {
     let mut results: Vec<Vec<(usize, usize, usize)>> = Vec::new();
     for step in ["2", "5", "20"] {
-        let sweep = bend(file("bromochlorofluoromethane"), &format!("2-1-3=90..150:{step}"));
+        let sweep = bend(
+            file("bromochlorofluoromethane"),
+            &format!("2-1-3=90..150:{step}"),
+        );
         assert_eq!(sweep.plan().path_group().name, "C1");
         let followed = followed(&sweep);
         let mut result = Vec::new();
@@ -193,9 +209,15 @@ fn a_molecule_without_symmetry_has_certificates() {
         }
         results.push(result);
     }
-    assert!(results.windows(2).all(|pair| pair[0] == pair[1]), "{results:?}");
+    assert!(
+        results.windows(2).all(|pair| pair[0] == pair[1]),
+        "{results:?}"
+    );
     let passed = results[0].iter().filter(|line| line.1 > 0).count();
-    println!("CHFClBr: {passed} of {} lines pass another one", results[0].len());
+    println!(
+        "CHFClBr: {passed} of {} lines pass another one",
+        results[0].len()
+    );
     assert!(passed >= 2);
 }
 

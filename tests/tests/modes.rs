@@ -56,13 +56,17 @@ fn a_bending_mode_and_a_stretching_mode() {
     assert_eq!(groups, ["C2v", "C2v", "Dinfh", "C2v", "C2v"]);
     // Amplitude times displacement, and mirror images at opposite amplitudes.
     let place = |point: usize, atom: usize, axis: usize| {
-        points[point]["positions"][atom][axis].as_f64().expect("a number")
+        points[point]["positions"][atom][axis]
+            .as_f64()
+            .expect("a number")
     };
     let angle = |point: usize| {
         let arm = |atom: usize| [0, 1, 2].map(|k| place(point, atom, k) - place(point, 0, k));
         let (a, b) = (arm(1), arm(2));
         let dot = |a: [f64; 3], b: [f64; 3]| (0..3).map(|k| a[k] * b[k]).sum::<f64>();
-        (dot(a, b) / (dot(a, a) * dot(b, b)).sqrt()).acos().to_degrees()
+        (dot(a, b) / (dot(a, a) * dot(b, b)).sqrt())
+            .acos()
+            .to_degrees()
     };
     let wanted = 180.0 - 2.0 * (0.5 * 1.1_f64 / 1.16).atan().to_degrees();
     assert!((angle(0) - wanted).abs() < 1e-6 && (angle(4) - wanted).abs() < 1e-6);
@@ -94,6 +98,9 @@ fn what_cannot_be_a_mode_is_refused() {
         assert!(message.contains(word), "{word}: {message}");
         assert!(output.stdout.is_empty());
     }
-    let output = run(BENDING, &["--along-mode", "-1..1:0.5", "--bend", "2-1-3=90..180:5"]);
+    let output = run(
+        BENDING,
+        &["--along-mode", "-1..1:0.5", "--bend", "2-1-3=90..180:5"],
+    );
     assert_eq!(output.status.code(), Some(2));
 }

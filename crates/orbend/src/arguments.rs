@@ -165,7 +165,12 @@ pub(crate) struct CoordinateArguments {
     #[arg(long, value_name = "N", default_value_t = 41)]
     pub(crate) steps: usize,
     /// Atoms of this geometry and what they become in that of --toward: 7=10,8=9 [default: all matched]
-    #[arg(long, value_name = "ATOM=ATOM,…", requires = "toward", value_delimiter = ',')]
+    #[arg(
+        long,
+        value_name = "ATOM=ATOM,…",
+        requires = "toward",
+        value_delimiter = ','
+    )]
     pub(crate) map: Vec<String>,
     /// Match atoms so that the path to the other geometry keeps this point group: C2, Cs …
     #[arg(long, value_name = "GROUP", requires = "toward")]

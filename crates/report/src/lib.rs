@@ -32,8 +32,8 @@ mod text;
 pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
 pub use figure::{
-    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Follow, Numbering,
-    OrbitalPicture, Theme, levels_figure, shape_figure, sweep_figure,
+    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Follow,
+    Numbering, OrbitalPicture, Theme, levels_figure, shape_figure, sweep_figure,
 };
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};

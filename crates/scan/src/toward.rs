@@ -73,11 +73,7 @@ pub(crate) fn toward(
     })
 }
 
-fn check_pairs(
-    from: &Molecule,
-    to: &Molecule,
-    pairs: &[(usize, usize)],
-) -> Result<(), ScanError> {
+fn check_pairs(from: &Molecule, to: &Molecule, pairs: &[(usize, usize)]) -> Result<(), ScanError> {
     let bad = |cause: String| Err(ScanError::Pair { cause });
     for (place, &(i, k)) in pairs.iter().enumerate() {
         if i >= from.len() || k >= to.len() {
@@ -119,7 +115,9 @@ fn group_of(path: &PathPlan, molecule: &Molecule, tolerance: f64) -> Result<Stri
         path.positions(&[low + (high - low) * share], &mut positions)?;
         geometries.push(positions);
     }
-    Ok(path_group(&kinds(&molecule.elements), &geometries, tolerance)?
-        .group
-        .name)
+    Ok(
+        path_group(&kinds(&molecule.elements), &geometries, tolerance)?
+            .group
+            .name,
+    )
 }

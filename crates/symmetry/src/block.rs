@@ -36,7 +36,11 @@ impl Block {
     /// Levels of the block that stand for one set: the dimension in a `paired`
     /// block, else 1.
     pub fn levels_per_set(&self) -> usize {
-        if self.paired { self.dimension.max(1) } else { 1 }
+        if self.paired {
+            self.dimension.max(1)
+        } else {
+            1
+        }
     }
 
     /// Number of rows: 1 + number of partner rows.

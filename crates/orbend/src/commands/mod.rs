@@ -18,7 +18,8 @@ use orbend_scan::{Configuration, Request, Route};
 use orbend_structure::{Angstrom, Coordinate};
 
 use crate::arguments::{
-    CouplingChoice, FigureArguments, FollowChoice, ModelArguments, NumberingChoice, ThemeChoice, WidthChoice,
+    CouplingChoice, FigureArguments, FollowChoice, ModelArguments, NumberingChoice, ThemeChoice,
+    WidthChoice,
 };
 use crate::failure::Failure;
 use crate::geometry::{self, Geometry};

@@ -170,9 +170,13 @@ fn line_table(document: &SweepDocument, options: &FigureOptions) -> String {
     let energy =
         |energy: Option<f64>| energy.map_or_else(|| "–".to_owned(), |energy| number(energy, 3));
     let mut rows = String::new();
-    for bundle in bundles(document, options.numbering == Numbering::Core, Follow::Energy)
-        .iter()
-        .rev()
+    for bundle in bundles(
+        document,
+        options.numbering == Numbering::Core,
+        Follow::Energy,
+    )
+    .iter()
+    .rev()
     {
         let held = |electrons: Option<&f64>| {
             electrons

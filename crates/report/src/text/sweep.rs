@@ -25,7 +25,11 @@ pub fn sweep_text(document: &SweepDocument, options: &TextOptions) -> String {
     if document.is_grid() {
         grid(&mut out, document, options);
     } else {
-        let all = bundles(document, options.numbering == Numbering::Core, Follow::Energy);
+        let all = bundles(
+            document,
+            options.numbering == Numbering::Core,
+            Follow::Energy,
+        );
         out.push_str(&line_table(document, &all, options).render(options.columns()));
         out.push('\n');
         if options.drawing {

@@ -174,11 +174,12 @@ impl Sweep {
                     }
                     crossing.gap = Some(meeting.gap);
                     crossing.exchange = Some(exchange);
-                    crossing.exchanged_between = Some(if axis.values.first() <= axis.values.last() {
-                        between
-                    } else {
-                        (between.1, between.0)
-                    });
+                    crossing.exchanged_between =
+                        Some(if axis.values.first() <= axis.values.last() {
+                            between
+                        } else {
+                            (between.1, between.0)
+                        });
                 }
                 MeetingKind::Crossing => {
                     crossing.changes_configuration =

@@ -80,9 +80,8 @@ fn check(
         .filter(|event| event.passes && (low..=high).contains(&event.at))
         .collect();
     let passed = |line: usize| {
-        here.iter().fold(line, |now, event| {
-            event.partner(plan, now).unwrap_or(now)
-        })
+        here.iter()
+            .fold(line, |now, event| event.partner(plan, now).unwrap_or(now))
     };
     let clear = overlap.iter().all(|overlap| *overlap >= CLEAR_OVERLAP);
     let kept = (0..count).all(|line| next[line] == line);
@@ -104,9 +103,8 @@ fn check(
                     && event.partner(plan, line).is_some()
             })
         };
-        let unclear = |line: usize| {
-            !known(line) && (overlap[line] < CLEAR_OVERLAP || next[line] != line)
-        };
+        let unclear =
+            |line: usize| !known(line) && (overlap[line] < CLEAR_OVERLAP || next[line] != line);
         let ambiguous = (0..count)
             .map(|line| {
                 let stretch = Stretch {
@@ -114,7 +112,11 @@ fn check(
                     to,
                     overlap: overlap[line],
                 };
-                if unclear(line) { vec![stretch] } else { Vec::new() }
+                if unclear(line) {
+                    vec![stretch]
+                } else {
+                    Vec::new()
+                }
             })
             .collect();
         let overlap = (0..count)

@@ -58,10 +58,7 @@ impl Event {
         if crossing.kind != MeetingKind::Avoided || exchange <= 1.0 - CLEAR_EXCHANGE {
             return None;
         }
-        let (a, b) = (
-            &plan.lines[crossing.lines.0],
-            &plan.lines[crossing.lines.1],
-        );
+        let (a, b) = (&plan.lines[crossing.lines.0], &plan.lines[crossing.lines.1]);
         let (from, to) = crossing.exchanged_between?;
         Some(Self {
             at: crossing.at,
