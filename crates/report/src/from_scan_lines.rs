@@ -11,10 +11,11 @@ pub(crate) fn followed_records(
     sweep: &Sweep,
     followed: &[orbend_scan::Followed],
 ) -> Result<Vec<FollowedRecord>, NotFinite> {
-    let Some(axis) = sweep.plan().path().axes().first() else {
+    let plan = sweep.plan();
+    let end = |point: usize| plan.values(point).first().copied();
+    let (Some(first), Some(last)) = (end(0), end(plan.points() - 1)) else {
         return Ok(Vec::new());
     };
-    let values = &axis.values;
     followed
         .iter()
         .enumerate()
@@ -29,8 +30,7 @@ pub(crate) fn followed_records(
             };
             let mut intervals = Vec::new();
             if let Some(overlap) = followed.overlap {
-                let (from, to) = (values[0], values[values.len() - 1]);
-                intervals.push(interval(from, to, CertificateKind::Overlap, overlap)?);
+                intervals.push(interval(first, last, CertificateKind::Overlap, overlap)?);
             }
             for (stretches, kind) in [
                 (&followed.exchanges, CertificateKind::Overlap),

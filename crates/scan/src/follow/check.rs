@@ -26,18 +26,19 @@ pub(super) struct Check {
     pub(super) ambiguous: Vec<Vec<Stretch>>,
 }
 
-/// Every interval between nodes that are at most the resolution of the
+/// Every interval between nodes from the first to the last of `values` that are at most the resolution of the
 /// crossing search apart; none where the path group tells lines apart.
 pub(super) fn checks(
     plan: &SweepPlan,
     axis: &Axis,
+    values: &[f64],
     events: &[Event],
 ) -> Result<Vec<Check>, ScanError> {
     if plan.group.linear || plan.group.order() > LITTLE {
         return Ok(Vec::new());
     }
     let (low, high) = axis.limits();
-    let nodes = nodes(&axis.values, resolution(&axis.unit, high - low));
+    let nodes = nodes(values, resolution(&axis.unit, high - low));
     let intervals = nodes.len().saturating_sub(1);
     let starts: Vec<usize> = (0..intervals).step_by(CHUNK).collect();
     let done: Vec<Result<Vec<Check>, ScanError>> = starts

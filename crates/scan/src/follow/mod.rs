@@ -118,14 +118,14 @@ impl Sweep {
         let [axis] = plan.path.axes() else {
             return Ok(Vec::new());
         };
-        let values = &axis.values;
+        let values = plan.parameters(&axis.values);
         let rising = values.first() < values.last();
         let behind = |at: f64, value: f64| if rising { at <= value } else { at >= value };
         let events: Vec<Event> = crossings
             .iter()
             .filter_map(|crossing| Event::of(plan, crossing))
             .collect();
-        let checks = check::checks(plan, axis, &events)?;
+        let checks = check::checks(plan, axis, &values, &events)?;
         let pass = |followed: &mut Followed, now: &mut usize, next: &mut usize, value: f64| {
             while let Some(event) = events.get(*next)
                 && behind(event.at, value)
@@ -150,7 +150,7 @@ impl Sweep {
                     ambiguous: Vec::new(),
                 };
                 let (mut now, mut next, mut check) = (line, 0, 0);
-                for &value in values {
+                for &value in values.iter() {
                     while let Some(interval) = checks.get(check)
                         && behind(interval.to, value)
                     {
