@@ -34,7 +34,7 @@ pub use crossing::{
 };
 pub use error::{FillingError, ScanError};
 pub use filling::{Configuration, DEGENERACY_EV, Electrons, Filling};
-pub use follow::{CLEAR_EXCHANGE, CLEAR_OVERLAP, Followed, Stretch};
+pub use follow::{CLEAR_EXCHANGE, CLEAR_OVERLAP, Evidence, Followed};
 pub use line::LineHead;
 pub use naming::Name;
 pub use orbitals::{Orbitals, Populations};

@@ -5,7 +5,7 @@ use pathfinding::matrix::Matrix;
 use pathfinding::prelude::kuhn_munkres;
 use rayon::prelude::*;
 
-use super::{CLEAR_OVERLAP, Event, Stretch};
+use super::{CLEAR_OVERLAP, Event, Evidence};
 use crate::character::{Character, share};
 use crate::crossing::{nodes, resolution};
 use crate::error::ScanError;
@@ -23,7 +23,7 @@ const LITTLE: usize = 2;
 pub(super) struct Check {
     pub(super) to: f64,
     pub(super) overlap: Vec<f64>,
-    pub(super) ambiguous: Vec<Vec<Stretch>>,
+    pub(super) ambiguous: Vec<Vec<Evidence>>,
 }
 
 /// Every interval between nodes from the first to the last of `values` that are at most the resolution of the
@@ -108,7 +108,7 @@ fn check(
             |line: usize| !known(line) && (overlap[line] < CLEAR_OVERLAP || next[line] != line);
         let ambiguous = (0..count)
             .map(|line| {
-                let stretch = Stretch {
+                let stretch = Evidence {
                     from,
                     to,
                     overlap: overlap[line],

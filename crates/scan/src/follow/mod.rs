@@ -17,7 +17,7 @@ pub const CLEAR_EXCHANGE: f64 = 0.6;
 
 /// A stretch of the path and what the overlap of orbitals says there.
 #[derive(Clone, Copy, Debug, PartialEq)]
-pub struct Stretch {
+pub struct Evidence {
     /// First value of the path.
     pub from: f64,
     /// Last value of the path.
@@ -36,9 +36,9 @@ pub struct Followed {
     /// the symmetry of the path leaves no question and nothing was compared.
     pub overlap: Option<f64>,
     /// Avoided crossings in which it passes to the other line.
-    pub exchanges: Vec<Stretch>,
+    pub exchanges: Vec<Evidence>,
     /// Stretches where it is not clear; the energy order is kept there.
-    pub ambiguous: Vec<Stretch>,
+    pub ambiguous: Vec<Evidence>,
 }
 
 /// What an avoided crossing means for two sets of lines.
@@ -48,7 +48,7 @@ struct Event {
     block: usize,
     /// Sets within the irrep, from the lowest.
     positions: (usize, usize),
-    between: Stretch,
+    between: Evidence,
     passes: bool,
 }
 
@@ -64,7 +64,7 @@ impl Event {
             at: crossing.at,
             block: a.block,
             positions: (a.position, b.position),
-            between: Stretch {
+            between: Evidence {
                 from,
                 to,
                 overlap: exchange,
