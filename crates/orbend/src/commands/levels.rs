@@ -4,9 +4,10 @@ use orbend_report::{
     FigureOptions, levels_csv, levels_document, levels_figure, levels_text, to_json,
 };
 
+use super::figure::{self, Rendering};
 use super::geometry_text::geometry_text;
 use super::sweep::in_pool;
-use super::{csv, drawing, figure_numbering, provenance, resolve, text_options};
+use super::{csv, provenance, resolve, text_options};
 use crate::arguments::LevelsArguments;
 use crate::failure::Failure;
 use crate::outputs::Outputs;
@@ -14,7 +15,7 @@ use crate::write::write_stdout;
 
 pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "xyz"])?;
+    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "pdf", "xyz"])?;
     let resolved = resolve(
         &arguments.geometry,
         Vec::new(),
@@ -32,10 +33,10 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
             _ => {
                 let options = FigureOptions {
-                    numbering: figure_numbering(output.numbering),
+                    numbering: figure::numbering(output.numbering),
                     ..FigureOptions::default()
                 };
-                drawing(levels_figure(&document, &options), ending)?
+                Rendering::default().bytes(levels_figure(&document, &options), ending)?
             }
         })
     })?;

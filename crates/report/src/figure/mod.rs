@@ -2,6 +2,8 @@
 
 mod axes;
 pub(crate) mod canvas;
+mod electrons;
+mod gallery;
 mod key;
 mod labels;
 mod ladder;
@@ -12,8 +14,10 @@ mod panel;
 mod pictures;
 pub(crate) mod scale;
 mod series;
+mod series_classes;
 mod sheet;
 mod sum;
+mod support;
 pub(crate) mod sweep;
 #[cfg(test)]
 mod tests;
@@ -26,4 +30,5 @@ pub use options::{
 };
 pub use pictures::{EndPictures, OrbitalPicture};
 pub use series::shape_figure;
+pub use support::Support;
 pub use sweep::sweep_figure;
