@@ -296,7 +296,7 @@ impl Part {
         } else {
             self.degree
         };
-        if degree > 0 {
+        if degree > 0 || DERIVATIVE {
             solid_harmonics(&unit, degree, &mut harmonics);
         }
         let direction = Direction {

@@ -11,10 +11,9 @@ use crate::document::{
     MoleculeRecord, MotionKind, NearMiss, NotFinite, Number, Passport, Point, Program, ShellValues,
     SpecialLabel, SumMinimum, SweepDocument, SweepSchema, SymmetryRecord, Units, Warning,
 };
+use crate::from_scan_bonds::describe_bonds;
 use crate::from_scan_lines::{crossing_records, crossing_search, followed_records};
-use crate::from_scan_populations::{
-    basis_functions, charges, describe_orbitals, overlap_populations,
-};
+use crate::from_scan_populations::{basis_functions, describe_orbitals};
 
 /// What the scan does not know about its input and its reader.
 #[derive(Clone, Debug, Default)]
@@ -72,19 +71,17 @@ pub fn sweep_document(
     // With a large group the irreps say which line is which.
     let group = plan.path_group();
     let little = single && !group.linear && group.order() <= 2 && sweep.points() > 1;
-    let followed = if little {
-        sweep.followed()?
-    } else {
-        Vec::new()
-    };
+    let crossings = sweep.crossings()?;
+    let followed = followed_records(sweep, &sweep.followed(&crossings)?)?;
     let mut lines = if single {
         Some(line_records(sweep)?)
     } else {
         None
     };
-    let followed = followed_records(sweep, &followed)?;
-    for (line, record) in lines.iter_mut().flatten().zip(&followed) {
-        line.certificate = Some(record.certificate.clone());
+    if little {
+        for (line, record) in lines.iter_mut().flatten().zip(&followed) {
+            line.certificate = Some(record.certificate.clone());
+        }
     }
     Ok(SweepDocument {
         schema: SweepSchema,
@@ -98,13 +95,14 @@ pub fn sweep_document(
         minimum: if single { sum_minimum(&points) } else { None },
         points,
         lines,
-        followed: little.then_some(followed),
+        followed: single.then_some(followed),
         crossings: if single {
-            Some(crossing_records(sweep)?)
+            Some(crossing_records(sweep, &crossings)?)
         } else {
             None
         },
         crossing_search: if single { crossing_search(plan)? } else { None },
+        why: None,
         warnings: warnings(plan, provenance),
         missing,
     })
@@ -123,8 +121,7 @@ pub fn levels_document(
     let mut point = point_record(sweep, 0, &mut missing)?;
     let orbitals = sweep.orbitals(0)?;
     let populations = describe_orbitals(plan, &orbitals, &mut point)?;
-    point.charges = Some(charges(plan, &populations)?);
-    point.overlap_populations = Some(overlap_populations(&populations)?);
+    describe_bonds(plan, &orbitals, &populations, &mut point)?;
     Ok(LevelsDocument {
         schema: LevelsSchema,
         program: Program::this(),
@@ -353,6 +350,8 @@ fn point_record(
                 full_valence_label: level.full_name.valence_plain.clone(),
                 coefficients: None,
                 populations: None,
+                bonds: None,
+                tags: None,
             })
         })
         .collect::<Result<_, NotFinite>>()?;

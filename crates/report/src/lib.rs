@@ -13,6 +13,7 @@
 //! It is not for: physics, symmetry, following lines, or writing to files and streams.
 
 mod csv_rows;
+mod csv_shapes;
 mod csv_stream;
 mod csv_table;
 mod document;
@@ -21,10 +22,12 @@ mod export;
 mod figure;
 mod from_parameters;
 mod from_scan;
+mod from_scan_bonds;
 mod from_scan_lines;
 mod from_scan_orbitals;
 mod from_scan_pictures;
 mod from_scan_populations;
+mod from_scan_why;
 mod from_shape;
 mod lettering;
 mod page;
@@ -32,18 +35,21 @@ mod page;
 mod synthetic;
 mod text;
 
+pub use csv_shapes::shape_csv;
 pub use csv_stream::{StreamError, Streamed, stream_csv};
 pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
 pub use export::{ImageError, figure_pdf, figure_png, outline_text};
 pub use figure::{
-    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering,
-    OrbitalPicture, Support, Theme, levels_figure, shape_figure, sweep_figure,
+    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Follow,
+    Numbering, OrbitalPicture, Support, Theme, levels_figure, shape_figure, sweep_figure,
 };
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
+pub use from_scan_bonds::add_populations;
 pub use from_scan_orbitals::sweep_document_with_orbitals;
 pub use from_scan_pictures::end_pictures;
+pub use from_scan_why::why_record;
 pub use from_shape::shape_document;
 pub use page::{PageError, sweep_page};
 pub use text::{TextOptions, levels_text, params_text, passport_text, shape_text, sweep_text};

@@ -308,7 +308,8 @@ pub(crate) fn nuclei(elements: &[Element], positions: &[[f64; 3]]) -> Vec<Nucleu
         .collect()
 }
 
-fn kinds(elements: &[Element]) -> Vec<u32> {
+/// The nuclei as numbers that tell them apart.
+pub(crate) fn kinds(elements: &[Element]) -> Vec<u32> {
     elements
         .iter()
         .map(|element| u32::from(element.number()))
@@ -387,4 +388,23 @@ fn sample_geometries(path: &PathPlan, atoms: usize) -> Result<Vec<Vec<[f64; 3]>>
         samples.push(positions);
     }
     Ok(samples)
+}
+
+#[cfg(test)]
+mod tests {
+    use orbend_structure::{Formula, ideal_geometry};
+
+    use super::*;
+
+    #[test]
+    fn what_symmetry_says_twice_is_read_once() {
+        // Pairs of atoms in all, and the most that may be read.
+        for (formula, all, read) in [("H2S", 3, 2), ("PF3", 6, 5)] {
+            let formula = Formula::parse(formula).unwrap();
+            let molecule = ideal_geometry(&formula, None, &[]).unwrap().molecule;
+            let plan = Request::new(molecule).plan().unwrap();
+            assert_eq!(plan.hamiltonian.pairs().len(), all);
+            assert!(plan.read.len() <= read, "{:?}", plan.read);
+        }
+    }
 }

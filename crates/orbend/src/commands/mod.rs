@@ -7,6 +7,7 @@ pub(crate) mod params;
 mod route;
 pub(crate) mod shape;
 pub(crate) mod sweep;
+mod why;
 
 use std::io::IsTerminal;
 use std::path::Path;

@@ -7,6 +7,7 @@ use super::common::{BasisFunction, Method, Missing, MoleculeRecord, Program, Uni
 use super::levels::{Point, SymmetryRecord};
 use super::number::Number;
 use super::schema::SweepSchema;
+use super::why::WhyRecord;
 
 /// The correlation diagram along one coordinate, or the points of a grid over two: `orbend/sweep/1`.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
@@ -33,8 +34,9 @@ pub struct SweepDocument {
     /// Orbitals followed from point to point; left out on a grid.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub lines: Option<Vec<LineRecord>>,
-    /// The same lines followed by character (overlap of neighbouring points) instead of energy
-    /// order; left out where the symmetry of the path says which line is which.
+    /// The same orbitals followed by character instead of energy order: within an irrep a
+    /// character passes to the other line where an avoided crossing exchanges most of it; left out
+    /// on a grid.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub followed: Option<Vec<FollowedRecord>>,
     /// Crossings and avoided crossings; left out on a grid.
@@ -46,6 +48,9 @@ pub struct SweepDocument {
     /// The lowest sum, found by the calculation itself; left out where it was not asked for.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub minimum: Option<SumMinimum>,
+    /// Why lines move, for the lines that were asked about.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub why: Option<Vec<WhyRecord>>,
     /// What the reader ought to know.
     pub warnings: Vec<Warning>,
     /// Why a value is `null`.

@@ -163,6 +163,7 @@ pub(crate) fn sweep(frame: &Frame<'_>, xs: &[f64], sketches: &[Sketch]) -> Sweep
         crossing_search: None,
         followed: None,
         minimum: None,
+        why: None,
         warnings: vec![],
         missing: vec![],
     }
@@ -207,6 +208,8 @@ fn point(frame: &Frame<'_>, xs: &[f64], k: usize, lines: &[LineRecord]) -> Point
                 full_valence_label: String::new(),
                 coefficients: None,
                 populations: None,
+                bonds: None,
+                tags: None,
             });
         }
         place += size;

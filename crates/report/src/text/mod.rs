@@ -7,6 +7,7 @@ mod passport;
 mod shape;
 mod sweep;
 mod table;
+mod why;
 
 pub use levels::levels_text;
 pub use params::params_text;
