@@ -209,6 +209,17 @@ pub(crate) struct CoordinateArguments {
     /// Points of the path to another geometry
     #[arg(long, value_name = "N", default_value_t = 41)]
     pub(crate) steps: usize,
+    /// Atoms of this geometry and what they become in that of --toward: 7=10,8=9 [default: all matched]
+    #[arg(
+        long,
+        value_name = "ATOM=ATOM,…",
+        requires = "toward",
+        value_delimiter = ','
+    )]
+    pub(crate) map: Vec<String>,
+    /// Match atoms so that the path to the other geometry keeps this point group: C2, Cs …
+    #[arg(long, value_name = "GROUP", requires = "toward")]
+    pub(crate) keep: Option<String>,
     /// Along the displacement vectors of an extended XYZ file: amplitudes -1..1:0.1
     #[arg(long, value_name = "FROM..TO:STEP", allow_hyphen_values = true)]
     pub(crate) along_mode: Option<String>,
@@ -293,6 +304,9 @@ pub(crate) struct FigureArguments {
     /// Contour pictures of the orbitals beside the labels (ψ = ±0.05 bohr^(-3/2); filled is positive)
     #[arg(long)]
     pub(crate) orbitals: bool,
+    /// What a line of the figure keeps: its place in the energy order of its irrep, or its character
+    #[arg(long, value_enum, default_value_t = FollowChoice::Energy)]
+    pub(crate) follow: FollowChoice,
     /// Only these lines in the figure, by label: 4a1,2b2
     #[arg(long, value_name = "LABELS", value_delimiter = ',')]
     pub(crate) lines: Vec<String>,
@@ -350,6 +364,14 @@ pub(crate) enum WidthChoice {
     Page,
     /// for a talk
     Slide,
+}
+
+#[derive(Clone, Copy, Debug, ValueEnum)]
+pub(crate) enum FollowChoice {
+    /// lines of one irrep repel
+    Energy,
+    /// lines of one irrep pass each other where they exchange character
+    Character,
 }
 
 #[derive(Clone, Copy, Debug, ValueEnum)]

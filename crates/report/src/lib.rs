@@ -41,8 +41,8 @@ pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
 pub use export::{ImageError, figure_pdf, figure_png, outline_text};
 pub use figure::{
-    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering,
-    OrbitalPicture, Support, Theme, levels_figure, shape_figure, sweep_figure,
+    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Follow,
+    Numbering, OrbitalPicture, Support, Theme, levels_figure, shape_figure, sweep_figure,
 };
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};

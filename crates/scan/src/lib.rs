@@ -26,6 +26,7 @@ mod solve;
 mod special;
 mod stretch;
 mod sweep;
+mod toward;
 
 pub use crossing::{
     AVOIDED_GAP_EV, BATCH, Crossing, LevelModel, Meeting, MeetingKind, SMALLEST_EXCHANGE, meetings,
@@ -33,7 +34,7 @@ pub use crossing::{
 };
 pub use error::{FillingError, ScanError};
 pub use filling::{Configuration, DEGENERACY_EV, Electrons, Filling};
-pub use follow::{Ambiguity, CLEAR_OVERLAP, Followed};
+pub use follow::{CLEAR_EXCHANGE, CLEAR_OVERLAP, Evidence, Followed};
 pub use line::LineHead;
 pub use naming::Name;
 pub use orbitals::{Orbitals, Populations};
@@ -44,3 +45,4 @@ pub use request::{Numbering, Request, Route, symmetrized};
 pub use special::SpecialPoint;
 pub use stretch::Stretch;
 pub use sweep::{Level, Point, Sweep};
+pub use toward::MappingChoice;
