@@ -130,6 +130,45 @@ pub(crate) struct ShapeArguments {
     /// The atom about which the shape is judged, counted from 1 [default: the only one possible]
     #[arg(long, value_name = "ATOM")]
     pub(crate) centre: Option<usize>,
+    /// Judge along this angle instead of the usual coordinate, degrees: 2-1-3=80..180:5
+    #[arg(
+        long,
+        value_name = "A-B-C=FROM..TO:STEP",
+        allow_hyphen_values = true,
+        group = "along",
+        conflicts_with = "centre"
+    )]
+    pub(crate) bend: Option<String>,
+    /// Judge along this distance, Å: 1-2=0.8..1.6:0.05 (the method gives no bond lengths)
+    #[arg(
+        long,
+        value_name = "A-B=FROM..TO:STEP",
+        allow_hyphen_values = true,
+        group = "along",
+        conflicts_with = "centre"
+    )]
+    pub(crate) stretch: Option<String>,
+    /// Judge along this torsion, degrees: 3-1-2-4=0..180:10
+    #[arg(
+        long,
+        value_name = "A-B-C-D=FROM..TO:STEP",
+        allow_hyphen_values = true,
+        group = "along",
+        conflicts_with = "centre"
+    )]
+    pub(crate) twist: Option<String>,
+    /// Judge along the common angle at a three-coordinate atom, degrees: 1=90..120:2
+    #[arg(
+        long,
+        value_name = "A=FROM..TO:STEP",
+        allow_hyphen_values = true,
+        group = "along",
+        conflicts_with = "centre"
+    )]
+    pub(crate) pyramid: Option<String>,
+    /// Show the leading sum with the pair repulsion of the atoms added (Anderson & Hoffmann 1974)
+    #[arg(long)]
+    pub(crate) repulsion: bool,
     /// Parameter set, or a TOML file that overlays the default set
     #[arg(long, value_name = "SET|FILE")]
     pub(crate) params: Option<String>,
@@ -188,6 +227,17 @@ pub(crate) struct CoordinateArguments {
     /// Points of the path to another geometry
     #[arg(long, value_name = "N", default_value_t = 41)]
     pub(crate) steps: usize,
+    /// Atoms of this geometry and what they become in that of --toward: 7=10,8=9 [default: all matched]
+    #[arg(
+        long,
+        value_name = "ATOM=ATOM,…",
+        requires = "toward",
+        value_delimiter = ','
+    )]
+    pub(crate) map: Vec<String>,
+    /// Match atoms so that the path to the other geometry keeps this point group: C2, Cs …
+    #[arg(long, value_name = "GROUP", requires = "toward")]
+    pub(crate) keep: Option<String>,
     /// Along the displacement vectors of an extended XYZ file: amplitudes -1..1:0.1
     #[arg(long, value_name = "FROM..TO:STEP", allow_hyphen_values = true)]
     pub(crate) along_mode: Option<String>,
@@ -272,6 +322,9 @@ pub(crate) struct FigureArguments {
     /// Contour pictures of the orbitals beside the labels (ψ = ±0.05 bohr^(-3/2); filled is positive)
     #[arg(long)]
     pub(crate) orbitals: bool,
+    /// What a line of the figure keeps: its place in the energy order of its irrep, or its character
+    #[arg(long, value_enum, default_value_t = FollowChoice::Energy)]
+    pub(crate) follow: FollowChoice,
     /// Only these lines in the figure, by label: 4a1,2b2
     #[arg(long, value_name = "LABELS", value_delimiter = ',')]
     pub(crate) lines: Vec<String>,
@@ -329,6 +382,14 @@ pub(crate) enum WidthChoice {
     Page,
     /// for a talk
     Slide,
+}
+
+#[derive(Clone, Copy, Debug, ValueEnum)]
+pub(crate) enum FollowChoice {
+    /// lines of one irrep repel
+    Energy,
+    /// lines of one irrep pass each other where they exchange character
+    Character,
 }
 
 #[derive(Clone, Copy, Debug, ValueEnum)]

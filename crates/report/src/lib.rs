@@ -14,6 +14,7 @@
 //! It is not for: physics, symmetry, following lines, or writing to files and streams.
 
 mod csv_rows;
+mod csv_shapes;
 mod csv_stream;
 mod csv_table;
 mod document;
@@ -37,13 +38,14 @@ mod scene;
 mod synthetic;
 mod text;
 
+pub use csv_shapes::shape_csv;
 pub use csv_stream::{StreamError, Streamed, stream_csv};
 pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
 pub use export::{ImageError, figure_pdf, figure_png, outline_text};
 pub use figure::{
-    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering,
-    OrbitalPicture, Support, Theme, levels_figure, shape_figure, sweep_figure,
+    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Follow,
+    Numbering, OrbitalPicture, Support, Theme, levels_figure, shape_figure, sweep_figure,
 };
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};

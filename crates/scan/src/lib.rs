@@ -28,6 +28,7 @@ mod special;
 mod stretch;
 mod surface;
 mod sweep;
+mod toward;
 
 pub use crossing::{
     AVOIDED_GAP_EV, BATCH, Crossing, LevelModel, Meeting, MeetingKind, SMALLEST_EXCHANGE, meetings,
@@ -36,7 +37,7 @@ pub use crossing::{
 pub use error::{FillingError, ScanError};
 pub use field::OrbitalField;
 pub use filling::{Configuration, DEGENERACY_EV, Electrons, Filling};
-pub use follow::{Ambiguity, CLEAR_OVERLAP, Followed};
+pub use follow::{CLEAR_EXCHANGE, CLEAR_OVERLAP, Evidence, Followed};
 pub use line::LineHead;
 pub use naming::Name;
 pub use orbitals::{Orbitals, Populations};
@@ -48,3 +49,4 @@ pub use special::SpecialPoint;
 pub use stretch::Stretch;
 pub use surface::{Mesh, OrbitalSurface, SURFACE_SHARES, SurfaceError, orbital_surface};
 pub use sweep::{Level, Point, Sweep};
+pub use toward::MappingChoice;

@@ -12,7 +12,7 @@ use sha2::{Digest, Sha256};
 
 use crate::document::SweepDocument;
 use crate::figure::sweep::compose;
-use crate::figure::{FigureError, FigureOptions, FigureWidth, Theme};
+use crate::figure::{FigureError, FigureOptions, FigureWidth, Follow, Theme};
 
 /// Pages larger than this (bytes) are refused: browsers become slow with them.
 const LARGEST: usize = 20_000_000;
@@ -51,7 +51,7 @@ pub enum PageError {
 
 /// The page of a sweep along one coordinate as HTML (UTF-8, no outside reference, closed to the
 /// network by its own content policy). Orbitals are shown where the document holds coefficients.
-/// Width and theme of the options do not count: the page has its own. Equal documents and options
+/// Width, theme and view of the options do not count: the page has its own. Equal documents and options
 /// give equal bytes.
 ///
 /// # Errors
@@ -62,6 +62,7 @@ pub fn sweep_page(document: &SweepDocument, options: &FigureOptions) -> Result<S
         theme: Theme::Light,
         title: false,
         pictures: None,
+        follow: Follow::Energy,
         ..options.clone()
     };
     // A telephone shows the figure at the width of a column.
