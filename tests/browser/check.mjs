@@ -31,10 +31,10 @@ async function accessible(what) {
   const words = (list) => list.map((v) => `${v.impact} ${v.id} at ${v.where.join(', ')}`).join('; ');
   check(`axe finds nothing serious ${what}`, bad.length === 0, words(found));
 }
-// Moves the slider once a frame; frames per second of the wall clock and processor time of all of the
-// browser's processes for one frame.
+// Moves the slider once a frame: frames per second by the clock, and for one frame the work (ms) of the
+// page's own thread and of all of the browser's processes.
 async function drag(ms) {
-  const before = browser.cpu();
+  const before = browser.cpu(), own = await thread();
   const [frames, time] = await ask(`new Promise((done) => {
     const slider = document.querySelector('#slider'), start = performance.now();
     let frames = 0;
@@ -47,7 +47,11 @@ async function drag(ms) {
     };
     requestAnimationFrame(step);
   })`);
-  return { rate: 1000 * frames / time, cpu: (browser.cpu() - before) / frames };
+  return { rate: 1000 * frames / time, work: (await thread() - own) / frames, cpu: (browser.cpu() - before) / frames };
+}
+async function thread() {
+  const { metrics } = await send('Performance.getMetrics');
+  return 1000 * metrics.find((metric) => metric.name === 'TaskDuration').value;
 }
 async function best(count, measure, better) {
   let found = await measure();
@@ -65,14 +69,12 @@ async function whole(address, page) {
   for (let k = 0; k < 5; k++) {
     await send('Page.navigate', { url: 'about:blank' });
     await browser.go(address);
-    const metrics = Object.fromEntries((await send('Performance.getMetrics')).metrics.map((m) => [m.name, m.value]));
     loads.push({
       clock: await ask("performance.getEntriesByType('navigation')[0].domContentLoadedEventEnd"),
-      work: 1000 * metrics.TaskDuration,
+      work: await thread(),
     });
   }
   const clock = Math.min(...loads.map((load) => load.clock)), work = Math.min(...loads.map((load) => load.work));
-  console.log('     ' + JSON.stringify(loads));
   check('it is ready soon', Math.min(clock, work) <= LIMITS.readyMs, `${clock.toFixed(0)} ms on the clock, ${work.toFixed(0)} ms of work, best of 5`);
   await frame();
   await picture('start');
@@ -125,11 +127,11 @@ async function whole(address, page) {
   check('the table to download has every point and level', rows.length === 1 + points * lines, `${rows.length - 1} rows`);
   await picture('pinned');
 
-  const drawn = await best(4, () => drag(1500), (a, b) => a.cpu < b.cpu);
+  const drawn = await best(4, () => drag(1500), (a, b) => a.work < b.work);
   const fast = await best(3, () => drag(1000), (a, b) => a.rate > b.rate);
-  // A busy machine gives the browser fewer frames than it could draw: what it works for each counts then.
-  const rate = Math.max(fast.rate, Math.min(60, 1000 / drawn.cpu));
-  check('dragging is smooth', rate >= LIMITS.framesPerSecond, `${fast.rate.toFixed(0)} frames/s on the clock, ${drawn.cpu.toFixed(1)} ms of processor time for a frame`);
+  // A busy machine gives the browser fewer frames than it could draw: what the page works for each counts then.
+  const rate = Math.max(fast.rate, Math.min(60, 1000 / drawn.work));
+  check('dragging is smooth', rate >= LIMITS.framesPerSecond, `${fast.rate.toFixed(0)} frames/s on the clock; for a frame ${drawn.work.toFixed(1)} ms of the page's thread, ${drawn.cpu.toFixed(1)} ms of all processes`);
 
   await ask("document.querySelector('#theme').click()");
   await frame();
