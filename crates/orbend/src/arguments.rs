@@ -10,6 +10,7 @@ Examples:
   orbend sweep SiF2 --bend 2-1-3=80..180:2 --out sif2.svg
   orbend shape SiF2 CF2 NF2
   orbend levels PF3
+  orbend plan NF2 --out nf2.md
   orbend params Si F
 
 ";
@@ -37,6 +38,8 @@ pub(crate) enum Command {
     Sweep(Box<SweepArguments>),
     /// The shape of a molecule, or of a series, with its reasons and its doubts
     Shape(ShapeArguments),
+    /// What to compute next: start geometries, states, changes of roots, an active space
+    Plan(Box<PlanArguments>),
     /// The parameter values in use, each with its source
     Params(ParamsArguments),
     /// Print a completion script for a shell
@@ -79,6 +82,37 @@ pub(crate) struct SweepArguments {
     /// Threads; the output is the same bytes for every number
     #[arg(long, value_name = "N")]
     pub(crate) jobs: Option<usize>,
+}
+
+#[derive(Debug, Args)]
+pub(crate) struct PlanArguments {
+    /// A file (XYZ, extended XYZ), `-` for standard input, or a formula; without a coordinate the path
+    /// is the bend or the pyramid that `orbend shape` looks at
+    pub(crate) geometry: String,
+    #[command(flatten)]
+    pub(crate) coordinates: CoordinateArguments,
+    #[command(flatten)]
+    pub(crate) model: ModelArguments,
+    #[command(flatten)]
+    pub(crate) output: PlanOutputArguments,
+    /// Threads; the output is the same bytes for every number
+    #[arg(long, value_name = "N")]
+    pub(crate) jobs: Option<usize>,
+}
+
+#[derive(Debug, Args)]
+#[command(next_help_heading = "Output")]
+pub(crate) struct PlanOutputArguments {
+    /// The result document on standard output, alone
+    #[arg(long)]
+    pub(crate) json: bool,
+    /// Write a file; the ending chooses .json, .md (one page for a notebook), .xyz (all start geometries
+    /// with charge and unpaired electrons) or .qcschema.json (the first one as QCSchema molecule)
+    #[arg(long, value_name = "FILE")]
+    pub(crate) out: Vec<PathBuf>,
+    /// Which numbering labels show first; the document always has both
+    #[arg(long, value_enum, default_value_t = NumberingChoice::Core)]
+    pub(crate) numbering: NumberingChoice,
 }
 
 #[derive(Debug, Args)]

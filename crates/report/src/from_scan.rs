@@ -330,7 +330,7 @@ fn numbers(atoms: &[usize]) -> Vec<u32> {
     atoms.iter().map(|&atom| atom as u32 + 1).collect()
 }
 
-fn symmetry_record(plan: &SweepPlan) -> Result<SymmetryRecord, NotFinite> {
+pub(crate) fn symmetry_record(plan: &SweepPlan) -> Result<SymmetryRecord, NotFinite> {
     let group = plan.path_group();
     Ok(SymmetryRecord {
         path_group: group.name.clone(),

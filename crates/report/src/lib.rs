@@ -16,6 +16,7 @@ mod csv_table;
 mod document;
 mod draw;
 mod figure;
+mod from_handoff;
 mod from_parameters;
 mod from_scan;
 mod from_scan_lines;
@@ -35,6 +36,7 @@ pub use figure::{
     ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering,
     OrbitalPicture, Theme, levels_figure, shape_figure, sweep_figure,
 };
+pub use from_handoff::{plan_document, qcschema_molecule};
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
 pub use from_scan_orbitals::sweep_document_with_orbitals;
@@ -42,4 +44,7 @@ pub use from_scan_pictures::end_pictures;
 pub use from_shape::shape_document;
 pub use page::{PageError, sweep_page};
 pub use raster::{ImageError, figure_png};
-pub use text::{TextOptions, levels_text, params_text, passport_text, shape_text, sweep_text};
+pub use text::{
+    TextOptions, levels_text, params_text, passport_text, plan_markdown, plan_text, shape_text,
+    sweep_text,
+};

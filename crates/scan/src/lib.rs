@@ -18,6 +18,7 @@ mod naming;
 mod orbitals;
 mod plan;
 mod plane;
+pub mod reasons;
 mod request;
 pub mod shape;
 mod solve;

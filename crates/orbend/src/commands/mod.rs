@@ -3,6 +3,7 @@
 mod geometry_text;
 pub(crate) mod levels;
 pub(crate) mod params;
+pub(crate) mod plan;
 mod route;
 pub(crate) mod shape;
 pub(crate) mod sweep;

@@ -4,6 +4,8 @@ mod common;
 mod levels;
 mod number;
 mod params;
+mod plan;
+mod qcschema;
 mod read;
 mod schema;
 mod shape;
@@ -22,8 +24,12 @@ pub use levels::{
 };
 pub use number::{NotFinite, Number};
 pub use params::{ParamsDocument, Variant};
+pub use plan::{
+    ActiveLine, ActiveSpace, ChargeRecord, IrrepCount, PlanDocument, RootFlip, SpaceStop, StartGeometry, StateRecord,
+};
+pub use qcschema::{QcMolecule, QcProvenance};
 pub use read::{Document, DocumentError, read_document};
-pub use schema::{LevelsSchema, ParamsSchema, ShapeSchema, SweepSchema, schemas};
+pub use schema::{LevelsSchema, ParamsSchema, PlanSchema, ShapeSchema, SweepSchema, schemas};
 pub use shape::{Argument, Case, Curve, Ensemble, Flip, ShapeDocument};
 pub use sweep::{
     Certificate, CertificateInterval, CertificateKind, CoordinateRecord, CoordinateUnit,

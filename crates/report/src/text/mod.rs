@@ -4,6 +4,7 @@ mod diagram;
 mod levels;
 mod params;
 mod passport;
+mod plan;
 mod shape;
 mod sweep;
 mod table;
@@ -11,6 +12,7 @@ mod table;
 pub use levels::levels_text;
 pub use params::params_text;
 pub use passport::passport_text;
+pub use plan::{plan_markdown, plan_text};
 pub use shape::shape_text;
 pub use sweep::sweep_text;
 

@@ -62,6 +62,25 @@ impl Motion {
         }
     }
 
+    /// The coordinate along which this motion is drawn as a diagram: the angle from 80° to 180° in
+    /// steps of 2°, or the pyramid from 90° to 120° in steps of 1°.
+    ///
+    /// # Errors
+    /// None for a centre that was found.
+    pub fn path(self, centre: &Centre) -> Result<Coordinate, CoordinateError> {
+        let (kind, atoms, from, to, step) = match self {
+            Self::Bend => (
+                CoordinateKind::Bend,
+                vec![centre.ligands[0], centre.atom, centre.ligands[1]],
+                80.0,
+                180.0,
+                2.0,
+            ),
+            Self::Pyramid => (CoordinateKind::Pyramid, vec![centre.atom], 90.0, 120.0, 1.0),
+        };
+        Coordinate::new(kind, atoms, Range { from, to, step }, false)
+    }
+
     /// The coordinate of the path.
     pub(crate) fn coordinate(self, centre: &Centre) -> Result<Coordinate, CoordinateError> {
         let last = self.grid(false).last().copied().unwrap_or(45.0);
