@@ -7,7 +7,7 @@
 )]
 
 use orbend_checks::{atoms, energies, matrices, ring, set_of};
-use orbend_hamiltonian::{Coupling, Method, ParameterSet};
+use orbend_hamiltonian::{Basis, Coupling, Method, PairRepulsion, ParameterSet};
 use orbend_scan::{Request, Sweep};
 use orbend_structure::{Coordinate, CoordinateKind, HARTREE_IN_EV, Molecule};
 
@@ -148,4 +148,27 @@ fn angles_of_methylene() {
             "{unpaired} unpaired: {angle}"
         );
     }
+}
+
+/// Two hydrogen atoms have no minimum by the sum of level energies, and one near the measured
+/// 0.741 Å (Huber & Herzberg 1979) with the pair repulsion added, as Anderson & Hoffmann, J. Chem.
+/// Phys. 60, 4271 (1974), found (both from memory).
+#[test]
+fn hydrogen_molecule_with_pair_repulsion() {
+    let (set, method) = (ParameterSet::default(), Method::default());
+    let at = |length: f64| atoms(&["H", "H"], vec![[0.0; 3], [0.0, 0.0, length]]);
+    let basis = Basis::new(&at(1.0).elements, &set, &method).expect("a basis");
+    let repulsion = PairRepulsion::new(&basis);
+    let lengths: Vec<f64> = (0..121).map(|i| 0.3 + 0.01 * f64::from(i)).collect();
+    let sums: Vec<f64> = lengths
+        .iter()
+        .map(|&length| 2.0 * energies(&at(length), &set, &method)[0])
+        .collect();
+    assert!(sums.windows(2).all(|pair| pair[0] < pair[1]), "{sums:?}");
+    let total = |i: usize| sums[i] + repulsion.energy(&at(lengths[i]).positions);
+    let best = (0..lengths.len())
+        .min_by(|&a, &b| total(a).total_cmp(&total(b)))
+        .expect("points");
+    println!("H2: minimum at {:.2} Å", lengths[best]);
+    assert!((lengths[best] - 0.741).abs() < 0.15, "{}", lengths[best]);
 }

@@ -20,6 +20,7 @@ mod method;
 mod nearest;
 mod parameters;
 mod plan;
+mod repulsion;
 
 pub use basis::{AtomFunctions, Basis, BasisError, BasisFunction, BasisShell};
 pub use contraction::{contraction_norm, most_probable_radius};
@@ -33,3 +34,4 @@ pub use parameters::{
     ParameterSet, Problem, SET_NAMES, ShellName, ShellParameters, Variant,
 };
 pub use plan::{AtomPair, HamiltonianPlan, PlanError};
+pub use repulsion::PairRepulsion;

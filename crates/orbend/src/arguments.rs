@@ -59,6 +59,9 @@ pub(crate) struct LevelsArguments {
     pub(crate) model: ModelArguments,
     #[command(flatten)]
     pub(crate) output: OutputArguments,
+    /// Which vibrations the geometry gives in to, each tried by a short sweep
+    #[arg(long)]
+    pub(crate) distortions: bool,
     /// Threads; the output is the same bytes for every number
     #[arg(long, value_name = "N")]
     pub(crate) jobs: Option<usize>,

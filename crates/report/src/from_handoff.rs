@@ -2,7 +2,7 @@
 
 use orbend_scan::Sweep;
 use orbend_scan::reasons::{
-    ActiveSpace, HandOff, Makeup, RootFlip, RootKind, SpaceKind, StartKind, Term,
+    ActiveSpace, Distortions, HandOff, Makeup, RootFlip, RootKind, SpaceKind, StartKind, Term,
 };
 use orbend_structure::{Angstrom, Bohr, Molecule};
 
@@ -11,18 +11,20 @@ use crate::document::{
     Program, QcMolecule, QcProvenance, SpaceStop, StartGeometry, StateRecord, Units,
 };
 use crate::draw::ticks::ascii_number;
+use crate::from_distortion::distortions_record;
 use crate::from_scan::{
     FromScanError, Provenance, coordinate_records, method_record, molecule_record,
     symmetry_record, warnings,
 };
 
-/// The document of a hand-off.
+/// The document of a hand-off; `distortions` name the start geometry that they are of.
 ///
 /// # Errors
 /// A position or a value that is not finite.
 pub fn plan_document(
     sweep: &Sweep,
     hand_off: &HandOff,
+    distortions: &[(usize, Distortions)],
     provenance: &Provenance,
 ) -> Result<PlanDocument, FromScanError> {
     let plan = sweep.plan();
@@ -105,6 +107,10 @@ pub fn plan_document(
             .spaces
             .iter()
             .map(|space| active_space(sweep, hand_off, space))
+            .collect::<Result<_, _>>()?,
+        distortions: distortions
+            .iter()
+            .map(|(start, one)| distortions_record(one, Some(*start)))
             .collect::<Result<_, _>>()?,
         warnings: warnings(plan, provenance),
         missing: Vec::new(),

@@ -132,6 +132,7 @@ pub fn levels_document(
         symmetry: symmetry_record(plan)?,
         basis: Some(basis_functions(plan)),
         points: vec![point],
+        distortions: None,
         warnings: warnings(plan, provenance),
         missing,
     })

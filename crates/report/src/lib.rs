@@ -16,6 +16,7 @@ mod csv_table;
 mod document;
 mod draw;
 mod figure;
+mod from_distortion;
 mod from_handoff;
 mod from_parameters;
 mod from_scan;
@@ -36,6 +37,7 @@ pub use figure::{
     ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering,
     OrbitalPicture, Theme, levels_figure, shape_figure, sweep_figure,
 };
+pub use from_distortion::distortions_record;
 pub use from_handoff::{plan_document, qcschema_molecule};
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};

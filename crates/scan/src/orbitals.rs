@@ -15,6 +15,8 @@ pub struct Orbitals {
     pub coefficients: Array2<f64>,
     /// `functions × functions`.
     pub overlap: Array2<f64>,
+    /// One energy per line, eV.
+    pub energies: Vec<f64>,
 }
 
 /// Mulliken populations of one geometry (J. Chem. Phys. 23, 1833 (1955)).
@@ -84,6 +86,7 @@ impl SweepPlan {
         self.hamiltonian
             .fill(&positions, &mut overlap, &mut hamiltonian);
         let mut coefficients = Array2::zeros((self.lines.len(), n));
+        let mut energies = vec![0.0; self.lines.len()];
         for (index, block) in self.adapted.blocks.iter().enumerate() {
             let m = block.size();
             let mut s = vec![0.0; m * m];
@@ -100,6 +103,7 @@ impl SweepPlan {
                     if head.block == index && head.row == row {
                         let vector = &mut expanded[head.place * n..(head.place + 1) * n];
                         fix_sign(vector);
+                        energies[line] = room.values()[head.place];
                         coefficients
                             .row_mut(line)
                             .assign(&ndarray::ArrayView1::from(&*vector));
@@ -111,6 +115,7 @@ impl SweepPlan {
         Ok(Orbitals {
             coefficients,
             overlap,
+            energies,
         })
     }
 }

@@ -1,8 +1,10 @@
 //! `orbend levels`: one geometry.
 
 use orbend_report::{
-    FigureOptions, levels_csv, levels_document, levels_figure, levels_text, to_json,
+    FigureOptions, distortions_record, levels_csv, levels_document, levels_figure, levels_text, to_json,
 };
+
+use orbend_scan::reasons::Distortions;
 
 use super::geometry_text::geometry_text;
 use super::sweep::in_pool;
@@ -23,8 +25,14 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     )?;
     let sweep = in_pool(arguments.jobs, || resolved.request.run())?
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
-    let document = levels_document(&sweep, &provenance(&resolved.geometry, output.numbering))
+    let mut document = levels_document(&sweep, &provenance(&resolved.geometry, output.numbering))
         .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
+    if arguments.distortions {
+        let distortions = in_pool(arguments.jobs, || Distortions::new(&resolved.request))?
+            .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
+        document.distortions =
+            Some(distortions_record(&distortions, None).map_err(Failure::document)?);
+    }
     outputs.write(|ending| {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),

@@ -3,7 +3,7 @@
 use orbend_report::{
     plan_document, plan_markdown, plan_text, qcschema_molecule, to_json,
 };
-use orbend_scan::reasons::HandOff;
+use orbend_scan::reasons::{Distortions, HandOff, StartKind};
 use orbend_scan::shape::{Centre, ShapeRequest, ShapeVerdict};
 use orbend_scan::{Request, ScanError, Sweep};
 use orbend_structure::{Coordinate, write_xyz};
@@ -47,11 +47,12 @@ pub(crate) fn run(arguments: &PlanArguments) -> Result<(), Failure> {
         )?;
     }
     let fail = |error: ScanError| Failure::scan(&error).within(&arguments.geometry);
-    let (sweep, hand_off) = in_pool(arguments.jobs, || {
+    let (sweep, hand_off, distortions) = in_pool(arguments.jobs, || {
         let sweep = Sweep::run(resolved.request.plan()?)?;
         let verdicts = verdicts(&resolved.request);
         let hand_off = HandOff::new(&sweep, &verdicts)?;
-        Ok::<_, ScanError>((sweep, hand_off))
+        let distortions = distortions(&resolved.request, &hand_off)?;
+        Ok::<_, ScanError>((sweep, hand_off, distortions))
     })?
     .map_err(fail)?;
     let mut provenance = provenance(&resolved.geometry, output.numbering);
@@ -61,7 +62,7 @@ pub(crate) fn run(arguments: &PlanArguments) -> Result<(), Failure> {
             code: "no-path".to_owned(),
             text,
         }));
-    let document = plan_document(&sweep, &hand_off, &provenance)
+    let document = plan_document(&sweep, &hand_off, &distortions, &provenance)
         .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
     let options = text_options(output.numbering);
     outputs.write(|ending| {
@@ -100,6 +101,26 @@ fn usual_coordinate(request: &Request) -> Result<Coordinate, String> {
         .motion()
         .path(&centre)
         .map_err(|error| error.to_string())
+}
+
+/// Of the first start geometry and of those of higher symmetry.
+fn distortions(
+    request: &Request,
+    hand_off: &HandOff,
+) -> Result<Vec<(usize, Distortions)>, ScanError> {
+    let mut found = Vec::new();
+    for (index, start) in hand_off.starts.iter().enumerate() {
+        if index > 0 && start.kind != StartKind::HigherSymmetry {
+            continue;
+        }
+        let mut request = request.clone();
+        request.molecule = start.molecule.clone();
+        request.configuration = None;
+        if request.molecule.len() > 1 {
+            found.push((index, Distortions::new(&request)?));
+        }
+    }
+    Ok(found)
 }
 
 /// Verdicts of the charge asked for, then of one electron less and one more; empty where there is

@@ -1,6 +1,7 @@
 //! The result documents and how they are written, read and described.
 
 mod common;
+mod distortion;
 mod levels;
 mod number;
 mod params;
@@ -18,6 +19,7 @@ pub use common::{
     AtomPosition, BasisFunction, BondLength, Checked, Geometry, Method, Missing, MoleculeRecord,
     Program, ShellValues, Units, Warning,
 };
+pub use distortion::{DistortionsRecord, HintRecord, TrialRecord};
 pub use levels::{
     AtomCharge, LevelRecord, LevelsDocument, NearMiss, OverlapPopulation, Point, ShellPopulation,
     SymmetryRecord,

@@ -4,6 +4,7 @@ use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
 use super::common::{Method, Missing, MoleculeRecord, Program, Units, Warning};
+use super::distortion::DistortionsRecord;
 use super::levels::SymmetryRecord;
 use super::number::Number;
 use super::schema::PlanSchema;
@@ -36,6 +37,8 @@ pub struct PlanDocument {
     pub root_flips: Vec<RootFlip>,
     /// Active spaces: the same orbitals along the whole path.
     pub active_spaces: Vec<ActiveSpace>,
+    /// Distortions of the first start geometry and of those of higher symmetry.
+    pub distortions: Vec<DistortionsRecord>,
     /// What the reader ought to know.
     pub warnings: Vec<Warning>,
     /// Why a value is `null`.

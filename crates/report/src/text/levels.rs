@@ -27,6 +27,12 @@ pub fn levels_text(document: &LevelsDocument, options: &TextOptions) -> String {
         out.push('\n');
         totals(&mut out, point, options);
     }
+    if let Some(distortions) = &document.distortions {
+        out.push('\n');
+        for words in super::distortion::distortion_words(distortions, options) {
+            options.paragraph(&mut out, &words);
+        }
+    }
     warnings(&mut out, options, &document.warnings);
     out
 }

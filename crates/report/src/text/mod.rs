@@ -1,6 +1,7 @@
 //! Text for a person at a terminal, within a given number of columns.
 
 mod diagram;
+mod distortion;
 mod levels;
 mod params;
 mod passport;

@@ -6,6 +6,7 @@ use crate::draw::wording::{
     bracketed_charge, charge, coordinate_name, heading_formula, value_with_unit,
 };
 
+use super::distortion::distortion_words;
 use super::table::{Align, Table};
 use super::{TextOptions, heading, warnings};
 
@@ -22,7 +23,7 @@ enum Block {
 pub fn plan_text(document: &PlanDocument, options: &TextOptions) -> String {
     let mut out = String::new();
     heading(&mut out, options, &document.molecule, &document.method);
-    for block in blocks(document, options) {
+    for block in blocks(document, options, false) {
         match block {
             Block::Heading(words) => {
                 out.push('\n');
@@ -64,7 +65,7 @@ pub fn plan_markdown(document: &PlanDocument, options: &TextOptions) -> String {
         document.program.version,
     );
     let mut in_list = false;
-    for block in blocks(document, options) {
+    for block in blocks(document, options, true) {
         let item = matches!(block, Block::Item(_));
         if !(item && in_list) {
             out.push('\n');
@@ -97,13 +98,14 @@ pub fn plan_markdown(document: &PlanDocument, options: &TextOptions) -> String {
     out
 }
 
-fn blocks(document: &PlanDocument, options: &TextOptions) -> Vec<Block> {
+fn blocks(document: &PlanDocument, options: &TextOptions, both_ends: bool) -> Vec<Block> {
     let mut blocks = Vec::new();
     path(document, &mut blocks);
     starts(document, &mut blocks);
     states(document, options, &mut blocks);
     flips(document, &mut blocks);
-    spaces(document, options, &mut blocks);
+    distortions(document, options, &mut blocks);
+    spaces(document, options, both_ends, &mut blocks);
     blocks.push(Block::Heading("Caution".to_owned()));
     blocks.push(Block::Words(
         "The method knows no electron repulsion between states: it orders levels, not multiplets, and \
@@ -252,6 +254,21 @@ fn flips(document: &PlanDocument, blocks: &mut Vec<Block>) {
     }
 }
 
+fn distortions(document: &PlanDocument, options: &TextOptions, blocks: &mut Vec<Block>) {
+    if document.distortions.is_empty() {
+        return;
+    }
+    blocks.push(Block::Heading("What distorts".to_owned()));
+    for record in &document.distortions {
+        for words in distortion_words(record, options) {
+            let place = record
+                .start
+                .map_or_else(String::new, |start| format!("geometry {}: ", start + 1));
+            blocks.push(Block::Item(format!("{place}{words}")));
+        }
+    }
+}
+
 fn counts(list: &[IrrepCount]) -> String {
     list.iter()
         .map(|one| format!("{} {}", one.irrep, one.orbitals))
@@ -268,7 +285,12 @@ fn functions(space: &ActiveSpace) -> String {
     }
 }
 
-fn spaces(document: &PlanDocument, options: &TextOptions, blocks: &mut Vec<Block>) {
+fn spaces(
+    document: &PlanDocument,
+    options: &TextOptions,
+    both_ends: bool,
+    blocks: &mut Vec<Block>,
+) {
     blocks.push(Block::Heading("Active space".to_owned()));
     for space in &document.active_spaces {
         let what = match space.kind.as_str() {
@@ -298,7 +320,7 @@ fn spaces(document: &PlanDocument, options: &TextOptions, blocks: &mut Vec<Block
             space.electrons,
             space.orbitals
         )));
-        blocks.push(space_table(document, space, options));
+        blocks.push(space_table(document, space, options, both_ends));
         blocks.push(Block::Words(format!(
             "irrep counts in {}: doubly occupied outside, core included: {}; active: {}",
             document.symmetry.path_group,
@@ -309,17 +331,25 @@ fn spaces(document: &PlanDocument, options: &TextOptions, blocks: &mut Vec<Block
     }
 }
 
-fn space_table(document: &PlanDocument, space: &ActiveSpace, options: &TextOptions) -> Block {
+fn space_table(
+    document: &PlanDocument,
+    space: &ActiveSpace,
+    options: &TextOptions,
+    both_ends: bool,
+) -> Block {
     let moving = !document.coordinates.is_empty();
     let mut header = vec![
         ("orbital", Align::Left),
-        ("valence", Align::Left),
-        ("electrons", Align::Left),
+                ("electrons", Align::Left),
         ("character", Align::Left),
     ];
     if moving {
-        header.insert(2, ("at the ends", Align::Left));
-        header[4].0 = "character at the first and at the last point";
+        header.insert(1, ("at the ends", Align::Left));
+        header[3].0 = if both_ends {
+            "character at the first and at the last point"
+        } else {
+            "character at the first point"
+        };
     }
     let short = |value: f64| crate::draw::ticks::short(value, 2);
     let rows = space
@@ -337,13 +367,16 @@ fn space_table(document: &PlanDocument, space: &ActiveSpace, options: &TextOptio
                 }
             };
             let mut row = vec![
-                options.label(&line.label),
-                options.label(&line.valence_label),
+                options.label(options.pick(&line.label, &line.valence_label)),
                 same(&electrons[0], &electrons[1]),
-                same(&line.character[0], &line.character[1]),
+                if both_ends {
+                    same(&line.character[0], &line.character[1])
+                } else {
+                    line.character[0].clone()
+                },
             ];
             if moving {
-                row.insert(2, same(&options.label(first), &options.label(last)));
+                row.insert(1, same(&options.label(first), &options.label(last)));
             }
             row
         })

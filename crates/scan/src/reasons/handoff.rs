@@ -232,13 +232,9 @@ fn starts(
     for (point, special) in sweep.special_points() {
         let merged: Vec<String> = families_at(sweep, sets, point);
         let reason = if merged.is_empty() {
-            format!("{}: the higher symmetry of the path", special.group)
+            "the higher symmetry of the path".to_owned()
         } else {
-            format!(
-                "{}: the higher symmetry of the path; {}",
-                special.group,
-                merged.join("; ")
-            )
+            format!("the higher symmetry of the path; {}", merged.join("; "))
         };
         let mut one = start(
             sweep,

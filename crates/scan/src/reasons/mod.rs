@@ -1,8 +1,12 @@
-//! Reasons and the hand-off: what to compute next, and why.
+//! Why a level moves, what will distort, and what to compute next.
 //!
-//! [`HandOff`] draws start geometries, states, changes of order and active spaces from a sweep that
-//! has run and from shape verdicts of the same atoms.
+//! [`Gradients`] are the analytic derivatives and what they are made of. [`HandOff`] draws start
+//! geometries, states, changes of order and active spaces from a sweep that has run and from shape
+//! verdicts of the same atoms. [`Distortions`] says which vibrations a geometry gives in to.
 
+mod directions;
+mod distortion;
+mod gradients;
 mod handoff;
 mod makeup;
 mod roots;
@@ -11,6 +15,8 @@ mod space;
 mod states;
 mod terms;
 
+pub use distortion::{Distortions, FALL_EV, Hint, HintOrder, Trial};
+pub use gradients::{Gradients, slope};
 pub use handoff::{HandOff, OtherCharge, Start, StartKind};
 pub use makeup::{BONDING, Makeup};
 pub use roots::{RootFlip, RootKind};

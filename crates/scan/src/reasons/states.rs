@@ -65,7 +65,12 @@ pub(crate) fn states(
     for flip in flips.iter().filter(|flip| flip.kind == RootKind::Ground) {
         across(sweep, sets, starts, flip, &mut list);
     }
-    if let Some((gap, at)) = smallest_gap(sweep, sets).filter(|(gap, _)| *gap < SMALL_GAP_EV) {
+    // The first start geometry counts before the rest of the path.
+    let small = |found: &(f64, usize)| found.0 < SMALL_GAP_EV;
+    let gap = smallest_gap(sets, main..main + 1)
+        .filter(small)
+        .or_else(|| smallest_gap(sets, 0..sweep.points()).filter(small));
+    if let Some((gap, at)) = gap {
         let place = sweep.plan().path.values(at);
         let place = place.first().map_or_else(
             || "here".to_owned(),
@@ -313,9 +318,10 @@ fn across(
     }
 }
 
-/// The smallest distance of filled and empty levels along the path, and its point.
-fn smallest_gap(sweep: &Sweep, sets: &[LineSet]) -> Option<(f64, usize)> {
-    (0..sweep.points())
+/// The smallest distance of filled and empty levels at some points, and the point.
+fn smallest_gap(sets: &[LineSet], points: std::ops::Range<usize>) -> Option<(f64, usize)> {
+    points
+
         .filter_map(|point| {
             let energies = |filled: bool| {
                 sets.iter()

@@ -192,4 +192,14 @@ pub enum PathError {
         /// What to do.
         fix: String,
     },
+    /// Positions that have no finite derivative.
+    #[error("at {at} there is no derivative along {axis}: {cause}; ask at another value")]
+    NoSpeed {
+        /// The axis.
+        axis: String,
+        /// The parameter values, with names.
+        at: String,
+        /// Why.
+        cause: String,
+    },
 }

@@ -138,6 +138,27 @@ impl FramePath {
         }
     }
 
+    /// The derivative of the positions; at a frame that of the piece before it.
+    pub(crate) fn speeds(&self, value: f64, out: &mut [[f64; 3]]) {
+        let (index, t) = segment(&self.values, value);
+        let width = self.values[index + 1] - self.values[index];
+        let (low, high) = (&self.frames[index], &self.frames[index + 1]);
+        let [first, last] = self.slopes(index);
+        for (atom, speed) in out.iter_mut().enumerate() {
+            for k in 0..3 {
+                let (p, q) = (low[atom][k], high[atom][k]);
+                speed[k] = if self.smooth {
+                    let (a, b) = (first(atom, k), last(atom, k));
+                    6.0 * t * (1.0 - t) * (q - p)
+                        + (1.0 - t) * (1.0 - 3.0 * t) * a
+                        + t * (3.0 * t - 2.0) * b
+                } else {
+                    q - p
+                } / width;
+            }
+        }
+    }
+
     pub(crate) fn positions(&self, value: f64, out: &mut [[f64; 3]]) {
         let (index, fraction) = segment(&self.values, value);
         let (low, high) = (&self.frames[index], &self.frames[index + 1]);
@@ -150,18 +171,7 @@ impl FramePath {
             }
             return;
         }
-        // Cubic Hermite curve with central differences as slopes (one-sided at
-        // the ends).
-        let before = self.frames.get(index.wrapping_sub(1));
-        let after = self.frames.get(index + 2);
-        let width = self.values[index + 1] - self.values[index];
-        let slope = |k: usize| width / (self.values[k + 1] - self.values[k - 1]);
-        let left = if index > 0 { slope(index) } else { 0.0 };
-        let right = if after.is_some() {
-            slope(index + 1)
-        } else {
-            0.0
-        };
+        let [first, last] = self.slopes(index);
         let t = fraction;
         let (a0, a1) = (
             (1.0 + 2.0 * t) * (1.0 - t) * (1.0 - t),
@@ -171,11 +181,35 @@ impl FramePath {
         for (atom, place) in out.iter_mut().enumerate() {
             for k in 0..3 {
                 let (p, q) = (low[atom][k], high[atom][k]);
-                let first = before.map_or(q - p, |frame| left * (q - frame[atom][k]));
-                let last = after.map_or(q - p, |frame| right * (frame[atom][k] - p));
-                place[k] = a0 * p + a1 * first + b0 * q + b1 * last;
+                place[k] = a0 * p + a1 * first(atom, k) + b0 * q + b1 * last(atom, k);
             }
         }
+    }
+}
+
+impl FramePath {
+    /// Slopes of the cubic Hermite curve at both ends of piece `index`, by atom and axis, for a
+    /// piece of width 1: central differences, one-sided at the ends of the path.
+    fn slopes(&self, index: usize) -> [Box<dyn Fn(usize, usize) -> f64 + '_>; 2] {
+        let (low, high) = (&self.frames[index], &self.frames[index + 1]);
+        let width = self.values[index + 1] - self.values[index];
+        let slope = |k: usize| width / (self.values[k + 1] - self.values[k - 1]);
+        let straight = move |atom: usize, k: usize| high[atom][k] - low[atom][k];
+        let first: Box<dyn Fn(usize, usize) -> f64> = match index.checked_sub(1) {
+            Some(before) => {
+                let (left, frame) = (slope(index), &self.frames[before]);
+                Box::new(move |atom, k| left * (high[atom][k] - frame[atom][k]))
+            }
+            None => Box::new(straight),
+        };
+        let last: Box<dyn Fn(usize, usize) -> f64> = match self.frames.get(index + 2) {
+            Some(frame) => {
+                let right = slope(index + 1);
+                Box::new(move |atom, k| right * (frame[atom][k] - low[atom][k]))
+            }
+            None => Box::new(straight),
+        };
+        [first, last]
     }
 }
 

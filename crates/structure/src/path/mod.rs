@@ -8,6 +8,7 @@ mod matching;
 mod motion;
 mod partners;
 mod sequence;
+mod speed;
 #[cfg(test)]
 mod tests;
 mod toward;

@@ -114,6 +114,38 @@ impl Sequence {
         reach * crate::units::DEGREE_IN_RADIANS
     }
 
+    /// Value of the first coordinate, and its derivative with respect to the parameter.
+    pub(crate) fn rate(&self, axes: &[Axis], value: f64) -> (f64, f64) {
+        let Some(rows) = &self.rows else {
+            return (value, 1.0);
+        };
+        let row = Row::find(&axes[0].values, rows, value);
+        let width = self
+            .piece(axes, value)
+            .map_or(1.0, |(low, high)| high - low);
+        (row.value(0), (row.high[0] - row.low[0]) / width)
+    }
+
+    /// The ends of the piece of a table's path that holds a value of its parameter.
+    pub(crate) fn piece(&self, axes: &[Axis], value: f64) -> Option<(f64, f64)> {
+        self.rows.as_ref()?;
+        let parameters = &axes[0].values;
+        let (index, _) = segment(parameters, value);
+        Some((parameters[index], parameters[index + 1]))
+    }
+
+    /// Derivatives of the positions with respect to the only coordinate; false where they are
+    /// infinite.
+    pub(crate) fn speeds(&self, value: f64, out: &mut [[f64; 3]]) -> bool {
+        let mut positions = self.base.clone();
+        out.fill([0.0; 3]);
+        self.steps[0]
+            .motions
+            .iter()
+            .zip(&self.first)
+            .all(|(motion, frame)| motion.apply_with_speeds(frame, value, &mut positions, out))
+    }
+
     /// Number of coordinates.
     pub(crate) fn len(&self) -> usize {
         self.steps.len()

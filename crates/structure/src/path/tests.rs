@@ -442,3 +442,61 @@ fn frames_that_swap_atoms_clash() {
         "{error}"
     );
 }
+
+/// Speeds against central differences of the positions (an error of 1e-9 is left by those).
+fn check_speeds(plan: &PathPlan) {
+    for point in 0..plan.points() {
+        let values = plan.values(point);
+        let mut speeds = vec![[0.0; 3]; plan.start().len()];
+        for axis in 0..plan.axes().len() {
+            let (low, high) = plan.axes()[axis].limits();
+            if values[axis] - low < 0.1 || high - values[axis] < 0.1 {
+                continue;
+            }
+            plan.speeds(&values, axis, &mut speeds).unwrap();
+            let at = |shift: f64| {
+                let mut values = values.clone();
+                values[axis] += shift;
+                plan.molecule(&values).unwrap().positions
+            };
+            let h = 1e-3;
+            let (a, b, c, d) = (at(-2.0 * h), at(-h), at(h), at(2.0 * h));
+            for atom in 0..speeds.len() {
+                for k in 0..3 {
+                    let fourth_order =
+                        (8.0 * (c[atom][k] - b[atom][k]) - d[atom][k] + a[atom][k]) / (12.0 * h);
+                    let off = (fourth_order - speeds[atom][k]).abs();
+                    assert!(off < 1e-10, "{} atom {atom}: {off:e}", plan.place(&values));
+                }
+            }
+        }
+    }
+}
+
+#[test]
+fn speeds_are_the_derivatives_of_the_positions() {
+    let cases: [(&Molecule, &[(CoordinateKind, &str)]); 6] = [
+        (&water(), &[(Bend, "2-1-3=90..180:10")]),
+        (&ammonia(), &[(Pyramid, "1=90..119:4")]),
+        (&ethylene(), &[(Twist, "3-1-2-4=0..90:10")]),
+        (&ethylene(), &[(Stretch, "1-2=1.2..1.6:0.15")]),
+        (
+            &water(),
+            &[(Bend, "2-1-3=90..150:30"), (Stretch, "1-2=0.8..1.2:0.2")],
+        ),
+        (
+            &ethylene(),
+            &[(Bend, "3-1-4=100..130:10"), (Twist, "3-1-2-4=0..60:20")],
+        ),
+    ];
+    for (molecule, coordinates) in cases {
+        check_speeds(&plan(molecule, coordinates).unwrap());
+    }
+    let ammonia = ammonia();
+    let planar = plan(&ammonia, &[(Pyramid, "1=90..120:5")]).unwrap();
+    let mut speeds = vec![[0.0; 3]; 4];
+    assert!(matches!(
+        planar.speeds(&[120.0], 0, &mut speeds),
+        Err(PathError::NoSpeed { .. })
+    ));
+}
