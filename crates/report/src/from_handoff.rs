@@ -13,8 +13,8 @@ use crate::document::{
 use crate::draw::ticks::ascii_number;
 use crate::from_distortion::distortions_record;
 use crate::from_scan::{
-    FromScanError, Provenance, coordinate_records, method_record, molecule_record,
-    symmetry_record, warnings,
+    FromScanError, Provenance, coordinate_records, method_record, molecule_record, symmetry_record,
+    warnings,
 };
 
 /// The document of a hand-off; `distortions` name the start geometry that they are of.

@@ -473,6 +473,7 @@ pub(crate) fn levels_of(sweep: &SweepDocument, point: usize) -> LevelsDocument {
         symmetry: sweep.symmetry.clone(),
         basis: None,
         points: vec![one],
+        distortions: None,
         warnings: vec![],
         missing: vec![],
     }

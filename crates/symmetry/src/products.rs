@@ -76,9 +76,7 @@ impl PointGroup {
                 let matrix = &self.operations[class.operations[0]].matrix;
                 let twice = self
                     .operation_of(&product(matrix, matrix))
-                    .map_or(one.dimension as f64, |op| {
-                        one.characters[self.class_of[op]]
-                    });
+                    .map_or(one.dimension as f64, |op| one.characters[self.class_of[op]]);
                 0.5 * (x * x + sign * twice)
             })
             .collect();
@@ -120,7 +118,14 @@ impl PointGroup {
         match (m, n, part) {
             (0, 0, Some(Part::Antisymmetric)) => {}
             (0, 0, Some(Part::Symmetric)) => add(0, "+"),
-            (0, 0, None) => add(0, if a.parts.sign == b.parts.sign { "+" } else { "-" }),
+            (0, 0, None) => add(
+                0,
+                if a.parts.sign == b.parts.sign {
+                    "+"
+                } else {
+                    "-"
+                },
+            ),
             (0, k, _) | (k, 0, _) => add(k, ""),
             (m, n, Some(Part::Symmetric)) => {
                 add(0, "+");

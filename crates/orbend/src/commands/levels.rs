@@ -1,7 +1,8 @@
 //! `orbend levels`: one geometry.
 
 use orbend_report::{
-    FigureOptions, distortions_record, levels_csv, levels_document, levels_figure, levels_text, to_json,
+    FigureOptions, distortions_record, levels_csv, levels_document, levels_figure, levels_text,
+    to_json,
 };
 
 use orbend_scan::reasons::Distortions;

@@ -1,8 +1,6 @@
 //! `orbend plan`: what to compute next.
 
-use orbend_report::{
-    plan_document, plan_markdown, plan_text, qcschema_molecule, to_json,
-};
+use orbend_report::{plan_document, plan_markdown, plan_text, qcschema_molecule, to_json};
 use orbend_scan::reasons::{Distortions, HandOff, StartKind};
 use orbend_scan::shape::{Centre, ShapeRequest, ShapeVerdict};
 use orbend_scan::{Request, ScanError, Sweep};
@@ -72,8 +70,7 @@ pub(crate) fn run(arguments: &PlanArguments) -> Result<(), Failure> {
             "qcschema.json" => {
                 let molecule = &hand_off.starts[0].molecule;
                 let unpaired = sweep.plan().electrons().unpaired();
-                let molecule =
-                    qcschema_molecule(molecule, unpaired).map_err(Failure::document)?;
+                let molecule = qcschema_molecule(molecule, unpaired).map_err(Failure::document)?;
                 to_json(&molecule).map_err(Failure::document)?.into_bytes()
             }
             _ => {

@@ -57,7 +57,7 @@ pub struct TrialRecord {
     pub amplitudes: Vec<Number>,
     /// The sum relative to the undisplaced geometry, eV.
     pub changes: Vec<Number>,
-    /// Whether it falls by more than 0.025 eV.
+    /// Whether it falls by more than 0.025 eV where a level splits, 0.1 eV where two levels mix.
     pub falls: bool,
     /// Point group of the displaced geometry, plain.
     pub group: String,

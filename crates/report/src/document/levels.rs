@@ -3,8 +3,8 @@
 use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
-use super::distortion::DistortionsRecord;
 use super::common::{BasisFunction, Method, Missing, MoleculeRecord, Program, Units, Warning};
+use super::distortion::DistortionsRecord;
 use super::number::Number;
 use super::schema::LevelsSchema;
 

@@ -27,7 +27,8 @@ pub use levels::{
 pub use number::{NotFinite, Number};
 pub use params::{ParamsDocument, Variant};
 pub use plan::{
-    ActiveLine, ActiveSpace, ChargeRecord, IrrepCount, PlanDocument, RootFlip, SpaceStop, StartGeometry, StateRecord,
+    ActiveLine, ActiveSpace, ChargeRecord, IrrepCount, PlanDocument, RootFlip, SpaceStop,
+    StartGeometry, StateRecord,
 };
 pub use qcschema::{QcMolecule, QcProvenance};
 pub use read::{Document, DocumentError, read_document};

@@ -35,7 +35,9 @@ pub enum DocumentError {
         cause: String,
     },
     /// The text has no `schema` that this version knows.
-    #[error("unknown schema \"{0}\": this version reads orbend/{{levels,sweep,shape,params,plan}}/1")]
+    #[error(
+        "unknown schema \"{0}\": this version reads orbend/{{levels,sweep,shape,params,plan}}/1"
+    )]
     UnknownSchema(String),
     /// Parts of the document contradict each other.
     #[error("{place}: {cause}")]
@@ -107,7 +109,11 @@ impl PlanDocument {
         }
         for (index, space) in self.active_spaces.iter().enumerate() {
             if space.orbitals as usize != space.lines.len() {
-                let cause = format!("{} lines for {} orbitals", space.lines.len(), space.orbitals);
+                let cause = format!(
+                    "{} lines for {} orbitals",
+                    space.lines.len(),
+                    space.orbitals
+                );
                 return Err(DocumentError::at(format!("/active_spaces/{index}"), cause));
             }
         }

@@ -6,11 +6,11 @@ use crate::lettering::Lettering;
 
 use super::TextOptions;
 
+/// Vibrations told along which the sum does not fall; the document has all of them.
+const MOST_TRIED: usize = 3;
+
 /// One sentence per vibration that was tried; those along which the sum falls first.
-pub(super) fn distortion_words(
-    record: &DistortionsRecord,
-    options: &TextOptions,
-) -> Vec<String> {
+pub(super) fn distortion_words(record: &DistortionsRecord, options: &TextOptions) -> Vec<String> {
     let mut words = Vec::new();
     let falls = record.hints.iter().filter(|hint| hint.trial.falls).count();
     if falls == 0 {
@@ -19,7 +19,11 @@ pub(super) fn distortion_words(
             record.group, record.vibrations
         ));
     }
-    for hint in &record.hints {
+    for hint in record.hints.iter().filter(|hint| hint.trial.falls) {
+        words.push(hint_words(record, hint, options));
+    }
+    let rest = record.hints.iter().filter(|hint| !hint.trial.falls);
+    for hint in rest.take(MOST_TRIED) {
         words.push(hint_words(record, hint, options));
     }
     words
@@ -70,7 +74,11 @@ fn hint_words(record: &DistortionsRecord, hint: &HintRecord, options: &TextOptio
                 "the {} falls by {} eV{} {} Å, towards {}",
                 trial.name.replace('-', " "),
                 ascii_number(-change.get(), 2),
-                if end { " at least, up to" } else { ", lowest at" },
+                if end {
+                    " at least, up to"
+                } else {
+                    ", lowest at"
+                },
                 ascii_number(at.get(), 2),
                 trial.group
             )

@@ -340,7 +340,7 @@ fn space_table(
     let moving = !document.coordinates.is_empty();
     let mut header = vec![
         ("orbital", Align::Left),
-                ("electrons", Align::Left),
+        ("electrons", Align::Left),
         ("character", Align::Left),
     ];
     if moving {

@@ -47,7 +47,8 @@ pub(crate) fn directions(
             let mut square = vec![0.0; m * m];
             for i in 0..m {
                 for j in 0..m {
-                    square[i * m + j] = changes[i].iter().zip(&changes[j]).map(|(a, b)| a * b).sum();
+                    square[i * m + j] =
+                        changes[i].iter().zip(&changes[j]).map(|(a, b)| a * b).sum();
                 }
             }
             let (values, vectors) = eigen(m, &square)?;
@@ -75,10 +76,11 @@ pub(crate) fn eigen(size: usize, matrix: &[f64]) -> Result<(Vec<f64>, Vec<f64>),
         .map(|k| f64::from(u8::from(k % (size + 1) == 0)))
         .collect();
     let mut room = Workspace::new(size);
-    room.solve(matrix, &unit).map_err(|error| ScanError::Eigen {
-        at: "this geometry".to_owned(),
-        cause: error.to_string(),
-    })?;
+    room.solve(matrix, &unit)
+        .map_err(|error| ScanError::Eigen {
+            at: "this geometry".to_owned(),
+            cause: error.to_string(),
+        })?;
     Ok((room.values().to_vec(), room.vectors().to_vec()))
 }
 
@@ -96,7 +98,9 @@ pub(crate) fn combined(displacements: &[Displacement], factors: &[f64]) -> Displ
 fn stretching(positions: &[[f64; 3]], (a, b): (usize, usize), d: &Displacement) -> f64 {
     let apart: [f64; 3] = std::array::from_fn(|k| positions[b][k] - positions[a][k]);
     let length = apart.iter().map(|x| x * x).sum::<f64>().sqrt();
-    (0..3).map(|k| apart[k] / length * (d[b][k] - d[a][k])).sum()
+    (0..3)
+        .map(|k| apart[k] / length * (d[b][k] - d[a][k]))
+        .sum()
 }
 
 /// Positions displaced by `amplitude` (Å over all atoms); with `keep_lengths` the bonds are then
@@ -109,7 +113,11 @@ pub(crate) fn displaced(
     keep_lengths: bool,
 ) -> Vec<[f64; 3]> {
     let mut positions = molecule.positions.clone();
-    for (p, d) in positions.iter_mut().flatten().zip(direction.iter().flatten()) {
+    for (p, d) in positions
+        .iter_mut()
+        .flatten()
+        .zip(direction.iter().flatten())
+    {
         *p += amplitude * d;
     }
     if !keep_lengths {

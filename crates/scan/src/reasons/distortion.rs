@@ -23,8 +23,11 @@ use crate::solve::Workspace;
 use super::directions::{Directions, Displacement, combined, directions, displaced, eigen};
 use super::gradients::Gradients;
 
-/// A fall of the sum smaller than this (eV) counts as none.
+/// A fall of the sum smaller than this (eV) counts as none where a level splits by symmetry: kT at
+/// 298 K is 0.026 eV.
 pub const FALL_EV: f64 = 0.025;
+/// The same where two levels mix: what a sum decides is not better than a tenth of an eV.
+pub const MIXING_FALL_EV: f64 = 0.1;
 /// Amplitudes of the trial, Å over all atoms.
 const AMPLITUDES: [f64; 8] = [0.05, 0.1, 0.15, 0.2, 0.25, 0.3, 0.35, 0.4];
 /// A direction that couples less than this (eV/Å) is not told.
@@ -83,7 +86,7 @@ pub struct Trial {
     pub amplitudes: Vec<f64>,
     /// The sum relative to the undisplaced one, eV.
     pub changes: Vec<f64>,
-    /// Whether it falls by more than [`FALL_EV`].
+    /// Whether it falls by more than [`FALL_EV`] or [`MIXING_FALL_EV`].
     pub falls: bool,
     /// Point group of the displaced geometry, plain.
     pub group: String,
@@ -136,13 +139,29 @@ impl Distortions {
         let trials = Trials::new(&request)?;
         let mut hints = Vec::new();
         for set in sets.iter().filter(|set| set.is_open()) {
-            first_order(&plan, &gradients, &coefficients, set, &all, &trials, &mut hints)?;
+            first_order(
+                &plan,
+                &gradients,
+                &coefficients,
+                set,
+                &all,
+                &trials,
+                &mut hints,
+            )?;
         }
         let told: Vec<String> = hints.iter().map(|hint: &Hint| hint.irrep.clone()).collect();
         for one in &all {
             let known = told.contains(&group.irreps[one.irrep].plain);
             if one.irrep != group.totally_symmetric() && !known {
-                second_order(&plan, &gradients, &coefficients, &sets, one, &trials, &mut hints)?;
+                second_order(
+                    &plan,
+                    &gradients,
+                    &coefficients,
+                    &sets,
+                    one,
+                    &trials,
+                    &mut hints,
+                )?;
             }
         }
         hints.sort_by(|a, b| {
@@ -156,7 +175,11 @@ impl Distortions {
             };
             rank(a)
                 .cmp(&rank(b))
-                .then(b.strength.unwrap_or(0.0).total_cmp(&a.strength.unwrap_or(0.0)))
+                .then(
+                    b.strength
+                        .unwrap_or(0.0)
+                        .total_cmp(&a.strength.unwrap_or(0.0)),
+                )
                 .then(b.coupling.total_cmp(&a.coupling))
                 .then(a.irrep.cmp(&b.irrep))
         });
@@ -235,7 +258,16 @@ fn first_order(
         let by_square = (0..group.irreps.len())
             .any(|k| group.irreps[k].dimension > 1 && own[k] * square[k] > 0);
         if let Some(direction) = one.bends.first().filter(|_| group.linear && by_square) {
-            hints.push(hint(plan, trials, HintOrder::LinearSplitting, one.irrep, &[set], 0.0, direction, true)?);
+            hints.push(hint(
+                plan,
+                trials,
+                HintOrder::LinearSplitting,
+                one.irrep,
+                &[set],
+                0.0,
+                direction,
+                true,
+            )?);
             continue;
         }
         if square[one.irrep] == 0 {
@@ -253,7 +285,16 @@ fn first_order(
         } else {
             (coupling, direction, one.stretches.is_empty())
         };
-        hints.push(hint(plan, trials, HintOrder::First, one.irrep, &[set], coupling, &direction, keeps)?);
+        hints.push(hint(
+            plan,
+            trials,
+            HintOrder::First,
+            one.irrep,
+            &[set],
+            coupling,
+            &direction,
+            keeps,
+        )?);
     }
     Ok(())
 }
@@ -391,7 +432,7 @@ fn hint(
         strength: gap.map(|gap| coupling * coupling / gap),
         keeps_lengths,
         displacement: direction.clone(),
-        trial: trials.run(direction, keeps_lengths)?,
+        trial: trials.run(direction, keeps_lengths, order)?,
     })
 }
 
@@ -491,7 +532,12 @@ impl Trials {
     }
 
     /// Both senses of a direction are tried; the lower one counts.
-    fn run(&self, direction: &Displacement, keep: bool) -> Result<Trial, ScanError> {
+    fn run(
+        &self,
+        direction: &Displacement,
+        keep: bool,
+        order: HintOrder,
+    ) -> Result<Trial, ScanError> {
         let start = self.energy(direction, 0.0, keep)?;
         let mut best: Option<(f64, f64, Vec<f64>)> = None;
         for sense in [1.0, -1.0] {
@@ -500,7 +546,10 @@ impl Trials {
                 .map(|a| Ok(self.energy(direction, sense * a, keep)? - start))
                 .collect::<Result<Vec<f64>, ScanError>>()?;
             let lowest = changes.iter().copied().fold(0.0, f64::min);
-            if best.as_ref().is_none_or(|(least, ..)| lowest < least - 1e-9) {
+            if best
+                .as_ref()
+                .is_none_or(|(least, ..)| lowest < least - 1e-9)
+            {
                 best = Some((lowest, sense, changes));
             }
         }
@@ -516,7 +565,11 @@ impl Trials {
             },
             amplitudes: std::iter::once(0.0).chain(AMPLITUDES).collect(),
             changes: std::iter::once(0.0).chain(changes).collect(),
-            falls: lowest < -FALL_EV,
+            falls: lowest
+                < match order {
+                    HintOrder::Second => -MIXING_FALL_EV,
+                    _ => -FALL_EV,
+                },
             group: group.group.name,
         })
     }

@@ -162,7 +162,13 @@ impl HandOff {
 /// `104°` or `1.5 Å`, for words.
 pub(crate) fn value_words(sweep: &Sweep, at: f64) -> String {
     let rounded = (at * 10.0).round() / 10.0;
-    match sweep.plan().path.axes().first().map(|axis| axis.unit.as_str()) {
+    match sweep
+        .plan()
+        .path
+        .axes()
+        .first()
+        .map(|axis| axis.unit.as_str())
+    {
         Some("degree") => format!("{rounded}°"),
         Some("angstrom") => format!("{} Å", (at * 1000.0).round() / 1000.0),
         _ => format!("{}", (at * 1000.0).round() / 1000.0),
@@ -189,13 +195,20 @@ fn starts(
 ) -> Result<Vec<Start>, ScanError> {
     let plan = sweep.plan();
     let Some(axis) = plan.path.axes().first() else {
-        return Ok(vec![start(sweep, StartKind::Given, None, "the geometry as given".to_owned())?]);
+        return Ok(vec![start(
+            sweep,
+            StartKind::Given,
+            None,
+            "the geometry as given".to_owned(),
+        )?]);
     };
     let (low, high) = axis.limits();
     let mut found: Vec<Start> = Vec::new();
     let own = verdict.filter(|verdict| same_motion(sweep, verdict));
     let told = own.and_then(|verdict| {
-        let angle = verdict.angle.filter(|_| verdict.ruling.shape != Favour::Silent)?;
+        let angle = verdict
+            .angle
+            .filter(|_| verdict.ruling.shape != Favour::Silent)?;
         (angle >= low - 1e-9 && angle <= high + 1e-9).then_some((verdict, angle))
     });
     if let Some((verdict, angle)) = told {
@@ -271,7 +284,9 @@ fn starts(
         }
     }
     for one in &mut kept {
-        let at = one.at.map_or_else(String::new, |at| format!(" at {}", value_words(sweep, at)));
+        let at = one
+            .at
+            .map_or_else(String::new, |at| format!(" at {}", value_words(sweep, at)));
         one.molecule.title = format!("{}{at} {}", plan.molecule.title, one.point_group)
             .trim()
             .to_owned();
@@ -293,12 +308,13 @@ fn families_at(sweep: &Sweep, sets: &[LineSet], point: usize) -> Vec<String> {
             e > 1e-6 && e < set.capacity() - 1e-6
         });
         if first && partners.len() > 1 && near_frontier {
-            let names: Vec<&str> = partners
-                .iter()
-                .map(|set| set.name.plain.as_str())
-                .collect();
+            let names: Vec<&str> = partners.iter().map(|set| set.name.plain.as_str()).collect();
             let (name, _) = sweep.full_name(set.lines[0], point);
-            words.push(format!("{} are one set, {}", names.join(" and "), name.plain));
+            words.push(format!(
+                "{} are one set, {}",
+                names.join(" and "),
+                name.plain
+            ));
         }
     }
     words
@@ -355,7 +371,11 @@ fn other_charge(own: &ShapeVerdict, other: &ShapeVerdict) -> OtherCharge {
         Some(_) => format!(
             "; {} {} by {:.1} eV on distortion",
             preposition.label,
-            if preposition.change < 0.0 { "falls" } else { "rises" },
+            if preposition.change < 0.0 {
+                "falls"
+            } else {
+                "rises"
+            },
             preposition.change.abs()
         ),
         None => String::new(),

@@ -15,7 +15,7 @@ mod space;
 mod states;
 mod terms;
 
-pub use distortion::{Distortions, FALL_EV, Hint, HintOrder, Trial};
+pub use distortion::{Distortions, FALL_EV, Hint, HintOrder, MIXING_FALL_EV, Trial};
 pub use gradients::{Gradients, slope};
 pub use handoff::{HandOff, OtherCharge, Start, StartKind};
 pub use makeup::{BONDING, Makeup};

@@ -130,9 +130,7 @@ fn least(sweep: &Sweep, sets: &[LineSet], crossings: &[Crossing]) -> Vec<bool> {
         };
         let filled = |set: &usize| sets[*set].electrons[point] > 1e-6;
         let highest = (0..sets.len()).filter(filled).max_by(by_energy);
-        let lowest = (0..sets.len())
-            .filter(|set| !filled(set))
-            .min_by(by_energy);
+        let lowest = (0..sets.len()).filter(|set| !filled(set)).min_by(by_energy);
         for set in highest.into_iter().chain(lowest) {
             active[set] = true;
         }
@@ -185,7 +183,8 @@ fn proposed(sweep: &Sweep, sets: &[LineSet], least: &[bool]) -> Option<Vec<bool>
             if !(whole && contains && full) {
                 continue;
             }
-            let lines = |wanted: &[usize]| wanted.iter().map(|&s| sets[s].lines.len()).sum::<usize>();
+            let lines =
+                |wanted: &[usize]| wanted.iter().map(|&s| sets[s].lines.len()).sum::<usize>();
             let inside = electrons.total() - 2 * lines(&order[..bottom]) as u32;
             let orbitals = lines(&order[bottom..top]) as u32;
             if state_functions(orbitals, inside, electrons.unpaired()) > MOST_FUNCTIONS {
@@ -341,7 +340,12 @@ fn common(ends: &[Character; 2], lines: &[usize]) -> Result<f64, ScanError> {
             at: "the active space".to_owned(),
             cause: error.to_string(),
         })?;
-    Ok(room.values().first().copied().unwrap_or(1.0).clamp(0.0, 1.0))
+    Ok(room
+        .values()
+        .first()
+        .copied()
+        .unwrap_or(1.0)
+        .clamp(0.0, 1.0))
 }
 
 #[cfg(test)]

@@ -81,7 +81,9 @@ pub(crate) fn states(
             sets,
             at,
             unpaired + 2,
-            &format!("highest filled and lowest empty level are {gap:.2} eV apart {place}: a higher spin may be lower"),
+            &format!(
+                "highest filled and lowest empty level are {gap:.2} eV apart {place}: a higher spin may be lower"
+            ),
             &mut list,
         );
     }
@@ -140,7 +142,9 @@ fn configuration(sets: &[LineSet], occupation: &Occupation) -> String {
         .iter()
         .position(|set| !full(set))
         .unwrap_or(shown.len());
-    let from = first_open.min(shown.len().saturating_sub(1)).saturating_sub(1);
+    let from = first_open
+        .min(shown.len().saturating_sub(1))
+        .saturating_sub(1);
     let words: Vec<String> = shown[from..]
         .iter()
         .map(|&set| {
@@ -321,7 +325,6 @@ fn across(
 /// The smallest distance of filled and empty levels at some points, and the point.
 fn smallest_gap(sets: &[LineSet], points: std::ops::Range<usize>) -> Option<(f64, usize)> {
     points
-
         .filter_map(|point| {
             let energies = |filled: bool| {
                 sets.iter()
