@@ -62,6 +62,10 @@ pub(crate) struct LevelsArguments {
     /// Which vibrations the geometry gives in to, each tried by a short sweep
     #[arg(long)]
     pub(crate) distortions: bool,
+    /// The molecule as fragments: "1,2,3 | 4-9 (-1)" (atoms from 1, charges in brackets); a figure is
+    /// the interaction diagram then
+    #[arg(long, value_name = "FRAGMENTS")]
+    pub(crate) fragments: Option<String>,
     /// Threads; the output is the same bytes for every number
     #[arg(long, value_name = "N")]
     pub(crate) jobs: Option<usize>,
@@ -79,6 +83,9 @@ pub(crate) struct SweepArguments {
     pub(crate) output: OutputArguments,
     #[command(flatten)]
     pub(crate) figure: FigureArguments,
+    /// The molecule as fragments along the path: "1,2,3 | 4-9 (-1)"
+    #[arg(long, value_name = "FRAGMENTS")]
+    pub(crate) fragments: Option<String>,
     /// Every line's names along the path instead of the usual text
     #[arg(long, conflicts_with = "json")]
     pub(crate) passport: bool,

@@ -103,6 +103,7 @@ pub fn sweep_document(
             None
         },
         crossing_search: if single { crossing_search(plan)? } else { None },
+        fragments: None,
         warnings: warnings(plan, provenance),
         missing,
     })
@@ -133,6 +134,7 @@ pub fn levels_document(
         basis: Some(basis_functions(plan)),
         points: vec![point],
         distortions: None,
+        fragments: None,
         warnings: warnings(plan, provenance),
         missing,
     })

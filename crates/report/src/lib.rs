@@ -17,6 +17,7 @@ mod document;
 mod draw;
 mod figure;
 mod from_distortion;
+mod from_fragments;
 mod from_handoff;
 mod from_parameters;
 mod from_scan;
@@ -35,9 +36,10 @@ pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
 pub use figure::{
     ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering,
-    OrbitalPicture, Theme, levels_figure, shape_figure, sweep_figure,
+    OrbitalPicture, Theme, interaction_figure, levels_figure, shape_figure, sweep_figure,
 };
 pub use from_distortion::distortions_record;
+pub use from_fragments::fragments_record;
 pub use from_handoff::{plan_document, qcschema_molecule};
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
@@ -48,5 +50,5 @@ pub use page::{PageError, sweep_page};
 pub use raster::{ImageError, figure_png};
 pub use text::{
     TextOptions, levels_text, params_text, passport_text, plan_markdown, plan_text, shape_text,
-    sweep_text,
+    sweep_fragments_text, sweep_text,
 };

@@ -159,6 +159,7 @@ pub(crate) fn sweep(frame: &Frame<'_>, xs: &[f64], sketches: &[Sketch]) -> Sweep
         crossing_search: None,
         followed: None,
         minimum: None,
+        fragments: None,
         warnings: vec![],
         missing: vec![],
     }
@@ -474,6 +475,7 @@ pub(crate) fn levels_of(sweep: &SweepDocument, point: usize) -> LevelsDocument {
         basis: None,
         points: vec![one],
         distortions: None,
+        fragments: None,
         warnings: vec![],
         missing: vec![],
     }

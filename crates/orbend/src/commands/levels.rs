@@ -1,12 +1,13 @@
 //! `orbend levels`: one geometry.
 
 use orbend_report::{
-    FigureOptions, distortions_record, levels_csv, levels_document, levels_figure, levels_text,
-    to_json,
+    FigureOptions, distortions_record, fragments_record, interaction_figure, levels_csv,
+    levels_document, levels_figure, levels_text, to_json,
 };
 
-use orbend_scan::reasons::Distortions;
+use orbend_scan::reasons::{Distortions, FragmentAnalysis};
 
+use super::fragments::{fragment_failure, fragments};
 use super::geometry_text::geometry_text;
 use super::sweep::in_pool;
 use super::{csv, drawing, figure_numbering, provenance, resolve, text_options};
@@ -34,6 +35,12 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
         document.distortions =
             Some(distortions_record(&distortions, None).map_err(Failure::document)?);
     }
+    if let Some(text) = &arguments.fragments {
+        let fragments = fragments(text, resolved.request.molecule.len())?;
+        let analysis = FragmentAnalysis::new(&sweep, 0, &fragments).map_err(fragment_failure)?;
+        document.fragments =
+            Some(fragments_record(sweep.plan(), &analysis).map_err(Failure::document)?);
+    }
     outputs.write(|ending| {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
@@ -44,7 +51,12 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
                     numbering: figure_numbering(output.numbering),
                     ..FigureOptions::default()
                 };
-                drawing(levels_figure(&document, &options), ending)?
+                let figure = if document.fragments.is_some() {
+                    interaction_figure(&document, &options)
+                } else {
+                    levels_figure(&document, &options)
+                };
+                drawing(figure, ending)?
             }
         })
     })?;

@@ -1,5 +1,6 @@
 //! One file per command; what several need stands here.
 
+mod fragments;
 mod geometry_text;
 pub(crate) mod levels;
 pub(crate) mod params;

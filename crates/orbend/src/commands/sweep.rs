@@ -2,10 +2,12 @@
 
 use orbend_report::{
     FigureOptions, end_pictures, passport_text, sweep_csv, sweep_document,
-    sweep_document_with_orbitals, sweep_figure, sweep_page, sweep_text, to_json,
+    sweep_document_with_orbitals, sweep_figure, sweep_fragments_text, sweep_page, sweep_text,
+    to_json,
 };
 use orbend_scan::Sweep;
 
+use super::fragments::{along, fragments};
 use super::geometry_text::geometry_text;
 use super::route::{movement, route};
 use super::{csv, drawing, figure_options, provenance, resolve, text_options};
@@ -38,8 +40,12 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
     let sweep = in_pool(arguments.jobs, || Sweep::run(plan))?
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
-    let document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
+    let mut document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
         .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
+    if let Some(text) = &arguments.fragments {
+        let fragments = fragments(text, resolved.request.molecule.len())?;
+        document.fragments = Some(along(&sweep, &fragments)?);
+    }
     let mut figure = figure;
     if arguments.figure.orbitals && document.lines.is_some() {
         figure.pictures = Some(end_pictures(&sweep).map_err(|error| Failure::scan(&error))?);
@@ -60,7 +66,12 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     } else {
         let options = text_options(output.numbering);
         let start = geometry_text(&resolved.geometry, options.width);
-        write_stdout((start + &sweep_text(&document, &options)).as_bytes())
+        let mut text = start + &sweep_text(&document, &options);
+        if let Some(records) = &document.fragments {
+            text.push('\n');
+            text.push_str(&sweep_fragments_text(records, &options));
+        }
+        write_stdout(text.as_bytes())
     }
 }
 

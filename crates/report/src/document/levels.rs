@@ -5,6 +5,7 @@ use serde::{Deserialize, Serialize};
 
 use super::common::{BasisFunction, Method, Missing, MoleculeRecord, Program, Units, Warning};
 use super::distortion::DistortionsRecord;
+use super::fragments::FragmentsRecord;
 use super::number::Number;
 use super::schema::LevelsSchema;
 
@@ -31,6 +32,9 @@ pub struct LevelsDocument {
     /// Which vibrations the geometry gives in to; left out unless asked for.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub distortions: Option<DistortionsRecord>,
+    /// The molecule as fragments; left out unless asked for.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub fragments: Option<FragmentsRecord>,
     /// What the reader ought to know.
     pub warnings: Vec<Warning>,
     /// Why a value is `null`.

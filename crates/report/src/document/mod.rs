@@ -2,6 +2,7 @@
 
 mod common;
 mod distortion;
+mod fragments;
 mod levels;
 mod number;
 mod params;
@@ -20,6 +21,9 @@ pub use common::{
     Program, ShellValues, Units, Warning,
 };
 pub use distortion::{DistortionsRecord, HintRecord, TrialRecord};
+pub use fragments::{
+    FragmentLevelRecord, FragmentOrbitalRecord, FragmentPairRecord, FragmentRecord, FragmentsRecord,
+};
 pub use levels::{
     AtomCharge, LevelRecord, LevelsDocument, NearMiss, OverlapPopulation, Point, ShellPopulation,
     SymmetryRecord,

@@ -2,6 +2,7 @@
 
 mod axes;
 pub(crate) mod canvas;
+mod interaction;
 mod key;
 mod labels;
 mod ladder;
@@ -20,6 +21,7 @@ mod tests;
 pub(crate) mod theme;
 pub(crate) mod xml;
 
+pub use interaction::interaction_figure;
 pub use ladder::levels_figure;
 pub use options::{
     ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering, Theme,

@@ -27,6 +27,10 @@ pub fn levels_text(document: &LevelsDocument, options: &TextOptions) -> String {
         out.push('\n');
         totals(&mut out, point, options);
     }
+    if let Some(record) = &document.fragments {
+        out.push('\n');
+        super::fragments::fragments(&mut out, record, options);
+    }
     if let Some(distortions) = &document.distortions {
         out.push('\n');
         for words in super::distortion::distortion_words(distortions, options) {

@@ -2,6 +2,7 @@
 
 mod diagram;
 mod distortion;
+mod fragments;
 mod levels;
 mod params;
 mod passport;
@@ -10,6 +11,7 @@ mod shape;
 mod sweep;
 mod table;
 
+pub use fragments::sweep_fragments_text;
 pub use levels::levels_text;
 pub use params::params_text;
 pub use passport::passport_text;

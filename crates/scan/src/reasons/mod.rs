@@ -3,9 +3,11 @@
 //! [`Gradients`] are the analytic derivatives and what they are made of. [`HandOff`] draws start
 //! geometries, states, changes of order and active spaces from a sweep that has run and from shape
 //! verdicts of the same atoms. [`Distortions`] says which vibrations a geometry gives in to.
+//! [`FragmentAnalysis`] takes a molecule apart.
 
 mod directions;
 mod distortion;
+mod fragments;
 mod gradients;
 mod handoff;
 mod makeup;
@@ -16,6 +18,10 @@ mod states;
 mod terms;
 
 pub use distortion::{Distortions, FALL_EV, Hint, HintOrder, MIXING_FALL_EV, Trial};
+pub use fragments::{
+    Fragment, FragmentAnalysis, FragmentError, FragmentHead, FragmentLine, FragmentOrbital,
+    FragmentPair, two_orbital_energy,
+};
 pub use gradients::{Gradients, slope};
 pub use handoff::{HandOff, OtherCharge, Start, StartKind};
 pub use makeup::{BONDING, Makeup};
