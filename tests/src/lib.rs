@@ -37,7 +37,9 @@ pub fn orbend_binary() -> &'static Path {
                     "build",
                     "--quiet",
                     "--offline",
-                    "-p",
+                    // The features that the tests were built with: nothing is compiled twice.
+                    "--workspace",
+                    "--bin",
                     "orbend",
                     "--target-dir",
                 ])
