@@ -3,7 +3,7 @@
 
 use std::ops::Range;
 
-use ndarray::{Array2, s};
+use ndarray::Array2;
 use orbend_structure::Molecule;
 use thiserror::Error;
 
@@ -358,7 +358,7 @@ fn molecule_lines(
         let row = products.row(level.line);
         let shares: Vec<f64> = members
             .iter()
-            .map(|set| row.slice(s![set.clone()]).sum())
+            .map(|set| set.clone().map(|k| row[k]).sum())
             .collect();
         let same = lines
             .iter_mut()
