@@ -99,14 +99,22 @@ fn frontier_sets_of_metal_fragments() {
     let side = 0.5_f64.sqrt();
     let ml4 = run(molecule(&carbonyls(
         "Fe",
-        &[[1.0, 0.0, 0.0], [-1.0, 0.0, 0.0], [0.0, side, -side], [0.0, -side, -side]],
+        &[
+            [1.0, 0.0, 0.0],
+            [-1.0, 0.0, 0.0],
+            [0.0, side, -side],
+            [0.0, -side, -side],
+        ],
     )));
     assert_eq!(ml4.point_group(0), "C2v");
     let order = d_sets(&ml4, 0.15, -13.5, -9.5);
     assert_eq!(order.len(), 5, "{order:?}");
     assert!(order[3].starts_with('b') && order[4] == "a1", "{order:?}");
     let levels = ml4.point(0).expect("a point").levels;
-    let homo = levels.iter().rfind(|level| level.occupation > 1e-9).expect("filled");
+    let homo = levels
+        .iter()
+        .rfind(|level| level.occupation > 1e-9)
+        .expect("filled");
     assert!(homo.full_name.plain.ends_with(&order[3]));
     // CpM: e2 and a1 close together, above them e1.
     let turn = |k: u32| 2.0 * std::f64::consts::PI * f64::from(k) / 5.0;
@@ -114,7 +122,10 @@ fn frontier_sets_of_metal_fragments() {
     let mut atoms = vec![("Mn", [0.0; 3])];
     for (symbol, radius) in [("C", ring), ("H", ring + 1.08)] {
         for k in 0..5 {
-            atoms.push((symbol, [radius * turn(k).cos(), radius * turn(k).sin(), 1.70]));
+            atoms.push((
+                symbol,
+                [radius * turn(k).cos(), radius * turn(k).sin(), 1.70],
+            ));
         }
     }
     let cp = run(molecule(&atoms));
@@ -142,7 +153,11 @@ fn check_sums(sweep: &Sweep, analysis: &FragmentAnalysis) {
         let sum: f64 = line.shares.iter().sum();
         assert!((sum - 1.0).abs() < 1e-9, "{sum}");
     }
-    let electrons: f64 = analysis.orbitals.iter().map(|orbital| orbital.population).sum();
+    let electrons: f64 = analysis
+        .orbitals
+        .iter()
+        .map(|orbital| orbital.population)
+        .sum();
     let all = f64::from(sweep.plan().electrons().total());
     assert!((electrons - all).abs() < 1e-8, "{electrons} of {all}");
 }
@@ -161,7 +176,10 @@ fn sums_and_invariance() {
         })
         .collect();
     let words = |list: &[usize]| {
-        list.iter().map(|a| (a + 1).to_string()).collect::<Vec<_>>().join(",")
+        list.iter()
+            .map(|a| (a + 1).to_string())
+            .collect::<Vec<_>>()
+            .join(",")
     };
     let rest: Vec<usize> = (0..atoms).filter(|a| !half.contains(a)).collect();
     let text = format!("{} | {}", words(&half), words(&rest));

@@ -3,21 +3,26 @@
 
 use core::mem::MaybeUninit;
 
-use faer::diag::Diag;
+use faer::diag::{Diag, DiagRef};
 use faer::dyn_stack::{MemBuffer, MemStack, StackReq};
 use faer::linalg::cholesky::llt::factor::{
     LltRegularization, cholesky_in_place, cholesky_in_place_scratch,
 };
-use faer::linalg::evd::{ComputeEigenvectors, self_adjoint_evd, self_adjoint_evd_scratch};
+use faer::linalg::evd::{
+    ComputeEigenvectors, self_adjoint_evd, self_adjoint_evd_scratch, tridiagonal_self_adjoint_evd,
+};
+use faer::linalg::householder::apply_block_householder_sequence_on_the_left_in_place_with_conj as reflect;
 use faer::linalg::matmul::matmul;
+use faer::linalg::qr::no_pivoting::factor::recommended_block_size;
 use faer::linalg::triangular_solve::{
     solve_lower_triangular_in_place, solve_upper_triangular_in_place,
 };
 use faer::prelude::{Reborrow, ReborrowMut};
-use faer::{Accum, Mat, MatMut, MatRef, Par};
+use faer::{Accum, Conj, Mat, MatMut, MatRef, Par};
 
 use crate::SINGULAR_RATIO;
 use crate::error::EigenError;
+use crate::large_tridiagonal::TridiagonalRoom;
 use crate::single::Quality;
 
 /// Room for one large problem. Matrices are column-major; of symmetric ones the lower triangle counts.
@@ -27,6 +32,9 @@ pub(crate) struct LargeRoom {
     l: Vec<f64>,
     a: Vec<f64>,
     values: Diag<f64>,
+    tridiagonal: TridiagonalRoom,
+    /// Factors of blocks of reflections, block × (n − 1), column-major.
+    factors: Vec<f64>,
     scratch: Vec<MaybeUninit<u8>>,
 }
 
@@ -111,6 +119,8 @@ impl LargeRoom {
             l: vec![0.0; n * n],
             a: vec![0.0; n * n],
             values: Diag::zeros(n),
+            tridiagonal: TridiagonalRoom::new(n),
+            factors: vec![0.0; recommended_block_size::<f64>(n, n) * n.saturating_sub(1)],
             scratch: vec![MaybeUninit::uninit(); bytes],
         }
     }
@@ -160,8 +170,13 @@ impl LargeRoom {
         load_lower(n, h, h_scale, &mut self.a);
         reduce(n, l, MatMut::from_column_major_slice_mut(&mut self.a, n, n));
         let mut vectors = MatMut::from_column_major_slice_mut(vectors, n, n);
-        self_adjoint_evd(
-            MatRef::from_column_major_slice(&self.a, n, n),
+        let reflections = n.saturating_sub(1);
+        let block = recommended_block_size::<f64>(n, n);
+        let factors = MatMut::from_column_major_slice_mut(&mut self.factors, block, reflections);
+        self.tridiagonal.reduce(n, &mut self.a, factors);
+        tridiagonal_self_adjoint_evd(
+            DiagRef::from_slice(&self.tridiagonal.diagonal),
+            DiagRef::from_slice(&self.tridiagonal.below),
             self.values.as_mut(),
             Some(vectors.rb_mut()),
             par,
@@ -169,6 +184,19 @@ impl LargeRoom {
             Default::default(),
         )
         .map_err(|_| LargeFailure::NotConverged)?;
+        reflect(
+            MatRef::from_column_major_slice(&self.a, n, n).submatrix(
+                1,
+                0,
+                reflections,
+                reflections,
+            ),
+            MatRef::from_column_major_slice(&self.factors, block, reflections),
+            Conj::No,
+            vectors.rb_mut().subrows_mut(1, reflections),
+            par,
+            MemStack::new(&mut self.scratch),
+        );
         solve_upper_triangular_in_place(l.transpose(), vectors, par);
         Ok(smallest)
     }

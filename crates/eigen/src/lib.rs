@@ -14,6 +14,7 @@ mod canonical;
 mod error;
 mod lanes;
 mod large;
+mod large_tridiagonal;
 mod single;
 mod wide;
 

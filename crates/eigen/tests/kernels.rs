@@ -266,6 +266,49 @@ fn large_degenerate_and_singular() {
 }
 
 #[test]
+fn large_graded_clustered_and_nearly_singular() {
+    // Clusters within rounding beside levels graded over 60 orders of magnitude.
+    let n = LARGE + 7;
+    let mut values: Vec<f64> = (0..n)
+        .map(|k| match k {
+            0..50 => -2.0 - 1e-13 * k as f64,
+            50..100 => -(10f64.powi(50 - k as i32)),
+            _ => 1.0 + 1e-9 * k as f64,
+        })
+        .collect();
+    let p = Problem {
+        n,
+        h: with_spectrum(&values, 11),
+        s: unit(n),
+    };
+    let one = solve(n, &p.h, &p.s).unwrap();
+    check(&p, &one.values, &one.vectors, 10.0);
+    values.sort_by(f64::total_cmp);
+    for (a, b) in one.values.iter().zip(&values) {
+        assert!((a - b).abs() <= 1e-14 * n as f64 * largest(&values));
+    }
+    // Condition 1e6, as for the small kernels.
+    let mut spectrum: Vec<f64> = (0..n).map(|k| 0.5 + k as f64 / n as f64).collect();
+    spectrum[0] = 1e-6;
+    let p = Problem {
+        n,
+        h: molecule_like(n, 5).h,
+        s: with_spectrum(&spectrum, 12),
+    };
+    let one = solve(n, &p.h, &p.s).unwrap();
+    assert!((one.smallest_overlap_eigenvalue - 1e-6).abs() < 1e-12);
+    check(&p, &one.values, &one.vectors, 1e4);
+    // Nothing to reduce: diagonal H.
+    let mut h = vec![0.0; n * n];
+    for i in 0..n {
+        h[i * n + i] = -(i as f64);
+    }
+    let p = Problem { n, h, s: unit(n) };
+    let one = solve(n, &p.h, &p.s).unwrap();
+    check(&p, &one.values, &one.vectors, 10.0);
+}
+
+#[test]
 fn smallest_overlap_in_lanes() {
     for n in [1, 2, 6, 15, 40] {
         let problems: Vec<Problem> = (0..8).map(|seed| molecule_like(n, seed)).collect();

@@ -69,7 +69,9 @@ impl HamiltonianPlan {
         );
     }
 
-    /// As [`HamiltonianPlan::refill`] for eight geometries at once.
+    /// As [`HamiltonianPlan::refill`] for eight geometries at once, where only the blocks of the
+    /// pairs `read` (and of the atoms themselves) will be read: the elements of all other pairs are
+    /// left in disorder. What symmetry says twice need not be computed twice.
     ///
     /// # Panics
     /// As [`HamiltonianPlan::refill`].
@@ -77,18 +79,14 @@ impl HamiltonianPlan {
         &self,
         positions_angstrom: &[[Lanes; 3]],
         pairs: &[usize],
+        read: &[usize],
         s: &mut [Lanes],
         h: &mut [Lanes],
     ) {
-        let pairs = pairs.iter().copied();
-        self.fill_pairs(
-            several(positions_angstrom),
-            PairKernel::block_lanes,
-            pairs,
-            false,
-            s,
-            h,
-        );
+        let displacement = several(positions_angstrom);
+        let block = PairKernel::block_lanes;
+        self.overlaps(&displacement, block, pairs.iter().copied(), s, h);
+        self.couplings(&displacement, read.iter().copied(), s, h);
     }
 
     /// H from an S that is there already, for other diagonal elements (eV) and another K in each
@@ -143,14 +141,29 @@ impl HamiltonianPlan {
         }
     }
 
-    /// The one routine behind all of them. The block of a pair is written to the front of `h`,
-    /// which is made from S afterwards: so nothing is allocated.
     fn fill_pairs<const N: usize>(
         &self,
         displacement: impl Fn(AtomPair) -> Displacement<N>,
         block: impl Fn(&PairKernel, &[[f64; N]; 3], &mut [[f64; N]]),
-        pairs: impl Iterator<Item = usize> + Clone,
+        pairs: impl Iterator<Item = usize>,
         all: bool,
+        s: &mut [[f64; N]],
+        h: &mut [[f64; N]],
+    ) {
+        self.overlaps(&displacement, block, pairs, s, h);
+        if all {
+            self.one_centre_blocks(s);
+        }
+        self.couplings(&displacement, 0..self.pairs.len(), s, h);
+    }
+
+    /// S of the given pairs. The block of a pair is written to the front of `h` first, which is
+    /// made from S afterwards: so nothing is allocated.
+    fn overlaps<const N: usize>(
+        &self,
+        displacement: impl Fn(AtomPair) -> Displacement<N>,
+        block: impl Fn(&PairKernel, &[[f64; N]; 3], &mut [[f64; N]]),
+        pairs: impl Iterator<Item = usize>,
         s: &mut [[f64; N]],
         h: &mut [[f64; N]],
     ) {
@@ -159,7 +172,7 @@ impl HamiltonianPlan {
             s.len() >= n * n && h.len() >= n * n,
             "S and H need {n} x {n} numbers"
         );
-        for index in pairs.clone() {
+        for index in pairs {
             let pair = self.pairs[index];
             let kernel = &self.kernels[self.kernel_of[index]];
             let bohr = displacement(pair).map(|axis| axis.map(|x| Bohr::from(Angstrom(x)).0));
@@ -174,18 +187,26 @@ impl HamiltonianPlan {
                 }
             }
         }
-        if all {
-            self.one_centre_blocks(s);
-        }
-        // `h` was used as scratch: all of it is made anew, which costs one product per element.
+    }
+
+    /// H of the atoms and of the given pairs. `h` was used as scratch: all of it is made anew,
+    /// which costs one product per element.
+    fn couplings<const N: usize>(
+        &self,
+        displacement: impl Fn(AtomPair) -> Displacement<N>,
+        pairs: impl Iterator<Item = usize>,
+        s: &[[f64; N]],
+        h: &mut [[f64; N]],
+    ) {
+        let n = self.len();
         for atom in &self.atoms {
             for i in atom.clone() {
                 h[i * n..][atom.clone()].fill([0.0; N]);
                 h[i * n + i] = [self.diagonal_ev[i]; N];
             }
         }
-        for (index, &pair) in self.pairs.iter().enumerate() {
-            self.couple(index, &displacement(pair), s, h);
+        for index in pairs {
+            self.couple(index, &displacement(self.pairs[index]), s, h);
         }
     }
 

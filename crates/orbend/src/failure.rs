@@ -94,6 +94,14 @@ impl Failure {
         }
     }
 
+    /// A sweep that could not be written as it ran.
+    pub(crate) fn stream(error: &orbend_report::StreamError) -> Self {
+        match error {
+            orbend_report::StreamError::Scan(error) => Self::scan(error),
+            other => Self::running(other.to_string()),
+        }
+    }
+
     /// A document that could not be written.
     pub(crate) fn document(error: impl fmt::Display) -> Self {
         Self::running(error.to_string())

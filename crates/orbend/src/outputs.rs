@@ -57,6 +57,26 @@ impl<'a> Outputs<'a> {
         Ok(Self { files: checked })
     }
 
+    /// The only table asked for, where everything else can do without most of the points of a long
+    /// sweep; `None` where some other file needs them.
+    pub(crate) fn streamed(&self) -> Option<Option<&'a Path>> {
+        let mut table = None;
+        for (path, ending) in &self.files {
+            match ending.as_str() {
+                "csv" if table.is_none() => table = Some(*path),
+                "xyz" => {}
+                _ => return None,
+            }
+        }
+        Some(table)
+    }
+
+    /// The same without the table, which is written already.
+    pub(crate) fn without_table(mut self) -> Self {
+        self.files.retain(|(_, ending)| ending != "csv");
+        self
+    }
+
     /// Makes every file's bytes first and writes them then.
     pub(crate) fn write(
         &self,

@@ -2,23 +2,22 @@
 
 use std::io::Write;
 
-use csv::{Terminator, Writer, WriterBuilder};
-
+use crate::csv_rows::{push_head, push_header, push_level, push_names};
 use crate::document::{LevelsDocument, Point, SweepDocument};
+
+/// Bytes that are held back before they are written.
+const HELD_BACK: usize = 1 << 16;
 
 /// Why a table could not be written.
 #[derive(Debug, thiserror::Error)]
 #[error("the table could not be written: {0}")]
-pub struct CsvError(#[from] csv::Error);
+pub struct CsvError(#[from] std::io::Error);
 
 impl CsvError {
-    /// The error of the stream underneath, where there is one (a closed pipe, a full disk).
+    /// The error of the stream underneath (a closed pipe, a full disk).
     #[must_use]
-    pub fn io_kind(&self) -> Option<std::io::ErrorKind> {
-        match self.0.kind() {
-            csv::ErrorKind::Io(error) => Some(error.kind()),
-            _ => None,
-        }
+    pub fn io_kind(&self) -> std::io::ErrorKind {
+        self.0.kind()
     }
 }
 
@@ -29,73 +28,64 @@ impl CsvError {
 /// points and levels are counted from 1, `line` is the line's `id` or empty; `at_…` are in the
 /// coordinate's unit. Numbers read back to the same double.
 pub struct CsvWriter<W: Write> {
-    writer: Writer<W>,
-    coordinates: usize,
+    output: W,
+    bytes: Vec<u8>,
+    head: Vec<u8>,
+    at: Vec<f64>,
     points: usize,
 }
 
 impl<W: Write> CsvWriter<W> {
-    /// Starts a table with that many coordinates (none for a single geometry) and writes its header.
-    pub fn new(output: W, coordinates: usize) -> Result<Self, CsvError> {
-        let mut writer = WriterBuilder::new()
-            .terminator(Terminator::CRLF)
-            .from_writer(output);
-        let mut header = vec!["point".to_owned()];
-        header.extend((1..=coordinates).map(|number| format!("at_{number}")));
-        header.extend(
-            [
-                "level",
-                "energy_ev",
-                "occupation",
-                "label",
-                "valence_label",
-                "full_label",
-                "irrep",
-                "line",
-                "point_group",
-            ]
-            .map(str::to_owned),
-        );
-        writer.write_record(&header)?;
-        Ok(Self {
-            writer,
-            coordinates,
+    /// Starts a table with that many coordinates (none for a single geometry) and its header.
+    pub fn new(output: W, coordinates: usize) -> Self {
+        let mut bytes = Vec::with_capacity(2 * HELD_BACK);
+        push_header(&mut bytes, coordinates);
+        Self {
+            output,
+            bytes,
+            head: Vec::new(),
+            at: vec![0.0; coordinates],
             points: 0,
-        })
+        }
     }
 
     /// Appends all levels of the next point.
     pub fn point(&mut self, point: &Point) -> Result<(), CsvError> {
+        // A number of a document is finite: nothing can be refused here.
+        let refused = |error| std::io::Error::new(std::io::ErrorKind::InvalidData, error);
         self.points += 1;
-        for (rank, level) in point.levels.iter().enumerate() {
-            self.writer.write_field(self.points.to_string())?;
-            for coordinate in 0..self.coordinates {
-                let value = point.at.get(coordinate).map(|at| at.get().to_string());
-                self.writer.write_field(value.unwrap_or_default())?;
-            }
-            self.writer.write_field((rank + 1).to_string())?;
-            self.writer.write_field(level.energy.get().to_string())?;
-            self.writer
-                .write_field(level.occupation.get().to_string())?;
-            for field in [
-                &level.label,
-                &level.valence_label,
-                &level.full_label,
-                &level.irrep,
-            ] {
-                self.writer.write_field(field)?;
-            }
-            self.writer
-                .write_field(level.line.map(|id| id.to_string()).unwrap_or_default())?;
-            self.writer.write_field(&point.point_group)?;
-            self.writer.write_record(None::<&[u8]>)?;
+        for (target, at) in self.at.iter_mut().zip(&point.at) {
+            *target = at.get();
+        }
+        self.head.clear();
+        push_head(&mut self.head, self.points, &self.at).map_err(refused)?;
+        for (level, rank) in point.levels.iter().zip(1..) {
+            self.bytes.extend_from_slice(&self.head);
+            let (energy, occupation) = (level.energy.get(), level.occupation.get());
+            push_level(&mut self.bytes, rank, energy, occupation).map_err(refused)?;
+            push_names(
+                &mut self.bytes,
+                [
+                    &level.label,
+                    &level.valence_label,
+                    &level.full_label,
+                    &level.irrep,
+                ],
+                level.line.map(|line| line as usize),
+                &point.point_group,
+            );
+        }
+        if self.bytes.len() >= HELD_BACK {
+            self.output.write_all(&self.bytes)?;
+            self.bytes.clear();
         }
         Ok(())
     }
 
     /// Writes what is still held back.
     pub fn finish(mut self) -> Result<(), CsvError> {
-        self.writer.flush().map_err(|error| CsvError(error.into()))
+        self.output.write_all(&self.bytes)?;
+        Ok(self.output.flush()?)
     }
 }
 
@@ -110,7 +100,7 @@ pub fn levels_csv<W: Write>(document: &LevelsDocument, output: W) -> Result<(), 
 }
 
 fn table<W: Write>(points: &[Point], coordinates: usize, output: W) -> Result<(), CsvError> {
-    let mut writer = CsvWriter::new(output, coordinates)?;
+    let mut writer = CsvWriter::new(output, coordinates);
     for point in points {
         writer.point(point)?;
     }

@@ -427,7 +427,7 @@ fn line_records(sweep: &Sweep) -> Result<Vec<LineRecord>, FromScanError> {
                 .map(|(point, special)| {
                     let name = &special.names[line].0;
                     Ok(SpecialLabel {
-                        at: Number::new(plan.path().values(point)[0])?,
+                        at: Number::new(plan.values(point)[0])?,
                         point_group: special.group.clone(),
                         label: name.plain.clone(),
                         valence_label: name.valence_plain.clone(),

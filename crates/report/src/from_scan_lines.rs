@@ -12,10 +12,11 @@ pub(crate) fn followed_records(
     sweep: &Sweep,
     followed: &[orbend_scan::Followed],
 ) -> Result<Vec<FollowedRecord>, NotFinite> {
-    let Some(axis) = sweep.plan().path().axes().first() else {
+    let plan = sweep.plan();
+    let end = |point: usize| plan.values(point).first().copied();
+    let (Some(first), Some(last)) = (end(0), end(plan.points() - 1)) else {
         return Ok(Vec::new());
     };
-    let values = &axis.values;
     followed
         .iter()
         .enumerate()
@@ -29,8 +30,8 @@ pub(crate) fn followed_records(
                 })
             };
             let mut intervals = vec![interval(
-                values[0],
-                values[values.len() - 1],
+                first,
+                last,
                 CertificateKind::Overlap,
                 followed.overlap,
             )?];

@@ -4,7 +4,7 @@
 //!
 //! - [`LevelsDocument`], [`SweepDocument`], [`ShapeDocument`], [`ParamsDocument`]: versioned JSON
 //!   ([`to_json`], [`read_document`]) with a generated JSON Schema ([`schemas`]).
-//! - [`CsvWriter`]: one row per point and level (RFC 4180).
+//! - [`CsvWriter`]: one row per point and level (RFC 4180); [`stream_csv`]: the same of a sweep of any length.
 //! - [`sweep_figure`], [`levels_figure`]: SVG with real text.
 //! - [`figure_png`]: the same as an image.
 //! - [`sweep_page`]: one HTML file with the figure, a slider and the orbitals.
@@ -12,6 +12,8 @@
 //!
 //! It is not for: physics, symmetry, following lines, or writing to files and streams.
 
+mod csv_rows;
+mod csv_stream;
 mod csv_table;
 mod document;
 mod draw;
@@ -32,6 +34,7 @@ mod raster;
 mod synthetic;
 mod text;
 
+pub use csv_stream::{StreamError, Streamed, stream_csv};
 pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
 pub use figure::{

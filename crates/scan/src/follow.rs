@@ -61,8 +61,8 @@ impl Sweep {
         let [axis] = plan.path.axes() else {
             return Ok(Vec::new());
         };
-        let steps = axis
-            .values
+        let steps = plan
+            .parameters(&axis.values)
             .par_windows(2)
             .map(|pair| {
                 let before = Character::new(plan, &pair[..1])?;

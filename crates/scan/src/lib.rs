@@ -18,11 +18,13 @@ mod naming;
 mod orbitals;
 mod plan;
 mod plane;
+mod point_levels;
 pub mod reasons;
 mod request;
 pub mod shape;
 mod solve;
 mod special;
+mod stretch;
 mod sweep;
 
 pub use crossing::{
@@ -37,6 +39,8 @@ pub use naming::Name;
 pub use orbitals::{Orbitals, Populations};
 pub use plan::{Notice, SweepPlan};
 pub use plane::{OrbitalPicture, Plane, PlaneValues, orbital_value};
+pub use point_levels::PointLevels;
 pub use request::{Numbering, Request, Route, symmetrized};
 pub use special::SpecialPoint;
+pub use stretch::Stretch;
 pub use sweep::{Level, Point, Sweep};

@@ -36,11 +36,15 @@ pub struct SweepPlan {
     pub(crate) request: Request,
     pub(crate) molecule: Molecule,
     pub(crate) path: PathPlan,
+    /// The points of the path that are run; all without it.
+    pub(crate) kept: Option<Vec<usize>>,
     pub(crate) basis: Basis,
     pub(crate) hamiltonian: HamiltonianPlan,
-    /// Pairs of atoms whose displacement changes along the path; the blocks of
+    /// Those of `read` whose displacement changes along the path; the blocks of
     /// the others are computed once, at `reference`.
     pub(crate) moving: Vec<usize>,
+    /// Pairs of atoms that the blocks of the irreps read; symmetry tells the others.
+    pub(crate) read: Vec<usize>,
     /// A geometry of the path, Å.
     pub(crate) reference: Vec<[f64; 3]>,
     pub(crate) near_misses: Vec<NearMiss>,
@@ -112,7 +116,7 @@ impl SweepPlan {
         }
 
         let samples = sample_geometries(&path, molecule.positions.len())?;
-        let moving = hamiltonian.moving_pairs(samples.iter().map(Vec::as_slice));
+        let mut moving = hamiltonian.moving_pairs(samples.iter().map(Vec::as_slice));
         let reference = samples[0].clone();
         let kinds = kinds(&molecule.elements);
         let kept = path_group(&kinds, &samples, tolerance)?;
@@ -137,14 +141,18 @@ impl SweepPlan {
             .collect::<Vec<_>>();
         let adapted = group.adapt(&shells)?;
         let core_counts = group.count(&core_shells)?;
+        let read = pairs_read(&basis, &hamiltonian, &adapted);
+        moving.retain(|pair| read.binary_search(pair).is_ok());
 
         let mut plan = Self {
             request: request.clone(),
             molecule,
             path,
+            kept: None,
             basis,
             hamiltonian,
             moving,
+            read,
             reference,
             near_misses: start.near_misses,
             group,
@@ -180,7 +188,52 @@ impl SweepPlan {
 
     /// Points of the sweep.
     pub fn points(&self) -> usize {
-        self.path.points()
+        self.kept.as_ref().map_or(self.path.points(), Vec::len)
+    }
+
+    /// The same plan for some of its points alone, in rising order; names and
+    /// lines stay those of the whole. Numbers beyond the last point are left out.
+    #[must_use]
+    pub fn only(mut self, mut points: Vec<usize>) -> Self {
+        let count = self.points();
+        points.retain(|&point| point < count);
+        points.sort_unstable();
+        points.dedup();
+        let places = points.iter().map(|&point| self.place_on_path(point));
+        self.kept = Some(places.collect());
+        self
+    }
+
+    /// Coordinate values of a point, degrees or Å.
+    pub fn values(&self, point: usize) -> Vec<f64> {
+        self.path.values(self.place_on_path(point))
+    }
+
+    /// Number of a point among all points of the path.
+    fn place_on_path(&self, point: usize) -> usize {
+        match &self.kept {
+            Some(kept) => kept.get(point).copied().unwrap_or(point),
+            None => point,
+        }
+    }
+
+    /// Parameter values of a point, written to `out` without allocation.
+    pub(crate) fn values_of<'a>(&self, point: usize, out: &'a mut [f64; 8]) -> &'a [f64] {
+        let axes = self.path.axes();
+        let mut rest = self.place_on_path(point);
+        for (value, axis) in out[..axes.len()].iter_mut().zip(axes).rev() {
+            *value = axis.values[rest % axis.values.len()];
+            rest /= axis.values.len();
+        }
+        &out[..axes.len()]
+    }
+
+    /// Parameter values of all points of a path with one parameter.
+    pub(crate) fn parameters(&self, values: &[f64]) -> Vec<f64> {
+        match &self.kept {
+            Some(kept) => kept.iter().map(|&point| values[point]).collect(),
+            None => values.to_vec(),
+        }
     }
 
     /// The molecule whose atoms move, on its symmetric places.
@@ -259,6 +312,21 @@ fn kinds(elements: &[Element]) -> Vec<u32> {
     elements
         .iter()
         .map(|element| u32::from(element.number()))
+        .collect()
+}
+
+/// The pairs of different atoms whose elements the blocks read, in order.
+fn pairs_read(basis: &Basis, hamiltonian: &HamiltonianPlan, adapted: &AdaptedBasis) -> Vec<usize> {
+    let atoms = basis.atoms.len();
+    let mut wanted = vec![false; atoms * atoms];
+    for (row, column) in adapted.blocks.iter().flat_map(|block| block.reads()) {
+        let (a, b) = (basis.functions[row].atom, basis.functions[column].atom);
+        wanted[a.min(b) * atoms + a.max(b)] = true;
+    }
+    let pairs = hamiltonian.pairs().iter().enumerate();
+    pairs
+        .filter(|(_, pair)| wanted[pair.a * atoms + pair.b])
+        .map(|(index, _)| index)
         .collect()
 }
 

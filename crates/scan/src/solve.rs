@@ -1,8 +1,6 @@
 //! The hot loop: eight geometries at once, block by block.
 
 use orbend_eigen::{EigenError, LANES, LaneStatus, LaneWorkspace, Lanes};
-
-use orbend_structure::PathPlan;
 use orbend_symmetry::AdaptedBasis;
 
 use crate::error::ScanError;
@@ -145,7 +143,7 @@ impl SweepPlan {
                 // Idle lanes repeat the last geometry: their results are dropped.
                 let point = first + start + lane.min(used - 1);
                 if lane < used {
-                    let values = values_of(&self.path, point, &mut values);
+                    let values = self.values_of(point, &mut values);
                     self.path.positions(values, &mut workspace.positions)?;
                     rows.special[start + lane] = !self.screen.unchanged(&workspace.positions);
                 }
@@ -159,7 +157,7 @@ impl SweepPlan {
                 }
             })
             .map_err(|failure| {
-                let values = self.path.values(first + start + failure.lane);
+                let values = self.values(first + start + failure.lane);
                 self.explain(&self.adapted, failure.block, failure.error, &values)
             })?;
             rows.smallest[start..start + used].copy_from_slice(&smallest[..used]);
@@ -200,6 +198,7 @@ impl SweepPlan {
         self.hamiltonian.refill_lanes(
             &workspace.lanes,
             &self.moving,
+            &self.read,
             &mut workspace.overlap,
             &mut workspace.hamiltonian,
         );
@@ -291,15 +290,4 @@ impl SweepPlan {
             second: name(1),
         }
     }
-}
-
-/// Parameter values of a point without allocation.
-fn values_of<'a>(path: &PathPlan, point: usize, out: &'a mut [f64; 8]) -> &'a [f64] {
-    let axes = path.axes();
-    let mut rest = point;
-    for (value, axis) in out[..axes.len()].iter_mut().zip(axes).rev() {
-        *value = axis.values[rest % axis.values.len()];
-        rest /= axis.values.len();
-    }
-    &out[..axes.len()]
 }

@@ -34,7 +34,7 @@ pub(crate) fn label_in_own_group(
     plan: &SweepPlan,
     point: usize,
 ) -> Result<Option<SpecialPoint>, ScanError> {
-    let values = plan.path.values(point);
+    let values = plan.values(point);
     let mut positions = vec![[0.0; 3]; plan.molecule.positions.len()];
     plan.path.positions(&values, &mut positions)?;
     let places = nuclei(&plan.molecule.elements, &positions);

@@ -10,6 +10,7 @@ use crate::error::ScanError;
 use crate::naming::Name;
 use crate::orbitals::Orbitals;
 use crate::plan::SweepPlan;
+use crate::point_levels::PointLevels;
 use crate::solve::{Rows, Workspace};
 use crate::special::{SpecialPoint, label_in_own_group};
 
@@ -146,9 +147,7 @@ impl Sweep {
 
     /// Σ nᵢεᵢ at a point, eV.
     pub fn sum(&self, point: usize) -> f64 {
-        let mut scratch = PointScratch::new(self.plan.lines.len());
-        self.fill_point(point, &mut scratch);
-        scratch.sum
+        self.levels_at(point).sum
     }
 
     /// Name of a line in the point's own group, and the size of its set there.
@@ -168,19 +167,18 @@ impl Sweep {
     /// None for a sweep that has run; the path is asked for positions again.
     pub fn point(&self, point: usize) -> Result<Point, ScanError> {
         let plan = &self.plan;
-        let at = plan.path.values(point);
+        let at = plan.values(point);
         let mut positions = vec![[0.0; 3]; plan.molecule.positions.len()];
         plan.path.positions(&at, &mut positions)?;
-        let mut scratch = PointScratch::new(plan.lines.len());
-        self.fill_point(point, &mut scratch);
-        let levels = scratch
+        let found = self.levels_at(point);
+        let levels = found
             .order
             .iter()
             .map(|&line| {
                 let (name, degeneracy) = self.full_name(line, point);
                 Level {
-                    energy: scratch.energies[line],
-                    occupation: scratch.occupations[line],
+                    energy: found.energies[line],
+                    occupation: found.occupations[line],
                     line,
                     degeneracy,
                     full_name: name.clone(),
@@ -191,7 +189,7 @@ impl Sweep {
             at,
             positions,
             point_group: self.point_group(point).to_owned(),
-            sum: scratch.sum,
+            sum: found.sum,
             smallest_overlap_eigenvalue: self.smallest[point],
             levels,
         })
@@ -202,7 +200,7 @@ impl Sweep {
     /// # Errors
     /// As for the run itself.
     pub fn orbitals(&self, point: usize) -> Result<Orbitals, ScanError> {
-        self.plan.orbitals(&self.plan.path.values(point))
+        self.plan.orbitals(&self.plan.values(point))
     }
 
     /// Schoenflies symbol of a point's own group, plain.
@@ -212,39 +210,10 @@ impl Sweep {
             .map_or(&self.plan.group.name, |special| &special.group)
     }
 
-    fn fill_point(&self, point: usize, scratch: &mut PointScratch) {
-        for (line, head) in self.plan.lines.iter().enumerate() {
-            scratch.energies[line] = self.energies[[point, head.slot]];
-        }
-        let energies = &scratch.energies;
-        scratch
-            .order
-            .sort_by(|&a, &b| energies[a].total_cmp(&energies[b]).then(a.cmp(&b)));
-        self.plan
-            .filling
-            .fill(&scratch.order, energies, &mut scratch.occupations);
-        scratch.sum = scratch
-            .order
-            .iter()
-            .map(|&line| scratch.occupations[line] * scratch.energies[line])
-            .sum();
-    }
-}
-
-struct PointScratch {
-    order: Vec<usize>,
-    energies: Vec<f64>,
-    occupations: Vec<f64>,
-    sum: f64,
-}
-
-impl PointScratch {
-    fn new(lines: usize) -> Self {
-        Self {
-            order: (0..lines).collect(),
-            energies: vec![0.0; lines],
-            occupations: vec![0.0; lines],
-            sum: 0.0,
-        }
+    fn levels_at(&self, point: usize) -> PointLevels {
+        let mut levels = PointLevels::new(&self.plan);
+        let row = self.energies.row(point);
+        levels.fill(&self.plan, |slot| row[slot]);
+        levels
     }
 }

@@ -98,6 +98,18 @@ impl Block {
         }
     }
 
+    /// The elements of a full matrix, as (row, column), that [`Block::transform`] reads; some come
+    /// more than once.
+    pub fn reads(&self) -> impl Iterator<Item = (usize, usize)> + '_ {
+        self.rows
+            .iter()
+            .zip(&self.reach)
+            .flat_map(|(&row, &reach)| {
+                let columns = self.first[..reach].iter().flatten();
+                columns.map(move |&(column, _)| (row, column))
+            })
+    }
+
     /// Coefficients of all functions from block vectors: `vectors[k * size + i]` is the
     /// coefficient of adapted function i in level k; `out[k * functions + f]` becomes that of
     /// function f, in the given row of the irrep.

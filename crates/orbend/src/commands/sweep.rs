@@ -1,7 +1,10 @@
 //! `orbend sweep`: the correlation diagram along a coordinate, or a grid.
+//!
+//! A long sweep of which only a table is asked for is written as it runs; what is said about it
+//! comes from some of its points.
 
 use orbend_report::{
-    FigureOptions, end_pictures, passport_text, sweep_csv, sweep_document,
+    FigureOptions, end_pictures, passport_text, stream_csv, sweep_csv, sweep_document,
     sweep_document_with_orbitals, sweep_figure, sweep_fragments_text, sweep_page, sweep_text,
     to_json,
 };
@@ -15,11 +18,14 @@ use crate::arguments::{NumberingChoice, SweepArguments};
 use crate::failure::Failure;
 use crate::geometry::Geometry;
 use crate::outputs::Outputs;
-use crate::write::write_stdout;
+use crate::write::{Whole, write_stdout};
+
+/// A sweep with more levels than this over all its points is long.
+const LONG: usize = 100_000;
 
 pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "html", "xyz"])?;
+    let mut outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "html", "xyz"])?;
     let figure = figure_options(&arguments.figure, output.numbering)?;
     let movement = movement(&arguments.coordinates)?;
     let mut resolved = resolve(
@@ -34,10 +40,20 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
         &mut resolved.geometry,
         &arguments.model,
     )?;
-    let plan = resolved
+    let mut plan = resolved
         .request
         .plan()
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
+    let points = plan.points();
+    let mut table = None;
+    let long = points * plan.lines().len() > LONG;
+    if let (true, false, Some(path)) = (long, output.json, outputs.streamed()) {
+        table = path.map(Whole::begin).transpose()?;
+        let streamed = in_pool(arguments.jobs, || stream_csv(&plan, table.as_mut()))?
+            .map_err(|error| Failure::stream(&error).within(&arguments.geometry))?;
+        plan = plan.only(streamed.overview());
+        outputs = outputs.without_table();
+    }
     let sweep = in_pool(arguments.jobs, || Sweep::run(plan))?
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
     let mut document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
@@ -59,12 +75,16 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
             _ => drawing(sweep_figure(&document, &figure), ending)?,
         })
     })?;
+    if let Some(table) = table {
+        table.finish()?;
+    }
     if output.json {
         write_stdout(to_json(&document).map_err(Failure::document)?.as_bytes())
     } else if arguments.passport {
         write_stdout(passport_text(&document, &text_options(output.numbering)).as_bytes())
     } else {
-        let options = text_options(output.numbering);
+        let mut options = text_options(output.numbering);
+        options.points = Some(points);
         let start = geometry_text(&resolved.geometry, options.width);
         let mut text = start + &sweep_text(&document, &options);
         if let Some(records) = &document.fragments {

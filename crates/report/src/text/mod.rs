@@ -38,6 +38,8 @@ pub struct TextOptions {
     pub drawing: bool,
     /// Numbering of the labels.
     pub numbering: Numbering,
+    /// Points of the whole sweep, where the document holds only some of them.
+    pub points: Option<usize>,
 }
 
 impl Default for TextOptions {
@@ -47,6 +49,7 @@ impl Default for TextOptions {
             unicode: true,
             drawing: true,
             numbering: Numbering::Core,
+            points: None,
         }
     }
 }

@@ -58,12 +58,21 @@ fn coordinates(out: &mut String, document: &SweepDocument, options: &TextOptions
         let count = if document.is_grid() {
             String::new()
         } else {
-            format!(", {} points", document.points.len())
+            format!(", {}", points(document, options))
         };
         options.paragraph(out, &format!("{name}{atoms} from {from} to {to}{count}"));
         if !coordinate.text.is_empty() {
             options.paragraph(out, &coordinate.text);
         }
+    }
+}
+
+/// Points of the sweep, and how many of them the document holds.
+fn points(document: &SweepDocument, options: &TextOptions) -> String {
+    let held = document.points.len();
+    match options.points {
+        Some(all) if all != held => format!("{all} points ({held} of them drawn here)"),
+        _ => format!("{held} points"),
     }
 }
 
@@ -230,7 +239,7 @@ fn grid(out: &mut String, document: &SweepDocument, options: &TextOptions) {
             format!("{} eV at {}", ascii_number(sum, 4), values.join(", "))
         })
     };
-    options.paragraph(out, &format!("grid of {} points", document.points.len()));
+    options.paragraph(out, &format!("grid of {}", points(document, options)));
     if let Some(words) = place(known().min_by(|a, b| a.1.total_cmp(&b.1))) {
         options.paragraph(out, &format!("sum of energies lowest: {words}"));
     }

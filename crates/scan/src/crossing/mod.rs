@@ -134,7 +134,7 @@ impl Sweep {
         };
         let (low, high) = axis.limits();
         let spacing = resolution(&axis.unit, high - low);
-        let nodes = nodes(&axis.values, spacing);
+        let nodes = nodes(&plan.parameters(&axis.values), spacing);
         let model = PathModel::new(plan);
         let found = meetings(&model, &nodes)?;
         let mut room = model.room();
