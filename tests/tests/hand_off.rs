@@ -155,15 +155,3 @@ fn threads_and_paths() {
     let still = run(folder.path(), &["plan", "n2.xyz"]);
     assert!(still.contains("no path was given"), "{still}");
 }
-
-#[test]
-fn a_write_schemas() {
-    for (form, schema) in orbend_report::schemas() {
-        let file = format!(
-            "{}/../crates/report/schema/{form}.schema.json",
-            env!("CARGO_MANIFEST_DIR")
-        );
-        let text = serde_json::to_string_pretty(&schema).unwrap();
-        std::fs::write(&file, format!("{text}\n")).unwrap();
-    }
-}
