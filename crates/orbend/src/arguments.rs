@@ -260,7 +260,7 @@ pub(crate) struct OutputArguments {
     /// The result document on standard output, alone
     #[arg(long)]
     pub(crate) json: bool,
-    /// Write a file; the ending chooses .json, .csv, .svg, .png, .html (a page) or .xyz (may be repeated)
+    /// Write a file; the ending chooses .json, .csv, .svg, .png, .pdf, .html (a page) or .xyz (may be repeated)
     #[arg(long, value_name = "FILE")]
     pub(crate) out: Vec<PathBuf>,
     /// Which numbering labels show first; the document always has both
@@ -280,12 +280,27 @@ pub(crate) struct FigureArguments {
     /// Energy window of the figure, eV: -20..0
     #[arg(long, value_name = "FROM..TO", allow_hyphen_values = true)]
     pub(crate) energies: Option<String>,
+    /// Unit of the figure's energy axes
+    #[arg(long, value_enum, default_value_t = EnergyUnitChoice::ElectronVolt)]
+    pub(crate) energy_unit: EnergyUnitChoice,
+    /// Draw the electrons at this value of the coordinate [default: where the lines are apart]
+    #[arg(long, value_name = "VALUE", allow_hyphen_values = true)]
+    pub(crate) electrons_at: Option<f64>,
+    /// A document of `orbend shape` (.json): its verdict's angle and range in the panel of the sum
+    #[arg(long, value_name = "FILE")]
+    pub(crate) shape: Option<PathBuf>,
     /// Contour pictures of the orbitals beside the labels (ψ = ±0.05 bohr^(-3/2); filled is positive)
     #[arg(long)]
     pub(crate) orbitals: bool,
     /// Only these lines in the figure, by label: 4a1,2b2
     #[arg(long, value_name = "LABELS", value_delimiter = ',')]
     pub(crate) lines: Vec<String>,
+    /// Text of an SVG or PDF figure as outlines, for printers that refuse live text
+    #[arg(long)]
+    pub(crate) outline_text: bool,
+    /// Dots per inch of a PNG figure
+    #[arg(long, value_name = "N", default_value_t = 600.0)]
+    pub(crate) dpi: f64,
 }
 
 #[derive(Debug, Args)]
@@ -334,6 +349,14 @@ pub(crate) enum WidthChoice {
     Page,
     /// for a talk
     Slide,
+}
+
+#[derive(Clone, Copy, Debug, ValueEnum)]
+pub(crate) enum EnergyUnitChoice {
+    #[value(name = "eV", alias = "ev")]
+    ElectronVolt,
+    #[value(name = "hartree")]
+    Hartree,
 }
 
 #[derive(Clone, Copy, Debug, ValueEnum)]

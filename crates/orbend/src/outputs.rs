@@ -57,6 +57,13 @@ impl<'a> Outputs<'a> {
         Ok(Self { files: checked })
     }
 
+    /// Whether a file with one of these endings is asked for.
+    pub(crate) fn any(&self, endings: &[&str]) -> bool {
+        self.files
+            .iter()
+            .any(|(_, ending)| endings.contains(&ending.as_str()))
+    }
+
     /// The only table asked for, where everything else can do without most of the points of a long
     /// sweep; `None` where some other file needs them.
     pub(crate) fn streamed(&self) -> Option<Option<&'a Path>> {

@@ -2,17 +2,19 @@
 //! made.
 
 use orbend_hamiltonian as hamiltonian;
-use orbend_scan::{Orbitals, Populations, Route, ScanError, Sweep, SweepPlan};
+use orbend_scan::{Route, ScanError, Sweep, SweepPlan};
 use orbend_structure::CoordinateKind;
 
 use crate::document::{
-    AtomCharge, AtomPosition, BasisFunction, Certificate, CertificateKind, Checked,
-    CoordinateRecord, CoordinateUnit, Geometry, LevelRecord, LevelsDocument, LevelsSchema,
-    LineRecord, Method, Missing, MoleculeRecord, MotionKind, NearMiss, NotFinite, Number,
-    OverlapPopulation, Passport, Point, Program, ShellPopulation, ShellValues, SpecialLabel,
-    SumMinimum, SweepDocument, SweepSchema, SymmetryRecord, Units, Warning,
+    AtomPosition, Certificate, CertificateKind, Checked, CoordinateRecord, CoordinateUnit,
+    Geometry, LevelRecord, LevelsDocument, LevelsSchema, LineRecord, Method, Missing,
+    MoleculeRecord, MotionKind, NearMiss, NotFinite, Number, Passport, Point, Program, ShellValues,
+    SpecialLabel, SumMinimum, SweepDocument, SweepSchema, SymmetryRecord, Units, Warning,
 };
 use crate::from_scan_lines::{crossing_records, crossing_search, followed_records};
+use crate::from_scan_populations::{
+    basis_functions, charges, describe_orbitals, overlap_populations,
+};
 
 /// What the scan does not know about its input and its reader.
 #[derive(Clone, Debug, Default)]
@@ -138,31 +140,6 @@ pub fn levels_document(
         warnings: warnings(plan, provenance),
         missing,
     })
-}
-
-/// Coefficients and shell populations of every level of a point that has lines.
-pub(crate) fn describe_orbitals(
-    plan: &SweepPlan,
-    orbitals: &Orbitals,
-    point: &mut Point,
-) -> Result<Populations, NotFinite> {
-    let mut occupations = vec![0.0; plan.lines().len()];
-    for level in &point.levels {
-        let Some(line) = level.line else { continue };
-        occupations[line as usize] = level.occupation.get();
-    }
-    let populations = orbitals.populations(plan.basis(), &occupations);
-    for level in &mut point.levels {
-        let Some(line) = level.line else { continue };
-        let row = orbitals.coefficients.row(line as usize);
-        level.coefficients = Some(
-            row.iter()
-                .map(|&c| Number::new(c))
-                .collect::<Result<_, _>>()?,
-        );
-        level.populations = Some(shell_populations(plan, &populations, line as usize)?);
-    }
-    Ok(populations)
 }
 
 pub(crate) fn molecule_record(
@@ -479,75 +456,6 @@ fn sum_minimum(points: &[Point]) -> Option<SumMinimum> {
         sum,
         inside: index > 0 && index + 1 < points.len(),
     })
-}
-
-pub(crate) fn basis_functions(plan: &SweepPlan) -> Vec<BasisFunction> {
-    let basis = plan.basis();
-    basis
-        .functions
-        .iter()
-        .map(|function| BasisFunction {
-            atom: function.atom as u32 + 1,
-            shell: shell_name(function.n, function.l),
-            function: orbend_overlap::harmonics::function_name(function.l, function.index)
-                .to_owned(),
-        })
-        .collect()
-}
-
-fn shell_name(n: u8, l: u8) -> String {
-    hamiltonian::ShellName { n, l }.to_string()
-}
-
-fn shell_populations(
-    plan: &SweepPlan,
-    populations: &Populations,
-    line: usize,
-) -> Result<Vec<ShellPopulation>, NotFinite> {
-    let elements = &plan.molecule().elements;
-    plan.basis()
-        .shells
-        .iter()
-        .zip(populations.shares.row(line))
-        .map(|(shell, &share)| {
-            Ok(ShellPopulation {
-                atom: shell.atom as u32 + 1,
-                element: elements[shell.atom].symbol().to_owned(),
-                shell: shell_name(shell.n, shell.l),
-                share: Number::new(share)?,
-            })
-        })
-        .collect()
-}
-
-fn charges(plan: &SweepPlan, populations: &Populations) -> Result<Vec<AtomCharge>, NotFinite> {
-    plan.molecule()
-        .elements
-        .iter()
-        .zip(&populations.charges)
-        .zip(1..)
-        .map(|((element, &charge), atom)| {
-            Ok(AtomCharge {
-                atom,
-                element: element.symbol().to_owned(),
-                charge: Number::new(charge)?,
-            })
-        })
-        .collect()
-}
-
-fn overlap_populations(populations: &Populations) -> Result<Vec<OverlapPopulation>, NotFinite> {
-    let atoms = populations.pairs.nrows();
-    let mut records = Vec::new();
-    for first in 0..atoms {
-        for second in first + 1..atoms {
-            records.push(OverlapPopulation {
-                atoms: [first as u32 + 1, second as u32 + 1],
-                population: Number::new(populations.pairs[[first, second]])?,
-            });
-        }
-    }
-    Ok(records)
 }
 
 pub(crate) fn warnings(plan: &SweepPlan, provenance: &Provenance) -> Vec<Warning> {

@@ -3,9 +3,8 @@
 use orbend_scan::{Orbitals, Sweep};
 
 use crate::document::SweepDocument;
-use crate::from_scan::{
-    FromScanError, Provenance, basis_functions, describe_orbitals, sweep_document,
-};
+use crate::from_scan::{FromScanError, Provenance, sweep_document};
+use crate::from_scan_populations::{basis_functions, describe_orbitals};
 
 /// The document of a sweep along one coordinate with the coefficients and shell populations of every
 /// level. The sign of an orbital is kept from point to point: its overlap with the same line at the

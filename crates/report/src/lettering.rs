@@ -51,6 +51,20 @@ impl Lettering {
         lettering
     }
 
+    /// Words with superscripts written `^{…}`.
+    pub(crate) fn words(text: &str) -> Self {
+        let mut lettering = Self::default();
+        let mut rest = text;
+        while let Some((before, raised)) = rest.split_once("^{") {
+            lettering.push(before, Shift::None);
+            let (above, after) = raised.split_once('}').unwrap_or((raised, ""));
+            lettering.push(above, Shift::Super);
+            rest = after;
+        }
+        lettering.push(rest, Shift::None);
+        lettering
+    }
+
     fn push(&mut self, text: impl Into<String>, shift: Shift) {
         let text = text.into();
         if !text.is_empty() {
@@ -234,6 +248,14 @@ mod tests {
             Lettering::formula("PtCl4", "2\u{2212}").unicode(),
             "PtCl₄²⁻"
         );
+    }
+
+    #[test]
+    fn words_hold_superscripts() {
+        let found = Lettering::words("ψ in bohr^{\u{2212}3/2}, here");
+        assert_eq!(found.runs.len(), 3);
+        assert_eq!(found.runs[1].shift, Shift::Super);
+        assert_eq!(found.runs[2].text, ", here");
     }
 
     #[test]

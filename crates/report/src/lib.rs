@@ -6,7 +6,7 @@
 //!   ([`to_json`], [`read_document`]) with a generated JSON Schema ([`schemas`]).
 //! - [`CsvWriter`]: one row per point and level (RFC 4180); [`stream_csv`]: the same of a sweep of any length.
 //! - [`sweep_figure`], [`levels_figure`]: SVG with real text.
-//! - [`figure_png`]: the same as an image.
+//! - [`figure_png`], [`figure_pdf`], [`outline_text`]: the same as an image, a page, and without fonts.
 //! - [`sweep_page`]: one HTML file with the figure, a slider and the orbitals.
 //! - [`levels_text`], [`sweep_text`], [`params_text`]: text for a person at a terminal.
 //!
@@ -17,6 +17,7 @@ mod csv_stream;
 mod csv_table;
 mod document;
 mod draw;
+mod export;
 mod figure;
 mod from_distortion;
 mod from_fragments;
@@ -26,10 +27,10 @@ mod from_scan;
 mod from_scan_lines;
 mod from_scan_orbitals;
 mod from_scan_pictures;
+mod from_scan_populations;
 mod from_shape;
 mod lettering;
 mod page;
-mod raster;
 #[cfg(test)]
 mod synthetic;
 mod text;
@@ -37,9 +38,10 @@ mod text;
 pub use csv_stream::{StreamError, Streamed, stream_csv};
 pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
+pub use export::{ImageError, figure_pdf, figure_png, outline_text};
 pub use figure::{
     ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering,
-    OrbitalPicture, Theme, interaction_figure, levels_figure, shape_figure, sweep_figure,
+    OrbitalPicture, Support, Theme, interaction_figure, levels_figure, shape_figure, sweep_figure,
 };
 pub use from_distortion::distortions_record;
 pub use from_fragments::fragments_record;
@@ -50,7 +52,6 @@ pub use from_scan_orbitals::sweep_document_with_orbitals;
 pub use from_scan_pictures::end_pictures;
 pub use from_shape::shape_document;
 pub use page::{PageError, sweep_page};
-pub use raster::{ImageError, figure_png};
 pub use text::{
     TextOptions, levels_text, params_text, passport_text, plan_markdown, plan_text, shape_text,
     sweep_fragments_text, sweep_text,

@@ -2,7 +2,7 @@
 
 use orbend_hamiltonian::Basis;
 use orbend_overlap::harmonics;
-use orbend_structure::{Angstrom, Bohr};
+use orbend_structure::{Angstrom, Bohr, BondGraph, Molecule};
 
 use crate::error::ScanError;
 use crate::sweep::Sweep;
@@ -17,7 +17,9 @@ pub struct Plane {
     /// Upwards.
     pub up: [f64; 3],
     /// What the plane is, in words.
-    pub words: &'static str,
+    pub words: String,
+    /// Whether it lies beside the middle of the atoms.
+    pub lifted: bool,
 }
 
 /// Values of an orbital on a square lattice of a plane.
@@ -100,62 +102,59 @@ pub struct OrbitalPicture {
     pub plane: Plane,
     /// ψ on it.
     pub values: PlaneValues,
-    /// The nuclei seen from above: right and up from the origin, Å.
-    pub nuclei: Vec<[f64; 2]>,
+    /// The nuclei from the origin: right, up and out of the plane, Å.
+    pub nuclei: Vec<[f64; 3]>,
+    /// Atoms joined by bonds, counted from 0.
+    pub bonds: Vec<(usize, usize)>,
 }
 
 impl Sweep {
-    /// The picture of a line at a point, with so many points along an edge. The plane is chosen by
-    /// rule: of a flat molecule the plane of the atoms, or 0.5 Å above it for an orbital that
-    /// vanishes there; of any other the one of three planes through the middle of the atoms, along
-    /// the main axes of their positions, in which ∫ψ² is largest.
+    /// Pictures of all lines at a point, in the order of the lines, with so many points along an edge.
+    /// The plane of each is chosen by rule: of a molecule that stays flat the plane of the atoms, or
+    /// 0.5 Å above it for an orbital that vanishes there; of any other the one of three planes through
+    /// the middle of the atoms, along the main axes of their positions, in which ∫ψ² is largest (the
+    /// widest one where no other has 5 % more).
     ///
     /// # Errors
     /// As for the run itself.
-    pub fn picture(
-        &self,
-        line: usize,
-        point: usize,
-        points: usize,
-    ) -> Result<OrbitalPicture, ScanError> {
+    pub fn pictures(&self, point: usize, points: usize) -> Result<Vec<OrbitalPicture>, ScanError> {
         let orbitals = self.orbitals(point)?;
         let positions = self.point(point)?.positions;
-        let row = orbitals.coefficients.row(line).to_vec();
         let last = self.points() - 1;
         let geometries = [0, last / 2, last, point]
             .into_iter()
             .map(|index| Ok(self.point(index)?.positions))
             .collect::<Result<Vec<_>, ScanError>>()?;
         let frame = Frame::of(&geometries);
-        let orbital = (self.plan().basis(), row.as_slice(), positions.as_slice());
-        let half = frame.reach + 1.5;
-        let content = |plane: &Plane| PlaneValues::new(orbital, plane, (half, 22)).content();
-        let mut planes = frame.planes();
-        let best = if frame.flat {
-            usize::from(content(&planes[0]) <= 0.02 * content(&planes[1]))
-        } else {
-            let mut best = 0;
-            for other in [2, 3] {
-                if content(&planes[other]) > 1.05 * content(&planes[best]) {
-                    best = other;
+        let mut molecule = self.plan().molecule().clone();
+        molecule.positions.clone_from(&positions);
+        let bonds = BondGraph::new(&molecule).bonds();
+        let half = frame.reach + 2.0;
+        Ok((0..self.plan().lines().len())
+            .map(|line| {
+                let row = orbitals.coefficients.row(line).to_vec();
+                let orbital = (self.plan().basis(), row.as_slice(), positions.as_slice());
+                let mut plane =
+                    frame.best(|plane| PlaneValues::new(orbital, plane, (half, 24)).content());
+                let nuclei: Vec<[f64; 3]> = positions
+                    .iter()
+                    .map(|at| {
+                        let away = core::array::from_fn(|k| at[k] - plane.origin[k]);
+                        [plane.right, plane.up, cross(plane.right, plane.up)]
+                            .map(|axis| dot(away, axis))
+                    })
+                    .collect();
+                if !frame.flat && !plane.lifted {
+                    plane.words.push_str(&frame.through(&molecule, &plane));
                 }
-            }
-            best
-        };
-        let plane = planes.swap_remove(best);
-        let nuclei = positions
-            .iter()
-            .map(|at| {
-                let away = core::array::from_fn(|k| at[k] - plane.origin[k]);
-                [dot(away, plane.right), dot(away, plane.up)]
+                OrbitalPicture {
+                    values: PlaneValues::new(orbital, &plane, (half, points)),
+                    plane,
+                    nuclei,
+                    bonds: bonds.clone(),
+                }
             })
-            .collect();
-        let values = PlaneValues::new(orbital, &plane, (half, points));
-        Ok(OrbitalPicture {
-            plane,
-            values,
-            nuclei,
-        })
+            .collect())
     }
 }
 
@@ -165,6 +164,8 @@ struct Frame {
     axes: [[f64; 3]; 3],
     flat: bool,
     reach: f64,
+    /// Positions from the middle, geometry after geometry.
+    away: Vec<[f64; 3]>,
 }
 
 impl Frame {
@@ -215,40 +216,77 @@ impl Frame {
             axes: [right, up, out],
             flat,
             reach,
+            away,
         }
     }
 
-    fn planes(&self) -> Vec<Plane> {
+    /// The plane that shows most of an orbital; `content` is ∫ψ² in a plane.
+    fn best(&self, content: impl Fn(&Plane) -> f64) -> Plane {
         let [u, v, w] = self.axes;
-        let above = core::array::from_fn(|k| self.middle[k] + 0.5 * w[k]);
-        let plane = |origin, right, up, words| Plane {
-            origin,
-            right,
-            up,
-            words,
+        let plane = |height: f64, [right, up]: [[f64; 3]; 2], words: &str| {
+            let out = cross(right, up);
+            Plane {
+                origin: core::array::from_fn(|k| self.middle[k] + height * out[k]),
+                right,
+                up,
+                words: words.to_owned(),
+                lifted: height > 0.0,
+            }
         };
         if self.flat {
-            return vec![
-                plane(self.middle, u, v, "the plane of the atoms"),
-                plane(above, u, v, "0.5 Å above the plane of the atoms"),
-            ];
+            let inside = plane(0.0, [u, v], "the plane of the atoms");
+            let above = plane(0.5, [u, v], "0.5 Å above the plane of the atoms");
+            return if content(&inside) <= 0.02 * content(&above) {
+                above
+            } else {
+                inside
+            };
         }
-        vec![
-            plane(
-                self.middle,
-                u,
-                v,
-                "the widest plane through the middle of the atoms",
-            ),
-            plane(above, u, v, "0.5 Å above the widest plane"),
-            plane(self.middle, u, w, "a plane on edge, along the longest axis"),
-            plane(
-                self.middle,
-                v,
-                w,
-                "a plane on edge, across the longest axis",
-            ),
-        ]
+        let mut best = plane(0.0, [u, v], "the widest plane");
+        let mut found = content(&best);
+        for other in [
+            plane(0.0, [u, w], "the upright plane"),
+            plane(0.0, [v, w], "the upright cross plane"),
+        ] {
+            let own = content(&other);
+            if own > 1.05 * found {
+                best = other;
+                found = own;
+            }
+        }
+        // An orbital that changes its sign at all three is cut beside them.
+        for other in [
+            plane(0.5, [u, v], "0.5 Å above the widest plane"),
+            plane(0.5, [u, w], "0.5 Å beside the upright plane"),
+        ] {
+            let own = content(&other);
+            if found <= 0.15 * own {
+                best = other;
+                found = own;
+            }
+        }
+        best
+    }
+
+    /// The atoms that stay in a plane through the middle at all geometries, in words:
+    /// ` through B1, Cl2`; empty for none or many.
+    fn through(&self, molecule: &Molecule, plane: &Plane) -> String {
+        let out = cross(plane.right, plane.up);
+        let atoms = molecule.positions.len();
+        let inside: Vec<String> = (0..atoms)
+            .filter(|&atom| {
+                let places = self.away.iter().skip(atom).step_by(atoms.max(1));
+                places
+                    .map(|at| dot(*at, out))
+                    .all(|height| height.abs() < 0.05)
+            })
+            .map(|atom| molecule.atom_name(atom))
+            .collect();
+        if (1..=4).contains(&inside.len()) {
+            format!(" through {}", inside.join(", "))
+        } else {
+            String::new()
+        }
     }
 }
 
@@ -327,6 +365,87 @@ mod tests {
                 "{at:?}: {value} {expected}"
             );
         }
+    }
+
+    /// ∫ψ² over a cubic lattice by the midpoint rule: coefficients come from C†SC = 1 with the closed
+    /// forms of the overlaps, so that values and overlaps check each other.
+    #[test]
+    fn every_orbital_of_a_molecule_is_normalised_in_space() {
+        let formula = orbend_structure::Formula::parse("H2S").unwrap();
+        let molecule = orbend_structure::ideal_geometry(&formula, None, &[])
+            .unwrap()
+            .molecule;
+        let sweep = crate::Request::new(molecule).run().unwrap();
+        let orbitals = sweep.orbitals(0).unwrap();
+        let positions = sweep.point(0).unwrap().positions;
+        let (step, half) = (0.16, 4.4);
+        let count = (2.0 * half / step) as usize;
+        let place = |k: usize| (k as f64 + 0.5) * step - half;
+        for line in 0..sweep.plan().lines().len() {
+            let row = orbitals.coefficients.row(line).to_vec();
+            let mut sum = 0.0;
+            for x in 0..count {
+                for y in 0..count {
+                    for z in 0..count {
+                        let at = [place(x), place(y), place(z)];
+                        let value = orbital_value(sweep.plan().basis(), &row, &positions, at);
+                        sum += value * value;
+                    }
+                }
+            }
+            let norm = sum * Bohr::from(Angstrom(step)).0.powi(3);
+            assert!((norm - 1.0).abs() < 0.01, "line {line}: {norm}");
+        }
+    }
+
+    #[test]
+    fn planes_and_their_words() {
+        let planes = |text: &str, coordinate: &str, kind| -> Vec<String> {
+            let formula = orbend_structure::Formula::parse(text).unwrap();
+            let molecule = orbend_structure::ideal_geometry(&formula, None, &[])
+                .unwrap()
+                .molecule;
+            let coordinate = orbend_structure::Coordinate::parse(kind, coordinate).unwrap();
+            let sweep = crate::Request::new(molecule)
+                .coordinate(coordinate)
+                .run()
+                .unwrap();
+            let mut words: Vec<String> = sweep
+                .pictures(0, 12)
+                .unwrap()
+                .into_iter()
+                .map(|picture| picture.plane.words)
+                .collect();
+            words.sort();
+            words.dedup();
+            words
+        };
+        let bend = planes(
+            "SF2",
+            "2-1-3=100..140:20",
+            orbend_structure::CoordinateKind::Bend,
+        );
+        assert_eq!(
+            bend,
+            [
+                "0.5 Å above the plane of the atoms",
+                "the plane of the atoms"
+            ]
+        );
+        let pyramid = planes(
+            "BCl3",
+            "1=100..120:10",
+            orbend_structure::CoordinateKind::Pyramid,
+        );
+        assert!(pyramid.len() > 1, "{pyramid:?}");
+        assert!(
+            pyramid.iter().all(|words| words.starts_with("the ")),
+            "{pyramid:?}"
+        );
+        assert!(
+            pyramid.contains(&"the upright plane through B1, Cl2".to_owned()),
+            "{pyramid:?}"
+        );
     }
 
     #[test]

@@ -7,10 +7,11 @@ use orbend_report::{
 
 use orbend_scan::reasons::{Distortions, FragmentAnalysis};
 
+use super::figure::{self, Rendering};
 use super::fragments::{fragment_failure, fragments};
 use super::geometry_text::geometry_text;
 use super::sweep::in_pool;
-use super::{csv, drawing, figure_numbering, provenance, resolve, text_options};
+use super::{csv, provenance, resolve, text_options};
 use crate::arguments::LevelsArguments;
 use crate::failure::Failure;
 use crate::outputs::Outputs;
@@ -18,7 +19,7 @@ use crate::write::write_stdout;
 
 pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "xyz"])?;
+    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "pdf", "xyz"])?;
     let resolved = resolve(
         &arguments.geometry,
         Vec::new(),
@@ -48,7 +49,7 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
             _ => {
                 let options = FigureOptions {
-                    numbering: figure_numbering(output.numbering),
+                    numbering: figure::numbering(output.numbering),
                     ..FigureOptions::default()
                 };
                 let figure = if document.fragments.is_some() {
@@ -56,7 +57,7 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
                 } else {
                     levels_figure(&document, &options)
                 };
-                drawing(figure, ending)?
+                Rendering::default().bytes(figure, ending)?
             }
         })
     })?;

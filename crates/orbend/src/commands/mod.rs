@@ -1,5 +1,6 @@
 //! One file per command; what several need stands here.
 
+pub(crate) mod figure;
 mod fragments;
 mod geometry_text;
 pub(crate) mod levels;
@@ -13,15 +14,11 @@ use std::io::IsTerminal;
 use std::path::Path;
 
 use orbend_hamiltonian::{Coupling, Method, ParameterError, ParameterSet};
-use orbend_report::{
-    FigureOptions, FigureWidth, Numbering, Provenance, TextOptions, Theme, figure_png,
-};
+use orbend_report::{Provenance, TextOptions};
 use orbend_scan::{Configuration, Request, Route};
 use orbend_structure::{Angstrom, Coordinate};
 
-use crate::arguments::{
-    CouplingChoice, FigureArguments, ModelArguments, NumberingChoice, ThemeChoice, WidthChoice,
-};
+use crate::arguments::{CouplingChoice, ModelArguments, NumberingChoice};
 use crate::failure::Failure;
 use crate::geometry::{self, Geometry};
 
@@ -120,51 +117,6 @@ pub(crate) fn provenance(geometry: &Geometry, numbering: NumberingChoice) -> Pro
     }
 }
 
-/// The figure's options.
-pub(crate) fn figure_options(
-    arguments: &FigureArguments,
-    numbering: NumberingChoice,
-) -> Result<FigureOptions, Failure> {
-    let energies = arguments
-        .energies
-        .as_deref()
-        .map(energy_window)
-        .transpose()?;
-    Ok(FigureOptions {
-        width: match arguments.width {
-            WidthChoice::Column => FigureWidth::Column,
-            WidthChoice::Page => FigureWidth::Page,
-            WidthChoice::Slide => FigureWidth::Slide,
-        },
-        theme: match arguments.theme {
-            ThemeChoice::Light => Theme::Light,
-            ThemeChoice::Dark => Theme::Dark,
-            ThemeChoice::Grey => Theme::Grey,
-        },
-        numbering: figure_numbering(numbering),
-        energies,
-        lines: (!arguments.lines.is_empty()).then(|| arguments.lines.clone()),
-        ..FigureOptions::default()
-    })
-}
-
-pub(crate) fn figure_numbering(numbering: NumberingChoice) -> Numbering {
-    match numbering {
-        NumberingChoice::Core => Numbering::Core,
-        NumberingChoice::Valence => Numbering::Valence,
-    }
-}
-
-fn energy_window(text: &str) -> Result<(f64, f64), Failure> {
-    text.split_once("..")
-        .and_then(|(from, to)| Some((from.trim().parse().ok()?, to.trim().parse().ok()?)))
-        .filter(|&(from, to): &(f64, f64)| from.is_finite() && to.is_finite() && from < to)
-        .ok_or_else(|| {
-            Failure::request(format!("--energies {text}: not an energy window"))
-                .fix("write from..to in eV with from below to, for example -20..0")
-        })
-}
-
 /// How text is laid out on this standard output.
 pub(crate) fn text_options(numbering: NumberingChoice) -> TextOptions {
     let width = if std::io::stdout().is_terminal() {
@@ -174,7 +126,7 @@ pub(crate) fn text_options(numbering: NumberingChoice) -> TextOptions {
     };
     TextOptions {
         width,
-        numbering: figure_numbering(numbering),
+        numbering: figure::numbering(numbering),
         ..TextOptions::default()
     }
 }
@@ -186,19 +138,4 @@ pub(crate) fn csv(
     let mut bytes = Vec::new();
     table(&mut bytes).map_err(Failure::document)?;
     Ok(bytes)
-}
-
-/// Dots per inch of figures as images: what journals ask for.
-const DOTS_PER_INCH: f64 = 600.0;
-
-/// The bytes of a figure, as an image where the ending asks for one.
-pub(crate) fn drawing(
-    figure: Result<String, orbend_report::FigureError>,
-    ending: &str,
-) -> Result<Vec<u8>, Failure> {
-    let figure = figure.map_err(|error| Failure::request(error.to_string()))?;
-    match ending {
-        "png" => figure_png(&figure, DOTS_PER_INCH).map_err(Failure::document),
-        _ => Ok(figure.into_bytes()),
-    }
 }

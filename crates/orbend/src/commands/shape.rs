@@ -6,6 +6,7 @@ use orbend_report::{
 };
 use orbend_scan::shape::{ShapeError, ShapeRequest, ShapeVerdict};
 
+use super::figure::Rendering;
 use super::sweep::in_pool;
 use super::{provenance, resolve, text_options};
 use crate::arguments::{CouplingChoice, ModelArguments, ShapeArguments};
@@ -27,7 +28,7 @@ enum Spins {
 
 pub(crate) fn run(arguments: &ShapeArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "svg"])?;
+    let outputs = Outputs::check(&output.out, &["json", "svg", "png", "pdf"])?;
     let charges = arguments.charges.as_deref().map(charges).transpose()?;
     let spins = spins(arguments.unpaired.as_deref())?;
     if arguments.centre == Some(0) {
@@ -52,9 +53,8 @@ pub(crate) fn run(arguments: &ShapeArguments) -> Result<(), Failure> {
     outputs.write(|ending| {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
-            _ => shape_figure(&document, &FigureOptions::default())
-                .map_err(|error| Failure::request(error.to_string()))?
-                .into_bytes(),
+            _ => Rendering::default()
+                .bytes(shape_figure(&document, &FigureOptions::default()), ending)?,
         })
     })?;
     if output.json {

@@ -4,16 +4,17 @@
 //! comes from some of its points.
 
 use orbend_report::{
-    FigureOptions, end_pictures, passport_text, stream_csv, sweep_csv, sweep_document,
-    sweep_document_with_orbitals, sweep_figure, sweep_fragments_text, sweep_page, sweep_text,
-    to_json,
+    FigureError, FigureOptions, Support, end_pictures, passport_text, stream_csv, sweep_csv,
+    sweep_document, sweep_document_with_orbitals, sweep_figure, sweep_fragments_text, sweep_page,
+    sweep_text, to_json,
 };
 use orbend_scan::Sweep;
 
+use super::figure::{self, Rendering};
 use super::fragments::{along, fragments};
 use super::geometry_text::geometry_text;
 use super::route::{movement, route};
-use super::{csv, drawing, figure_options, provenance, resolve, text_options};
+use super::{csv, provenance, resolve, text_options};
 use crate::arguments::{NumberingChoice, SweepArguments};
 use crate::failure::Failure;
 use crate::geometry::Geometry;
@@ -25,8 +26,14 @@ const LONG: usize = 100_000;
 
 pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let mut outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "html", "xyz"])?;
-    let figure = figure_options(&arguments.figure, output.numbering)?;
+    let mut outputs = Outputs::check(
+        &output.out,
+        &["json", "csv", "svg", "png", "pdf", "html", "xyz"],
+    )?;
+    let mut figure = figure::options(&arguments.figure, output.numbering)?;
+    let rendering = Rendering::new(&arguments.figure)?;
+    let shape = arguments.figure.shape.as_deref();
+    let shape = shape.map(figure::shape_document).transpose()?;
     let movement = movement(&arguments.coordinates)?;
     let mut resolved = resolve(
         &arguments.geometry,
@@ -44,6 +51,9 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
         .request
         .plan()
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
+    if plan.path().axes().len() > 1 && outputs.any(&["svg", "png", "pdf", "html"]) {
+        return Err(figure::failure(&FigureError::Grid));
+    }
     let points = plan.points();
     let mut table = None;
     let long = points * plan.lines().len() > LONG;
@@ -62,7 +72,10 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
         let fragments = fragments(text, resolved.request.molecule.len())?;
         document.fragments = Some(along(&sweep, &fragments)?);
     }
-    let mut figure = figure;
+    if let Some(shape) = &shape {
+        let support = Support::of(shape, &document).map_err(|error| figure::failure(&error))?;
+        figure.support = Some(support);
+    }
     if arguments.figure.orbitals && document.lines.is_some() {
         figure.pictures = Some(end_pictures(&sweep).map_err(|error| Failure::scan(&error))?);
     }
@@ -72,7 +85,7 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
             "csv" => csv(|out| sweep_csv(&document, out))?,
             "html" => page(&sweep, &resolved.geometry, output.numbering, &figure)?,
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
-            _ => drawing(sweep_figure(&document, &figure), ending)?,
+            _ => rendering.bytes(sweep_figure(&document, &figure), ending)?,
         })
     })?;
     if let Some(table) = table {

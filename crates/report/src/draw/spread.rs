@@ -5,10 +5,25 @@
 /// Ann. Math. Statist. 26, 641 (1955)). `targets` ascend. Where the labels cannot fit they start at
 /// `low` and run beyond `high`: see [`room`].
 pub(crate) fn spread(targets: &[f64], distance: f64, low: f64, high: f64) -> Vec<f64> {
+    spread_apart(targets, |_| distance, low, high)
+}
+
+/// The same with a distance of its own between each position and the next: `distance(k)` between
+/// those of places k and k + 1.
+pub(crate) fn spread_apart(
+    targets: &[f64],
+    distance: impl Fn(usize) -> f64,
+    low: f64,
+    high: f64,
+) -> Vec<f64> {
+    let mut offsets = vec![0.0];
+    for k in 1..targets.len() {
+        offsets.push(offsets[k - 1] + distance(k - 1));
+    }
     // Subtracting the least offsets turns "distance apart" into "not decreasing".
     let mut pools: Vec<(f64, usize)> = Vec::new();
-    for (index, target) in targets.iter().enumerate() {
-        let mut pool = (target - index as f64 * distance, 1);
+    for (target, offset) in targets.iter().zip(&offsets) {
+        let mut pool = (target - offset, 1);
         while let Some(&(sum, count)) = pools.last() {
             if sum / count as f64 <= pool.0 / pool.1 as f64 {
                 break;
@@ -18,12 +33,12 @@ pub(crate) fn spread(targets: &[f64], distance: f64, low: f64, high: f64) -> Vec
         }
         pools.push(pool);
     }
-    let top = high - targets.len().saturating_sub(1) as f64 * distance;
+    let top = high - offsets[offsets.len() - 1];
     let mut placed = Vec::with_capacity(targets.len());
     for (sum, count) in pools {
         let level = (sum / count as f64).min(top).max(low);
         for _ in 0..count {
-            placed.push(level + placed.len() as f64 * distance);
+            placed.push(level + offsets[placed.len()]);
         }
     }
     placed
@@ -51,6 +66,13 @@ mod tests {
         let placed = spread(&[5.0, 5.0, 5.0], 2.0, 0.0, 10.0);
         assert_eq!(placed, vec![3.0, 5.0, 7.0]);
         assert_eq!(spread(&[0.0, 0.1], 2.0, 0.0, 10.0), vec![0.0, 2.0]);
+    }
+
+    #[test]
+    fn tall_ones_keep_a_larger_distance() {
+        let placed = spread_apart(&[5.0, 5.0, 5.0], |k| [4.0, 1.0][k], 0.0, 10.0);
+        assert_eq!(placed, vec![2.0, 6.0, 7.0]);
+        assert_eq!(spread_apart(&[], |_| 1.0, 0.0, 1.0), Vec::<f64>::new());
     }
 
     proptest::proptest! {

@@ -87,7 +87,7 @@ pub(crate) fn energy_axis(
 pub(crate) fn coordinate_axis(canvas: &mut Canvas, sheet: &Sheet<'_>, y: f64) -> f64 {
     let (measure, colours) = (&sheet.measure, sheet.colours);
     let (from, to) = sheet.span();
-    let widest = 4.0 * measure.tick;
+    let widest = 3.2 * measure.tick;
     let most = (((sheet.right - sheet.left) / widest).floor() as usize).clamp(2, 7);
     let found = if in_degrees(sheet.document) {
         degree_ticks(from, to, most)

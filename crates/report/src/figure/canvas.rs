@@ -17,7 +17,7 @@ pub(crate) enum Anchor {
     End,
 }
 
-/// The rectangle that a text takes up.
+/// The rectangle that a text or a picture takes up.
 #[derive(Clone, Debug, PartialEq)]
 pub(crate) struct TextBox {
     pub(crate) left: f64,

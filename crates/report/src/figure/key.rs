@@ -16,6 +16,16 @@ pub(crate) enum Mark {
     Gap,
     Crossing,
     Avoided,
+    /// The range of a shape verdict's angle.
+    Band,
+    /// Both phases of an orbital.
+    Orbital,
+    /// A nucleus in the plane and one off it.
+    Nuclei,
+    /// The plane of the pictures without a letter.
+    Plane,
+    /// The plane of the pictures with this letter.
+    Letter(usize),
 }
 
 /// Lays the entries out in rows from `left` to `right`, starting below `top`; returns the page
@@ -35,7 +45,7 @@ pub(crate) fn draw(
     let mut base = top + 1.5 * size;
     canvas.xml.open("g", &[("class", "key")]);
     for (kind, words) in entries {
-        let text = Lettering::plain(words.clone());
+        let text = Lettering::words(words);
         let sign = 2.0 * size;
         let width = sign + 0.4 * size + text.width(size);
         if x > left && x + width > right {
@@ -91,6 +101,59 @@ fn mark(
             );
             canvas.area(&path, colours.gap);
             canvas.stroke(&path, colours.faint, 0.3 * measure.stroke, &[]);
+        }
+        Mark::Band => super::sum::band(
+            canvas,
+            measure,
+            colours,
+            ((x + 0.2 * width, x + 0.8 * width), Some(middle)),
+            (y - 0.45 * measure.key, y + 0.45 * measure.key),
+        ),
+        Mark::Orbital => {
+            let radius = 0.36 * measure.key;
+            let at = |sign: f64| (middle + sign * 1.05 * radius, y);
+            canvas.disc(at(-1.0), radius, colours.soft, (colours.soft, thin));
+            canvas.disc(at(1.0), radius, "none", (colours.soft, thin));
+        }
+        Mark::Nuclei => {
+            super::pictures::nucleus(
+                canvas,
+                measure,
+                colours,
+                (middle - 0.4 * measure.key, y),
+                true,
+            );
+            super::pictures::nucleus(
+                canvas,
+                measure,
+                colours,
+                (middle + 0.4 * measure.key, y),
+                false,
+            );
+        }
+        Mark::Plane => {
+            let (half, tilt) = (0.28 * measure.key, 0.35 * measure.key);
+            let path = format!(
+                "M{} {}H{}L{} {}H{}Z",
+                length(x + 0.2 * width),
+                length(y + half),
+                length(x + 0.8 * width - tilt),
+                length(x + 0.8 * width),
+                length(y - half),
+                length(x + 0.2 * width + tilt)
+            );
+            canvas.stroke(&path, colours.soft, thin, &[]);
+        }
+        Mark::Letter(place) => {
+            if let Some(letter) = super::gallery::letter_of(place) {
+                canvas.text(
+                    (middle, y + 0.32 * measure.key),
+                    Anchor::Middle,
+                    measure.key,
+                    colours.soft,
+                    &Lettering::plain(letter),
+                );
+            }
         }
         Mark::Crossing => canvas.disc((middle, y), 1.9 * measure.stroke, "none", (ink, thin)),
         Mark::Avoided => {

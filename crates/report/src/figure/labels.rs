@@ -1,11 +1,11 @@
 //! Labels at both ends of the lines.
 
 use crate::draw::bundle::Bundle;
-use crate::draw::spread::spread;
+use crate::draw::spread::spread_apart;
 use crate::lettering::Lettering;
 
 use super::canvas::{ASCENT, Anchor, Canvas, DESCENT};
-use super::pictures;
+use super::gallery::Gallery;
 use super::sheet::Sheet;
 
 /// Which end of the lines.
@@ -23,6 +23,8 @@ pub(crate) struct EndLabel {
     irrep: Option<String>,
     /// Place of the first line in the sheet's list.
     line: usize,
+    /// The `id`s of all lines that share the label.
+    pub(crate) lines: Vec<u32>,
 }
 
 /// Lines with equal labels that lie this close at an end, in eV, are one degenerate set there.
@@ -69,6 +71,7 @@ pub(crate) fn end_labels(sheet: &Sheet<'_>, side: Side) -> Vec<EndLabel> {
                 if label.irrep.as_ref() != Some(&bundle.irrep) {
                     label.irrep = None;
                 }
+                label.lines.extend(&bundle.ids);
             }
             None => labels.push(EndLabel {
                 energy,
@@ -76,6 +79,7 @@ pub(crate) fn end_labels(sheet: &Sheet<'_>, side: Side) -> Vec<EndLabel> {
                 lettering,
                 irrep: Some(bundle.irrep.clone()),
                 line,
+                lines: bundle.ids.clone(),
             }),
         }
     }
@@ -105,87 +109,96 @@ pub(crate) fn widest(labels: &[EndLabel], size: f64) -> f64 {
         .fold(0.0, f64::max)
 }
 
+/// Height of each label with its pictures, lowest energy first.
+pub(crate) fn heights(
+    sheet: &Sheet<'_>,
+    labels: &[EndLabel],
+    side: Side,
+    gallery: Option<&Gallery>,
+) -> Vec<f64> {
+    let least = sheet.measure.label_distance();
+    (0..labels.len())
+        .map(|label| gallery.map_or(least, |all| all.height(sheet, side, label).max(least)))
+        .collect()
+}
+
 /// Draws the labels of one end, each beside its line; where they would collide they make way and a
 /// thin line leads to them.
-pub(crate) fn draw(canvas: &mut Canvas, sheet: &Sheet<'_>, labels: &[EndLabel], side: Side) {
+pub(crate) fn draw(
+    canvas: &mut Canvas,
+    sheet: &Sheet<'_>,
+    labels: &[EndLabel],
+    side: Side,
+    gallery: Option<&Gallery>,
+) {
     let size = sheet.measure.label;
+    let widest = widest(labels, size);
     let targets: Vec<f64> = labels
         .iter()
         .rev()
         .map(|label| sheet.scale.y(label.energy))
         .collect();
+    let mut heights = heights(sheet, labels, side, gallery);
+    heights.reverse();
     // Centres of the text, not base lines, stand at the energies.
-    let edge_length = sheet.picture_edge();
-    let half = 0.5 * ((ASCENT + DESCENT) * size).max(edge_length);
-    let places = spread(
+    let half = |height: Option<&f64>| {
+        let row = (ASCENT + DESCENT) * size;
+        0.5 * height.map_or(row, |height| {
+            if gallery.is_some() {
+                height.max(row)
+            } else {
+                row
+            }
+        })
+    };
+    let places = spread_apart(
         &targets,
-        sheet.label_distance(),
-        sheet.top + half,
-        sheet.bottom - half,
+        |k| 0.5 * (heights[k] + heights[k + 1]),
+        sheet.top + half(heights.first()),
+        sheet.bottom - half(heights.last()),
     );
     canvas.xml.open(
         "g",
         &[("class", if side == Side::Left { "start" } else { "end" })],
     );
-    for ((label, target), place) in labels.iter().rev().zip(&targets).zip(&places) {
-        let (edge, sign) = match side {
-            Side::Left => (sheet.left, -1.0),
-            Side::Right => (sheet.right, 1.0),
-        };
-        let leader = sheet.measure.leader();
+    let (edge, sign, anchor) = match side {
+        Side::Left => (sheet.left, -1.0, Anchor::End),
+        Side::Right => (sheet.right, 1.0, Anchor::Start),
+    };
+    let leader = sheet.measure.leader();
+    for (index, ((label, target), place)) in
+        labels.iter().rev().zip(&targets).zip(&places).enumerate()
+    {
         let (near, far) = (edge + sign * 0.2 * leader, edge + sign * 0.82 * leader);
-        if (target - place).abs() > 0.08 * size {
-            canvas.line(
-                (near, *target),
-                (far, *place),
-                sheet.colours.soft,
-                0.3 * sheet.measure.stroke,
-            );
+        let end = if (target - place).abs() > 0.08 * size {
+            *place
         } else {
-            canvas.line(
-                (near, *target),
-                (far, *target),
-                sheet.colours.soft,
-                0.3 * sheet.measure.stroke,
-            );
-        }
-        let anchor = if side == Side::Left {
-            Anchor::End
-        } else {
-            Anchor::Start
+            *target
         };
+        canvas.line(
+            (near, *target),
+            (far, end),
+            sheet.colours.soft,
+            0.3 * sheet.measure.stroke,
+        );
         let colour = if label.irrep.is_some() {
             sheet.colour(&sheet.all[label.line])
         } else {
             sheet.colours.ink
         };
-        let baseline = place + 0.34 * size;
         canvas.text(
-            (edge + sign * leader, baseline),
+            (edge + sign * leader, place + 0.34 * size),
             anchor,
             size,
             colour,
             &label.lettering,
         );
-        let pictures = sheet.options.pictures.as_ref().map(|pictures| match side {
-            Side::Left => &pictures.start,
-            Side::Right => &pictures.end,
-        });
-        let id = sheet.all[label.line].ids.first();
-        let picture = pictures.and_then(|all| all.iter().find(|picture| Some(&picture.line) == id));
-        if let Some(picture) = picture {
-            let near = leader + widest(labels, size) + 0.4 * size;
-            let x = if side == Side::Left {
-                edge - near - edge_length
-            } else {
-                edge + near
-            };
-            pictures::draw(
+        if let Some(gallery) = gallery {
+            gallery.draw(
                 canvas,
                 sheet,
-                picture,
-                (x, place - 0.5 * edge_length),
-                edge_length,
+                (side, labels.len() - 1 - index),
+                (edge + sign * (leader + widest), *place),
                 colour,
             );
         }

@@ -2,6 +2,8 @@
 
 mod axes;
 pub(crate) mod canvas;
+mod electrons;
+mod gallery;
 mod interaction;
 mod key;
 mod labels;
@@ -13,8 +15,10 @@ mod panel;
 mod pictures;
 pub(crate) mod scale;
 mod series;
+mod series_classes;
 mod sheet;
 mod sum;
+mod support;
 pub(crate) mod sweep;
 #[cfg(test)]
 mod tests;
@@ -28,4 +32,5 @@ pub use options::{
 };
 pub use pictures::{EndPictures, OrbitalPicture};
 pub use series::shape_figure;
+pub use support::Support;
 pub use sweep::sweep_figure;

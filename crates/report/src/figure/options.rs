@@ -5,6 +5,7 @@ use orbend_structure::HARTREE_IN_EV;
 use crate::document::DocumentError;
 
 use super::pictures::EndPictures;
+use super::support::Support;
 
 /// Width of the page.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
@@ -114,6 +115,8 @@ pub struct FigureOptions {
     pub title: bool,
     /// A line below that explains the marks.
     pub key: bool,
+    /// The range of a shape verdict's angle in the panel of the sum.
+    pub support: Option<Support>,
     /// Contour pictures of the orbitals beside the labels.
     pub pictures: Option<EndPictures>,
     /// Start of every `id` in the file: choose another one per figure when several share a page.
@@ -136,6 +139,7 @@ impl Default for FigureOptions {
             axis_breaks: true,
             title: true,
             key: true,
+            support: None,
             pictures: None,
             id_prefix: "orbend".to_owned(),
         }
@@ -213,6 +217,16 @@ pub enum FigureError {
         from: f64,
         /// Last coordinate.
         to: f64,
+    },
+    /// The shape document is about something else.
+    #[error(
+        "the shape document has no verdict on {wanted} along this coordinate; it has: {}", held.join(", ")
+    )]
+    NoVerdict {
+        /// Molecule of the sweep with its charge and unpaired electrons.
+        wanted: String,
+        /// What the document has verdicts on.
+        held: Vec<String>,
     },
     /// The document contradicts itself.
     #[error(transparent)]

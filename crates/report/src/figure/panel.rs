@@ -7,7 +7,6 @@ use crate::draw::bundle::Bundle;
 use crate::draw::curve::Piece;
 
 use super::canvas::{Canvas, path};
-use super::options::{ElectronMarks, FigureError};
 use super::sheet::Sheet;
 use super::theme::dashes;
 use super::xml::length;
@@ -15,7 +14,7 @@ use super::xml::length;
 /// Shades between the highest occupied and the lowest empty line. Returns whether it did: not where
 /// electrons skip a lower line, or where a line has unknown energies.
 pub(crate) fn shade_gap(canvas: &mut Canvas, sheet: &Sheet<'_>) -> bool {
-    const SAMPLES: usize = 120;
+    const SAMPLES: u32 = 120;
     let aufbau = sheet.document.points.iter().all(|point| {
         let order = point
             .levels
@@ -31,10 +30,9 @@ pub(crate) fn shade_gap(canvas: &mut Canvas, sheet: &Sheet<'_>) -> bool {
         return false;
     }
     let (from, to) = sheet.span();
-    let mut upper = String::new();
-    let mut lower: Vec<String> = Vec::new();
+    let mut samples: Vec<(usize, f64, f64, f64)> = Vec::new();
     for sample in 0..=SAMPLES {
-        let x = from + (to - from) * sample as f64 / SAMPLES as f64;
+        let x = from + (to - from) * f64::from(sample) / f64::from(SAMPLES);
         let filled = occupied_orbitals(sheet, x);
         let mut energies: Vec<f64> = Vec::new();
         for bundle in &sheet.all {
@@ -52,19 +50,30 @@ pub(crate) fn shade_gap(canvas: &mut Canvas, sheet: &Sheet<'_>) -> bool {
         else {
             return false;
         };
-        let x = length(sheet.x(x));
-        let _ = write!(
-            upper,
-            "{}{x} {}",
-            if sample == 0 { "M" } else { "L" },
-            length(sheet.scale.y(lumo))
-        );
-        lower.push(format!("L{x} {}", length(sheet.scale.y(homo))));
+        samples.push((filled, sheet.x(x), sheet.scale.y(lumo), sheet.scale.y(homo)));
     }
-    upper.extend(lower.into_iter().rev());
-    upper.push('Z');
-    canvas.area(&upper, sheet.colours.gap);
-    true
+    // Where a set becomes degenerate its electrons may share more orbitals at one point: the gap
+    // above them has nothing to do with the one beside it.
+    let count = |filled: usize| samples.iter().filter(|sample| sample.0 == filled).count();
+    let usual = samples
+        .iter()
+        .map(|sample| sample.0)
+        .max_by_key(|filled| (count(*filled), std::cmp::Reverse(*filled)));
+    let mut path = String::new();
+    for run in samples.chunk_by(|a, b| a.0 == b.0) {
+        if Some(run[0].0) == usual && run.len() > 1 {
+            for (index, (_, x, lumo, _)) in run.iter().enumerate() {
+                let letter = if index == 0 { 'M' } else { 'L' };
+                let _ = write!(path, "{letter}{} {}", length(*x), length(*lumo));
+            }
+            for (_, x, _, homo) in run.iter().rev() {
+                let _ = write!(path, "L{} {}", length(*x), length(*homo));
+            }
+            path.push('Z');
+        }
+    }
+    canvas.area(&path, sheet.colours.gap);
+    !path.is_empty()
 }
 
 /// Orbitals that hold electrons at the point nearest to `x`.
@@ -76,7 +85,7 @@ fn occupied_orbitals(sheet: &Sheet<'_>, x: f64) -> usize {
         .count()
 }
 
-fn nearest_point(xs: &[f64], x: f64) -> usize {
+pub(crate) fn nearest_point(xs: &[f64], x: f64) -> usize {
     let distance = |k: &usize| (xs[*k] - x).abs();
     (0..xs.len())
         .min_by(|a, b| distance(a).total_cmp(&distance(b)))
@@ -145,82 +154,18 @@ fn crossings<'a>(sheet: &Sheet<'a>) -> impl Iterator<Item = &'a CrossingRecord> 
     sheet.document.crossings.iter().flatten()
 }
 
-/// Draws electrons on the occupied lines. Returns the coordinate where they stand.
-pub(crate) fn draw_electrons(
-    canvas: &mut Canvas,
-    sheet: &Sheet<'_>,
-) -> Result<Option<f64>, FigureError> {
-    let (from, to) = sheet.span();
-    let point = match sheet.options.electrons {
-        ElectronMarks::None => return Ok(None),
-        ElectronMarks::At(at) => {
-            if !(from.min(to) - 1e-9 <= at && at <= from.max(to) + 1e-9) {
-                return Err(FigureError::ElectronsOutside { at, from, to });
-            }
-            nearest_point(&sheet.xs, at)
-        }
-        ElectronMarks::Clear => clearest_point(sheet),
-    };
-    let mut any = false;
-    let radius = 1.15 * sheet.measure.stroke;
-    canvas.xml.open("g", &[("class", "electrons")]);
-    for bundle in sheet.lines() {
-        let electrons = bundle.occupations[point];
-        let Some(energy) = bundle.energies[point].filter(|energy| sheet.scale.shows(*energy))
-        else {
-            continue;
-        };
-        if electrons <= 1e-6 {
-            continue;
-        }
-        any = true;
-        let (x, y) = (sheet.x(sheet.xs[point]), sheet.scale.y(energy));
-        let middle = 0.5 * (bundle.multiplicity as f64 - 1.0);
-        for (k, offset) in sheet.offsets(bundle).into_iter().enumerate() {
-            let aside = (k as f64 - middle) * 6.4 * radius;
-            let colour = sheet.colour(bundle);
-            canvas.electrons(
-                (x + aside, y + offset),
-                electrons,
-                radius,
-                colour,
-                sheet.colours.ground,
-            );
-        }
-    }
-    canvas.xml.close();
-    Ok(any.then_some(sheet.xs[point]))
+/// What has been marked.
+#[derive(Default)]
+pub(crate) struct Marked {
+    pub(crate) crossing: bool,
+    pub(crate) avoided: bool,
+    /// Where on the page.
+    pub(crate) places: Vec<(f64, f64)>,
 }
 
-/// The inner point at which the occupied lines are farthest apart on the page.
-fn clearest_point(sheet: &Sheet<'_>) -> usize {
-    let count = sheet.xs.len();
-    let margin = (count / 10).max(usize::from(count > 2));
-    let clearance = |k: usize| -> f64 {
-        let mut heights: Vec<f64> = sheet
-            .lines()
-            .filter(|bundle| bundle.occupations[k] > 1e-6)
-            .filter_map(|bundle| bundle.energies[k])
-            .map(|energy| sheet.scale.y(energy))
-            .collect();
-        heights.sort_by(f64::total_cmp);
-        heights
-            .windows(2)
-            .map(|pair| pair[1] - pair[0])
-            .fold(f64::INFINITY, f64::min)
-    };
-    let mut best = margin.min(count - 1);
-    for k in margin..count - margin {
-        if clearance(k) > clearance(best) + 1e-6 {
-            best = k;
-        }
-    }
-    best
-}
-
-/// Marks crossings of drawn lines by kind. Returns which kinds there were: crossing, avoided.
-pub(crate) fn mark_crossings(canvas: &mut Canvas, sheet: &Sheet<'_>) -> (bool, bool) {
-    let mut kinds = (false, false);
+/// Marks crossings of drawn lines by kind.
+pub(crate) fn mark_crossings(canvas: &mut Canvas, sheet: &Sheet<'_>) -> Marked {
+    let mut kinds = Marked::default();
     let mut marked: Vec<(f64, f64)> = Vec::new();
     canvas.xml.open("g", &[("class", "crossings")]);
     for crossing in crossings(sheet) {
@@ -258,11 +203,12 @@ pub(crate) fn mark_crossings(canvas: &mut Canvas, sheet: &Sheet<'_>) -> (bool, b
         let thin = 0.5 * sheet.measure.stroke;
         match crossing.kind {
             CrossingKind::Crossing => {
-                kinds.0 = true;
+                kinds.crossing = true;
+                kinds.places.push((x, y));
                 canvas.disc((x, y), size, "none", (sheet.colours.ink, thin));
             }
             CrossingKind::Avoided => {
-                kinds.1 = true;
+                kinds.avoided = true;
                 let ends = (sheet.scale.y(a.max(b)), sheet.scale.y(a.min(b)));
                 canvas.avoided(x, ends, 0.8 * size, sheet.colours.ink, thin);
             }

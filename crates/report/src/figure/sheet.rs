@@ -130,22 +130,6 @@ impl<'a> Sheet<'a> {
             .collect()
     }
 
-    /// Edge of a picture beside the labels; zero without pictures.
-    pub(crate) fn picture_edge(&self) -> f64 {
-        if self.options.pictures.is_some() {
-            2.9 * self.measure.label
-        } else {
-            0.0
-        }
-    }
-
-    /// Distance from one label to the next.
-    pub(crate) fn label_distance(&self) -> f64 {
-        self.measure
-            .label_distance()
-            .max(1.02 * self.picture_edge())
-    }
-
     /// Place of a line's irrep among all irreps.
     pub(crate) fn place(&self, bundle: &Bundle) -> usize {
         self.irreps

@@ -6,8 +6,10 @@ use crate::lettering::Lettering;
 
 use super::axes::energy_axis;
 use super::canvas::{ASCENT, Anchor, Canvas, path};
+use super::measure::Measure;
 use super::scale::EnergyScale;
 use super::sheet::Sheet;
+use super::theme::Colours;
 use super::xml::length;
 
 /// Whether there is a curve to draw.
@@ -53,6 +55,23 @@ pub(crate) fn draw(canvas: &mut Canvas, sheet: &Sheet<'_>, top: f64, bottom: f64
         sheet.axis,
         &title,
     );
+    if let Some(support) = &sheet.options.support {
+        let (from, to) = sheet.span();
+        let (low, high) = (from.min(to), from.max(to));
+        let inside = |angle: f64| low - 1e-9 <= angle && angle <= high + 1e-9;
+        let ends = support
+            .range
+            .filter(|range| range.1 >= low && range.0 <= high)
+            .map(|range| [range.0.max(low), range.1.min(high)].map(|x| sheet.x(x)));
+        let angle = support
+            .angle
+            .filter(|angle| inside(*angle))
+            .map(|x| sheet.x(x));
+        if let Some(ends) = ends.or(angle.map(|x| [x, x])) {
+            let across = (ends[0].min(ends[1]), ends[0].max(ends[1]));
+            band(canvas, measure, colours, (across, angle), (top, bottom));
+        }
+    }
     for curve in curves(&sheet.xs, &relative) {
         let Some((from, to)) = curve.ends() else {
             continue;
@@ -122,6 +141,38 @@ fn mark(
         &text,
         &more,
     );
+}
+
+/// The range of a verdict's angle as a shaded band, and the angle as a pointer on its foot.
+pub(crate) fn band(
+    canvas: &mut Canvas,
+    measure: &Measure,
+    colours: &Colours,
+    ((left, right), angle): ((f64, f64), Option<f64>),
+    (top, bottom): (f64, f64),
+) {
+    if right - left > 0.1 {
+        let path = format!(
+            "M{} {}H{}V{}H{0}Z",
+            length(left),
+            length(top),
+            length(right),
+            length(bottom)
+        );
+        canvas.area(&path, colours.band);
+    }
+    if let Some(x) = angle {
+        let (half, height) = (1.6 * measure.stroke, 2.6 * measure.stroke);
+        let path = format!(
+            "M{} {}L{} {}H{}Z",
+            length(x),
+            length(bottom - height),
+            length(x + half),
+            length(bottom),
+            length(x - half)
+        );
+        canvas.area(&path, colours.ink);
+    }
 }
 
 /// A dotted line through the main panel where the sum is lowest inside the range.

@@ -1,19 +1,19 @@
 //! The correlation diagram.
 
 use crate::document::SweepDocument;
-use crate::draw::spread::room as label_room;
 use crate::draw::wording::{charge, heading_formula, value_with_unit};
 use crate::lettering::Lettering;
 
 use super::canvas::{ASCENT, Anchor, Area, Canvas, DESCENT};
+use super::gallery::Gallery;
 use super::key::Mark;
-use super::labels::{Side, end_labels, widest};
+use super::labels::{EndLabel, Side, end_labels, heights, widest};
 use super::measure::Measure;
 use super::options::{FigureError, FigureOptions, FigureWidth};
 use super::scale::EnergyScale;
 use super::sheet::Sheet;
 use super::xml::{Writer, length};
-use super::{axes, key, labels, metadata, panel, sum};
+use super::{axes, electrons, key, labels, metadata, panel, sum};
 
 /// Font families: any sans-serif face that is there.
 pub(crate) const FONTS: &str = "Helvetica, Arial, 'Liberation Sans', 'DejaVu Sans', sans-serif";
@@ -50,9 +50,13 @@ pub(crate) fn compose(
         &charge(document.molecule.charge),
     );
     let titled = options.title && heading.width(measure.heading) < measure.page - 2.0 * measure.pad;
-    let crowd = starts.len().max(ends.len());
-    let needed = label_room(crowd, sheet.label_distance())
-        + ((ASCENT + DESCENT) * size).max(sheet.picture_edge());
+    let gallery = Gallery::new(&sheet, &starts, &ends);
+    let gallery = gallery.as_ref();
+    let crowd =
+        |labels: &[EndLabel], side| -> f64 { heights(&sheet, labels, side, gallery).iter().sum() };
+    let needed = crowd(&starts, Side::Left).max(crowd(&ends, Side::Right))
+        + (ASCENT + DESCENT) * size
+        - sheet.measure.label_distance();
     // The groups stand outside the curves, so that a short heading fits between them.
     let row = 1.6 * size;
     let shared = heading.width(measure.heading) < 0.4 * measure.page;
@@ -89,12 +93,9 @@ pub(crate) fn compose(
     );
     let left_width = widest(&starts, size).max(group_width(groups.0));
     let right_width = widest(&ends, size).max(group_width(groups.1));
-    let pictures = if options.pictures.is_some() {
-        sheet.picture_edge() + 0.4 * size
-    } else {
-        0.0
-    };
-    let (left_width, right_width) = (left_width + pictures, right_width + pictures);
+    let pictures = |side| gallery.map_or(0.0, |all| all.width(&sheet, side));
+    let left_width = left_width.max(widest(&starts, size) + pictures(Side::Left));
+    let right_width = right_width.max(widest(&ends, size) + pictures(Side::Right));
     sheet.left = sheet.axis + 0.5 * size + left_width + measure.leader();
     sheet.right = measure.page - measure.pad - right_width - measure.leader();
 
@@ -112,8 +113,8 @@ pub(crate) fn compose(
         &ticks,
         sum_shown.then_some((sum_top, lowest)),
     )?;
-    labels::draw(&mut canvas, &sheet, &starts, Side::Left);
-    labels::draw(&mut canvas, &sheet, &ends, Side::Right);
+    labels::draw(&mut canvas, &sheet, &starts, Side::Left, gallery);
+    labels::draw(&mut canvas, &sheet, &ends, Side::Right, gallery);
     let group_base = sheet.top - 0.75 * size;
     let beside = measure.leader();
     let soft = sheet.colours.soft;
@@ -150,7 +151,8 @@ pub(crate) fn compose(
         );
     }
     let below = axes::coordinate_axis(&mut canvas, &sheet, lowest);
-    let entries = std::mem::take(&mut canvas.key);
+    let mut entries = std::mem::take(&mut canvas.key);
+    entries.extend(gallery.map(Gallery::entries).into_iter().flatten());
     let below = if options.key {
         let span = (measure.pad, measure.page - measure.pad);
         key::draw(
@@ -207,12 +209,12 @@ fn draw_panels(
         }
     }
     canvas.xml.close();
-    let (crossing, avoided) = if options.crossings {
+    let marked = if options.crossings {
         panel::mark_crossings(canvas, sheet)
     } else {
-        (false, false)
+        panel::Marked::default()
     };
-    let electrons = panel::draw_electrons(canvas, sheet)?;
+    let electrons = electrons::draw(canvas, sheet, &marked.places)?;
     let title = format!("orbital energy / {}", options.energy_unit.symbol());
     let style = (&sheet.measure, sheet.colours);
     axes::energy_axis(
@@ -245,11 +247,14 @@ fn draw_panels(
     if gap {
         entry(Mark::Gap, "HOMO–LUMO gap");
     }
-    if crossing {
+    if marked.crossing {
         entry(Mark::Crossing, "crossing");
     }
-    if avoided {
+    if marked.avoided {
         entry(Mark::Avoided, "avoided crossing");
+    }
+    if let Some(support) = options.support.as_ref().filter(|_| sum_panel.is_some()) {
+        entry(Mark::Band, &support.words());
     }
     Ok(())
 }

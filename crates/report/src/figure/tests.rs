@@ -1,11 +1,13 @@
 //! Geometry of whole figures, and files to look at.
 
-use crate::document::SweepDocument;
+use crate::document::{Case, Curve, ShapeDocument, ShapeSchema, SweepDocument};
 use crate::synthetic;
 
 use super::canvas::{Canvas, TextBox};
 use super::measure::{Measure, SMALLEST_FONT};
 use super::options::{ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Theme};
+use super::pictures::{EndPictures, OrbitalPicture};
+use super::support::Support;
 use super::{ladder, sweep};
 
 const WIDTHS: [FigureWidth; 3] = [FigureWidth::Column, FigureWidth::Page, FigureWidth::Slide];
@@ -81,6 +83,243 @@ fn a_given_window_moves_no_label_off_the_page() {
             Err(error) => assert!(matches!(error, FigureError::EmptyWindow { .. })),
         }
     }
+}
+
+/// A picture of every line: one or two lobes of a size of their own on one of three planes.
+fn pictures_of(document: &SweepDocument, seed: u64) -> EndPictures {
+    let (points, half) = (25, 3.0);
+    let picture = |line: u32, end: u64| {
+        let number = (seed * 31 + u64::from(line) * 7 + end * 3) % 11;
+        let size = 0.6 + 0.15 * number as f64;
+        let values = (0..points * points)
+            .map(|k| {
+                let place = |k: usize| k as f64 * 2.0 * half / (points - 1) as f64 - half;
+                let (x, y) = (place(k % points), -place(k / points));
+                let sign = if number % 3 == 0 { 1.0 } else { x };
+                0.3 * sign * (-(x * x + 2.0 * y * y) / (size * size)).exp()
+            })
+            .collect();
+        OrbitalPicture {
+            line,
+            plane: ["the plane of the atoms", "above it", "an upright plane"][number as usize % 3]
+                .to_owned(),
+            points,
+            half,
+            values,
+            nuclei: vec![[-1.0, 0.2, 0.0], [0.0, 0.0, 0.3], [1.0, 0.2, 0.0]],
+            bonds: vec![(0, 1), (1, 2)],
+        }
+    };
+    let all = |end: u64| {
+        let lines = document.lines.iter().flatten();
+        lines.map(|line| picture(line.id, end)).collect()
+    };
+    EndPictures {
+        start: all(0),
+        end: all(1),
+    }
+}
+
+#[test]
+fn pictures_collide_with_nothing_and_stay_on_the_page() {
+    for seed in 0..60 {
+        let document = synthetic::random(seed);
+        let width = WIDTHS[seed as usize % 3];
+        let with = FigureOptions {
+            pictures: Some(pictures_of(&document, seed)),
+            ..options(width)
+        };
+        let canvas = sweep::compose(&document, &with).unwrap();
+        let shown = canvas.boxes.iter().filter(|b| b.text == "orbital").count();
+        assert!(shown >= 2, "seed {seed}: {shown} pictures");
+        assert_clean(&canvas, width, &format!("seed {seed}"));
+        let svg = sweep::sweep_figure(&document, &with).unwrap();
+        assert!(svg.contains("cut: "), "the planes are stated");
+    }
+}
+
+#[test]
+fn a_verdict_has_its_band_below_the_lines() {
+    let document = synthetic::silicon_difluoride();
+    let with = FigureOptions {
+        support: Some(Support {
+            verdict: "bent".into(),
+            share: Some(0.97),
+            angle: Some(101.0),
+            range: Some((96.0, 104.6)),
+        }),
+        ..FigureOptions::default()
+    };
+    let (plain, banded) = (
+        sweep::sweep_figure(&document, &FigureOptions::default()).unwrap(),
+        sweep::sweep_figure(&document, &with).unwrap(),
+    );
+    assert!(banded.contains("bent, support 0.97: 101° (96° to 105°)"));
+    let band = super::theme::Colours::of(Theme::Light).band;
+    // In the panel and in the key.
+    assert_eq!(banded.matches(band).count(), 2);
+    assert!(!plain.contains(band));
+}
+
+/// Electrons of neighbouring lines do not lie on one another, nor on the mark of a crossing.
+#[test]
+fn electrons_of_crowded_lines_make_way() {
+    let document = synthetic::silicon_difluoride();
+    let svg = sweep::sweep_figure(&document, &FigureOptions::default()).unwrap();
+    let part = svg.split("<g class=\"electrons\">").nth(1).unwrap();
+    let part = part.split("</g>").next().unwrap();
+    let number = |text: &str, key: &str| -> f64 {
+        let rest = text.split(&format!(" {key}=\"")).nth(1).unwrap();
+        rest.split('"').next().unwrap().parse().unwrap()
+    };
+    let discs: Vec<(f64, f64, f64)> = part
+        .split("<circle")
+        .skip(1)
+        .map(|disc| (number(disc, "cx"), number(disc, "cy"), number(disc, "r")))
+        .collect();
+    assert!(discs.len() > 10);
+    for (k, a) in discs.iter().enumerate() {
+        for b in &discs[..k] {
+            let distance = (a.0 - b.0).hypot(a.1 - b.1);
+            assert!(distance > 2.0 * a.2, "{a:?} {b:?}");
+        }
+    }
+}
+
+/// Where a pair holds two electrons at the last point only, no wedge is shaded beside it.
+#[test]
+fn the_gap_is_shaded_for_one_number_of_filled_orbitals() {
+    let mut document = synthetic::silicon_difluoride();
+    let before = sweep::sweep_figure(&document, &FigureOptions::default()).unwrap();
+    let last = document.points.last_mut().unwrap();
+    let homo = last
+        .levels
+        .iter()
+        .rposition(|level| level.occupation.get() > 1e-6)
+        .unwrap();
+    last.levels[homo].occupation = synthetic::n(1.0);
+    last.levels[homo + 1].occupation = synthetic::n(1.0);
+    let after = sweep::sweep_figure(&document, &FigureOptions::default()).unwrap();
+    let gap = super::theme::Colours::of(Theme::Light).gap;
+    let area = |svg: &str| -> String {
+        let path = svg.split(&format!("\" fill=\"{gap}\"")).next().unwrap();
+        path.rsplit('"').next().unwrap().to_owned()
+    };
+    let right = |path: &str| -> f64 {
+        path.split(['M', 'L', 'Z'])
+            .filter_map(|at| at.split(' ').next()?.parse().ok())
+            .fold(0.0, f64::max)
+    };
+    assert_eq!(area(&after).matches('M').count(), 1);
+    assert!(right(&area(&after)) < right(&area(&before)));
+}
+
+/// A series of verdicts with curves, one of them undecided, on two scales of the angle.
+fn series(seed: u64) -> ShapeDocument {
+    let sweep = synthetic::random(seed);
+    let mut random = synthetic::Random(seed);
+    let words = ["bent", "linear", "pyramidal", "planar", "undecided"];
+    let formulas = ["SiF2", "C2F4", "BCl3", "NF2", "PF3"];
+    let cases = (0..2 + random.below(6))
+        .map(|number| {
+            let (from, to) = if number % 3 == 2 {
+                (120.0, 76.0)
+            } else {
+                (180.0, 70.0)
+            };
+            let at: Vec<f64> = (0..20)
+                .map(|k| from + (to - from) * f64::from(k) / 19.0)
+                .collect();
+            let depth = random.between(-2.0, 1.0);
+            let angle = random.between(to, from);
+            Case {
+                formula: Some(formulas[random.below(5) as usize].to_owned()),
+                coordinate: None,
+                charge: random.below(5) as i32 - 2,
+                electrons: 10 + random.below(20) as u32,
+                unpaired: random.below(4) as u32,
+                configuration: String::new(),
+                verdict: words[random.below(5) as usize].to_owned(),
+                confident: true,
+                angle: Some(synthetic::n(angle)),
+                angle_range: Some([angle - 3.0, angle + 3.0].map(synthetic::n)),
+                depth: None,
+                support: Some(synthetic::n(0.9)),
+                arguments: vec![],
+                because: vec![],
+                could_be_wrong_because: vec![],
+                would_flip: vec![],
+                curves: vec![Curve {
+                    name: "sum".to_owned(),
+                    energy: at
+                        .iter()
+                        .map(|angle| Some(synthetic::n(depth * (from - angle) / 40.0)))
+                        .collect(),
+                    at: at.into_iter().map(synthetic::n).collect(),
+                }],
+            }
+        })
+        .collect();
+    ShapeDocument {
+        schema: ShapeSchema,
+        program: sweep.program,
+        units: sweep.units,
+        molecule: sweep.molecule,
+        method: sweep.method,
+        coordinate: None,
+        ensemble: None,
+        cases,
+        ties: vec![],
+        warnings: vec![],
+        missing: vec![],
+    }
+}
+
+#[test]
+fn series_have_no_overlapping_text_and_none_off_the_page() {
+    for seed in 0..40 {
+        let document = series(seed);
+        let width = WIDTHS[seed as usize % 3];
+        let canvas = super::series::compose(&document, &options(width)).unwrap();
+        assert_clean(&canvas, width, &format!("series {seed}"));
+        let svg = super::series::shape_figure(&document, &options(width)).unwrap();
+        let undecided = document.cases.iter().filter(|c| c.verdict == "undecided");
+        let hatched = svg.matches("url(#orbend-undecided)").count();
+        // Each such row and the key.
+        let rows = undecided.count();
+        assert_eq!(
+            hatched,
+            if rows > 0 { rows + 1 } else { 0 },
+            "series {seed}"
+        );
+    }
+}
+
+#[test]
+fn a_verdict_is_found_for_the_sweep_it_belongs_to() {
+    let sweep = synthetic::silicon_difluoride();
+    let mut shape = series(1);
+    let case = &mut shape.cases[0];
+    case.formula = Some("SiF2".to_owned());
+    (case.charge, case.unpaired) = (sweep.molecule.charge, sweep.molecule.unpaired);
+    case.verdict = "bent".to_owned();
+    case.coordinate = Some(sweep.coordinates[0].clone());
+    let support = Support::of(&shape, &sweep).unwrap();
+    assert_eq!(support.verdict, "bent");
+    assert_eq!(support.angle, shape.cases[0].angle.map(|angle| angle.get()));
+    // Its atoms in the other direction are the same angle; another angle is not.
+    if let Some(coordinate) = &mut shape.cases[0].coordinate {
+        coordinate.atoms.reverse();
+    }
+    assert!(Support::of(&shape, &sweep).is_ok());
+    shape.cases[0].charge += 1;
+    let refused = Support::of(&shape, &sweep).unwrap_err();
+    assert!(
+        refused
+            .to_string()
+            .starts_with("the shape document has no verdict on SiF2"),
+        "{refused}"
+    );
 }
 
 #[test]

@@ -1,40 +1,11 @@
-//! Figures as PNG: the SVG drawing set in one embedded font, so that it looks the same everywhere.
-
-use std::sync::Arc;
+//! Figures as PNG.
 
 use png::{BitDepth, ColorType, Encoder, PixelDimensions, Unit};
-use resvg::{tiny_skia, usvg};
+use resvg::tiny_skia;
 
-/// Liberation Sans 2.1.5 (SIL Open Font License 1.1, `fonts/LICENSE-OFL.txt`): the letter widths that
-/// the layout reckons with.
-const FONT: &[u8] = include_bytes!("../fonts/LiberationSans-Regular.ttf");
-const FAMILY: &str = "Liberation Sans";
+use super::{ImageError, SVG_PER_INCH, drawing};
 
-/// Pixels per inch of an SVG pixel (CSS 2.1).
-const SVG_PER_INCH: f64 = 96.0;
 const INCHES_PER_METRE: f64 = 1.0 / 0.0254;
-
-/// Why a figure cannot become an image.
-#[derive(Debug, thiserror::Error)]
-#[non_exhaustive]
-pub enum ImageError {
-    /// The drawing cannot be read.
-    #[error("the drawing cannot be read: {0}")]
-    Drawing(#[from] usvg::Error),
-    /// The image has no pixels or too many.
-    #[error(
-        "an image of {width} by {height} pixels cannot be made: choose a smaller number of dots per inch"
-    )]
-    Size {
-        /// Pixels across.
-        width: u32,
-        /// Pixels down.
-        height: u32,
-    },
-    /// The image could not be written.
-    #[error("the image could not be written: {0}")]
-    Encoding(#[from] png::EncodingError),
-}
 
 /// A figure of this crate as PNG (24-bit colour, its resolution stated) with so many dots per inch;
 /// 600 is what journals ask for.
@@ -42,14 +13,7 @@ pub enum ImageError {
 /// # Errors
 /// Text that is no SVG, or an image without pixels or with more than 16384 of them along an edge.
 pub fn figure_png(svg: &str, dots_per_inch: f64) -> Result<Vec<u8>, ImageError> {
-    let mut options = usvg::Options {
-        font_family: FAMILY.to_owned(),
-        ..usvg::Options::default()
-    };
-    let fonts = Arc::make_mut(&mut options.fontdb);
-    fonts.load_font_data(FONT.to_vec());
-    fonts.set_sans_serif_family(FAMILY);
-    let tree = usvg::Tree::from_str(svg, &options)?;
+    let tree = drawing(svg)?;
     let scale = dots_per_inch / SVG_PER_INCH;
     let pixels = |length: f32| (f64::from(length) * scale).round() as u32;
     let (width, height) = (pixels(tree.size().width()), pixels(tree.size().height()));
