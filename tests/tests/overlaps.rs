@@ -473,6 +473,16 @@ fn gradient_along_and_across_the_bond() {
             (gradient[6] - along).abs() < 1e-14,
             "z component of ⟨s|p_z⟩"
         );
+        // Two s functions alone: along the bond only.
+        let alone = PairKernel::new(&shells(s), &shells(s)).unwrap();
+        let (mut value, mut slopes) = ([0.0; 1], [0.0; 3]);
+        alone.gradient([0.0, 0.0, r], &mut value, &mut slopes);
+        let expected = slater_overlap_derivative(s, s, 0, r).unwrap();
+        assert!(
+            (slopes[2] - expected).abs() < 1e-14 && expected < -1e-3,
+            "⟨s|s⟩"
+        );
+        assert!(slopes[0].abs() + slopes[1].abs() < 1e-15, "⟨s|s⟩ across");
         assert!(
             (gradient[1] - across).abs() < 1e-14,
             "x component of ⟨s|p_x⟩"

@@ -86,6 +86,12 @@ pub(crate) struct SweepArguments {
     /// The molecule as fragments along the path: "1,2,3 | 4-9 (-1)"
     #[arg(long, value_name = "FRAGMENTS")]
     pub(crate) fragments: Option<String>,
+    /// Why a line moves, term by term: 5a1, homo, or between two values 5a1@92..180 (may be repeated)
+    #[arg(long, value_name = "LINE[@FROM..TO]", allow_hyphen_values = true)]
+    pub(crate) why: Vec<String>,
+    /// Charges, overlap populations, shares and tags of every level in the document
+    #[arg(long)]
+    pub(crate) populations: bool,
     /// Every line's names along the path instead of the usual text
     #[arg(long, conflicts_with = "json")]
     pub(crate) passport: bool,

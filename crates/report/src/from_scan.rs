@@ -11,10 +11,9 @@ use crate::document::{
     MoleculeRecord, MotionKind, NearMiss, NotFinite, Number, Passport, Point, Program, ShellValues,
     SpecialLabel, SumMinimum, SweepDocument, SweepSchema, SymmetryRecord, Units, Warning,
 };
+use crate::from_scan_bonds::describe_bonds;
 use crate::from_scan_lines::{crossing_records, crossing_search, followed_records};
-use crate::from_scan_populations::{
-    basis_functions, charges, describe_orbitals, overlap_populations,
-};
+use crate::from_scan_populations::{basis_functions, describe_orbitals};
 
 /// What the scan does not know about its input and its reader.
 #[derive(Clone, Debug, Default)]
@@ -106,6 +105,7 @@ pub fn sweep_document(
         },
         crossing_search: if single { crossing_search(plan)? } else { None },
         fragments: None,
+        why: None,
         warnings: warnings(plan, provenance),
         missing,
     })
@@ -124,8 +124,7 @@ pub fn levels_document(
     let mut point = point_record(sweep, 0, &mut missing)?;
     let orbitals = sweep.orbitals(0)?;
     let populations = describe_orbitals(plan, &orbitals, &mut point)?;
-    point.charges = Some(charges(plan, &populations)?);
-    point.overlap_populations = Some(overlap_populations(&populations)?);
+    describe_bonds(plan, &orbitals, &populations, &mut point)?;
     Ok(LevelsDocument {
         schema: LevelsSchema,
         program: Program::this(),
@@ -356,6 +355,8 @@ fn point_record(
                 full_valence_label: level.full_name.valence_plain.clone(),
                 coefficients: None,
                 populations: None,
+                bonds: None,
+                tags: None,
             })
         })
         .collect::<Result<_, NotFinite>>()?;

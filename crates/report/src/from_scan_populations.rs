@@ -66,6 +66,7 @@ fn shell_populations(
                 element: elements[shell.atom].symbol().to_owned(),
                 shell: shell_name(shell.n, shell.l),
                 share: Number::new(share)?,
+                lowdin: None,
             })
         })
         .collect()
@@ -85,6 +86,7 @@ pub(crate) fn charges(
                 atom,
                 element: element.symbol().to_owned(),
                 charge: Number::new(charge)?,
+                lowdin: None,
             })
         })
         .collect()

@@ -130,6 +130,18 @@ pub enum ScanError {
         /// What the solver said.
         cause: String,
     },
+    /// A line whose change cannot be split: at the end nothing is left of what it was.
+    #[error(
+        "{label} at {to} has nothing in common with itself at {from}: its change cannot be split; ask for a shorter range"
+    )]
+    NothingKept {
+        /// The line.
+        label: String,
+        /// First geometry.
+        from: String,
+        /// Last geometry.
+        to: String,
+    },
     /// The thread pool could not be made.
     #[error("cannot start {jobs} threads: {cause}")]
     Threads {

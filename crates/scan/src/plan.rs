@@ -388,3 +388,22 @@ fn sample_geometries(path: &PathPlan, atoms: usize) -> Result<Vec<Vec<[f64; 3]>>
     }
     Ok(samples)
 }
+
+#[cfg(test)]
+mod tests {
+    use orbend_structure::{Formula, ideal_geometry};
+
+    use super::*;
+
+    #[test]
+    fn what_symmetry_says_twice_is_read_once() {
+        // Pairs of atoms in all, and the most that may be read.
+        for (formula, all, read) in [("H2S", 3, 2), ("PF3", 6, 5)] {
+            let formula = Formula::parse(formula).unwrap();
+            let molecule = ideal_geometry(&formula, None, &[]).unwrap().molecule;
+            let plan = Request::new(molecule).plan().unwrap();
+            assert_eq!(plan.hamiltonian.pairs().len(), all);
+            assert!(plan.read.len() <= read, "{:?}", plan.read);
+        }
+    }
+}

@@ -9,6 +9,7 @@ pub(crate) mod plan;
 mod route;
 pub(crate) mod shape;
 pub(crate) mod sweep;
+mod why;
 
 use std::io::IsTerminal;
 use std::path::Path;
@@ -119,16 +120,34 @@ pub(crate) fn provenance(geometry: &Geometry, numbering: NumberingChoice) -> Pro
 
 /// How text is laid out on this standard output.
 pub(crate) fn text_options(numbering: NumberingChoice) -> TextOptions {
-    let width = if std::io::stdout().is_terminal() {
+    let terminal = std::io::stdout().is_terminal();
+    let width = if terminal {
         terminal_size::terminal_size().map_or(80, |(width, _)| usize::from(width.0).min(120))
     } else {
         80
     };
     TextOptions {
         width,
+        unicode: !terminal || shows_unicode(|name| std::env::var(name).ok()),
         numbering: figure::numbering(numbering),
         ..TextOptions::default()
     }
+}
+
+/// Whether a terminal shows letters beyond ASCII: not the Linux console (its fonts have no braille),
+/// nor a locale that names another character set (POSIX.1-2017, 8.2).
+fn shows_unicode(variable: impl Fn(&str) -> Option<String>) -> bool {
+    if variable("TERM").is_some_and(|term| matches!(term.as_str(), "linux" | "dumb")) {
+        return false;
+    }
+    let locale = ["LC_ALL", "LC_CTYPE", "LANG"]
+        .into_iter()
+        .filter_map(variable)
+        .find(|value| !value.is_empty());
+    locale.is_none_or(|locale| {
+        let locale = locale.to_ascii_lowercase();
+        locale.contains("utf-8") || locale.contains("utf8")
+    })
 }
 
 /// The bytes of a table.
@@ -138,4 +157,25 @@ pub(crate) fn csv(
     let mut bytes = Vec::new();
     table(&mut bytes).map_err(Failure::document)?;
     Ok(bytes)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::shows_unicode;
+
+    #[test]
+    fn terminals_without_unicode_get_ascii() {
+        let with = |pairs: &[(&str, &str)]| {
+            shows_unicode(|name| {
+                let found = pairs.iter().find(|pair| pair.0 == name);
+                found.map(|pair| pair.1.to_owned())
+            })
+        };
+        assert!(with(&[("TERM", "xterm-256color"), ("LANG", "de_DE.UTF-8")]));
+        assert!(with(&[("TERM", "xterm")]));
+        assert!(!with(&[("TERM", "linux"), ("LANG", "C.UTF-8")]));
+        assert!(!with(&[("LANG", "en_US.ISO-8859-1")]));
+        assert!(!with(&[("LC_ALL", "C"), ("LANG", "en_US.UTF-8")]));
+        assert!(with(&[("LC_ALL", ""), ("LANG", "en_US.utf8")]));
+    }
 }

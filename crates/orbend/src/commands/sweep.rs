@@ -4,9 +4,9 @@
 //! comes from some of its points.
 
 use orbend_report::{
-    FigureError, FigureOptions, Support, end_pictures, passport_text, stream_csv, sweep_csv,
-    sweep_document, sweep_document_with_orbitals, sweep_figure, sweep_fragments_text, sweep_page,
-    sweep_text, to_json,
+    FigureError, FigureOptions, Support, add_populations, end_pictures, passport_text, stream_csv,
+    sweep_csv, sweep_document, sweep_document_with_orbitals, sweep_figure, sweep_fragments_text,
+    sweep_page, sweep_text, to_json,
 };
 use orbend_scan::Sweep;
 
@@ -66,11 +66,25 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
     }
     let sweep = in_pool(arguments.jobs, || Sweep::run(plan))?
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
+    let asked = super::why::asked(&sweep, &arguments.why)?;
     let mut document = sweep_document(&sweep, &provenance(&resolved.geometry, output.numbering))
         .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
+    if arguments.populations {
+        if document.lines.is_none() {
+            return Err(
+                Failure::request("--populations: a grid has no lines to describe")
+                    .fix("sweep along one coordinate"),
+            );
+        }
+        add_populations(&sweep, &mut document)
+            .map_err(|error| Failure::from_library(error.to_string()))?;
+    }
     if let Some(text) = &arguments.fragments {
         let fragments = fragments(text, resolved.request.molecule.len())?;
         document.fragments = Some(along(&sweep, &fragments)?);
+    }
+    if !asked.is_empty() {
+        document.why = Some(super::why::records(&sweep, &asked)?);
     }
     if let Some(shape) = &shape {
         let support = Support::of(shape, &document).map_err(|error| figure::failure(&error))?;

@@ -123,6 +123,14 @@ pub struct LevelRecord {
     /// Mulliken populations of the shells for one electron in this orbital; they add up to 1.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub populations: Option<Vec<ShellPopulation>>,
+    /// Mulliken overlap populations of pairs of atoms for one electron in this orbital (of a
+    /// degenerate set the mean), where they are 0.001 or more.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub bonds: Option<Vec<OverlapPopulation>>,
+    /// What the orbital is, in words that follow from its populations: `Si–F σ bonding`,
+    /// `lone pair on F`, `non-bonding`, `metal d 85 %`, `counter-intuitive Fe 4s–O 2s`.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub tags: Option<Vec<String>>,
 }
 
 /// Share of one shell in an orbital.
@@ -136,6 +144,9 @@ pub struct ShellPopulation {
     pub shell: String,
     /// Mulliken gross population for one electron in the orbital.
     pub share: Number,
+    /// Löwdin population for one electron in the orbital.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub lowdin: Option<Number>,
 }
 
 /// Net charge of one atom.
@@ -147,6 +158,9 @@ pub struct AtomCharge {
     pub element: String,
     /// Valence electrons of the neutral atom minus its Mulliken gross population.
     pub charge: Number,
+    /// Valence electrons of the neutral atom minus its Löwdin population.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub lowdin: Option<Number>,
 }
 
 /// Overlap population of one pair of atoms.

@@ -14,6 +14,7 @@ mod shape;
 mod sweep;
 #[cfg(test)]
 mod tests;
+mod why;
 mod write;
 
 pub use common::{
@@ -43,4 +44,5 @@ pub use sweep::{
     CrossingKind, CrossingRecord, CrossingSearch, FollowedRecord, LineRecord, MotionKind, Passport,
     SpecialLabel, SumMinimum, SweepDocument,
 };
+pub use why::{MixingTerm, PairTerm, SlopeRecord, WhyRecord};
 pub use write::to_json;

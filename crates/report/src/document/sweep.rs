@@ -8,6 +8,7 @@ use super::fragments::FragmentsRecord;
 use super::levels::{Point, SymmetryRecord};
 use super::number::Number;
 use super::schema::SweepSchema;
+use super::why::WhyRecord;
 
 /// The correlation diagram along one coordinate, or the points of a grid over two: `orbend/sweep/1`.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
@@ -50,6 +51,9 @@ pub struct SweepDocument {
     /// The molecule as fragments at every point; left out unless asked for.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub fragments: Option<Vec<FragmentsRecord>>,
+    /// Why lines move, for the lines that were asked about.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub why: Option<Vec<WhyRecord>>,
     /// What the reader ought to know.
     pub warnings: Vec<Warning>,
     /// Why a value is `null`.

@@ -101,6 +101,7 @@ fn full_levels() -> LevelsDocument {
         element: "S".into(),
         shell: "3p".into(),
         share: n(0.75),
+        lowdin: None,
     };
     let point = &mut document.points[0];
     point.levels[0].coefficients = Some(vec![n(0.5)]);
@@ -109,6 +110,7 @@ fn full_levels() -> LevelsDocument {
         atom: 1,
         element: "S".into(),
         charge: n(-0.2),
+        lowdin: None,
     }]);
     point.overlap_populations = Some(vec![OverlapPopulation {
         atoms: [1, 2],

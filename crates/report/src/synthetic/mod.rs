@@ -164,6 +164,7 @@ pub(crate) fn sweep(frame: &Frame<'_>, xs: &[f64], sketches: &[Sketch]) -> Sweep
         followed: None,
         minimum: None,
         fragments: None,
+        why: None,
         warnings: vec![],
         missing: vec![],
     }
@@ -208,6 +209,8 @@ fn point(frame: &Frame<'_>, xs: &[f64], k: usize, lines: &[LineRecord]) -> Point
                 full_valence_label: String::new(),
                 coefficients: None,
                 populations: None,
+                bonds: None,
+                tags: None,
             });
         }
         place += size;

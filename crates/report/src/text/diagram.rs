@@ -263,3 +263,52 @@ fn ascii(
     }
     cells
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::draw::bundle::bundles;
+    use crate::synthetic;
+
+    #[test]
+    fn the_drawing_keeps_within_the_window_and_names_both_ends() {
+        for seed in 0..40 {
+            let document = synthetic::random(seed);
+            let all = bundles(&document, true);
+            for (width, unicode) in [
+                (60, true),
+                (60, false),
+                (80, true),
+                (80, false),
+                (120, true),
+            ] {
+                let options = TextOptions {
+                    width,
+                    unicode,
+                    ..TextOptions::default()
+                };
+                let drawing = draw(&document, &all, &options);
+                for line in drawing.lines() {
+                    assert!(length(line) <= width, "seed {seed}, {width}: {line}");
+                    assert!(unicode || line.is_ascii(), "seed {seed}: {line}");
+                }
+            }
+        }
+        let document = synthetic::silicon_difluoride();
+        let all = bundles(&document, true);
+        let ascii = TextOptions {
+            unicode: false,
+            ..TextOptions::default()
+        };
+        let drawing = draw(&document, &all, &ascii);
+        for label in ["8a1", "3b1", "3pi_u", "1pi_g"] {
+            assert!(drawing.contains(label), "{label}:\n{drawing}");
+        }
+        let drawing = draw(&document, &all, &TextOptions::default());
+        assert!(
+            drawing.contains("8a₁") && drawing.contains("3πu"),
+            "{drawing}"
+        );
+        assert!(drawing.contains('⠒') || drawing.contains('⣀'), "{drawing}");
+    }
+}

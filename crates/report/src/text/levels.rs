@@ -25,6 +25,7 @@ pub fn levels_text(document: &LevelsDocument, options: &TextOptions) -> String {
         out.push('\n');
         out.push_str(&level_table(point, options).render(options.columns()));
         out.push('\n');
+        characters(&mut out, point, options);
         totals(&mut out, point, options);
     }
     if let Some(record) = &document.fragments {
@@ -95,6 +96,27 @@ fn mostly(level: &LevelRecord) -> String {
     words.join(", ")
 }
 
+/// What each level is, by its tags; members of a set once.
+fn characters(out: &mut String, point: &Point, options: &TextOptions) {
+    let mut last = "";
+    for level in point.levels.iter().rev() {
+        let label = options.pick(&level.full_label, &level.full_valence_label);
+        let Some(tags) = level.tags.as_ref().filter(|tags| !tags.is_empty()) else {
+            continue;
+        };
+        if label != last {
+            options.paragraph(
+                out,
+                &format!("{}: {}", options.label(label), tags.join(", ")),
+            );
+        }
+        last = label;
+    }
+    if !last.is_empty() {
+        out.push('\n');
+    }
+}
+
 fn totals(out: &mut String, point: &Point, options: &TextOptions) {
     if let Some(sum) = point.sum {
         options.paragraph(
@@ -115,6 +137,16 @@ fn totals(out: &mut String, point: &Point, options: &TextOptions) {
             })
             .collect();
         options.paragraph(out, &format!("charges: {}", words.join(", ")));
+        let words: Vec<String> = charges
+            .iter()
+            .filter_map(|one| {
+                let charge = ascii_number(one.lowdin?.get(), 3);
+                Some(format!("{}{} {charge}", one.element, one.atom))
+            })
+            .collect();
+        if !words.is_empty() {
+            options.paragraph(out, &format!("charges by Löwdin: {}", words.join(", ")));
+        }
     }
     if let Some(pairs) = &point.overlap_populations {
         let words: Vec<String> = pairs

@@ -10,6 +10,7 @@ mod plan;
 mod shape;
 mod sweep;
 mod table;
+mod why;
 
 pub use fragments::sweep_fragments_text;
 pub use levels::levels_text;

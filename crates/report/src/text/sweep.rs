@@ -7,7 +7,7 @@ use crate::draw::wording::{coordinate_name, lowest_sum, value_with_unit};
 use crate::figure::Numbering;
 
 use super::table::{Align, Table};
-use super::{TextOptions, diagram, electrons, heading, warnings};
+use super::{TextOptions, diagram, electrons, heading, warnings, why};
 
 /// A sweep as a table of its lines (highest first), a drawing, its crossings in words and the
 /// lowest sum. Of a grid, the sums alone. Every line fits the width.
@@ -34,6 +34,7 @@ pub fn sweep_text(document: &SweepDocument, options: &TextOptions) -> String {
         }
         crossings(&mut out, document, &all, options);
         sum(&mut out, document, options);
+        why::why(&mut out, document, options);
     }
     warnings(&mut out, options, &document.warnings);
     out

@@ -2,7 +2,7 @@
 
 use std::ops::Range;
 
-use ndarray::{Array2, ArrayView1};
+use ndarray::{Array2, ArrayView1, Axis};
 use orbend_hamiltonian::{AtomPair, HamiltonianPlan, PairGradient};
 
 use crate::error::ScanError;
@@ -101,18 +101,20 @@ impl Gradients {
         self.element(coefficients, coefficients, energy_ev)
     }
 
-    /// The matrix c_a†(∂H − ε ∂S)c_b of a degenerate set (rows of `vectors`) under a displacement
+    /// The matrix c_a†(∂H − ε ∂S)c_b of a degenerate set (the rows `set` of all coefficients) under a displacement
     /// of all atoms in Å per unit, eV per unit: its eigenvalues are the slopes of the levels into
     /// which the set splits (Wigner's first-order perturbation theory of degenerate levels), its
     /// trace is the slope of their sum.
     pub fn within_set(
         &self,
-        vectors: &Array2<f64>,
+        coefficients: &Array2<f64>,
+        set: &[usize],
         energy_ev: f64,
         displacement: &[[f64; 3]],
     ) -> Array2<f64> {
         let (s, h) = self.along(displacement);
         let change = h - s * energy_ev;
+        let vectors = coefficients.select(Axis(0), set);
         vectors.dot(&change).dot(&vectors.t())
     }
 

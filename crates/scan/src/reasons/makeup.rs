@@ -7,7 +7,7 @@ use crate::sweep::Sweep;
 
 /// An overlap population (for one electron in the line, over all bonds) beyond this makes a line
 /// bonding or antibonding.
-pub const BONDING: f64 = 0.05;
+pub(crate) const BONDING: f64 = 0.05;
 
 /// Shares of the shells, and whether the line holds the bonds.
 #[derive(Clone, Debug, PartialEq)]

@@ -10,12 +10,16 @@ mod distortion;
 mod fragments;
 mod gradients;
 mod handoff;
+mod ledger;
 mod makeup;
+mod populations;
 mod roots;
 mod sets;
 mod space;
 mod states;
 mod terms;
+mod turning;
+mod words;
 
 pub use distortion::{Distortions, FALL_EV, Hint, HintOrder, MIXING_FALL_EV, Trial};
 pub use fragments::{
@@ -24,8 +28,13 @@ pub use fragments::{
 };
 pub use gradients::{Gradients, slope};
 pub use handoff::{HandOff, OtherCharge, Start, StartKind};
-pub use makeup::{BONDING, Makeup};
+pub use ledger::{Change, Mixing, ShellTerm, Slope};
+pub use makeup::Makeup;
+pub use populations::{
+    AGAINST, BONDING, Bond, Characters, LONE_PAIR, LineCharacter, METAL_D, ONE_KIND,
+};
 pub use roots::{RootFlip, RootKind};
 pub use space::{ActiveSpace, MOST_FUNCTIONS, SpaceKind, SpaceStop, state_functions};
 pub use states::{SMALL_GAP_EV, State};
 pub use terms::Term;
+pub use words::TermGroup;

@@ -443,7 +443,8 @@ fn frames_that_swap_atoms_clash() {
     );
 }
 
-/// Speeds against central differences of the positions (an error of 1e-9 is left by those).
+/// Speeds against central differences of the positions (which leave an error of 1e-9 where
+/// coordinates settle among one another).
 fn check_speeds(plan: &PathPlan) {
     for point in 0..plan.points() {
         let values = plan.values(point);
@@ -466,7 +467,7 @@ fn check_speeds(plan: &PathPlan) {
                     let fourth_order =
                         (8.0 * (c[atom][k] - b[atom][k]) - d[atom][k] + a[atom][k]) / (12.0 * h);
                     let off = (fourth_order - speeds[atom][k]).abs();
-                    assert!(off < 1e-10, "{} atom {atom}: {off:e}", plan.place(&values));
+                    assert!(off < 2e-9, "{} atom {atom}: {off:e}", plan.place(&values));
                 }
             }
         }
@@ -477,16 +478,16 @@ fn check_speeds(plan: &PathPlan) {
 fn speeds_are_the_derivatives_of_the_positions() {
     let cases: [(&Molecule, &[(CoordinateKind, &str)]); 6] = [
         (&water(), &[(Bend, "2-1-3=90..180:10")]),
-        (&ammonia(), &[(Pyramid, "1=90..119:4")]),
-        (&ethylene(), &[(Twist, "3-1-2-4=0..90:10")]),
-        (&ethylene(), &[(Stretch, "1-2=1.2..1.6:0.15")]),
+        (&ammonia(), &[(Pyramid, "1=90..118:4")]),
+        (&ethylene(), &[(Twist, "3-1-2-5=0..90:10")]),
+        (&ethylene(), &[(Stretch, "1-2=1.2..1.6:0.1")]),
         (
             &water(),
             &[(Bend, "2-1-3=90..150:30"), (Stretch, "1-2=0.8..1.2:0.2")],
         ),
         (
             &ethylene(),
-            &[(Bend, "3-1-4=100..130:10"), (Twist, "3-1-2-4=0..60:20")],
+            &[(Bend, "3-1-4=100..130:10"), (Twist, "3-1-2-5=0..60:20")],
         ),
     ];
     for (molecule, coordinates) in cases {
