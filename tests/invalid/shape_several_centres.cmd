@@ -1,5 +1,5 @@
 # a chain has two possible centres
-args: shape C2H4
+args: shape N2H4
 exit: 2
 says: several possible centres
 fix: --centre

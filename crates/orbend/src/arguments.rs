@@ -156,6 +156,45 @@ pub(crate) struct ShapeArguments {
     /// The atom about which the shape is judged, counted from 1 [default: the only one possible]
     #[arg(long, value_name = "ATOM")]
     pub(crate) centre: Option<usize>,
+    /// Judge along this angle instead of the usual coordinate, degrees: 2-1-3=80..180:5
+    #[arg(
+        long,
+        value_name = "A-B-C=FROM..TO:STEP",
+        allow_hyphen_values = true,
+        group = "along",
+        conflicts_with = "centre"
+    )]
+    pub(crate) bend: Option<String>,
+    /// Judge along this distance, Å: 1-2=0.8..1.6:0.05 (the method gives no bond lengths)
+    #[arg(
+        long,
+        value_name = "A-B=FROM..TO:STEP",
+        allow_hyphen_values = true,
+        group = "along",
+        conflicts_with = "centre"
+    )]
+    pub(crate) stretch: Option<String>,
+    /// Judge along this torsion, degrees: 3-1-2-4=0..180:10
+    #[arg(
+        long,
+        value_name = "A-B-C-D=FROM..TO:STEP",
+        allow_hyphen_values = true,
+        group = "along",
+        conflicts_with = "centre"
+    )]
+    pub(crate) twist: Option<String>,
+    /// Judge along the common angle at a three-coordinate atom, degrees: 1=90..120:2
+    #[arg(
+        long,
+        value_name = "A=FROM..TO:STEP",
+        allow_hyphen_values = true,
+        group = "along",
+        conflicts_with = "centre"
+    )]
+    pub(crate) pyramid: Option<String>,
+    /// Show the leading sum with the pair repulsion of the atoms added (Anderson & Hoffmann 1974)
+    #[arg(long)]
+    pub(crate) repulsion: bool,
     /// Parameter set, or a TOML file that overlays the default set
     #[arg(long, value_name = "SET|FILE")]
     pub(crate) params: Option<String>,

@@ -65,7 +65,7 @@ pub fn shape_document(
         ensemble: Some(Ensemble {
             seed: first.seed,
             members: first.support.curves as u32,
-            spreads: Support::spreads(),
+            spreads: Support::spreads(first.motion),
         }),
         cases,
         ties: ties(verdicts),
@@ -120,7 +120,12 @@ fn case(verdict: &ShapeVerdict) -> Result<Case, NotFinite> {
                 .transpose()?,
             note: Some(match frontier.line {
                 Some(_) => format!(
-                    "votes; {} electrons, {:.2} eV in all",
+                    "{}; {} electrons, {:.2} eV in all",
+                    if verdict.frontier_votes {
+                        "votes"
+                    } else {
+                        "shown, does not vote"
+                    },
                     frontier.electrons,
                     frontier.electrons * frontier.change
                 ),
@@ -135,10 +140,14 @@ fn case(verdict: &ShapeVerdict) -> Result<Case, NotFinite> {
         depth: None,
         line: None,
         change: None,
-        note: Some(format!(
-            "reference, does not vote: Walsh 1953 for {} electrons",
-            electrons.total()
-        )),
+        note: Some(if verdict.electron_count == Favour::Silent {
+            "reference: no rule for this motion and number of electrons".to_owned()
+        } else {
+            format!(
+                "reference, does not vote: Walsh 1953 for {} electrons",
+                electrons.total()
+            )
+        }),
     });
     let range = verdict
         .angle_range
@@ -151,11 +160,7 @@ fn case(verdict: &ShapeVerdict) -> Result<Case, NotFinite> {
         electrons: electrons.total(),
         unpaired: electrons.unpaired(),
         configuration: verdict.configuration.clone(),
-        verdict: match verdict.ruling.shape {
-            Favour::Silent => "undecided",
-            shape => shape.word(motion),
-        }
-        .to_owned(),
+        verdict: verdict.word().to_owned(),
         confident: verdict.ruling.confident,
         angle: number(verdict.angle)?,
         angle_range: range,

@@ -13,6 +13,7 @@
 //! It is not for: physics, symmetry, following lines, or writing to files and streams.
 
 mod csv_rows;
+mod csv_shapes;
 mod csv_stream;
 mod csv_table;
 mod document;
@@ -37,6 +38,7 @@ mod page;
 mod synthetic;
 mod text;
 
+pub use csv_shapes::shape_csv;
 pub use csv_stream::{StreamError, Streamed, stream_csv};
 pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;

@@ -1,7 +1,7 @@
 //! `orbend plan`: what to compute next.
 
 use orbend_report::{plan_document, plan_markdown, plan_text, qcschema_molecule, to_json};
-use orbend_scan::reasons::{Distortions, HandOff, StartKind};
+use orbend_scan::reasons::{Distortions, HandOff, StartKind, usual_path};
 use orbend_scan::shape::{Centre, ShapeRequest, ShapeVerdict};
 use orbend_scan::{Request, ScanError, Sweep};
 use orbend_structure::{Coordinate, write_xyz};
@@ -91,13 +91,12 @@ pub(crate) fn run(arguments: &PlanArguments) -> Result<(), Failure> {
 
 /// The coordinate of the shape verdict: the bend or the pyramid at the only possible centre.
 fn usual_coordinate(request: &Request) -> Result<Coordinate, String> {
-    let centre = Centre::find(&request.molecule, None).map_err(|error| {
+    let (centre, motion) = Centre::find(&request.molecule, None).map_err(|error| {
         format!("no path was given and none is obvious, so this is about one geometry: {error}")
     })?;
-    centre
-        .motion()
-        .path(&centre)
-        .map_err(|error| error.to_string())
+    usual_path(&centre, motion).ok_or_else(|| {
+        "no path was given and none is obvious, so this is about one geometry".to_owned()
+    })
 }
 
 /// Of the first start geometry and of those of higher symmetry.

@@ -2,13 +2,16 @@
 //! molecules.
 
 use orbend_report::{
-    FigureOptions, Provenance, Warning, shape_document, shape_figure, shape_text, to_json,
+    FigureOptions, Provenance, Warning, shape_csv, shape_document, shape_figure, shape_text,
+    to_json,
 };
 use orbend_scan::shape::{ShapeError, ShapeRequest, ShapeVerdict};
 
+use orbend_structure::{Coordinate, CoordinateKind};
+
 use super::figure::Rendering;
 use super::sweep::in_pool;
-use super::{provenance, resolve, text_options};
+use super::{csv, provenance, resolve, text_options};
 use crate::arguments::{CouplingChoice, ModelArguments, ShapeArguments};
 use crate::failure::Failure;
 use crate::outputs::Outputs;
@@ -28,18 +31,20 @@ enum Spins {
 
 pub(crate) fn run(arguments: &ShapeArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "svg", "png", "pdf"])?;
+    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "pdf"])?;
     let charges = arguments.charges.as_deref().map(charges).transpose()?;
     let spins = spins(arguments.unpaired.as_deref())?;
     if arguments.centre == Some(0) {
         return Err(Failure::request("--centre 0: atoms are counted from 1"));
     }
+    let coordinate = coordinate(arguments)?;
     let verdicts = in_pool(arguments.jobs, || {
         let mut verdicts = Vec::new();
         for geometry in &arguments.geometries {
             molecule(
                 arguments,
                 geometry,
+                coordinate.as_ref(),
                 charges.as_deref(),
                 &spins,
                 &mut verdicts,
@@ -53,6 +58,7 @@ pub(crate) fn run(arguments: &ShapeArguments) -> Result<(), Failure> {
     outputs.write(|ending| {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
+            "csv" => csv(|out| shape_csv(&document, out))?,
             _ => Rendering::default()
                 .bytes(shape_figure(&document, &FigureOptions::default()), ending)?,
         })
@@ -64,10 +70,28 @@ pub(crate) fn run(arguments: &ShapeArguments) -> Result<(), Failure> {
     }
 }
 
+/// The coordinate that the user wants judged, if any; the command line allows one.
+fn coordinate(arguments: &ShapeArguments) -> Result<Option<Coordinate>, Failure> {
+    let given = [
+        (CoordinateKind::Bend, &arguments.bend),
+        (CoordinateKind::Stretch, &arguments.stretch),
+        (CoordinateKind::Twist, &arguments.twist),
+        (CoordinateKind::Pyramid, &arguments.pyramid),
+    ];
+    let found = given
+        .into_iter()
+        .find_map(|(kind, text)| Some((kind, text.as_deref()?)));
+    found
+        .map(|(kind, text)| Coordinate::parse(kind, text))
+        .transpose()
+        .map_err(|error| Failure::request(format!("--{error}")))
+}
+
 /// The verdicts of one geometry: one, or one for each charge and number of unpaired electrons.
 fn molecule(
     arguments: &ShapeArguments,
     geometry: &str,
+    coordinate: Option<&Coordinate>,
     charges: Option<&[i32]>,
     spins: &Spins,
     verdicts: &mut Vec<(ShapeVerdict, Provenance)>,
@@ -79,6 +103,8 @@ fn molecule(
     for &charge in charges.unwrap_or(&[own]) {
         let mut request = ShapeRequest::new(resolved.request.clone());
         request.centre = arguments.centre.map(|atom| atom - 1);
+        request.coordinate = coordinate.cloned();
+        request.repulsion = arguments.repulsion;
         request.request.molecule.charge = charge;
         if charges.is_some() {
             request.request.molecule.unpaired = match spins {

@@ -55,7 +55,9 @@ pub struct Case {
     pub unpaired: u32,
     /// Occupied valence levels, as in `4a1:2 2b2:2`.
     pub configuration: String,
-    /// `linear`, `bent`, `planar`, `pyramidal`, `undecided`, or a further word for a further coordinate.
+    /// `linear`, `bent`, `planar`, `pyramidal`, `square-planar`, `tetrahedral`, `flattened-tetrahedral`,
+    /// `trans-bent`; of a torsion `cis`, `trans`, `planar`, `perpendicular`, `eclipsed`, `staggered` or
+    /// `skew`; along a range of the user's `start`, `inside` or `end`; or `undecided`.
     pub verdict: String,
     /// Whether the rule calls the verdict safe.
     pub confident: bool,
@@ -63,7 +65,8 @@ pub struct Case {
     pub angle: Option<Number>,
     /// 10 to 90 % range of the angle in degrees over the ensemble.
     pub angle_range: Option<[Number; 2]>,
-    /// How far in eV the lowest point lies below the high-symmetry geometry.
+    /// How far in eV the lowest point lies below the high-symmetry geometry; of a torsion, below the
+    /// next form.
     pub depth: Option<Number>,
     /// Share of the perturbed calculations that agree, 0 to 1.
     pub support: Option<Number>,
@@ -73,7 +76,7 @@ pub struct Case {
     pub because: Vec<String>,
     /// What could be wrong, in words.
     pub could_be_wrong_because: Vec<String>,
-    /// The smallest single changes that reverse the verdict.
+    /// The smallest single changes that turn the leading sum round.
     #[serde(default)]
     pub would_flip: Vec<Flip>,
     /// Curves behind the arguments; left out unless asked for.

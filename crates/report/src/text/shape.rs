@@ -1,6 +1,6 @@
 //! Shape verdicts as text.
 
-use crate::document::{Argument, Case, CoordinateRecord, Number, ShapeDocument};
+use crate::document::{Argument, Case, CoordinateRecord, CoordinateUnit, Number, ShapeDocument};
 use crate::draw::ticks::ascii_number;
 use crate::draw::wording::{charge, coordinate_name, heading_formula};
 
@@ -84,19 +84,28 @@ fn name(document: &ShapeDocument, case: &Case) -> String {
     format!("{formula}{space}{}", charge(case.charge))
 }
 
-fn degrees(angle: Option<Number>) -> String {
-    angle.map_or_else(|| "-".to_owned(), |angle| ascii_number(angle.get(), 0))
+/// Decimals of a value of the case's coordinate: whole degrees, or hundredths of an Å.
+fn decimals(document: &ShapeDocument, case: &Case) -> usize {
+    let coordinate = case.coordinate.as_ref().or(document.coordinate.as_ref());
+    let length = coordinate.is_some_and(|one| one.unit == CoordinateUnit::Angstrom);
+    if length { 2 } else { 0 }
 }
 
-fn angle_words(case: &Case) -> String {
+fn value(document: &ShapeDocument, case: &Case, value: Option<Number>) -> String {
+    let decimals = decimals(document, case);
+    value.map_or_else(
+        || "-".to_owned(),
+        |value| ascii_number(value.get(), decimals),
+    )
+}
+
+fn angle_words(document: &ShapeDocument, case: &Case) -> String {
+    let text = |number: Number| value(document, case, Some(number));
     match (case.angle, case.angle_range) {
-        (Some(angle), Some([low, high])) => format!(
-            "{} ({} to {})",
-            ascii_number(angle.get(), 0),
-            ascii_number(low.get(), 0),
-            ascii_number(high.get(), 0)
-        ),
-        (angle, _) => degrees(angle),
+        (Some(angle), Some([low, high])) => {
+            format!("{} ({} to {})", text(angle), text(low), text(high))
+        }
+        (angle, _) => value(document, case, angle),
     }
 }
 
@@ -117,7 +126,7 @@ fn series_table(document: &ShapeDocument, options: &TextOptions) -> Table {
             case.electrons.to_string(),
             case.unpaired.to_string(),
             case.verdict.clone(),
-            angle_words(case),
+            angle_words(document, case),
             case.depth
                 .map_or_else(|| "-".to_owned(), |depth| ascii_number(depth.get(), 2)),
             case.support
@@ -129,12 +138,17 @@ fn series_table(document: &ShapeDocument, options: &TextOptions) -> Table {
 }
 
 fn headline(document: &ShapeDocument, case: &Case) -> String {
+    let unit = if decimals(document, case) > 0 {
+        " Å"
+    } else {
+        "°"
+    };
     let angle = match (case.verdict.as_str(), case.angle, case.angle_range) {
         (_, Some(angle), Some([low, high])) => format!(
-            ", {}° ({} to {}°)",
-            ascii_number(angle.get(), 0),
-            ascii_number(low.get(), 0),
-            ascii_number(high.get(), 0)
+            ", {}{unit} ({} to {}{unit})",
+            value(document, case, Some(angle)),
+            value(document, case, Some(low)),
+            value(document, case, Some(high))
         ),
         _ => String::new(),
     };
@@ -174,14 +188,14 @@ fn full(out: &mut String, document: &ShapeDocument, case: &Case, options: &TextO
         ("angle", Align::Right),
         ("depth/eV", Align::Right),
         ("line", Align::Left),
-        ("change/eV", Align::Right),
+        ("shift/eV", Align::Right),
         ("", Align::Left),
     ]);
     for argument in &case.arguments {
         table.row(vec![
             argument.name.clone(),
             argument.favours.clone(),
-            degrees(argument.angle),
+            value(document, case, argument.angle),
             argument
                 .depth
                 .map_or_else(String::new, |depth| ascii_number(depth.get(), 2)),

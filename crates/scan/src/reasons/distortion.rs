@@ -309,7 +309,7 @@ fn steepest(
 ) -> Result<(f64, Displacement), ScanError> {
     let matrices: Vec<Array2<f64>> = list
         .iter()
-        .map(|d| gradients.within_set(vectors, energy, d))
+        .map(|d| within(gradients, vectors, energy, d))
         .collect();
     let size = |m: &Array2<f64>| m.iter().map(|x| x * x).sum::<f64>();
     let Some(largest) = matrices
@@ -326,11 +326,22 @@ fn steepest(
     let length = shares.iter().map(|x| x * x).sum::<f64>().sqrt();
     let factors: Vec<f64> = shares.iter().map(|x| x / length).collect();
     let direction = combined(list, &factors);
-    let matrix = gradients.within_set(vectors, energy, &direction);
+    let matrix = within(gradients, vectors, energy, &direction);
     let flat: Vec<f64> = matrix.iter().copied().collect();
     let (slopes, _) = eigen(matrix.nrows(), &flat)?;
     let slope = slopes.iter().fold(0.0_f64, |m, x| m.max(x.abs()));
     Ok((slope, direction))
+}
+
+/// c_a†(∂H − ε ∂S)c_b between the levels of a set.
+fn within(
+    gradients: &Gradients,
+    vectors: &Array2<f64>,
+    energy: f64,
+    displacement: &Displacement,
+) -> Array2<f64> {
+    let (s, h) = gradients.along(displacement);
+    vectors.dot(&(h - s * energy)).dot(&vectors.t())
 }
 
 fn second_order(

@@ -1,9 +1,9 @@
 //! What to compute next, drawn from a sweep and from verdicts.
 
-use orbend_structure::{CoordinateKind, Molecule};
+use orbend_structure::{Coordinate, CoordinateKind, Molecule, Range};
 
 use crate::error::ScanError;
-use crate::shape::{Favour, Motion, ShapeVerdict};
+use crate::shape::{Centre, Favour, Motion, MotionKind, ShapeVerdict};
 use crate::sweep::Sweep;
 
 use super::makeup::{Makeup, makeups};
@@ -76,7 +76,24 @@ pub struct HandOff {
     pub spaces: Vec<ActiveSpace>,
     /// What every line is made of at the first and at the last point.
     pub makeups: [Vec<Makeup>; 2],
-    /// Whether the path is the motion of the verdicts.
+    /// The coordinate along which the motion of a verdict is drawn as a diagram: the angle from 80° to
+/// 180° in steps of 2°, or the pyramid from 90° to 120° in steps of 1°; none for other motions.
+pub fn usual_path(centre: &Centre, motion: Motion) -> Option<Coordinate> {
+    let (kind, atoms, from, to, step) = match (motion.kind, centre.ligands.as_slice()) {
+        (MotionKind::Bend, [first, second, ..]) => (
+            CoordinateKind::Bend,
+            vec![*first, centre.atom, *second],
+            80.0,
+            180.0,
+            2.0,
+        ),
+        (MotionKind::Pyramid, _) => (CoordinateKind::Pyramid, vec![centre.atom], 90.0, 120.0, 1.0),
+        _ => return None,
+    };
+    Coordinate::new(kind, atoms, Range { from, to, step }, false).ok()
+}
+
+/// Whether the path is the motion of the verdicts.
     pub verdict_path: bool,
 }
 
@@ -180,9 +197,9 @@ fn same_motion(sweep: &Sweep, verdict: &ShapeVerdict) -> bool {
     let [coordinate] = sweep.plan().path.coordinates() else {
         return false;
     };
-    match (coordinate.kind, verdict.motion) {
-        (CoordinateKind::Bend, Motion::Bend) => coordinate.atoms[1] == verdict.centre.atom,
-        (CoordinateKind::Pyramid, Motion::Pyramid) => coordinate.atoms[0] == verdict.centre.atom,
+    match (coordinate.kind, verdict.motion.kind) {
+        (CoordinateKind::Bend, MotionKind::Bend) => coordinate.atoms[1] == verdict.centre.atom,
+        (CoordinateKind::Pyramid, MotionKind::Pyramid) => coordinate.atoms[0] == verdict.centre.atom,
         _ => false,
     }
 }

@@ -27,7 +27,7 @@ pub use fragments::{
     FragmentPair, two_orbital_energy,
 };
 pub use gradients::{Gradients, slope};
-pub use handoff::{HandOff, OtherCharge, Start, StartKind};
+pub use handoff::{HandOff, OtherCharge, Start, StartKind, usual_path};
 pub use ledger::{Change, Mixing, ShellTerm, Slope};
 pub use makeup::Makeup;
 pub use populations::{

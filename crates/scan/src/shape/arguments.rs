@@ -1,6 +1,6 @@
 //! The sums: each in one form, with the minimum that it finds itself.
 
-use orbend_hamiltonian::{Coupling, HamiltonianPlan, Method};
+use orbend_hamiltonian::{Coupling, HamiltonianPlan, Method, PairRepulsion};
 
 use crate::error::ScanError;
 use crate::plan::SweepPlan;
@@ -8,9 +8,8 @@ use crate::plan::SweepPlan;
 use super::centre::Centre;
 use super::charge::Response;
 use super::engine::{Curve, Engine, Model};
-use super::minimum::minimum;
+use super::minimum::read;
 use super::motion::Motion;
-use super::rule::FLAT_EV;
 
 /// What an argument speaks for.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -19,6 +18,8 @@ pub enum Favour {
     Symmetric,
     /// Bent or pyramidal.
     Distorted,
+    /// The other symmetric form of a torsion, or the far end of a free range.
+    Opposite,
     /// Nothing: no minimum inside the range, no line that responds, or no agreement.
     Silent,
 }
@@ -29,6 +30,7 @@ impl Favour {
         match self {
             Self::Symmetric => motion.symmetric_word(),
             Self::Distorted => motion.distorted_word(),
+            Self::Opposite => motion.opposite_word(),
             Self::Silent => "none",
         }
     }
@@ -38,13 +40,13 @@ impl Favour {
 #[derive(Clone, Debug)]
 pub struct SumArgument {
     /// `polarised-sum`, `polarised-charge-response`, `polarised-weighted`, `sum`,
-    /// `charge-response` or `weighted`.
+    /// `charge-response`, `weighted` or `polarised-sum-repulsion`.
     pub name: &'static str,
     /// What it speaks for.
     pub favours: Favour,
     /// Angle of its deepest minimum, degrees.
     pub angle: Option<f64>,
-    /// Depth of that minimum below the symmetric form, eV.
+    /// Depth of that minimum below the symmetric form, eV; of a torsion below the next form.
     pub depth: Option<f64>,
     /// Whether it decides, or is only shown.
     pub votes: bool,
@@ -81,7 +83,7 @@ pub(crate) fn at_distortion(
     plan.path
         .positions(&[motion.angle(distortion)], &mut positions)?;
     // The unit factor leaves every position as it is; it keeps one way of moving ligands.
-    centre.stretch(&vec![1.0; centre.ligands.len()], &mut positions);
+    centre.stretch(&vec![1.0; centre.bonds.len()], &mut positions);
     Ok(positions)
 }
 
@@ -129,12 +131,12 @@ pub(crate) fn with_coupling(
     Ok(other)
 }
 
-fn argument(name: &'static str, motion: Motion, curve: Curve) -> SumArgument {
+pub(crate) fn argument(name: &'static str, motion: Motion, curve: Curve) -> SumArgument {
     let grid = motion.grid(true);
-    let found = minimum(grid[1], curve.usable());
+    let (favours, found) = read(motion, motion.step(true), curve.usable());
     SumArgument {
         name,
-        favours: favour(found.map(|minimum| minimum.depth)),
+        favours,
         angle: found.map(|minimum| motion.angle(minimum.distortion)),
         depth: found.map(|minimum| minimum.depth),
         votes: matches!(name, "polarised-sum" | "polarised-charge-response"),
@@ -147,11 +149,20 @@ fn argument(name: &'static str, motion: Motion, curve: Curve) -> SumArgument {
     }
 }
 
-/// From the depth of a minimum inside the range to what it speaks for.
-pub(crate) fn favour(depth: Option<f64>) -> Favour {
-    match depth {
-        None => Favour::Silent,
-        Some(depth) if depth > FLAT_EV => Favour::Distorted,
-        Some(_) => Favour::Symmetric,
-    }
+/// The leading sum with the pair repulsion of the atoms added; shown where asked for.
+pub(crate) fn with_repulsion(
+    plan: &SweepPlan,
+    motion: Motion,
+    leading: &SumArgument,
+    positions: &[Vec<[f64; 3]>],
+) -> SumArgument {
+    let repulsion = PairRepulsion::new(&plan.basis);
+    let sums = leading.sums.iter().zip(positions);
+    let curve = Curve {
+        sums: sums
+            .map(|(sum, positions)| sum + repulsion.energy(positions))
+            .collect(),
+        at_rest: true,
+    };
+    argument("polarised-sum-repulsion", motion, curve)
 }

@@ -6,7 +6,7 @@ use orbend_hamiltonian::HamiltonianPlan;
 
 use crate::plan::SweepPlan;
 
-use super::charge::{Response, TOLERANCE, step};
+use super::charge::{Response, step};
 
 /// One way to get from S to a sum.
 pub(crate) struct Model<'a> {
@@ -240,11 +240,11 @@ impl<'a> Engine<'a> {
             self.populations(&mut populations);
             left = step(&mut charges, &self.valence, &populations);
             // A lane without a solution must not keep the others waiting.
-            if (0..LANES).all(|lane| left[lane] < TOLERANCE || !sums[lane].is_finite()) {
+            if (0..LANES).all(|lane| left[lane] < response.tolerance || !sums[lane].is_finite()) {
                 break;
             }
         }
-        (sums, left.map(|left| left < TOLERANCE))
+        (sums, left.map(|left| left < response.tolerance))
     }
 
     /// Hands out the electrons in every lane; Σ n ε.

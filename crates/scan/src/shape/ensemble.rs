@@ -7,12 +7,12 @@ use rayon::prelude::*;
 use crate::error::ScanError;
 use crate::plan::SweepPlan;
 
-use super::arguments::{Favour, favour, geometries, with_coupling};
-use super::centre::Centre;
+use super::arguments::{Favour, geometries, with_coupling};
+use super::centre::{Bond, Centre, distance};
 use super::charge::Response;
 use super::engine::{Engine, Model};
-use super::minimum::minimum;
-use super::motion::Motion;
+use super::minimum::read;
+use super::motion::{Motion, MotionKind};
 use super::random::SplitMix64;
 
 /// Relative standard deviation of Hᵢᵢ and of ζ: published values of one shell differ by about that.
@@ -29,6 +29,10 @@ pub struct Support {
     pub distorted: f64,
     /// Share of all curves whose minimum is the symmetric form, or shallow.
     pub symmetric: f64,
+    /// Share of all curves that end lowest in the other symmetric form of a torsion.
+    pub opposite: f64,
+    /// Share of the curves with charge response whose charges had not come to rest.
+    pub restless: f64,
     /// Number of curves.
     pub curves: usize,
     /// Shares of distorted curves in the constant and in the weighted form.
@@ -39,7 +43,12 @@ pub struct Support {
 
 impl Support {
     /// What is varied and by how much.
-    pub fn spreads() -> Vec<String> {
+    pub fn spreads(motion: Motion) -> Vec<String> {
+        let forms = if motion.kind == MotionKind::Twist {
+            "each draw in both forms, constant and weighted, with charge response of 1 eV"
+        } else {
+            "each draw in both forms, constant and weighted, with and without charge response of 1 eV"
+        };
         vec![
             "every Hii and every zeta: normal, 5 % (clipped at 2.5 standard deviations); published \
              values of one shell differ by about that; the 2p shell of hydrogen stays"
@@ -47,8 +56,7 @@ impl Support {
             "K: uniform 1.65 to 1.85".to_owned(),
             "bond lengths: uniform, 2 %, equal bonds together".to_owned(),
             "odd draws take the second published values where the set has two (P, S, Cl, Se, Te)".to_owned(),
-            "each draw in both forms, constant and weighted, with and without charge response of 1 eV"
-                .to_owned(),
+            forms.to_owned(),
         ]
     }
 }
@@ -70,7 +78,7 @@ pub(crate) fn ensemble(
     draws: usize,
 ) -> Result<Support, ScanError> {
     let start = geometries(plan, centre, motion, false)?;
-    let step = motion.grid(false)[1];
+    let step = motion.step(false);
     let bonds = bond_classes(plan, centre, &start[0]);
     let members = (0..draws)
         .into_par_iter()
@@ -94,21 +102,27 @@ pub(crate) fn ensemble(
                     response,
                 };
                 let response = Some(Response::ENSEMBLE);
-                let curves = engine.curves(
-                    &moved,
-                    &[
-                        model(&constant, None),
-                        model(&constant, response),
-                        model(&weighted, None),
-                        model(&weighted, response),
-                    ],
-                );
+                let models = [
+                    model(&constant, None),
+                    model(&constant, response),
+                    model(&weighted, None),
+                    model(&weighted, response),
+                ];
+                // A torsion hangs on the charges: without response the sum does not know them.
+                let charged: Vec<Model<'_>> = models
+                    .into_iter()
+                    .filter(|model| motion.kind != MotionKind::Twist || model.response.is_some())
+                    .collect();
+                let curves = engine.curves(&moved, &charged);
                 Ok(curves
                     .iter()
                     .map(|curve| {
-                        let found = minimum(step, curve.usable());
-                        let favours = favour(found.map(|minimum| minimum.depth));
-                        (favours, found.map_or(0.0, |minimum| minimum.distortion))
+                        let (favours, found) = read(motion, step, curve.usable());
+                        Member {
+                            favours,
+                            distortion: found.map_or(0.0, |minimum| minimum.distortion),
+                            at_rest: curve.at_rest,
+                        }
                     })
                     .collect::<Vec<_>>())
             },
@@ -117,30 +131,50 @@ pub(crate) fn ensemble(
     Ok(summary(&members, motion))
 }
 
-fn summary(members: &[Vec<(Favour, f64)>], motion: Motion) -> Support {
-    let curves = members.iter().map(Vec::len).sum::<usize>();
+/// What one perturbed curve says.
+struct Member {
+    favours: Favour,
+    distortion: f64,
+    at_rest: bool,
+}
+
+fn summary(members: &[Vec<Member>], motion: Motion) -> Support {
+    let each = members.first().map_or(0, Vec::len);
     let count = |wanted, forms: std::ops::Range<usize>| {
         members
             .iter()
             .flat_map(|member| &member[forms.clone()])
-            .filter(|curve| curve.0 == wanted)
+            .filter(|curve| curve.favours == wanted)
             .count() as f64
     };
+    let curves = members.iter().map(Vec::len).sum::<usize>();
     let total = curves.max(1) as f64;
+    let charged = if motion.kind == MotionKind::Twist {
+        total
+    } else {
+        0.5 * total
+    };
+    let restless = members
+        .iter()
+        .flatten()
+        .filter(|curve| !curve.at_rest)
+        .count() as f64;
     let mut angles: Vec<f64> = members
         .iter()
         .flatten()
-        .filter(|curve| curve.0 == Favour::Distorted)
-        .map(|curve| motion.angle(curve.1))
+        .filter(|curve| curve.favours == Favour::Distorted)
+        .map(|curve| motion.angle(curve.distortion))
         .collect();
     angles.sort_by(f64::total_cmp);
     Support {
-        distorted: count(Favour::Distorted, 0..4) / total,
-        symmetric: count(Favour::Symmetric, 0..4) / total,
+        distorted: count(Favour::Distorted, 0..each) / total,
+        symmetric: count(Favour::Symmetric, 0..each) / total,
+        opposite: count(Favour::Opposite, 0..each) / total,
+        restless: restless / charged,
         curves,
         by_form: (
-            2.0 * count(Favour::Distorted, 0..2) / total,
-            2.0 * count(Favour::Distorted, 2..4) / total,
+            2.0 * count(Favour::Distorted, 0..each / 2) / total,
+            2.0 * count(Favour::Distorted, each / 2..each) / total,
         ),
         angles: (!angles.is_empty()).then(|| [0.1, 0.5, 0.9].map(|share| quantile(&angles, share))),
     }
@@ -154,20 +188,16 @@ fn quantile(ordered: &[f64], share: f64) -> f64 {
     ordered[low] + (place - low as f64) * (ordered[high] - ordered[low])
 }
 
-/// Class of each ligand's bond: equal element and length (1e-6 Å) share one.
+/// Class of each bond: equal elements and length (1e-6 Å) share one.
 fn bond_classes(plan: &SweepPlan, centre: &Centre, positions: &[[f64; 3]]) -> Vec<usize> {
-    let key = |ligand: usize| {
-        let distance = (0..3)
-            .map(|axis| (positions[ligand][axis] - positions[centre.atom][axis]).powi(2))
-            .sum::<f64>()
-            .sqrt();
-        (
-            plan.molecule.elements[ligand],
-            (distance * 1e6).round() as i64,
-        )
+    let elements = &plan.molecule.elements;
+    let key = |bond: &Bond| {
+        let length = distance(positions, bond.root, bond.end);
+        let length = (length * 1e6).round() as i64;
+        (elements[bond.root], elements[bond.end], length)
     };
-    let mut keys: Vec<(Element, i64)> = centre.ligands.iter().map(|&ligand| key(ligand)).collect();
-    let each = keys.clone();
+    let each: Vec<(Element, Element, i64)> = centre.bonds.iter().map(key).collect();
+    let mut keys = each.clone();
     keys.sort();
     keys.dedup();
     each.iter()

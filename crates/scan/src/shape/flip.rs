@@ -6,14 +6,16 @@ use orbend_structure::Element;
 use crate::error::ScanError;
 use crate::plan::SweepPlan;
 
-use super::arguments::{Favour, favour, geometries};
+use super::arguments::{Favour, geometries};
 use super::centre::Centre;
-use super::engine::{Engine, Model};
+use super::charge::Response;
+use super::engine::{Curve, Engine, Model};
 use super::ensemble::{LENGTH, SPREAD};
-use super::minimum::minimum;
-use super::motion::Motion;
+use super::minimum::read;
+use super::motion::{Motion, MotionKind};
 
-/// A single change that turns the polarised sum round.
+/// A single change that turns the leading sum round (not the whole verdict: an ensemble for each
+/// trial would cost more than the verdict itself).
 #[derive(Clone, Debug, PartialEq)]
 pub struct Flip {
     /// `hii O 2p`, `zeta H 1s`, `k`, `coupling weighted` or `length O-H`.
@@ -53,7 +55,7 @@ pub(crate) fn flips(
         plan,
         centre,
         start: geometries(plan, centre, motion, false)?,
-        step: motion.grid(false)[1],
+        motion,
     };
     let mut engine = Engine::new(plan);
     let mut found: Vec<(f64, Flip)> = Vec::new();
@@ -98,7 +100,7 @@ struct Search<'a> {
     plan: &'a SweepPlan,
     centre: &'a Centre,
     start: Vec<Vec<[f64; 3]>>,
-    step: f64,
+    motion: Motion,
 }
 
 impl Search<'_> {
@@ -119,16 +121,18 @@ impl Search<'_> {
             .collect();
         out.extend(shells.iter().map(|&(e, n, l)| What::Exponent(e, n, l)));
         out.push(What::K);
-        let elements = &self.plan.molecule.elements;
-        for (index, &ligand) in self.centre.ligands.iter().enumerate() {
-            if self.centre.ligands[..index]
-                .iter()
-                .all(|&other| elements[other] != elements[ligand])
-            {
+        for index in 0..self.centre.bonds.len() {
+            if (0..index).all(|other| self.pair(other) != self.pair(index)) {
                 out.push(What::Length(index));
             }
         }
         out
+    }
+
+    /// The elements of a bond.
+    fn pair(&self, bond: usize) -> [Element; 2] {
+        let bond = &self.centre.bonds[bond];
+        [bond.root, bond.end].map(|atom| self.plan.molecule.elements[atom])
     }
 
     fn smallest(
@@ -207,14 +211,10 @@ impl Search<'_> {
             }
             What::K => method.k *= factor,
             What::Length(index) => {
-                let elements = &self.plan.molecule.elements;
-                let named = elements[self.centre.ligands[index]];
-                let scale: Vec<f64> = self
-                    .centre
-                    .ligands
-                    .iter()
-                    .map(|&ligand| {
-                        if elements[ligand] == named {
+                let bonds = 0..self.centre.bonds.len();
+                let scale: Vec<f64> = bonds
+                    .map(|bond| {
+                        if self.pair(bond) == self.pair(index) {
                             factor
                         } else {
                             1.0
@@ -246,13 +246,13 @@ impl Search<'_> {
             positions,
             &[Model {
                 hamiltonian,
-                response: None,
+                // The leading sum of a torsion is the one with charge response.
+                response: (self.motion.kind == MotionKind::Twist).then_some(Response::ENSEMBLE),
             }],
         );
-        let found = curves
-            .first()
-            .and_then(|curve| minimum(self.step, curve.usable()));
-        Ok(favour(found.map(|minimum| minimum.depth)))
+        let step = self.motion.step(false);
+        let read = |curve: &Curve| read(self.motion, step, curve.usable()).0;
+        Ok(curves.first().map_or(Favour::Silent, read))
     }
 
     /// Name, unit with the factor from a relative change, and published spread in that unit.
@@ -285,11 +285,7 @@ impl Search<'_> {
             ),
             What::K => ("k".to_owned(), ("percent", 100.0), 100.0 * 0.1 / 1.75),
             What::Length(index) => {
-                let elements = &self.plan.molecule.elements;
-                let (centre, ligand) = (
-                    elements[self.centre.atom],
-                    elements[self.centre.ligands[index]],
-                );
+                let [centre, ligand] = self.pair(index);
                 (
                     format!("length {}-{}", centre.symbol(), ligand.symbol()),
                     ("percent", 100.0),

@@ -8,7 +8,7 @@ use crate::plan::SweepPlan;
 use super::arguments::{Favour, at_distortion};
 use super::centre::Centre;
 use super::engine::Engine;
-use super::motion::Motion;
+use super::motion::{Beyond, Motion};
 use super::rule::RESPONSE_EV;
 
 /// The frontier line and its change. A line within [`RESPONSE_EV`] of its energy in the symmetric
@@ -76,10 +76,10 @@ pub(crate) fn frontier(
     let (favours, line, label, electrons, change) = match found {
         None => (Favour::Silent, None, String::new(), 0.0, 0.0),
         Some((line, label, electrons, change)) => {
-            let favours = if change < 0.0 {
-                Favour::Distorted
-            } else {
-                Favour::Symmetric
+            let favours = match (change < 0.0, motion.beyond()) {
+                (true, Beyond::Start) => Favour::Distorted,
+                (true, _) => Favour::Opposite,
+                (false, _) => Favour::Symmetric,
             };
             (favours, Some(line), label, electrons, change)
         }

@@ -1,6 +1,7 @@
 //! Which shape a molecule has about one centre, how far that can be trusted, and why.
 //!
-//! Several arguments are worked out along one coordinate that keeps the bond lengths: sums of
+//! The motion follows from the connections: bend, pyramid, tetrahedral to square-planar, both ends
+//! of a chain, a torsion; or it is the user's. Several arguments are worked out along it: sums of
 //! orbital energies in several forms ([`SumArgument`]), the frontier line ([`FrontierArgument`])
 //! and, as a named reference that never decides, the electron count. An ensemble of perturbed
 //! parameters gives the support; a small rule ([`rule`]) weighs them. `undecided` is a normal
@@ -35,6 +36,7 @@ mod minimum;
 mod motion;
 mod random;
 pub mod rule;
+mod see_saw;
 mod verdict;
 mod words;
 
@@ -44,5 +46,5 @@ pub use electron_count::electron_count_rule;
 pub use ensemble::Support;
 pub use flip::Flip;
 pub use frontier::FrontierArgument;
-pub use motion::Motion;
+pub use motion::{Motion, MotionKind};
 pub use verdict::{ShapeRequest, ShapeVerdict};

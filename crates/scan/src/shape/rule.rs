@@ -10,8 +10,10 @@ use super::arguments::Favour;
 pub const FLAT_EV: f64 = 0.025;
 /// A line that changes less than this (eV) does not respond.
 pub const RESPONSE_EV: f64 = 0.3;
-/// Share of the perturbed curves that makes a majority.
+/// Share of the perturbed curves that makes a majority, unless the leading argument is against it.
 pub const MAJORITY: f64 = 2.0 / 3.0;
+/// Share of the perturbed curves that the leading argument of a torsion or of a free range needs.
+pub const HALF: f64 = 0.5;
 /// Support from which on a verdict can be confident.
 pub const CONFIDENT: f64 = 0.9;
 /// A ligand whose np level lies this much (eV) above the centre's np inverts the polarity that the
@@ -21,8 +23,14 @@ pub const INVERTED_EV: f64 = 2.0;
 /// What the rule looks at.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Evidence {
-    /// Shares of all perturbed curves: distorted, symmetric; the rest abstains.
+    /// Shares of all perturbed curves: distorted, symmetric; the rest abstains or is `opposite`.
     pub shares: (f64, f64),
+    /// Share that favours the other symmetric form of a torsion or the far end of a free range.
+    pub opposite: f64,
+    /// How the motion is judged.
+    pub way: Way,
+    /// Whether a form off the path lies lower.
+    pub other_form: bool,
     /// The leading argument: the polarised sum.
     pub leading: Favour,
     /// The polarised sum with charge response.
@@ -45,6 +53,18 @@ pub struct Evidence {
     pub inverted: bool,
 }
 
+/// How a motion is judged.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Way {
+    /// From one symmetric form: bend, pyramid, squash, both ends.
+    Distortion,
+    /// A torsion: the polarised sum with charge response leads, because the sums without it know
+    /// nothing of the charges of lone pairs and bonds that meet.
+    Torsion,
+    /// A coordinate and range of the user's: the polarised sum leads.
+    Free,
+}
+
 /// Why a verdict was not given.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Doubt {
@@ -54,6 +74,10 @@ pub enum Doubt {
     FrontierAgainstSum,
     /// The perturbed curves are split and the second opinion does not settle it.
     Split,
+    /// A form off the path lies lower than all that lies on it.
+    OtherForm,
+    /// Most perturbed curves are against the leading argument, which has no second voice.
+    MajorityAgainstLeading,
 }
 
 /// The outcome.
@@ -73,6 +97,9 @@ pub struct Ruling {
 
 /// Weighs the arguments.
 pub fn weigh(evidence: &Evidence) -> Ruling {
+    if evidence.way != Way::Distortion {
+        return weigh_forms(evidence);
+    }
     let (distorted, symmetric) = evidence.shares;
     let majority = if distorted > symmetric {
         Favour::Distorted
@@ -89,8 +116,13 @@ pub fn weigh(evidence: &Evidence) -> Ruling {
     } else {
         evidence.frontier
     };
-    let (shape, doubt) = if evidence.heavy_alkaline_earth && majority == Favour::Symmetric {
+    let opposed = evidence.leading != Favour::Silent && evidence.leading != majority;
+    let (shape, doubt) = if evidence.other_form {
+        (Favour::Silent, Some(Doubt::OtherForm))
+    } else if evidence.heavy_alkaline_earth && majority == Favour::Symmetric {
         (Favour::Silent, Some(Doubt::MissingShell))
+    } else if most >= MAJORITY && opposed && (frontier == Favour::Silent || frontier != majority) {
+        (Favour::Silent, Some(Doubt::MajorityAgainstLeading))
     } else if most >= MAJORITY {
         if frontier == Favour::Silent || frontier == majority {
             (majority, None)
@@ -117,7 +149,7 @@ pub fn weigh(evidence: &Evidence) -> Ruling {
     let support = match shape {
         Favour::Distorted => distorted,
         Favour::Symmetric => symmetric,
-        Favour::Silent => most,
+        Favour::Opposite | Favour::Silent => most,
     };
     let confident = shape != Favour::Silent
         && support >= CONFIDENT
@@ -134,12 +166,51 @@ pub fn weigh(evidence: &Evidence) -> Ruling {
     }
 }
 
+/// The leading argument, where more than half of the perturbed curves agree; no other form votes.
+fn weigh_forms(evidence: &Evidence) -> Ruling {
+    let (distorted, symmetric) = evidence.shares;
+    let share = |form| match form {
+        Favour::Distorted => distorted,
+        Favour::Symmetric => symmetric,
+        Favour::Opposite => evidence.opposite,
+        Favour::Silent => 0.0,
+    };
+    let forms = [Favour::Distorted, Favour::Symmetric, Favour::Opposite];
+    let most = forms
+        .iter()
+        .fold(0.0, |most: f64, &form| most.max(share(form)));
+    let majority = forms
+        .into_iter()
+        .find(|&form| share(form) >= most)
+        .unwrap_or(Favour::Silent);
+    let (first, second) = match evidence.way {
+        Way::Torsion => (evidence.response, evidence.leading),
+        _ => (evidence.leading, evidence.response),
+    };
+    let settled = first != Favour::Silent && share(first) > HALF;
+    let shape = if settled { first } else { Favour::Silent };
+    Ruling {
+        shape,
+        doubt: (!settled).then_some(Doubt::Split),
+        majority,
+        support: if settled { share(first) } else { most },
+        // A range of the user's has never been calibrated.
+        confident: settled
+            && evidence.way == Way::Torsion
+            && share(first) >= CONFIDENT
+            && second == first,
+    }
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
 
     const CLEAR: Evidence = Evidence {
         shares: (1.0, 0.0),
+        opposite: 0.0,
+        way: Way::Distortion,
+        other_form: false,
         leading: Favour::Distorted,
         response: Favour::Distorted,
         frontier: Favour::Distorted,
@@ -195,5 +266,31 @@ mod tests {
             ..planar
         });
         assert_eq!(earth.doubt, Some(Doubt::MissingShell));
+    }
+
+    #[test]
+    fn a_majority_against_the_leading_sum_and_torsions() {
+        let against = weigh(&Evidence {
+            shares: (0.7, 0.3),
+            leading: Favour::Symmetric,
+            frontier: Favour::Silent,
+            ..CLEAR
+        });
+        assert_eq!(against.doubt, Some(Doubt::MajorityAgainstLeading));
+        let torsion = Evidence {
+            shares: (0.3, 0.1),
+            opposite: 0.6,
+            way: Way::Torsion,
+            response: Favour::Opposite,
+            leading: Favour::Symmetric,
+            ..CLEAR
+        };
+        let ruling = weigh(&torsion);
+        assert_eq!((ruling.shape, ruling.confident), (Favour::Opposite, false));
+        let split = weigh(&Evidence {
+            opposite: 0.4,
+            ..torsion
+        });
+        assert_eq!(split.doubt, Some(Doubt::Split));
     }
 }

@@ -1,19 +1,21 @@
 //! From a molecule to its verdict.
 
 use orbend_hamiltonian::{Basis, Coupling, Method, ParameterSet};
+use orbend_structure::Coordinate;
 
 use crate::error::ScanError;
 use crate::plan::SweepPlan;
-use crate::request::Request;
+use crate::request::{Request, Route};
 
-use super::arguments::{Favour, SumArgument, geometries, sums};
+use super::arguments::{Favour, SumArgument, geometries, sums, with_repulsion};
 use super::centre::{Centre, ShapeError};
 use super::electron_count::electron_count_rule;
 use super::ensemble::{Support, ensemble};
 use super::flip::{Flip, flips};
 use super::frontier::{FrontierArgument, all_hydrogen, frontier};
-use super::motion::Motion;
-use super::rule::{Evidence, INVERTED_EV, Ruling, weigh};
+use super::motion::{Motion, MotionKind};
+use super::rule::{Evidence, FLAT_EV, INVERTED_EV, Ruling, Way, weigh};
+use super::see_saw::see_saw;
 use super::words;
 
 /// Seed of the ensemble unless another one is asked for.
@@ -29,6 +31,10 @@ pub struct ShapeRequest {
     pub request: Request,
     /// The centre, from 0; found where there is only one.
     pub centre: Option<usize>,
+    /// A coordinate to judge instead of the one that the molecule's connections suggest.
+    pub coordinate: Option<Coordinate>,
+    /// Whether to show the leading sum with the pair repulsion of the atoms added.
+    pub repulsion: bool,
     /// Seed of the ensemble.
     pub seed: u64,
     /// Draws of the ensemble, four curves each.
@@ -48,10 +54,15 @@ pub struct ShapeVerdict {
     pub motion: Motion,
     /// Shape, support, confidence and why it may be undecided.
     pub ruling: Ruling,
-    /// The sums, leading one first.
+    /// The sums: polarised ones first.
     pub sums: Vec<SumArgument>,
+    /// Which of them leads: the first, of a torsion the second.
+    pub lead: usize,
     /// The frontier line.
     pub frontier: FrontierArgument,
+    /// Whether it has a vote: where its veto was calibrated, in the bend or the pyramid of a centre
+    /// with nothing but single atoms around it.
+    pub frontier_votes: bool,
     /// The electron-count rule, for reference.
     pub electron_count: Favour,
     /// The ensemble's result.
@@ -66,6 +77,8 @@ pub struct ShapeVerdict {
     pub depth: Option<f64>,
     /// Occupied levels close to the symmetric form, as in `2a1:2 1b2:2`.
     pub configuration: String,
+    /// By how much (eV) the lowest see-saw geometry of four ligands lies below the path, if so.
+    pub see_saw: Option<f64>,
     /// What decides, in words.
     pub because: Vec<String>,
     /// What could be wrong, in words.
@@ -80,6 +93,8 @@ impl ShapeRequest {
         Self {
             request,
             centre: None,
+            coordinate: None,
+            repulsion: false,
             seed: SEED,
             draws: DRAWS,
             flips: true,
@@ -92,8 +107,13 @@ impl ShapeRequest {
     /// No centre or several, an element without parameters, electrons that do not fit, a motion
     /// that the molecule does not have.
     pub fn run(&self) -> Result<ShapeVerdict, ShapeError> {
-        let centre = Centre::find(&self.request.molecule, self.centre)?;
-        let motion = centre.motion();
+        let (mut centre, motion) = match &self.coordinate {
+            Some(coordinate) => Centre::along(&self.request.molecule, coordinate),
+            None => Centre::find(&self.request.molecule, self.centre)?,
+        };
+        if motion.kind == MotionKind::Squash {
+            centre.pair_up(&self.request.molecule);
+        }
         let plan = self.plan(&centre, motion, true)?;
         let positions = geometries(&plan, &centre, motion, true)?;
         let mut sums = sums(
@@ -107,7 +127,11 @@ impl ShapeRequest {
             &positions,
         )?;
         sums.extend(self.minimal_sums(&plan, &centre, motion, &sums)?);
-        let leading = &sums[0];
+        if self.repulsion {
+            sums.push(with_repulsion(&plan, motion, &sums[0], &positions));
+        }
+        let lead = usize::from(motion.kind == MotionKind::Twist);
+        let leading = &sums[lead];
         if !leading.sums[0].is_finite() {
             return Err(ShapeError::NoSymmetricForm {
                 word: motion.symmetric_word(),
@@ -117,7 +141,20 @@ impl ShapeRequest {
         let frontier = frontier(&plan, &centre, motion)?;
         let other = second_values(&self.request.parameters, &plan)?;
         let support = ensemble(&plan, &other, &centre, motion, self.seed, self.draws)?;
-        let evidence = evidence(&plan, &centre, &sums, &frontier, &support);
+        let see_saw = if motion.kind == MotionKind::Squash {
+            let lowest = sums[0].sums.iter().copied().filter(|sum| sum.is_finite());
+            let lowest = lowest.fold(f64::INFINITY, f64::min);
+            see_saw(&plan.request, &centre, motion, lowest)?.filter(|&below| below > FLAT_EV)
+        } else {
+            None
+        };
+        let frontier_votes =
+            motion.frontier_votes() && plan.molecule.len() == centre.ligands.len() + 1;
+        let mut evidence = evidence(&plan, &centre, motion, &sums, &frontier, &support);
+        evidence.other_form = see_saw.is_some() || five_pairs(&plan, &centre, motion);
+        if !frontier_votes {
+            evidence.frontier = Favour::Silent;
+        }
         let ruling = weigh(&evidence);
         let flips = if self.flips {
             flips(&plan, &centre, motion, leading.favours)?
@@ -129,12 +166,16 @@ impl ShapeRequest {
             .iter()
             .filter(|&&ligand| plan.molecule.elements[ligand].number() == 1)
             .count();
-        let electron_count =
-            electron_count_rule(centre.ligands.len(), hydrogens, plan.electrons().total());
+        let electron_count = if matches!(motion.kind, MotionKind::Bend | MotionKind::Pyramid) {
+            electron_count_rule(centre.ligands.len(), hydrogens, plan.electrons().total())
+        } else {
+            Favour::Silent
+        };
         let (angle, angle_range) = angles(&ruling, motion, &support);
         let mut verdict = ShapeVerdict {
             configuration: configuration(&frontier),
             depth: leading.depth,
+            lead,
             plan,
             centre,
             motion,
@@ -149,6 +190,8 @@ impl ShapeRequest {
             because: Vec::new(),
             could_be_wrong_because: Vec::new(),
             flips,
+            see_saw,
+            frontier_votes,
         };
         verdict.because = words::because(&verdict, &evidence);
         verdict.could_be_wrong_because = words::doubts(&verdict, &evidence);
@@ -166,16 +209,51 @@ impl ShapeRequest {
             polarised_hydrogen: polarised,
             ..Method::with_coupling(Coupling::Constant)
         };
-        request.coordinates = vec![motion.coordinate(centre)?];
+        request.coordinates = motion.coordinates(centre)?;
+        if motion.kind == MotionKind::Squash {
+            return self.squash(request, centre, motion);
+        }
         match request.plan() {
             // In a bent start two ligands may count as bonded (Li···Li in Li₂O): the symmetric form
             // with the same bond lengths is as good a start.
-            Err(ScanError::Path(_)) if centre.is_whole(&request.molecule) => {
-                request.molecule.positions = centre.symmetric_form(&request.molecule);
+            Err(error @ ScanError::Path(_)) => {
+                let Some(start) = centre.own_start(&request.molecule, motion) else {
+                    return Err(error.into());
+                };
+                request.molecule.positions = start;
                 Ok(request.plan()?)
             }
             other => Ok(other?),
         }
+    }
+
+    /// Four ligands: the second pair moves along by symmetry, or in step by its own coordinate.
+    fn squash(
+        &self,
+        mut request: Request,
+        centre: &Centre,
+        motion: Motion,
+    ) -> Result<SweepPlan, ShapeError> {
+        if let Some(start) = centre.own_start(&request.molecule, motion) {
+            request.molecule.positions = start;
+        }
+        let both = request.coordinates.clone();
+        request.coordinates.truncate(1);
+        if let Ok(plan) = request.plan() {
+            let moved = plan.path.moved_along();
+            let second = both.get(1).map(|pair| &pair.atoms);
+            let along = moved.iter().flatten().any(|atoms| {
+                second.is_some_and(|pair| {
+                    atoms[1] == pair[1] && pair.iter().all(|atom| atoms.contains(atom))
+                })
+            });
+            if along {
+                return Ok(plan);
+            }
+        }
+        request.coordinates = both;
+        request.route = Route::Together;
+        Ok(request.plan()?)
     }
 
     /// The sums in the minimal basis; without hydrogen they are the polarised ones.
@@ -207,6 +285,20 @@ impl ShapeRequest {
     }
 }
 
+impl ShapeVerdict {
+    /// The verdict in a word: `bent`, `skew`, `undecided` … Four ligands whose pairs open beyond
+    /// 125° on the way to the plane are `flattened-tetrahedral`.
+    pub fn word(&self) -> &'static str {
+        let flat =
+            self.motion.kind == MotionKind::Squash && self.angle.is_some_and(|angle| angle > 125.0);
+        match self.ruling.shape {
+            Favour::Silent => "undecided",
+            Favour::Distorted if flat => "flattened-tetrahedral",
+            shape => shape.word(self.motion),
+        }
+    }
+}
+
 /// The basis of the second published values, where the set has two for an element of the main
 /// groups.
 fn second_values(set: &ParameterSet, plan: &SweepPlan) -> Result<Basis, ShapeError> {
@@ -232,6 +324,7 @@ fn second_values(set: &ParameterSet, plan: &SweepPlan) -> Result<Basis, ShapeErr
 fn evidence(
     plan: &SweepPlan,
     centre: &Centre,
+    motion: Motion,
     sums: &[SumArgument],
     frontier: &FrontierArgument,
     support: &Support,
@@ -255,6 +348,13 @@ fn evidence(
         });
     Evidence {
         shares: (support.distorted, support.symmetric),
+        opposite: support.opposite,
+        other_form: false,
+        way: match motion.kind {
+            MotionKind::Twist => Way::Torsion,
+            MotionKind::Free(_) => Way::Free,
+            _ => Way::Distortion,
+        },
         leading: sums[0].favours,
         response: sums[1].favours,
         frontier: frontier.favours,
@@ -265,9 +365,29 @@ fn evidence(
     }
 }
 
+/// Four ligands and one lone pair (or one or three electrons) on a centre of the main groups: a
+/// see-saw (Gillespie & Nyholm, Q. Rev. Chem. Soc. 11, 339 (1957)). Stated class: the form is off the
+/// path, and the sum of level energies puts SF4 into the plane.
+fn five_pairs(plan: &SweepPlan, centre: &Centre, motion: Motion) -> bool {
+    let elements = &plan.molecule.elements;
+    let whole = plan.molecule.len() == centre.ligands.len() + 1;
+    if motion.kind != MotionKind::Squash || !whole || elements[centre.atom].is_transition_metal() {
+        return false;
+    }
+    let bound: u32 = centre
+        .ligands
+        .iter()
+        .map(|&ligand| if elements[ligand].number() == 1 { 2 } else { 8 })
+        .sum();
+    (bound + 1..=bound + 3).contains(&plan.electrons().total())
+}
+
 fn angles(ruling: &Ruling, motion: Motion, support: &Support) -> (Option<f64>, Option<[f64; 2]>) {
     match (ruling.shape, support.angles) {
         (Favour::Symmetric, _) => (Some(motion.angle(0.0)), None),
+        (Favour::Opposite, _) => (Some(motion.angle(motion.length())), None),
+        // Undecided between three forms: no angle.
+        (Favour::Silent, _) if motion.kind == MotionKind::Twist => (None, None),
         (_, Some([low, middle, high])) => (Some(middle), Some([low, high])),
         (_, None) => (None, None),
     }

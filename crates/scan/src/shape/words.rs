@@ -1,35 +1,70 @@
 //! What decides and what could be wrong, in words with the numbers behind them.
 
 use super::arguments::Favour;
-use super::rule::{Doubt, Evidence, FLAT_EV, INVERTED_EV};
+use super::motion::{Motion, MotionKind};
+use super::rule::{Doubt, Evidence, FLAT_EV, INVERTED_EV, Way};
 use super::verdict::ShapeVerdict;
 
 /// What decides.
 pub(crate) fn because(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String> {
     let motion = verdict.motion;
     let (distorted, symmetric) = evidence.shares;
+    let mut shares = vec![
+        format!("{} are {}", percent(distorted), motion.distorted_word()),
+        format!("{} {}", percent(symmetric), motion.symmetric_word()),
+    ];
+    if evidence.way != Way::Distortion {
+        shares.push(format!(
+            "{} {}",
+            percent(evidence.opposite),
+            motion.opposite_word()
+        ));
+    }
     let mut out = vec![format!(
-        "of {} curves with perturbed parameters {} are {}, {} {}",
+        "of {} curves with perturbed parameters {}",
         verdict.support.curves,
-        percent(distorted),
-        motion.distorted_word(),
-        percent(symmetric),
-        motion.symmetric_word()
+        shares.join(", ")
     )];
-    let leading = &verdict.sums[0];
+    let leading = &verdict.sums[verdict.lead];
+    let name = if verdict.lead == 0 {
+        "the sum with polarised hydrogen"
+    } else {
+        "the sum with polarised hydrogen and charge response"
+    };
+    let below = if motion.one_sided() {
+        format!("the {} form", motion.symmetric_word())
+    } else if evidence.way == Way::Torsion {
+        "the next form".to_owned()
+    } else {
+        "the start".to_owned()
+    };
     out.push(match (leading.favours, leading.angle, leading.depth) {
-        (Favour::Distorted, Some(angle), Some(depth)) => format!(
-            "the sum with polarised hydrogen has its minimum at {angle:.0}°, {depth:.2} eV below the {} form",
-            motion.symmetric_word()
-        ),
-        (Favour::Symmetric, ..) => {
-            format!("the sum with polarised hydrogen has its minimum at the {} form", motion.symmetric_word())
+        (Favour::Distorted, Some(angle), Some(depth)) => {
+            format!(
+                "{name} has its minimum at {}, {depth:.2} eV below {below}",
+                place(motion, angle)
+            )
         }
-        _ => "the sum with polarised hydrogen falls to the end of the range without a minimum".to_owned(),
+        (form @ (Favour::Symmetric | Favour::Opposite), _, Some(depth)) if !motion.one_sided() => {
+            format!(
+                "{name} is lowest at the {} form, {depth:.2} eV below {below}",
+                form.word(motion)
+            )
+        }
+        (Favour::Symmetric, ..) => {
+            format!(
+                "{name} has its minimum at the {} form",
+                motion.symmetric_word()
+            )
+        }
+        (_, _, Some(_)) => format!("{name} gives two forms within {FLAT_EV} eV"),
+        _ => format!("{name} falls to the end of the range without a minimum"),
     });
     let frontier = &verdict.frontier;
     let reference = motion.angle(motion.reference());
-    if frontier.line.is_some() {
+    if !verdict.frontier_votes {
+        // Shown as an argument; it decides nothing here.
+    } else if frontier.line.is_some() {
         out.push(format!(
             "the frontier line {} ({} electron{}) {} by {:.2} eV from the {} form to {reference:.0}°",
             frontier.label,
@@ -60,7 +95,13 @@ fn undecided(doubt: Doubt) -> &'static str {
         }
         Doubt::FrontierAgainstSum => "undecided: the frontier line speaks against the sums",
         Doubt::Split => {
-            "undecided: less than two thirds of the perturbed curves agree and no second argument settles it"
+            "undecided: too few of the perturbed curves agree and no second argument settles it"
+        }
+        Doubt::OtherForm => {
+            "undecided: a see-saw (one pair of ligands in line, one lone pair) is neither of the two forms"
+        }
+        Doubt::MajorityAgainstLeading => {
+            "undecided: most perturbed curves are against the leading sum, and no line speaks for them"
         }
     }
 }
@@ -91,10 +132,10 @@ pub(crate) fn doubts(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String>
             reference.word(motion)
         ));
     }
-    let leading = &verdict.sums[0];
+    let leading = &verdict.sums[verdict.lead];
     if let Some(depth) = leading
         .depth
-        .filter(|&depth| depth > 1e-3 && depth < 4.0 * FLAT_EV)
+        .filter(|&depth| motion.one_sided() && depth > 1e-3 && depth < 4.0 * FLAT_EV)
     {
         let small = if depth < FLAT_EV {
             "below"
@@ -119,6 +160,40 @@ pub(crate) fn doubts(verdict: &ShapeVerdict, evidence: &Evidence) -> Vec<String>
         ));
     }
     let (constant, weighted) = verdict.support.by_form;
+    match motion.kind {
+        MotionKind::Squash => out.push(
+            verdict.see_saw.map_or_else(
+                || "only the path between tetrahedral and square-planar is judged".to_owned(),
+                |below| {
+                    format!(
+                        "the see-saw form (one pair in line) lies {below:.2} eV lower than anything on the \
+                         path between tetrahedral and square-planar"
+                    )
+                },
+            ),
+        ),
+        MotionKind::Twist => out.push(
+            "bond angles stay during the turn; barriers of a few hundredths of an eV are beyond the method"
+                .to_owned(),
+        ),
+        MotionKind::Ends => out.push("only trans bending is looked at, not cis".to_owned()),
+        MotionKind::Free(orbend_structure::CoordinateKind::Stretch) => {
+            out.push("the sum of level energies gives no bond lengths".to_owned());
+        }
+        _ => {}
+    }
+    if !motion.frontier_votes() {
+        out.push(
+            "the score on species of known shape covers bends and pyramids, not this motion"
+                .to_owned(),
+        );
+    }
+    if verdict.support.restless > 0.1 {
+        out.push(format!(
+            "in {} of the perturbed curves with charge response the charges do not come to rest everywhere",
+            percent(verdict.support.restless)
+        ));
+    }
     if (constant - weighted).abs() > 0.25 {
         out.push(format!(
             "the two coupling forms differ: {} of the constant and {} of the weighted curves are {}",
@@ -212,6 +287,15 @@ fn second_order_jahn_teller(verdict: &ShapeVerdict) -> bool {
             .all(|&ligand| plan.molecule.elements[ligand].number() == 1)
         && plan.electrons().total() == 7
         && plan.molecule.elements[verdict.centre.atom].period() >= 3
+}
+
+/// A value of the coordinate with its unit.
+fn place(motion: Motion, value: f64) -> String {
+    if motion.kind == MotionKind::Free(orbend_structure::CoordinateKind::Stretch) {
+        format!("{value:.2} Å")
+    } else {
+        format!("{value:.0}°")
+    }
 }
 
 fn percent(share: f64) -> String {

@@ -441,13 +441,17 @@ impl Setting<'_> {
             Motion::Twist { b, c, .. } => !b.atoms.is_empty() && !c.atoms.is_empty(),
             Motion::Pyramid { .. } => false,
         });
-        let mut text = format!("{}: {} move", coordinate.name(), names(chosen(true)));
+        let verb = |atoms: &Vec<usize>| if atoms.len() == 1 { "s" } else { "" };
+        let moving: Vec<usize> = chosen(true);
+        let s = verb(&moving);
+        let mut text = format!("{}: {} move{s}", coordinate.name(), names(moving));
         if halves {
             text.push_str(" (both arms by half)");
         }
-        let still = names(chosen(false));
+        let still: Vec<usize> = chosen(false);
         if !still.is_empty() {
-            text.push_str(&format!(", {still} stay"));
+            let s = verb(&still);
+            text.push_str(&format!(", {} stay{s}", names(still)));
         }
         if !partners.is_empty() {
             let words: Vec<String> = partners.iter().map(|atoms| atoms_text(atoms)).collect();
