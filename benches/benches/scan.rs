@@ -10,7 +10,7 @@ use std::hint::black_box;
 
 use criterion::{BatchSize, Criterion, Throughput, criterion_group, criterion_main};
 use orbend_scan::{Request, Sweep};
-use orbend_structure::{Coordinate, CoordinateKind, Formula, ideal_geometry};
+use orbend_structure::{Coordinate, CoordinateKind, Element, Formula, Molecule, ideal_geometry};
 
 fn request(formula: &str, kind: CoordinateKind, coordinate: &str) -> Request {
     let formula = Formula::parse(formula).expect("formula");
@@ -70,5 +70,23 @@ fn sweeps(criterion: &mut Criterion) {
     });
 }
 
-criterion_group!(benches, points, sweeps);
+/// Labels of a single geometry of D6h: its group, adapted functions, energies and names.
+fn benzene(criterion: &mut Criterion) {
+    let mut positions = Vec::new();
+    for radius in [1.397, 2.481] {
+        for k in 0..6 {
+            let angle = std::f64::consts::FRAC_PI_3 * f64::from(k);
+            positions.push([radius * angle.cos(), radius * angle.sin(), 0.0]);
+        }
+    }
+    let elements = ["C"; 6].into_iter().chain(["H"; 6]);
+    let elements = elements.map(|symbol| Element::from_symbol(symbol).expect("element"));
+    let molecule = Molecule::new(elements.collect(), positions, 0, None, String::new());
+    let request = Request::new(molecule.expect("molecule"));
+    criterion.bench_function("levels of benzene, plan and run", |bencher| {
+        bencher.iter(|| black_box(request.run().expect("levels")));
+    });
+}
+
+criterion_group!(benches, points, sweeps, benzene);
 criterion_main!(benches);

@@ -6,6 +6,8 @@
     reason = "a failed expectation in a check is its message"
 )]
 
+use std::collections::BTreeMap;
+
 use orbend_structure::{Element, Molecule, XyzOptions, read_xyz};
 use serde::Deserialize;
 
@@ -14,13 +16,36 @@ struct Table {
     records: Vec<Record>,
 }
 
-#[derive(Deserialize)]
-struct Record {
-    name: String,
-    elements: Vec<String>,
-    positions_angstrom: Vec<[f64; 3]>,
+/// A geometry of a reference table and what the table says of it.
+#[derive(Debug, Deserialize)]
+pub struct Record {
+    /// Name, where it has one.
     #[serde(default)]
-    charge: i32,
+    pub name: String,
+    /// Plain Schoenflies symbol.
+    pub group: String,
+    /// Element symbols.
+    pub elements: Vec<String>,
+    /// Positions, Å.
+    pub positions_angstrom: Vec<[f64; 3]>,
+    /// Charge.
+    #[serde(default)]
+    pub charge: i32,
+    /// How often each irrep occurs, where that was counted.
+    #[serde(default)]
+    pub irreps: BTreeMap<String, usize>,
+    /// Number of operations, where it is given.
+    pub order: Option<usize>,
+}
+
+/// The geometries of a table of `tests/reference` (its JSON text).
+///
+/// # Panics
+/// Not such a table.
+#[must_use]
+pub fn records(json: &str) -> Vec<Record> {
+    let table: Table = serde_json::from_str(json).expect("a table");
+    table.records
 }
 
 fn elements<S: AsRef<str>>(symbols: &[S]) -> Vec<Element> {
@@ -66,8 +91,7 @@ pub fn named(text: &str) -> Molecule {
         Some(("species", name)) => (name, include_str!("../reference/symmetric_species.json")),
         _ => panic!("{text}: no such kind of geometry"),
     };
-    let table: Table = serde_json::from_str(json).expect("a table");
-    let record = table.records.into_iter().find(|record| record.name == name);
+    let record = records(json).into_iter().find(|record| record.name == name);
     let record = record.unwrap_or_else(|| panic!("{text}: not in the table"));
     Molecule::new(
         elements(&record.elements),

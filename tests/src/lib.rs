@@ -6,7 +6,7 @@ mod geometry;
 mod invariants;
 
 pub use engine::{ElementValues, Matrices, energies, matrices, set_of};
-pub use geometry::{atoms, file, moved, named, random_motion, ring};
+pub use geometry::{Record, atoms, file, moved, named, random_motion, records, ring};
 pub use invariants::{Residuals, check_point};
 
 use std::path::{Path, PathBuf};

@@ -9,25 +9,8 @@
 
 use std::collections::BTreeMap;
 
+use orbend_checks::{Record, records};
 use orbend_symmetry::{Nucleus, OrbitalShell, PointGroup, find};
-use serde::Deserialize;
-
-#[derive(Deserialize)]
-struct Table {
-    records: Vec<Record>,
-}
-
-#[derive(Deserialize)]
-struct Record {
-    #[serde(default)]
-    name: String,
-    group: String,
-    elements: Vec<String>,
-    positions_angstrom: Vec<[f64; 3]>,
-    #[serde(default)]
-    irreps: BTreeMap<String, usize>,
-    order: Option<usize>,
-}
 
 fn group_of(record: &Record, tolerance: f64) -> PointGroup {
     let mut kinds: Vec<&String> = record.elements.iter().collect();
@@ -49,9 +32,9 @@ fn group_of(record: &Record, tolerance: f64) -> PointGroup {
 }
 
 fn compare(text: &str, tolerance: f64) {
-    let table: Table = serde_json::from_str(text).expect("table");
+    let records = records(text);
     let mut wrong = Vec::new();
-    for record in &table.records {
+    for record in &records {
         let found = group_of(record, tolerance);
         if found.name != record.group {
             wrong.push(format!(
@@ -71,7 +54,7 @@ fn compare(text: &str, tolerance: f64) {
         wrong.is_empty(),
         "{} of {}: {wrong:#?}",
         wrong.len(),
-        table.records.len()
+        records.len()
     );
 }
 
@@ -90,8 +73,8 @@ fn groups_known_by_construction() {
 fn irreps_counted_from_unmoved_atoms() {
     let text = include_str!("../reference/symmetric_species.json");
     compare(text, 0.001);
-    let table: Table = serde_json::from_str(text).expect("table");
-    for record in &table.records {
+    let records = records(text);
+    for record in &records {
         let group = group_of(record, 0.001);
         let mut shells = Vec::new();
         for (atom, element) in record.elements.iter().enumerate() {

@@ -59,6 +59,7 @@ pub(crate) struct LevelsArguments {
     pub(crate) model: ModelArguments,
     #[command(flatten)]
     pub(crate) output: OutputArguments,
+<<<<<<< HEAD
     /// Which vibrations the geometry gives in to, each tried by a short sweep
     #[arg(long)]
     pub(crate) distortions: bool,
@@ -66,9 +67,29 @@ pub(crate) struct LevelsArguments {
     /// the interaction diagram then
     #[arg(long, value_name = "FRAGMENTS")]
     pub(crate) fragments: Option<String>,
+=======
+    #[command(flatten)]
+    pub(crate) surface: SurfaceArguments,
+>>>>>>> main
     /// Threads; the output is the same bytes for every number
     #[arg(long, value_name = "N")]
     pub(crate) jobs: Option<usize>,
+}
+
+#[derive(Debug, Args)]
+#[command(next_help_heading = "Surface")]
+pub(crate) struct SurfaceArguments {
+    /// Surfaces of these orbitals, side by side, in a .glb file: 5a1,6e or 6e:1 for one of a set
+    #[arg(long, value_name = "LABELS", value_delimiter = ',')]
+    pub(crate) surface: Vec<String>,
+    /// Share of the density that a surface encloses, 0.01 to 0.99
+    #[arg(
+        long,
+        value_name = "SHARE",
+        default_value_t = 0.8,
+        allow_hyphen_values = true
+    )]
+    pub(crate) share: f64,
 }
 
 #[derive(Debug, Args)]
@@ -253,6 +274,17 @@ pub(crate) struct CoordinateArguments {
     /// Points of the path to another geometry
     #[arg(long, value_name = "N", default_value_t = 41)]
     pub(crate) steps: usize,
+    /// Atoms of this geometry and what they become in that of --toward: 7=10,8=9 [default: all matched]
+    #[arg(
+        long,
+        value_name = "ATOM=ATOM,…",
+        requires = "toward",
+        value_delimiter = ','
+    )]
+    pub(crate) map: Vec<String>,
+    /// Match atoms so that the path to the other geometry keeps this point group: C2, Cs …
+    #[arg(long, value_name = "GROUP", requires = "toward")]
+    pub(crate) keep: Option<String>,
     /// Along the displacement vectors of an extended XYZ file: amplitudes -1..1:0.1
     #[arg(long, value_name = "FROM..TO:STEP", allow_hyphen_values = true)]
     pub(crate) along_mode: Option<String>,
@@ -305,7 +337,7 @@ pub(crate) struct OutputArguments {
     /// The result document on standard output, alone
     #[arg(long)]
     pub(crate) json: bool,
-    /// Write a file; the ending chooses .json, .csv, .svg, .png, .pdf, .html (a page) or .xyz (may be repeated)
+    /// Write a file; the ending chooses .json, .csv, .svg, .png, .pdf, .html (a page), .glb (surfaces) or .xyz (may be repeated)
     #[arg(long, value_name = "FILE")]
     pub(crate) out: Vec<PathBuf>,
     /// Which numbering labels show first; the document always has both
@@ -337,6 +369,9 @@ pub(crate) struct FigureArguments {
     /// Contour pictures of the orbitals beside the labels (ψ = ±0.05 bohr^(-3/2); filled is positive)
     #[arg(long)]
     pub(crate) orbitals: bool,
+    /// What a line of the figure keeps: its place in the energy order of its irrep, or its character
+    #[arg(long, value_enum, default_value_t = FollowChoice::Energy)]
+    pub(crate) follow: FollowChoice,
     /// Only these lines in the figure, by label: 4a1,2b2
     #[arg(long, value_name = "LABELS", value_delimiter = ',')]
     pub(crate) lines: Vec<String>,
@@ -394,6 +429,14 @@ pub(crate) enum WidthChoice {
     Page,
     /// for a talk
     Slide,
+}
+
+#[derive(Clone, Copy, Debug, ValueEnum)]
+pub(crate) enum FollowChoice {
+    /// lines of one irrep repel
+    Energy,
+    /// lines of one irrep pass each other where they exchange character
+    Character,
 }
 
 #[derive(Clone, Copy, Debug, ValueEnum)]

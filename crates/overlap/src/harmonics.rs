@@ -4,7 +4,7 @@
 //! p: z, x, y; d: z², xz, yz, x²−y², xy; f: z³, xz², yz², z(x²−y²), xyz, x(x²−3y²), y(3x²−y²).
 //! No Condon–Shortley sign: p lobes are positive along the positive axes.
 
-use crate::angular::solid_harmonics;
+use crate::angular::{solid_harmonics, tangential_gradient};
 use crate::coupling::Coupling;
 use crate::shell::MAX_L;
 
@@ -62,6 +62,32 @@ pub fn evaluate(l: u8, vector: [f64; 3]) -> [f64; 7] {
     let mut out = [0.0; 7];
     for (target, value) in out.iter_mut().zip(&values[l * l..(l + 1) * (l + 1)]) {
         *target = norm * value[0];
+    }
+    out
+}
+
+/// The gradients along the unit sphere of the harmonics that [`evaluate`] gives: r ∇Y at `vector`
+/// (any length but zero), Cartesian components x, y, z. Entries beyond 2l+1 are zero; all are NaN for
+/// l > 3. From the gradients of solid harmonics (Hobson 1931).
+pub fn evaluate_tangential(l: u8, vector: [f64; 3]) -> [[f64; 3]; 7] {
+    if l > MAX_L {
+        return [[f64::NAN; 3]; 7];
+    }
+    let [x, y, z] = vector;
+    let length = (x * x + y * y + z * z).sqrt();
+    let mut out = [[0.0; 3]; 7];
+    if l == 0 || length == 0.0 {
+        return out;
+    }
+    let unit = vector.map(|c| [c / length]);
+    let l = usize::from(l);
+    let mut values = [[0.0; 1]; 16];
+    solid_harmonics(&unit, l, &mut values);
+    let mut gradients = [[[0.0; 1]; 16]; 3];
+    tangential_gradient(&unit, l, &values, &mut gradients);
+    let norm = ((2 * l + 1) as f64 / (4.0 * core::f64::consts::PI)).sqrt();
+    for (index, target) in out.iter_mut().take(2 * l + 1).enumerate() {
+        *target = core::array::from_fn(|axis| norm * gradients[axis][l * l + index][0]);
     }
     out
 }

@@ -71,19 +71,17 @@ pub fn sweep_document(
     // With a large group the irreps say which line is which.
     let group = plan.path_group();
     let little = single && !group.linear && group.order() <= 2 && sweep.points() > 1;
-    let followed = if little {
-        sweep.followed()?
-    } else {
-        Vec::new()
-    };
+    let crossings = sweep.crossings()?;
+    let followed = followed_records(sweep, &sweep.followed(&crossings)?)?;
     let mut lines = if single {
         Some(line_records(sweep)?)
     } else {
         None
     };
-    let followed = followed_records(sweep, &followed)?;
-    for (line, record) in lines.iter_mut().flatten().zip(&followed) {
-        line.certificate = Some(record.certificate.clone());
+    if little {
+        for (line, record) in lines.iter_mut().flatten().zip(&followed) {
+            line.certificate = Some(record.certificate.clone());
+        }
     }
     Ok(SweepDocument {
         schema: SweepSchema,
@@ -97,9 +95,9 @@ pub fn sweep_document(
         minimum: if single { sum_minimum(&points) } else { None },
         points,
         lines,
-        followed: little.then_some(followed),
+        followed: single.then_some(followed),
         crossings: if single {
-            Some(crossing_records(sweep)?)
+            Some(crossing_records(sweep, &crossings)?)
         } else {
             None
         },

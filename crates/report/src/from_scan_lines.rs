@@ -1,12 +1,11 @@
 //! Crossings and followed lines of a scan as records.
 
-use orbend_scan::{MeetingKind, Sweep, SweepPlan};
+use orbend_scan::{Crossing, MeetingKind, Sweep, SweepPlan};
 
 use crate::document::{
     Certificate, CertificateInterval, CertificateKind, CrossingKind, CrossingRecord,
     CrossingSearch, FollowedRecord, NotFinite, Number,
 };
-use crate::from_scan::FromScanError;
 
 pub(crate) fn followed_records(
     sweep: &Sweep,
@@ -29,25 +28,24 @@ pub(crate) fn followed_records(
                     overlap: Some(Number::new(overlap)?),
                 })
             };
-            let mut intervals = vec![interval(
-                first,
-                last,
-                CertificateKind::Overlap,
-                followed.overlap,
-            )?];
-            for unclear in &followed.ambiguous {
-                let kind = CertificateKind::Ambiguous;
-                intervals.push(interval(unclear.from, unclear.to, kind, unclear.overlap)?);
+            let mut intervals = Vec::new();
+            if let Some(overlap) = followed.overlap {
+                intervals.push(interval(first, last, CertificateKind::Overlap, overlap)?);
             }
+            for (stretches, kind) in [
+                (&followed.exchanges, CertificateKind::Overlap),
+                (&followed.ambiguous, CertificateKind::Ambiguous),
+            ] {
+                for stretch in stretches {
+                    intervals.push(interval(stretch.from, stretch.to, kind, stretch.overlap)?);
+                }
+            }
+            let weakest = intervals.iter().map(|interval| interval.kind).max();
             Ok(FollowedRecord {
                 id: line as u32,
                 lines: followed.lines.iter().map(|&line| line as u32).collect(),
                 certificate: Certificate {
-                    kind: if followed.ambiguous.is_empty() {
-                        CertificateKind::Overlap
-                    } else {
-                        CertificateKind::Ambiguous
-                    },
+                    kind: weakest.unwrap_or(CertificateKind::Symmetry),
                     intervals,
                 },
             })
@@ -55,11 +53,13 @@ pub(crate) fn followed_records(
         .collect()
 }
 
-pub(crate) fn crossing_records(sweep: &Sweep) -> Result<Vec<CrossingRecord>, FromScanError> {
+pub(crate) fn crossing_records(
+    sweep: &Sweep,
+    crossings: &[Crossing],
+) -> Result<Vec<CrossingRecord>, NotFinite> {
     let lines = sweep.plan().lines();
-    sweep
-        .crossings()?
-        .into_iter()
+    crossings
+        .iter()
         .map(|crossing| {
             let (a, b) = crossing.lines;
             let number = |value: Option<f64>| value.map(Number::new).transpose();

@@ -8,6 +8,7 @@
 //! - [`sweep_figure`], [`levels_figure`]: SVG with real text.
 //! - [`figure_png`], [`figure_pdf`], [`outline_text`]: the same as an image, a page, and without fonts.
 //! - [`sweep_page`]: one HTML file with the figure, a slider and the orbitals.
+//! - [`surfaces_glb`]: orbital surfaces as glTF binary.
 //! - [`levels_text`], [`sweep_text`], [`params_text`]: text for a person at a terminal.
 //!
 //! It is not for: physics, symmetry, following lines, or writing to files and streams.
@@ -30,10 +31,12 @@ mod from_scan_lines;
 mod from_scan_orbitals;
 mod from_scan_pictures;
 mod from_scan_populations;
+mod from_scan_surfaces;
 mod from_scan_why;
 mod from_shape;
 mod lettering;
 mod page;
+mod scene;
 #[cfg(test)]
 mod synthetic;
 mod text;
@@ -44,8 +47,13 @@ pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
 pub use export::{ImageError, figure_pdf, figure_png, outline_text};
 pub use figure::{
+<<<<<<< HEAD
     ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering,
     OrbitalPicture, Support, Theme, interaction_figure, levels_figure, shape_figure, sweep_figure,
+=======
+    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Follow,
+    Numbering, OrbitalPicture, Support, Theme, levels_figure, shape_figure, sweep_figure,
+>>>>>>> main
 };
 pub use from_distortion::distortions_record;
 pub use from_fragments::fragments_record;
@@ -55,10 +63,17 @@ pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
 pub use from_scan_bonds::add_populations;
 pub use from_scan_orbitals::sweep_document_with_orbitals;
 pub use from_scan_pictures::end_pictures;
+pub use from_scan_surfaces::{SurfaceChoiceError, named_surfaces};
 pub use from_scan_why::why_record;
 pub use from_shape::shape_document;
 pub use page::{PageError, sweep_page};
+<<<<<<< HEAD
 pub use text::{
     TextOptions, levels_text, params_text, passport_text, plan_markdown, plan_text, shape_text,
     sweep_fragments_text, sweep_text,
+=======
+pub use scene::{PhaseMesh, SceneError, SurfaceRecord, surfaces_glb};
+pub use text::{
+    TextOptions, levels_text, params_text, passport_text, shape_text, surfaces_text, sweep_text,
+>>>>>>> main
 };

@@ -105,9 +105,29 @@ pub enum ScanError {
     /// No point group could be assigned.
     #[error(transparent)]
     Symmetry(#[from] orbend_symmetry::SymmetryError),
+    /// A surface that cannot be made.
+    #[error(transparent)]
+    Surface(#[from] crate::surface::SurfaceError),
     /// The electrons do not fit.
     #[error(transparent)]
     Filling(#[from] FillingError),
+    /// No mapping of atoms gives a path that keeps the group asked for.
+    #[error(
+        "no mapping of the atoms gives a path that keeps {wanted}; the mappings that change no further bonds keep {}",
+        kept.join(", ")
+    )]
+    Keep {
+        /// The group asked for.
+        wanted: String,
+        /// The groups that can be kept.
+        kept: Vec<String>,
+    },
+    /// A pair of atoms that cannot be joined.
+    #[error("{cause}; name an atom of the start and one of the same element of the end, each once")]
+    Pair {
+        /// Which one and why.
+        cause: String,
+    },
     /// The overlap matrix is singular: two functions say the same.
     #[error(
         "at {at} the overlap matrix is nearly singular (smallest eigenvalue {eigenvalue:.1e}): atoms {first} and {second} nearly coincide for this basis; move them apart or leave that range out"

@@ -11,6 +11,7 @@
 mod character;
 mod crossing;
 mod error;
+mod field;
 mod filling;
 mod follow;
 mod line;
@@ -25,22 +26,27 @@ pub mod shape;
 mod solve;
 mod special;
 mod stretch;
+mod surface;
 mod sweep;
+mod toward;
 
 pub use crossing::{
     AVOIDED_GAP_EV, BATCH, Crossing, LevelModel, Meeting, MeetingKind, SMALLEST_EXCHANGE, meetings,
     resolution,
 };
 pub use error::{FillingError, ScanError};
+pub use field::OrbitalField;
 pub use filling::{Configuration, DEGENERACY_EV, Electrons, Filling};
-pub use follow::{Ambiguity, CLEAR_OVERLAP, Followed};
+pub use follow::{CLEAR_EXCHANGE, CLEAR_OVERLAP, Evidence, Followed};
 pub use line::LineHead;
 pub use naming::Name;
 pub use orbitals::{Orbitals, Populations};
 pub use plan::{Notice, SweepPlan};
-pub use plane::{OrbitalPicture, Plane, PlaneValues, orbital_value};
+pub use plane::{OrbitalPicture, Plane, PlaneValues};
 pub use point_levels::PointLevels;
 pub use request::{Numbering, Request, Route, symmetrized};
 pub use special::SpecialPoint;
 pub use stretch::Stretch;
+pub use surface::{Mesh, OrbitalSurface, SURFACE_SHARES, SurfaceError, orbital_surface};
 pub use sweep::{Level, Point, Sweep};
+pub use toward::MappingChoice;

@@ -308,7 +308,8 @@ pub(crate) fn nuclei(elements: &[Element], positions: &[[f64; 3]]) -> Vec<Nucleu
         .collect()
 }
 
-fn kinds(elements: &[Element]) -> Vec<u32> {
+/// The nuclei as numbers that tell them apart.
+pub(crate) fn kinds(elements: &[Element]) -> Vec<u32> {
     elements
         .iter()
         .map(|element| u32::from(element.number()))

@@ -1,10 +1,10 @@
 //! Orbitals on a plane: which plane shows most of one, and its values there.
 
 use orbend_hamiltonian::Basis;
-use orbend_overlap::harmonics;
-use orbend_structure::{Angstrom, Bohr, BondGraph, Molecule};
+use orbend_structure::{BondGraph, Molecule};
 
 use crate::error::ScanError;
+use crate::field::OrbitalField;
 use crate::sweep::Sweep;
 
 /// A plane through the molecule, in Å. The three directions are orthonormal and right-handed.
@@ -33,37 +33,6 @@ pub struct PlaneValues {
     pub values: Vec<f64>,
 }
 
-/// The value of Σ cᵢχᵢ (bohr^(−3/2)) at a point in Å, for Slater functions
-/// χ = Σ_t c_t (2ζ_t)^(n+½) (2n)!^(−½) r^(n−1) e^(−ζ_t r) Y (J. C. Slater, Phys. Rev. 36, 57 (1930)).
-pub fn orbital_value(
-    basis: &Basis,
-    coefficients: &[f64],
-    positions: &[[f64; 3]],
-    at: [f64; 3],
-) -> f64 {
-    let mut sum = 0.0;
-    for shell in &basis.shells {
-        let centre = positions[shell.atom];
-        let away: [f64; 3] = core::array::from_fn(|k| Bohr::from(Angstrom(at[k] - centre[k])).0);
-        let r = away.iter().map(|c| c * c).sum::<f64>().sqrt();
-        let n = i32::from(shell.n);
-        let mut radial = 0.0;
-        for &(zeta, coefficient) in &shell.terms {
-            let norm = power(2.0 * zeta, n) * (2.0 * zeta / factorial(2 * n)).sqrt();
-            radial += coefficient * norm * libm::exp(-zeta * r);
-        }
-        radial *= power(r, n - 1);
-        let angular = harmonics::evaluate(shell.l, away);
-        let size = 2 * usize::from(shell.l) + 1;
-        let own = &coefficients[shell.first..shell.first + size];
-        // The direction at the nucleus is arbitrary: only s is not zero there.
-        if r > 0.0 || shell.l == 0 {
-            sum += radial * own.iter().zip(&angular).map(|(c, y)| c * y).sum::<f64>();
-        }
-    }
-    sum
-}
-
 impl PlaneValues {
     /// Values of an orbital around the origin of a plane.
     fn new(
@@ -71,6 +40,7 @@ impl PlaneValues {
         plane: &Plane,
         (half, points): (f64, usize),
     ) -> Self {
+        let field = OrbitalField::new(basis, coefficients, positions);
         let step = 2.0 * half / (points.max(2) - 1) as f64;
         let mut values = Vec::with_capacity(points * points);
         for row in 0..points {
@@ -79,7 +49,7 @@ impl PlaneValues {
                 let at = core::array::from_fn(|k| {
                     plane.origin[k] + across * plane.right[k] + upward * plane.up[k]
                 });
-                values.push(orbital_value(basis, coefficients, positions, at));
+                values.push(field.value(at));
             }
         }
         Self {
@@ -325,47 +295,11 @@ fn cross(a: [f64; 3], b: [f64; 3]) -> [f64; 3] {
     ]
 }
 
-fn factorial(k: i32) -> f64 {
-    (2..=k).fold(1.0, |product, factor| product * f64::from(factor))
-}
-
-fn power(x: f64, k: i32) -> f64 {
-    (0..k).fold(1.0, |product, _| product * x)
-}
-
 #[cfg(test)]
 mod tests {
-    use orbend_hamiltonian::{Method, ParameterSet};
-    use orbend_structure::Element;
+    use orbend_structure::{Angstrom, Bohr};
 
     use super::*;
-
-    #[test]
-    fn a_2p_orbital_has_its_closed_form() {
-        // (ζ⁵/π)^½ z e^(−ζr), the normalised 2p function (Slater 1930).
-        let fluorine = Element::from_symbol("F").unwrap();
-        let basis = Basis::new(&[fluorine], &ParameterSet::default(), &Method::default()).unwrap();
-        let shell = basis.shells.iter().find(|shell| shell.l == 1).unwrap();
-        let zeta = shell.terms[0].0;
-        let mut coefficients = vec![0.0; basis.functions.len()];
-        coefficients[shell.first] = 1.0;
-        for at in [
-            [0.0, 0.0, 0.4],
-            [0.3, -0.2, -0.7],
-            [0.0, 0.0, 0.0],
-            [1.0, 0.0, 0.0],
-        ] {
-            let place = at.map(|c| Bohr::from(Angstrom(c)).0);
-            let r = dot(place, place).sqrt();
-            let expected =
-                (zeta.powi(5) / core::f64::consts::PI).sqrt() * place[2] * (-zeta * r).exp();
-            let value = orbital_value(&basis, &coefficients, &[[0.0; 3]], at);
-            assert!(
-                (value - expected).abs() < 1e-13,
-                "{at:?}: {value} {expected}"
-            );
-        }
-    }
 
     /// ∫ψ² over a cubic lattice by the midpoint rule: coefficients come from C†SC = 1 with the closed
     /// forms of the overlaps, so that values and overlaps check each other.
@@ -383,12 +317,13 @@ mod tests {
         let place = |k: usize| (k as f64 + 0.5) * step - half;
         for line in 0..sweep.plan().lines().len() {
             let row = orbitals.coefficients.row(line).to_vec();
+            let field = OrbitalField::new(sweep.plan().basis(), &row, &positions);
             let mut sum = 0.0;
             for x in 0..count {
                 for y in 0..count {
                     for z in 0..count {
                         let at = [place(x), place(y), place(z)];
-                        let value = orbital_value(sweep.plan().basis(), &row, &positions, at);
+                        let value = field.value(at);
                         sum += value * value;
                     }
                 }

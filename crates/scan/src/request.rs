@@ -7,6 +7,7 @@ use crate::error::ScanError;
 use crate::filling::Configuration;
 use crate::plan::{SweepPlan, nuclei};
 use crate::sweep::Sweep;
+use crate::toward::{MappingChoice, toward};
 
 /// Which numbering a user's labels follow.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
@@ -45,6 +46,8 @@ pub enum Route {
         other: Box<Molecule>,
         /// Points, both ends included.
         points: usize,
+        /// Which atom becomes which, where the user says more than the files.
+        choice: MappingChoice,
     },
     /// Along a displacement vector per atom (Å).
     AlongMode {
@@ -70,9 +73,13 @@ impl Route {
             Self::Together => PathPlan::together(molecule, coordinates, equivalences)?,
             Self::Table { rows } => PathPlan::following(molecule, coordinates, rows, equivalences)?,
             Self::Frames { frames, values } => PathPlan::frames(frames, values)?,
-            Self::Toward { other, points } => {
+            Self::Toward {
+                other,
+                points,
+                choice,
+            } => {
                 let (other, ..) = symmetrized(other, Angstrom(tolerance))?;
-                PathPlan::toward(molecule, &other, *points, None)?.0
+                toward(molecule, &other, *points, choice, tolerance)?
             }
             Self::AlongMode {
                 displacement,

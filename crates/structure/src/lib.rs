@@ -30,7 +30,9 @@ pub use ideal::{
 };
 pub use measure::measure;
 pub use molecule::{LARGEST_COORDINATE, Molecule, MoleculeError, SMALLEST_DISTANCE};
-pub use path::{Alignment, Axis, FrameValues, PathError, PathPlan, TowardReport, align};
+pub use path::{
+    Alignment, Axis, FrameValues, PathError, PathPlan, TowardReport, align, rotation_of_form,
+};
 pub use range::{LARGEST_POINT_COUNT, Range, RangeError};
 pub use units::{
     Angstrom, BOHR_IN_ANGSTROM, Bohr, DEGREE_IN_RADIANS, Degrees, ElectronVolt, HARTREE_IN_EV,

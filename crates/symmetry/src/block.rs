@@ -33,6 +33,16 @@ impl Block {
         self.first.len()
     }
 
+    /// Levels of the block that stand for one set: the dimension in a `paired`
+    /// block, else 1.
+    pub fn levels_per_set(&self) -> usize {
+        if self.paired {
+            self.dimension.max(1)
+        } else {
+            1
+        }
+    }
+
     /// Number of rows: 1 + number of partner rows.
     pub fn row_count(&self) -> usize {
         1 + self.partners.len()

@@ -1,7 +1,5 @@
 //! Vectors and 3×3 matrices as plain arrays: rows first, `m[row][column]`.
 
-use nalgebra::{Matrix4, SymmetricEigen};
-
 /// A 3×3 matrix, row by row.
 pub type Matrix3 = [[f64; 3]; 3];
 
@@ -183,52 +181,7 @@ pub(crate) fn best_fit(
             }
         }
     }
-    let [[xx, xy, xz], [yx, yy, yz], [zx, zy, zz]] = s;
-    let n = Matrix4::new(
-        xx + yy + zz,
-        yz - zy,
-        zx - xz,
-        xy - yx,
-        yz - zy,
-        xx - yy - zz,
-        xy + yx,
-        zx + xz,
-        zx - xz,
-        xy + yx,
-        yy - xx - zz,
-        yz + zy,
-        xy - yx,
-        zx + xz,
-        yz + zy,
-        zz - xx - yy,
-    );
-    let eigen = SymmetricEigen::try_new(n, 1e-15, 1000)?;
-    let mut best = 0;
-    for k in 1..4 {
-        if eigen.eigenvalues[k] > eigen.eigenvalues[best] {
-            best = k;
-        }
-    }
-    let q = eigen.eigenvectors.column(best);
-    let length = q.norm();
-    let (w, x, y, z) = (q[0] / length, q[1] / length, q[2] / length, q[3] / length);
-    let rotation = [
-        [
-            w * w + x * x - y * y - z * z,
-            2.0 * (x * y - w * z),
-            2.0 * (x * z + w * y),
-        ],
-        [
-            2.0 * (x * y + w * z),
-            w * w - x * x + y * y - z * z,
-            2.0 * (y * z - w * x),
-        ],
-        [
-            2.0 * (x * z - w * y),
-            2.0 * (y * z + w * x),
-            w * w - x * x - y * y + z * z,
-        ],
-    ];
+    let rotation = orbend_structure::rotation_of_form(&s)?;
     Some(if proper {
         rotation
     } else {

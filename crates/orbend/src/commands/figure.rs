@@ -3,12 +3,12 @@
 use std::path::Path;
 
 use orbend_report::{
-    Document, ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering,
-    ShapeDocument, Theme, figure_pdf, figure_png, outline_text, read_document,
+    Document, ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Follow,
+    Numbering, ShapeDocument, Theme, figure_pdf, figure_png, outline_text, read_document,
 };
 
 use crate::arguments::{
-    EnergyUnitChoice, FigureArguments, NumberingChoice, ThemeChoice, WidthChoice,
+    EnergyUnitChoice, FigureArguments, FollowChoice, NumberingChoice, ThemeChoice, WidthChoice,
 };
 use crate::failure::Failure;
 
@@ -102,6 +102,10 @@ pub(crate) fn options(
             WidthChoice::Column => FigureWidth::Column,
             WidthChoice::Page => FigureWidth::Page,
             WidthChoice::Slide => FigureWidth::Slide,
+        },
+        follow: match arguments.follow {
+            FollowChoice::Energy => Follow::Energy,
+            FollowChoice::Character => Follow::Character,
         },
         theme: match arguments.theme {
             ThemeChoice::Light => Theme::Light,

@@ -1,9 +1,15 @@
 //! `orbend levels`: one geometry.
 
 use orbend_report::{
+<<<<<<< HEAD
     FigureOptions, distortions_record, fragments_record, interaction_figure, levels_csv,
     levels_document, levels_figure, levels_text, to_json,
+=======
+    FigureOptions, SurfaceChoiceError, levels_csv, levels_document, levels_figure, levels_text,
+    named_surfaces, surfaces_glb, surfaces_text, to_json,
+>>>>>>> main
 };
+use orbend_scan::SURFACE_SHARES;
 
 use orbend_scan::reasons::{Distortions, FragmentAnalysis};
 
@@ -19,7 +25,11 @@ use crate::write::write_stdout;
 
 pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     let output = &arguments.output;
-    let outputs = Outputs::check(&output.out, &["json", "csv", "svg", "png", "pdf", "xyz"])?;
+    let outputs = Outputs::check(
+        &output.out,
+        &["json", "csv", "svg", "png", "pdf", "glb", "xyz"],
+    )?;
+    check_surface(arguments, &outputs)?;
     let resolved = resolve(
         &arguments.geometry,
         Vec::new(),
@@ -30,6 +40,7 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
     let mut document = levels_document(&sweep, &provenance(&resolved.geometry, output.numbering))
         .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
+<<<<<<< HEAD
     if arguments.distortions {
         let distortions = in_pool(arguments.jobs, || Distortions::new(&resolved.request))?
             .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
@@ -42,10 +53,25 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
         document.fragments =
             Some(fragments_record(sweep.plan(), &analysis).map_err(Failure::document)?);
     }
+=======
+    let surfaces = in_pool(arguments.jobs, || {
+        named_surfaces(
+            &sweep,
+            &arguments.surface.surface,
+            figure::numbering(output.numbering),
+            arguments.surface.share,
+        )
+    })?
+    .map_err(|error| match error {
+        SurfaceChoiceError::Scan(error) => Failure::scan(&error),
+        other => Failure::from_library(other),
+    })?;
+>>>>>>> main
     outputs.write(|ending| {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
             "csv" => csv(|out| levels_csv(&document, out))?,
+            "glb" => surfaces_glb(&document, &surfaces).map_err(Failure::from_library)?,
             "xyz" => resolved.geometry.to_xyz().into_bytes(),
             _ => {
                 let options = FigureOptions {
@@ -66,6 +92,37 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     } else {
         let options = text_options(output.numbering);
         let start = geometry_text(&resolved.geometry, options.width);
-        write_stdout((start + &levels_text(&document, &options)).as_bytes())
+        let text = start + &levels_text(&document, &options) + &surfaces_text(&surfaces, &options);
+        write_stdout(text.as_bytes())
     }
+}
+
+/// Surfaces need a file and a file needs surfaces, with a share that can be enclosed.
+fn check_surface(arguments: &LevelsArguments, outputs: &Outputs<'_>) -> Result<(), Failure> {
+    let asked = &arguments.surface;
+    match (asked.surface.is_empty(), outputs.any(&["glb"])) {
+        (true, true) => {
+            return Err(Failure::request(
+                "a .glb file holds the surfaces of orbitals, but none is named",
+            )
+            .fix("name them: --surface 5a1"));
+        }
+        (false, false) => {
+            return Err(Failure::request(format!(
+                "--surface {}: there is no file to write it to",
+                asked.surface.join(",")
+            ))
+            .fix("add --out orbital.glb"));
+        }
+        _ => {}
+    }
+    // The lattice keeps its promise of the share in this range.
+    if !SURFACE_SHARES.contains(&asked.share) {
+        return Err(Failure::request(format!(
+            "--share {}: not a share of the density that a surface can enclose",
+            asked.share
+        ))
+        .fix("give a number from 0.01 to 0.99; 0.8 is the default"));
+    }
+    Ok(())
 }

@@ -2,7 +2,7 @@
 
 use std::path::Path;
 
-use orbend_scan::Route;
+use orbend_scan::{MappingChoice, Route};
 use orbend_structure::{Coordinate, CoordinateKind, FrameValues, Range};
 
 use crate::arguments::{CoordinateArguments, ModelArguments};
@@ -103,6 +103,10 @@ pub(crate) fn route(
         return Ok(Route::Toward {
             other: Box::new(end),
             points: arguments.steps,
+            choice: MappingChoice {
+                pairs: pairs(&arguments.map)?,
+                keep: arguments.keep.clone(),
+            },
         });
     }
     if let Some(text) = &arguments.along_mode {
@@ -129,6 +133,22 @@ pub(crate) fn route(
     }
     Err(Failure::request("no coordinate: a sweep needs something that moves")
         .fix("add for example --bend 2-1-3=90..180:2, --stretch, --twist, --pyramid, --toward FILE, or give a file of several geometries"))
+}
+
+/// `7=10`: atoms of the start and of the end, counted from 1.
+fn pairs(words: &[String]) -> Result<Vec<(usize, usize)>, Failure> {
+    let number = |word: &str| word.trim().parse::<usize>().ok()?.checked_sub(1);
+    words
+        .iter()
+        .map(|word| {
+            word.split_once('=')
+                .and_then(|(from, to)| Some((number(from)?, number(to)?)))
+                .ok_or_else(|| {
+                    Failure::request(format!("--map {word}: not a pair of atoms"))
+                        .fix("write an atom of this file, `=` and its atom in the other file, for example 7=10")
+                })
+        })
+        .collect()
 }
 
 fn parse_all(

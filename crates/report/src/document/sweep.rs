@@ -35,8 +35,9 @@ pub struct SweepDocument {
     /// Orbitals followed from point to point; left out on a grid.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub lines: Option<Vec<LineRecord>>,
-    /// The same lines followed by character (overlap of neighbouring points) instead of energy
-    /// order; left out where the symmetry of the path says which line is which.
+    /// The same orbitals followed by character instead of energy order: within an irrep a
+    /// character passes to the other line where an avoided crossing exchanges most of it; left out
+    /// on a grid.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub followed: Option<Vec<FollowedRecord>>,
     /// Crossings and avoided crossings; left out on a grid.

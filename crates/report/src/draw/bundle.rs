@@ -1,6 +1,7 @@
 //! Bundles: the lines of one degenerate set, drawn together.
 
 use crate::document::{CoordinateUnit, LineRecord, SweepDocument};
+use crate::figure::Follow;
 
 use super::curve::Curve;
 
@@ -9,6 +10,10 @@ use super::curve::Curve;
 pub(crate) struct Bundle {
     /// The lines' ids.
     pub(crate) ids: Vec<u32>,
+    /// The ids of the lines that it ends in: others where character is followed.
+    pub(crate) end_ids: Vec<u32>,
+    /// Where character is followed, the lines at every point.
+    path: Option<Vec<Vec<u32>>>,
     /// Irrep of the path group, plain.
     pub(crate) irrep: String,
     /// Plain label in the chosen numbering.
@@ -44,6 +49,14 @@ impl Bundle {
         ))
     }
 
+    /// Whether it runs along the line `id` at a point.
+    pub(crate) fn holds(&self, id: u32, point: usize) -> bool {
+        match self.path.as_ref().and_then(|path| path.get(point)) {
+            Some(here) => here.contains(&id),
+            None => self.ids.contains(&id),
+        }
+    }
+
     /// Whether any point has electrons in it.
     pub(crate) fn ever_occupied(&self) -> bool {
         self.occupations.iter().any(|electrons| *electrons > 1e-6)
@@ -69,7 +82,7 @@ pub(crate) fn in_degrees(document: &SweepDocument) -> bool {
 }
 
 /// All bundles of a sweep in the order of the document's lines.
-pub(crate) fn bundles(document: &SweepDocument, core: bool) -> Vec<Bundle> {
+pub(crate) fn bundles(document: &SweepDocument, core: bool, follow: Follow) -> Vec<Bundle> {
     let lines = document.lines.as_deref().unwrap_or_default();
     let mut sets: Vec<Vec<&LineRecord>> = Vec::new();
     for line in lines {
@@ -85,18 +98,31 @@ pub(crate) fn bundles(document: &SweepDocument, core: bool) -> Vec<Bundle> {
     }
     let xs = abscissae(document);
     sets.iter()
-        .map(|set| bundle(document, set, &xs, core))
+        .map(|set| bundle(document, set, &xs, (core, follow)))
         .collect()
 }
 
-fn bundle(document: &SweepDocument, set: &[&LineRecord], xs: &[f64], core: bool) -> Bundle {
+fn bundle(
+    document: &SweepDocument,
+    set: &[&LineRecord],
+    xs: &[f64],
+    (core, follow): (bool, Follow),
+) -> Bundle {
     let first = set[0];
     let ids: Vec<u32> = set.iter().map(|line| line.id).collect();
+    let path = match follow {
+        Follow::Energy => None,
+        Follow::Character => path(document, &ids, xs.len()),
+    };
+    let at = |point: usize| {
+        let here = path.as_ref().and_then(|path| path.get(point));
+        here.unwrap_or(&ids)
+    };
     let energies: Vec<Option<f64>> = (0..xs.len())
         .map(|k| {
-            let known: Vec<f64> = set
+            let known: Vec<f64> = at(k)
                 .iter()
-                .filter_map(|line| line.energies.get(k).copied().flatten())
+                .filter_map(|id| line(document, *id)?.energies.get(k).copied().flatten())
                 .map(|energy| energy.get())
                 .collect();
             (!known.is_empty()).then(|| known.iter().sum::<f64>() / known.len() as f64)
@@ -105,11 +131,12 @@ fn bundle(document: &SweepDocument, set: &[&LineRecord], xs: &[f64], core: bool)
     let occupations = document
         .points
         .iter()
-        .map(|point| {
+        .enumerate()
+        .map(|(k, point)| {
             let held: Vec<f64> = point
                 .levels
                 .iter()
-                .filter(|level| level.line.is_some_and(|id| ids.contains(&id)))
+                .filter(|level| level.line.is_some_and(|id| at(k).contains(&id)))
                 .map(|level| level.occupation.get())
                 .collect();
             if held.is_empty() {
@@ -119,6 +146,9 @@ fn bundle(document: &SweepDocument, set: &[&LineRecord], xs: &[f64], core: bool)
             }
         })
         .collect();
+    let end_ids = at(xs.len().saturating_sub(1)).clone();
+    let last = end_ids.first().and_then(|id| line(document, *id));
+    let last = &last.unwrap_or(first).passport;
     let passport = &first.passport;
     let label = if core {
         &first.label
@@ -133,11 +163,11 @@ fn bundle(document: &SweepDocument, set: &[&LineRecord], xs: &[f64], core: bool)
         }
     };
     let (start, end) = if core {
-        (or_label(&passport.start), or_label(&passport.end))
+        (or_label(&passport.start), or_label(&last.end))
     } else {
         (
             or_label(&passport.start_valence),
-            or_label(&passport.end_valence),
+            or_label(&last.end_valence),
         )
     };
     let mut names = vec![
@@ -145,7 +175,7 @@ fn bundle(document: &SweepDocument, set: &[&LineRecord], xs: &[f64], core: bool)
         first.valence_label.clone(),
         first.display.clone(),
         passport.start.clone(),
-        passport.end.clone(),
+        last.end.clone(),
     ];
     names.extend(ids.iter().map(|id| format!("#{id}")));
     names.retain(|name| !name.is_empty());
@@ -155,12 +185,33 @@ fn bundle(document: &SweepDocument, set: &[&LineRecord], xs: &[f64], core: bool)
         label: label.clone(),
         multiplicity: set.len().max(first.degeneracy as usize),
         ids,
+        end_ids,
+        path,
         start,
         end,
         names,
         energies,
         occupations,
     }
+}
+
+/// The line with this id; ids are places in the list as a rule.
+fn line(document: &SweepDocument, id: u32) -> Option<&LineRecord> {
+    let lines = document.lines.as_deref().unwrap_or_default();
+    let direct = lines.get(id as usize).filter(|line| line.id == id);
+    direct.or_else(|| lines.iter().find(|line| line.id == id))
+}
+
+/// The lines that have the characters of these lines at every point, where the document says it.
+fn path(document: &SweepDocument, ids: &[u32], points: usize) -> Option<Vec<Vec<u32>>> {
+    let records = document.followed.as_deref()?;
+    let of = |id: &u32| records.iter().find(|record| record.id == *id);
+    let records: Vec<_> = ids.iter().map(of).collect::<Option<_>>()?;
+    let at = |point: usize| {
+        let ids = records.iter().map(|record| record.lines.get(point));
+        ids.map(|id| id.copied()).collect::<Option<Vec<u32>>>()
+    };
+    (0..points).map(at).collect()
 }
 
 /// One curve for every unbroken run of known values.

@@ -93,6 +93,15 @@ pub(crate) fn value_with_unit(value: f64, unit: CoordinateUnit) -> String {
     }
 }
 
+/// A value that was refined on the model, to 0.001° or 10⁻⁵ Å.
+pub(crate) fn exact_value(value: f64, unit: CoordinateUnit) -> String {
+    match unit {
+        CoordinateUnit::Degree => format!("{}°", ticks::ascii_number(value, 3)),
+        CoordinateUnit::Angstrom => format!("{} Å", ticks::ascii_number(value, 5)),
+        CoordinateUnit::Share | CoordinateUnit::Number => ticks::ascii_number(value, 5),
+    }
+}
+
 /// The sum's lowest place: as stated by the document, else its lowest point. Coordinate, sum, and
 /// whether it lies inside the range. None where all sums agree within 10⁻⁶ eV.
 pub(crate) fn lowest_sum(document: &SweepDocument) -> Option<(f64, f64, bool)> {

@@ -37,6 +37,10 @@ pub(crate) fn end_labels(sheet: &Sheet<'_>, side: Side) -> Vec<EndLabel> {
     let mut labels: Vec<EndLabel> = Vec::new();
     for &line in &sheet.drawn {
         let bundle = &sheet.all[line];
+        let ids = match side {
+            Side::Left => &bundle.ids,
+            Side::Right => &bundle.end_ids,
+        };
         let here = end_energy(bundle, side);
         let visible = |energy: Option<f64>| energy.is_some_and(|e| low <= e && e <= high);
         let other = end_energy(
@@ -71,7 +75,7 @@ pub(crate) fn end_labels(sheet: &Sheet<'_>, side: Side) -> Vec<EndLabel> {
                 if label.irrep.as_ref() != Some(&bundle.irrep) {
                     label.irrep = None;
                 }
-                label.lines.extend(&bundle.ids);
+                label.lines.extend(ids);
             }
             None => labels.push(EndLabel {
                 energy,
@@ -79,7 +83,7 @@ pub(crate) fn end_labels(sheet: &Sheet<'_>, side: Side) -> Vec<EndLabel> {
                 lettering,
                 irrep: Some(bundle.irrep.clone()),
                 line,
-                lines: bundle.ids.clone(),
+                lines: ids.clone(),
             }),
         }
     }

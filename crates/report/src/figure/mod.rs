@@ -28,7 +28,7 @@ pub(crate) mod xml;
 pub use interaction::interaction_figure;
 pub use ladder::levels_figure;
 pub use options::{
-    ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering, Theme,
+    ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Follow, Numbering, Theme,
 };
 pub use pictures::{EndPictures, OrbitalPicture};
 pub use series::shape_figure;

@@ -74,6 +74,16 @@ pub enum Numbering {
     Valence,
 }
 
+/// What a line of the figure keeps from point to point.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Follow {
+    /// Its place in the energy order of its irrep: lines of one irrep repel.
+    #[default]
+    Energy,
+    /// Its character: lines of one irrep pass each other where they exchange it.
+    Character,
+}
+
 /// Where the electrons are drawn on the lines.
 #[derive(Clone, Copy, Debug, Default, PartialEq)]
 pub enum ElectronMarks {
@@ -101,6 +111,8 @@ pub struct FigureOptions {
     pub energies: Option<(f64, f64)>,
     /// Labels of the lines to draw, in any of their names; all where none is given.
     pub lines: Option<Vec<String>>,
+    /// What a line keeps from point to point.
+    pub follow: Follow,
     /// Where the electrons are drawn.
     pub electrons: ElectronMarks,
     /// The sum as a second panel below, with its lowest place marked.
@@ -132,6 +144,7 @@ impl Default for FigureOptions {
             numbering: Numbering::default(),
             energies: None,
             lines: None,
+            follow: Follow::default(),
             electrons: ElectronMarks::default(),
             sum_panel: true,
             crossings: true,

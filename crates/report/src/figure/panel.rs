@@ -170,10 +170,11 @@ pub(crate) fn mark_crossings(canvas: &mut Canvas, sheet: &Sheet<'_>) -> Marked {
     canvas.xml.open("g", &[("class", "crossings")]);
     for crossing in crossings(sheet) {
         let at = crossing.at.get();
+        let point = nearest_point(&sheet.xs, at);
         let pair: Vec<&Bundle> = crossing
             .lines
             .iter()
-            .filter_map(|id| sheet.lines().find(|bundle| bundle.ids.contains(id)))
+            .filter_map(|id| sheet.lines().find(|bundle| bundle.holds(*id, point)))
             .collect();
         let &[first, second] = pair.as_slice() else {
             continue;

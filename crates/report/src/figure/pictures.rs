@@ -185,8 +185,8 @@ impl Shape {
                 );
             }
         }
-        for atom in 0..self.nuclei.len() {
-            let inside = self.nuclei[atom][2].abs() <= INSIDE;
+        for (atom, at) in self.nuclei.iter().enumerate() {
+            let inside = at[2].abs() <= INSIDE;
             nucleus(canvas, measure, colours, place(atom), inside);
         }
         canvas.xml.close();

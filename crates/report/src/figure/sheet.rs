@@ -51,7 +51,11 @@ impl<'a> Sheet<'a> {
             return Err(FigureError::TooFewPoints { points: xs.len() });
         }
         check_direction(&xs)?;
-        let all = bundles(document, options.numbering == Numbering::Core);
+        let all = bundles(
+            document,
+            options.numbering == Numbering::Core,
+            options.follow,
+        );
         let chosen = choose(&all, options.lines.as_deref())?;
         let picked: Vec<Bundle> = chosen.iter().map(|place| all[*place].clone()).collect();
         let extents = extents(&picked);

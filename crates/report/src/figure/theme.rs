@@ -203,10 +203,10 @@ mod tests {
         for theme in [Theme::Light, Theme::Dark] {
             let irreps = Colours::of(theme).irreps;
             for (name, vision) in &VISIONS {
-                for i in 0..irreps.len() {
-                    for j in 0..i {
+                for (i, one) in irreps.iter().enumerate() {
+                    for (j, other) in irreps[..i].iter().enumerate() {
                         if i < 5 || i == j + 1 {
-                            let found = apart(irreps[i], irreps[j], vision);
+                            let found = apart(one, other, vision);
                             assert!(found > 10.0, "{theme:?} {name} {i} {j}: {found:.1}");
                         }
                     }

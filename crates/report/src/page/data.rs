@@ -7,7 +7,7 @@ use crate::document::{
 };
 use crate::draw::bundle::abscissae;
 use crate::draw::wording::{coordinate_name, heading_formula};
-use crate::figure::canvas::Canvas;
+use crate::figure::canvas::{Area, Canvas};
 use crate::figure::{FigureOptions, Numbering};
 use orbend_structure::{BondGraph, Element, Molecule};
 
@@ -28,7 +28,8 @@ pub(crate) struct PageData<'a> {
     lines: Vec<LineData<'a>>,
     crossings: &'a [CrossingRecord],
     shells: Vec<ShellData>,
-    area: AreaData,
+    /// Where things stand on the wide and on the narrow drawing.
+    areas: [AreaData; 2],
 }
 
 #[derive(Serialize)]
@@ -70,10 +71,13 @@ impl<'a> PageData<'a> {
     pub(crate) fn new(
         document: &'a SweepDocument,
         options: &FigureOptions,
-        canvas: &Canvas,
+        canvases: [&Canvas; 2],
     ) -> Self {
-        let area = canvas.area.as_ref();
-        let drawn: Vec<u32> = area.map(|area| area.lines.concat()).unwrap_or_default();
+        let drawn: Vec<u32> = canvases[0]
+            .area
+            .as_ref()
+            .map(|area| area.lines.concat())
+            .unwrap_or_default();
         // Lines that the user left out are left out here too.
         let kept = |line: &&LineRecord| options.lines.is_none() || drawn.contains(&line.id);
         let coordinate = document.coordinates.first();
@@ -117,16 +121,22 @@ impl<'a> PageData<'a> {
                 .collect(),
             crossings: document.crossings.as_deref().unwrap_or_default(),
             shells: shells(document),
-            area: AreaData {
-                across: area.map(|a| pair(a.across)).unwrap_or_default(),
-                down: area.map(|a| pair(a.down)).unwrap_or_default(),
-                energies: area
-                    .iter()
-                    .flat_map(|area| &area.energies)
-                    .map(|s| [s.low, s.high, s.bottom, s.top].map(|value| round(value, 3)))
-                    .collect(),
-                lines: area.map(|area| area.lines.clone()).unwrap_or_default(),
-            },
+            areas: canvases.map(|canvas| AreaData::new(canvas.area.as_ref())),
+        }
+    }
+}
+
+impl AreaData {
+    fn new(area: Option<&Area>) -> Self {
+        Self {
+            across: area.map(|a| pair(a.across)).unwrap_or_default(),
+            down: area.map(|a| pair(a.down)).unwrap_or_default(),
+            energies: area
+                .iter()
+                .flat_map(|area| &area.energies)
+                .map(|s| [s.low, s.high, s.bottom, s.top].map(|value| round(value, 3)))
+                .collect(),
+            lines: area.map(|area| area.lines.clone()).unwrap_or_default(),
         }
     }
 }

@@ -8,7 +8,7 @@ use crate::draw::ticks::number;
 use crate::draw::wording::{charge, coordinate_name, heading_formula, value_with_unit};
 use crate::figure::theme::Colours;
 use crate::figure::xml::escape;
-use crate::figure::{FigureOptions, Numbering, Theme};
+use crate::figure::{FigureOptions, Follow, Numbering, Theme};
 use crate::lettering::{Lettering, Shift};
 
 /// What a page is put together from.
@@ -19,6 +19,7 @@ pub(crate) struct Parts<'a> {
     pub(crate) style: &'a str,
     pub(crate) script: &'a str,
     pub(crate) figure: &'a str,
+    pub(crate) narrow: &'a str,
     pub(crate) json: &'a str,
 }
 
@@ -45,6 +46,7 @@ pub(crate) fn page(parts: &Parts<'_>) -> String {
             "style" => page.push_str(parts.style),
             "script" => page.push_str(parts.script),
             "figure" => page.push_str(parts.figure),
+            "narrow" => page.push_str(parts.narrow),
             "data" => page.push_str(parts.json),
             _ => {}
         }
@@ -170,9 +172,13 @@ fn line_table(document: &SweepDocument, options: &FigureOptions) -> String {
     let energy =
         |energy: Option<f64>| energy.map_or_else(|| "–".to_owned(), |energy| number(energy, 3));
     let mut rows = String::new();
-    for bundle in bundles(document, options.numbering == Numbering::Core)
-        .iter()
-        .rev()
+    for bundle in bundles(
+        document,
+        options.numbering == Numbering::Core,
+        Follow::Energy,
+    )
+    .iter()
+    .rev()
     {
         let held = |electrons: Option<&f64>| {
             electrons

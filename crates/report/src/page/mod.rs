@@ -12,14 +12,18 @@ use sha2::{Digest, Sha256};
 
 use crate::document::SweepDocument;
 use crate::figure::sweep::compose;
-use crate::figure::{FigureError, FigureOptions, FigureWidth, Theme};
+use crate::figure::{FigureError, FigureOptions, FigureWidth, Follow, Theme};
 
 /// Pages larger than this (bytes) are refused: browsers become slow with them.
 const LARGEST: usize = 20_000_000;
 
 const STYLE: &str = include_str!("page.css");
-/// Evaluation and drawing of orbitals, then the page itself.
-const SCRIPT: [&str; 2] = [include_str!("orbital.js"), include_str!("page.js")];
+/// Evaluation and drawing of orbitals, the diagram with its cursor, then the page itself.
+const SCRIPT: [&str; 3] = [
+    include_str!("orbital.js"),
+    include_str!("stage.js"),
+    include_str!("page.js"),
+];
 
 /// Why a page cannot be made.
 #[derive(Clone, Debug, PartialEq, thiserror::Error)]
@@ -47,7 +51,7 @@ pub enum PageError {
 
 /// The page of a sweep along one coordinate as HTML (UTF-8, no outside reference, closed to the
 /// network by its own content policy). Orbitals are shown where the document holds coefficients.
-/// Width and theme of the options do not count: the page has its own. Equal documents and options
+/// Width, theme and view of the options do not count: the page has its own. Equal documents and options
 /// give equal bytes.
 ///
 /// # Errors
@@ -58,12 +62,20 @@ pub fn sweep_page(document: &SweepDocument, options: &FigureOptions) -> Result<S
         theme: Theme::Light,
         title: false,
         pictures: None,
+        follow: Follow::Energy,
         ..options.clone()
     };
-    let canvas = compose(document, &options)?;
-    let data = data::PageData::new(document, &options, &canvas);
+    // A telephone shows the figure at the width of a column.
+    let narrow_options = FigureOptions {
+        width: FigureWidth::Column,
+        id_prefix: format!("{}-narrow", options.id_prefix),
+        ..options.clone()
+    };
+    let wide = compose(document, &options)?;
+    let narrow = compose(document, &narrow_options)?;
+    let data = data::PageData::new(document, &options, [&wide, &narrow]);
     let json = serde_json::to_string(&data).map_err(|error| PageError::Data(error.to_string()))?;
-    let figure = without_metadata(canvas.xml.finish());
+    let [figure, narrow] = [wide, narrow].map(|canvas| without_metadata(canvas.xml.finish()));
     let style = format!("{STYLE}{}", markup::dark_figure());
     let script = SCRIPT.concat();
     let policy = format!(
@@ -78,6 +90,7 @@ pub fn sweep_page(document: &SweepDocument, options: &FigureOptions) -> Result<S
         style: &style,
         script: &script,
         figure: &figure,
+        narrow: &narrow,
         // A data block ends at "</script": "<" never stands in it.
         json: &json.replace('<', "\\u003c"),
     });

@@ -33,28 +33,34 @@ function prepareShell(shell) {
   return { atom: shell.atom, n, l: shell.l, first: shell.first, terms };
 }
 
-// ψ at a point in Å; coefficients start at `from`.
-function psi(shells, coefficients, from, atoms, x, y, z) {
-  let sum = 0;
+// ψ of an orbital as a function of a place in Å. Coefficients are whole 10⁻⁴, its own start at `from`;
+// shells of which it holds nothing are left out.
+function orbitalAt(shells, coefficients, from, atoms) {
+  const parts = [];
   for (const shell of shells) {
-    const at = atoms[shell.atom];
-    const dx = (x - at[0]) / BOHR, dy = (y - at[1]) / BOHR, dz = (z - at[2]) / BOHR;
-    const q = dx * dx + dy * dy + dz * dz, r = Math.sqrt(q) + 1e-12;
-    let radial = 0;
-    for (const term of shell.terms) radial += term[1] * Math.exp(-term[0] * r);
-    // r^(n−1) Y = r^(n−1−l) · (r^l Y)
-    for (let k = shell.n - 1; k > shell.l; k--) radial *= r;
-    const first = from + shell.first;
-    let angular = 0;
-    if (shell.l === 0) angular = S_NORM * coefficients[first];
-    else if (shell.l === 1) angular = P_NORM * (coefficients[first] * dz + coefficients[first + 1] * dx + coefficients[first + 2] * dy);
-    else {
-      const values = SOLID[shell.l](dx, dy, dz, q);
-      for (let k = 0; k < values.length; k++) angular += coefficients[first + k] * values[k];
-    }
-    sum += radial * angular;
+    const own = coefficients.slice(from + shell.first, from + shell.first + 2 * shell.l + 1).map((c) => c * 1e-4);
+    if (own.some((c) => c !== 0)) parts.push({ shell, own, at: atoms[shell.atom] });
   }
-  return sum;
+  return (x, y, z) => {
+    let sum = 0;
+    for (let k = 0; k < parts.length; k++) sum += shellAt(parts[k], x, y, z);
+    return sum;
+  };
+}
+function shellAt({ shell, own, at }, x, y, z) {
+  const dx = (x - at[0]) / BOHR, dy = (y - at[1]) / BOHR, dz = (z - at[2]) / BOHR;
+  const q = dx * dx + dy * dy + dz * dz, r = Math.sqrt(q) + 1e-12, l = shell.l, terms = shell.terms;
+  let radial = 0;
+  for (let k = 0; k < terms.length; k++) if (terms[k][0] * r < 30) radial += terms[k][1] * Math.exp(-terms[k][0] * r);
+  if (radial === 0) return 0;
+  // r^(n−1) Y = r^(n−1−l) · (r^l Y)
+  for (let k = shell.n - 1; k > l; k--) radial *= r;
+  if (l === 0) return radial * S_NORM * own[0];
+  if (l === 1) return radial * P_NORM * (own[0] * dz + own[1] * dx + own[2] * dy);
+  const values = SOLID[l](dx, dy, dz, q);
+  let angular = 0;
+  for (let k = 0; k < values.length; k++) angular += own[k] * values[k];
+  return radial * angular;
 }
 
 // Eigenvectors of a symmetric 3×3 matrix (Jacobi), longest axis first.
@@ -159,7 +165,7 @@ function drawOrbital(canvas, { frame, plane, atoms, elements, bonds, psiAt, colo
   g.fillStyle = colours.ground;
   g.fillRect(0, 0, size, size);
   if (psiAt) {
-    const cells = fine > 400 ? 90 : 60, grid = new Float64Array((cells + 1) * (cells + 1));
+    const cells = fine > 400 ? 90 : 48, grid = new Float64Array((cells + 1) * (cells + 1));
     for (let j = 0; j <= cells; j++) {
       for (let i = 0; i <= cells; i++) {
         const s = (2 * i / cells - 1) * half, t = (1 - 2 * j / cells) * half;

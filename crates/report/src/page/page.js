@@ -1,19 +1,17 @@
 (() => {
   const data = JSON.parse(document.getElementById('data').textContent);
   const $ = (id) => document.getElementById(id);
-  const SVG = 'http://www.w3.org/2000/svg';
   const count = data.at.length, functions = data.shells.reduce((sum, s) => sum + 2 * s.l + 1, 0);
   const byId = new Map(data.lines.map((line) => [line.id, line]));
   const shells = data.shells.filter((shell) => shell.zeta.length).map(prepareShell);
   const frame = frameOf(data.positions), planes = planesOf(frame), chosenPlane = new Map();
-  const bundles = data.area.lines.map((ids) => ids.map((id) => byId.get(id))).filter((set) => set[0]);
   const state = { point: 0, hovered: null, pinned: null, cut: 'auto' };
 
   // ---- words
   const minus = (text) => text.replace('-', '\u2212');
   const fixed = (value, digits) => (value === null || value === undefined ? '–' : minus(value.toFixed(digits)));
   const trim = (value) => minus(String(Math.round(value * 1000) / 1000));
-  const withUnit = (value) => trim(value) + { degree: '°', angstrom: ' Å', share: '' }[data.unit];
+  const withUnit = (value) => trim(value) + ({ degree: '°', angstrom: ' Å' }[data.unit] || '');
   const labelOf = (line) => (data.core ? line.label : line.valence);
   const GREEK = { sigma: 'σ', pi: 'π', delta: 'δ', phi: 'φ', gamma: 'γ' };
   // "3sigma_g+" → 3σ, g below, + above.
@@ -37,138 +35,12 @@
     made.append(...content);
     return made;
   }
-  function drawn(name, attributes, parent) {
-    const made = document.createElementNS(SVG, name);
-    for (const [key, value] of Object.entries(attributes)) made.setAttribute(key, value);
-    if (parent) parent.append(made);
-    return made;
-  }
   function ownLabel(line, point) {
     const special = line.passport.special.find((s) => Math.abs(s.at - data.at[point]) < 1e-6);
     if (!special) return labelOf(line);
     return (!data.core && special.valence_label) || special.label;
   }
 
-  // ---- the figure
-  const svg = $('figure').querySelector('svg');
-  const box = svg.viewBox.baseVal, area = data.area;
-  svg.setAttribute('role', 'group');
-  const across = (point) => area.across[0] + (data.at[point] - data.at[0]) / (data.at[count - 1] - data.at[0]) * (area.across[1] - area.across[0]);
-  function height(energy) {
-    let below = null;
-    for (const [low, high, bottom, top] of area.energies) {
-      if (energy <= high) {
-        if (below && energy < low) return below[3] + (energy - below[1]) / (low - below[1]) * (bottom - below[3]);
-        return bottom - (energy - low) / (high - low) * (bottom - top);
-      }
-      below = [low, high, bottom, top];
-    }
-    const [low, high, bottom, top] = below;
-    return bottom - (energy - low) / (high - low) * (bottom - top);
-  }
-  const shown = (energy) => energy >= area.energies[0][0] && energy <= area.energies[area.energies.length - 1][1];
-  const cursor = drawn('g', { class: 'cursor' }, svg);
-  const cursorLine = drawn('path', { d: '' }, cursor);
-  const cursorDots = drawn('g', {}, cursor);
-  const groups = new Map();
-  for (const g of svg.querySelectorAll('g.line')) {
-    const ids = g.dataset.line.split(' ').map(Number), line = byId.get(ids[0]);
-    if (!line) continue;
-    for (const id of ids) groups.set(id, g);
-    g.querySelector('title').remove();
-    g.setAttribute('tabindex', '0');
-    g.setAttribute('role', 'button');
-    g.setAttribute('aria-pressed', 'false');
-    g.setAttribute('aria-label', `Line ${labelOf(line)}`);
-    for (const path of [...g.querySelectorAll('path')]) {
-      const wide = path.cloneNode();
-      wide.removeAttribute('stroke-dasharray');
-      wide.setAttribute('class', 'reach');
-      g.append(wide);
-    }
-    listen(g, line.id);
-    listenToKeys(g, line.id);
-  }
-  function listen(target, id) {
-    target.addEventListener('pointerenter', () => hover(id));
-    target.addEventListener('pointerleave', () => hover(null));
-    target.addEventListener('click', () => { if (!dragged) pin(state.pinned === id ? null : id); });
-  }
-  // Not for the ladder: its rungs are made anew, and the table below has them as buttons.
-  function listenToKeys(target, id) {
-    target.addEventListener('focus', () => hover(id));
-    target.addEventListener('blur', () => hover(null));
-    target.addEventListener('keydown', (event) => {
-      if (event.key === 'Enter' || event.key === ' ') { event.preventDefault(); pin(state.pinned === id ? null : id); }
-    });
-  }
-  // Dragging anywhere on the diagram moves along the path.
-  let dragging = false, dragged = false, startX = 0;
-  const atPointer = (event) => {
-    const r = svg.getBoundingClientRect(), x = (event.clientX - r.left) / r.width * box.width;
-    const share = (x - area.across[0]) / (area.across[1] - area.across[0]);
-    const value = data.at[0] + Math.max(0, Math.min(1, share)) * (data.at[count - 1] - data.at[0]);
-    return nearest(value);
-  };
-  const nearest = (value) => data.at.reduce((best, at, k) => (Math.abs(at - value) < Math.abs(data.at[best] - value) ? k : best), 0);
-  svg.addEventListener('pointerdown', (event) => { dragging = true; dragged = false; startX = event.clientX; });
-  svg.addEventListener('pointermove', (event) => {
-    if (!dragging) return;
-    if (Math.abs(event.clientX - startX) > 4) dragged = true;
-    if (dragged) go(atPointer(event));
-  });
-  window.addEventListener('pointerup', () => { dragging = false; });
-
-  // ---- the ladder, on the figure's scale
-  const ladderWidth = 150;
-  const ladder = drawn('svg', { viewBox: `0 0 ${ladderWidth} ${box.height}` }, $('ladder'));
-  $('ladder').style.flexGrow = String(ladderWidth / box.width);
-  function colourOf(id) { const g = groups.get(id); return g ? g.querySelector('path').getAttribute('stroke') : '#656d76'; }
-  function drawLadder() {
-    ladder.replaceChildren();
-    const p = state.point, rows = [];
-    const title = drawn('text', { x: 14, y: area.down[0] - 8, class: 'where' }, ladder);
-    title.textContent = withUnit(data.at[p]);
-    for (const set of bundles) {
-      const energy = set[0].energies[p];
-      if (energy === null || !shown(energy)) continue;
-      rows.push({ set, y: height(energy), place: height(energy) });
-    }
-    rows.sort((a, b) => a.y - b.y);
-    // Labels keep their distance: pushed down, then up from the bottom.
-    const gap = 11.5, floor = Math.max(area.energies[0][2], area.down[0] + gap * rows.length);
-    rows.forEach((row, k) => { if (k) row.place = Math.max(row.place, rows[k - 1].place + gap); });
-    for (let k = rows.length - 1, limit = floor; k >= 0; k--) { rows[k].place = Math.min(rows[k].place, limit); limit = rows[k].place - gap; }
-    // Rungs that would lie on each other share the width.
-    for (let from = 0; from < rows.length;) {
-      let to = from + 1;
-      while (to < rows.length && rows[to].y - rows[to - 1].y < 4) to += 1;
-      const members = rows.slice(from, to).reduce((sum, row) => sum + row.set.length, 0);
-      let column = 0;
-      for (const row of rows.slice(from, to)) { row.column = column; row.width = 50 / members; column += row.set.length; }
-      from = to;
-    }
-    for (const { set, y, place, column, width } of rows) {
-      const line = set[0], colour = colourOf(line.id), on = set.some((l) => l.id === active());
-      const g = drawn('g', { class: on ? 'rung on' : 'rung' }, ladder), gap = Math.min(4, width / 4), r = Math.min(2.6, width / 7);
-      set.forEach((member, k) => {
-        const x = 14 + (column + k) * width;
-        drawn('path', { d: `M${x} ${y}H${x + width - gap}`, stroke: colour, 'stroke-width': on ? 3 : 1.6 }, g);
-        const electrons = member.electrons[p], whole = Math.ceil(electrons - 1e-6);
-        for (let e = 0; e < whole; e++) {
-          const part = e + 1 > electrons + 1e-6;
-          drawn('circle', { cx: x + (width - gap) / 2 + (e - (whole - 1) / 2) * 2.7 * r, cy: y, r: part ? 0.85 * r : r, fill: part ? 'var(--ground)' : colour, stroke: colour, 'stroke-width': 0.6 }, g);
-        }
-      });
-      drawn('path', { d: `M64 ${y}L74 ${place}`, stroke: '#656d76', 'stroke-width': 0.5, fill: 'none' }, g);
-      const text = drawn('text', { x: 77, y: place + 3.3, fill: colour }, g);
-      text.textContent = plainText(ownLabel(line, p));
-      const value = drawn('text', { x: ladderWidth - 3, y: place + 3.3, class: 'value' }, g);
-      value.textContent = fixed(line.energies[p], 2);
-      drawn('rect', { x: 8, y: Math.min(y, place) - 5, width: ladderWidth - 8, height: Math.abs(y - place) + 10, class: 'reach' }, g);
-      listen(g, line.id);
-    }
-  }
   const SUB = (text) => text.replace(/\d/g, (d) => String.fromCharCode(0x2080 + Number(d)));
   function plainText(plain) {
     const found = /^(\d*)(sigma|pi|delta|phi|gamma|[abegthi])_?([0-9gu]*)(['+-]*)$/.exec(plain);
@@ -176,6 +48,50 @@
     const tail = found[4].replace("''", '″').replace("'", '′').replace('+', '⁺').replace('-', '⁻');
     return found[1] + (GREEK[found[2]] || found[2]) + SUB(found[3]) + tail;
   }
+
+  // ---- the diagram, wide or narrow, and the ladder beside it
+  const nearest = (value) => data.at.reduce((best, at, k) => (Math.abs(at - value) < Math.abs(data.at[best] - value) ? k : best), 0);
+  const hands = {
+    dragged: false,
+    moveTo: (value) => go(nearest(value)),
+    listen(target, id) {
+      target.addEventListener('pointerenter', () => hover(id));
+      target.addEventListener('pointerleave', () => hover(null));
+      target.addEventListener('click', () => { if (!hands.dragged) turn(id); });
+    },
+    // Not for the ladder: its rungs are made anew, and the table below has them as buttons.
+    listenToKeys(target, id) {
+      target.addEventListener('focus', () => hover(id));
+      target.addEventListener('blur', () => hover(null));
+      target.addEventListener('keydown', (event) => {
+        if (event.key === 'Enter' || event.key === ' ') { event.preventDefault(); turn(id); }
+      });
+    },
+  };
+  window.addEventListener('pointerdown', () => { hands.dragged = false; }, true);
+  const book = { data, byId, labelOf };
+  // The narrow drawing is for telephones: made when it is first asked for.
+  const small = window.matchMedia('(max-width: 720px)'), stages = {};
+  function stage() {
+    const name = small.matches && !printing ? 'narrow' : 'wide';
+    if (!stages[name]) {
+      const made = makeStage($(name), data.areas[name === 'wide' ? 0 : 1], book, hands);
+      const holder = element('div');
+      holder.className = name;
+      $('ladder').append(holder);
+      if (name === 'wide') $('ladder').style.flexGrow = String(LADDER_WIDTH / made.box.width);
+      const ladder = makeLadder(holder, made, {
+        titleAt: (point) => withUnit(data.at[point]),
+        labelAt: (line, point) => plainText(ownLabel(line, point)),
+        energyText: (energy) => fixed(energy, 2),
+        listen: hands.listen,
+      });
+      stages[name] = { show(point, id, pinned) { made.show(point, id, pinned); ladder.show(point, id); } };
+    }
+    return stages[name];
+  }
+  small.addEventListener('change', () => later());
+  let printing = false;
 
   // ---- moving
   const slider = $('slider');
@@ -198,29 +114,25 @@
     later();
   }
   function hover(id) { state.hovered = id; later(); }
-  function pin(id) { state.pinned = id; later(); }
+  function pin(id) {
+    state.pinned = id;
+    const line = byId.get(id);
+    $('said').textContent = line
+      ? `${plainText(labelOf(line))} kept, ${fixed(line.energies[state.point], 2)} eV, ${trim(line.electrons[state.point])} electrons`
+      : 'No line kept';
+    later();
+  }
+  const turn = (id) => pin(state.pinned === id ? null : id);
   const active = () => (state.pinned !== null ? state.pinned : state.hovered);
 
   // ---- drawing everything that depends on the state
   function draw() {
-    const p = state.point, id = active(), x = across(p);
+    const p = state.point, id = active();
     slider.value = String(p);
     const sum = data.sum[p];
     slider.setAttribute('aria-valuetext', `${withUnit(data.at[p])}, sum ${fixed(sum, 2)} eV`);
-    $('here').textContent = `${withUnit(data.at[p])} · sum ${fixed(sum, 3)} eV`;
-    cursorLine.setAttribute('d', `M${x} ${area.down[0]}V${area.down[1]}`);
-    cursorDots.replaceChildren();
-    for (const set of bundles) {
-      const energy = set[0].energies[p];
-      if (energy !== null && shown(energy)) drawn('circle', { cx: x, cy: height(energy), r: 2.2, fill: colourOf(set[0].id) }, cursorDots);
-    }
-    const marked = id === null ? null : groups.get(id);
-    svg.classList.toggle('chosen', Boolean(marked));
-    for (const g of new Set(groups.values())) {
-      g.classList.toggle('on', g === marked);
-      g.setAttribute('aria-pressed', String(state.pinned !== null && g === groups.get(state.pinned)));
-    }
-    drawLadder();
+    put($('here'), `${withUnit(data.at[p])} · sum ${fixed(sum, 3)} eV`);
+    stage().show(p, id, state.pinned);
     drawCard();
     drawPicture();
     // A reader of the table waits until things rest.
@@ -231,10 +143,7 @@
     light: { ground: '#ffffff', paper: [255, 255, 255], ink: '#1b1f24', plus: [11, 111, 92], minus: [139, 43, 120] },
     dark: { ground: '#14181d', paper: [20, 24, 29], ink: '#eef1f4', plus: [111, 208, 185], minus: [221, 154, 208] },
   };
-  function psiOf(line, point) {
-    const atoms = data.positions[point];
-    return (x, y, z) => psi(shells, line.coefficients, point * functions, atoms, x, y, z) * 1e-4;
-  }
+  const psiOf = (line, point) => orbitalAt(shells, line.coefficients, point * functions, data.positions[point]);
   function planeOf(line) {
     if (!chosenPlane.has(line.id)) {
       const sample = [0, (count - 1) >> 1, count - 1].map((k) => ({ atoms: data.positions[k], psiAt: psiOf(line, k) }));
@@ -244,10 +153,12 @@
   }
   // Coarse while things move, fine when they rest.
   let rest = 0;
-  function drawPicture(fine = 360) {
+  function drawPicture(fine = 240) {
     clearTimeout(rest);
     if (fine < 720) rest = setTimeout(() => { drawPicture(720); drawTable(); }, 160);
     const line = byId.get(active()), p = state.point, has = line && line.coefficients.length > 0 && shells.length > 0;
+    const size = fine < 720 ? 360 : 720;
+    if ($('orbital').width !== size) $('orbital').width = $('orbital').height = size;
     const index = state.cut !== 'auto' ? Number(state.cut) : has ? planeOf(line) : 0;
     const plane = planes[index];
     drawOrbital($('orbital'), {
@@ -258,9 +169,9 @@
     $('orbital').setAttribute('aria-label', has
       ? `Contours of orbital ${label} of ${data.name} at ${withUnit(data.at[p])}, in ${plane.words}`
       : `The atoms of ${data.name} at ${withUnit(data.at[p])}`);
-    $('plane').textContent = has
+    put($('plane'), has
       ? `ψ in ${plane.words}; plain green positive, hatched purple negative; contours ±0.025, 0.05, 0.1 … bohr⁻³ᐟ²`
-      : `${data.name} at ${withUnit(data.at[p])}` + (functions ? '. Choose a line to see its orbital.' : '');
+      : `${data.name} at ${withUnit(data.at[p])}` + (functions ? '. Choose a line to see its orbital.' : ''));
   }
   const mostly = (line, point) => {
     const from = point * data.shells.length;
@@ -269,19 +180,30 @@
       .filter((part) => Number.isFinite(part.share));
   };
   function term(list, name, ...content) { list.append(element('dt', name), element('dd', ...content)); }
+  // The card is made anew for another line only; what changes along the path is written into it.
+  let shownCard = { id: undefined };
   function drawCard() {
-    const line = byId.get(active()), p = state.point, card = $('card');
+    const line = byId.get(active()), p = state.point;
     $('release').hidden = state.pinned === null;
-    card.replaceChildren();
-    if (!line) {
-      $('line-title').textContent = 'No line chosen';
-      card.append(element('p', 'Point at a line of the diagram, or walk to one with the Tab key.'));
-      return;
-    }
+    if (shownCard.id !== line?.id) shownCard = line ? makeCard(line) : emptyCard();
+    if (!line) return;
     const electrons = line.electrons[p];
-    $('line-title').replaceChildren(lettered(labelOf(line)), element('small', electrons > 0 ? ` ${trim(electrons)} electron${electrons === 1 ? '' : 's'}` : ' empty'));
-    const list = document.createElement('dl');
-    term(list, 'Energy here', `${fixed(line.energies[p], 3)} eV`);
+    put(shownCard.electrons, electrons > 0 ? ` ${trim(electrons)} electron${electrons === 1 ? '' : 's'}` : ' empty');
+    put(shownCard.energy, `${fixed(line.energies[p], 3)} eV`);
+    mostly(line, p).forEach(({ share }, k) => {
+      shownCard.meters[k].style.setProperty('--share', String(Math.max(0, Math.min(1, share))));
+      put(shownCard.percents[k], `${fixed(100 * share, 1)} %`);
+    });
+  }
+  function emptyCard() {
+    put($('line-title'), 'No line chosen');
+    $('card').replaceChildren(element('p', 'Point at a line of the diagram, or walk to one with the Tab key.'));
+    return { id: undefined };
+  }
+  function makeCard(line) {
+    const electrons = element('small'), energy = element('span'), list = document.createElement('dl');
+    $('line-title').replaceChildren(lettered(labelOf(line)), electrons);
+    term(list, 'Energy here', energy);
     term(list, 'Start to end', `${fixed(line.energies[0], 2)} → ${fixed(line.energies[count - 1], 2)} eV`);
     term(list, 'In the path group', lettered(line.irrep), line.degeneracy > 1 ? ` (${line.degeneracy}-fold)` : '');
     term(list, 'At the start', lettered(ownLabel(line, 0)), ' in ', groupName(data.group[0]));
@@ -294,18 +216,20 @@
     }
     term(list, data.core ? 'Counting valence levels' : 'Counting core levels', lettered(data.core ? line.valence : line.label));
     if (line.evidence) term(list, 'Followed by', { symmetry: 'symmetry', overlap: 'overlap of neighbours', ambiguous: 'more than one way is possible' }[line.evidence]);
-    card.append(list);
-    const parts = mostly(line, p);
-    if (!parts.length) return;
+    const card = { id: line.id, electrons, energy, meters: [], percents: [] }, parts = mostly(line, 0);
+    $('card').replaceChildren(list);
+    if (!parts.length) return card;
     const bars = element('ul');
     bars.className = 'shares';
-    for (const { name, share } of parts) {
-      const meter = document.createElement('span');
+    for (const { name } of parts) {
+      const meter = element('span'), percent = element('span');
       meter.className = 'bar';
-      meter.style.setProperty('--share', String(Math.max(0, Math.min(1, share))));
-      bars.append(element('li', element('span', name), meter, element('span', `${fixed(100 * share, 1)} %`)));
+      card.meters.push(meter);
+      card.percents.push(percent);
+      bars.append(element('li', element('span', name), meter, percent));
     }
-    card.append(element('h3', 'Made of'), bars);
+    $('card').append(element('h3', 'Made of'), bars);
+    return card;
   }
 
   // ---- table, crossings, tools
@@ -319,7 +243,7 @@
       button.type = 'button';
       button.dataset.row = String(line.id);
       button.setAttribute('aria-pressed', String(state.pinned === line.id));
-      button.addEventListener('click', () => pin(state.pinned === line.id ? null : line.id));
+      button.addEventListener('click', () => turn(line.id));
       const head = element('th', button);
       head.scope = 'row';
       const top = mostly(line, p).sort((a, b) => b.share - a.share).slice(0, 2).map((part) => `${part.name} ${Math.round(100 * part.share)} %`).join(', ');
@@ -341,7 +265,7 @@
     const more = meeting.gap !== undefined ? `, gap ${fixed(meeting.gap, 2)} eV` : meeting.energy !== undefined ? `, ${fixed(meeting.energy, 2)} eV` : '';
     const button = element('button', lettered(labelOf(a)), verb, lettered(labelOf(b)), ` at ${withUnit(meeting.at)}${more}`);
     button.type = 'button';
-    button.addEventListener('click', () => { state.pinned = a.id; go(nearest(meeting.at)); later(); });
+    button.addEventListener('click', () => { go(nearest(meeting.at)); pin(a.id); });
     meetings.append(element('li', button));
   }
   function csv() {
@@ -375,11 +299,12 @@
     document.documentElement.dataset.theme = dark ? 'dark' : 'light';
     $('theme').setAttribute('aria-pressed', String(dark));
   }
-  let ownTheme = false;
-  $('theme').addEventListener('click', () => { ownTheme = true; dress(theme() !== 'dark'); later(); });
-  wish.addEventListener('change', () => { if (!ownTheme) { dress(wish.matches); later(); } });
-  window.addEventListener('beforeprint', () => { dress(false); draw(); });
-  window.addEventListener('afterprint', () => { dress(ownTheme ? false : wish.matches); draw(); });
+  let ownTheme = false, worn = wish.matches;
+  function wear(dark) { worn = dark; dress(dark); later(); }
+  $('theme').addEventListener('click', () => { ownTheme = true; wear(!worn); });
+  wish.addEventListener('change', () => { if (!ownTheme) wear(wish.matches); });
+  window.addEventListener('beforeprint', () => { printing = true; dress(false); draw(); });
+  window.addEventListener('afterprint', () => { printing = false; dress(worn); draw(); });
   $('print').addEventListener('click', () => window.print());
   document.addEventListener('keydown', (event) => { if (event.key === 'Escape') pin(null); });
 

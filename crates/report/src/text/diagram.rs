@@ -274,7 +274,7 @@ mod tests {
     fn the_drawing_keeps_within_the_window_and_names_both_ends() {
         for seed in 0..40 {
             let document = synthetic::random(seed);
-            let all = bundles(&document, true);
+            let all = bundles(&document, true, crate::figure::Follow::Energy);
             for (width, unicode) in [
                 (60, true),
                 (60, false),
@@ -295,7 +295,7 @@ mod tests {
             }
         }
         let document = synthetic::silicon_difluoride();
-        let all = bundles(&document, true);
+        let all = bundles(&document, true, crate::figure::Follow::Energy);
         let ascii = TextOptions {
             unicode: false,
             ..TextOptions::default()

@@ -8,6 +8,7 @@ mod params;
 mod passport;
 mod plan;
 mod shape;
+mod surfaces;
 mod sweep;
 mod table;
 mod why;
@@ -18,6 +19,7 @@ pub use params::params_text;
 pub use passport::passport_text;
 pub use plan::{plan_markdown, plan_text};
 pub use shape::shape_text;
+pub use surfaces::surfaces_text;
 pub use sweep::sweep_text;
 
 use crate::document::{Method, MoleculeRecord, Warning};

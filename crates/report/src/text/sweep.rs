@@ -3,8 +3,8 @@
 use crate::document::{CrossingKind, SweepDocument};
 use crate::draw::bundle::{Bundle, bundles};
 use crate::draw::ticks::ascii_number;
-use crate::draw::wording::{coordinate_name, lowest_sum, value_with_unit};
-use crate::figure::Numbering;
+use crate::draw::wording::{coordinate_name, exact_value, lowest_sum, value_with_unit};
+use crate::figure::{Follow, Numbering};
 
 use super::table::{Align, Table};
 use super::{TextOptions, diagram, electrons, heading, warnings, why};
@@ -25,7 +25,11 @@ pub fn sweep_text(document: &SweepDocument, options: &TextOptions) -> String {
     if document.is_grid() {
         grid(&mut out, document, options);
     } else {
-        let all = bundles(document, options.numbering == Numbering::Core);
+        let all = bundles(
+            document,
+            options.numbering == Numbering::Core,
+            Follow::Energy,
+        );
         out.push_str(&line_table(document, &all, options).render(options.columns()));
         out.push('\n');
         if options.drawing {
@@ -149,14 +153,14 @@ fn crossings(out: &mut String, document: &SweepDocument, all: &[Bundle], options
             name(crossing.lines[0], &crossing.labels[0]),
             name(crossing.lines[1], &crossing.labels[1]),
         );
-        let at = value_with_unit(crossing.at.get(), coordinate.unit);
+        let at = exact_value(crossing.at.get(), coordinate.unit);
         let text = match crossing.kind {
             CrossingKind::Crossing => {
                 let energy = crossing
                     .energy
                     .map(|e| format!(" ({} eV)", ascii_number(e.get(), 2)));
                 let marked = if crossing.changes_configuration {
-                    ": the ground configuration changes"
+                    ": HOMO and LUMO trade places, the ground configuration changes"
                 } else {
                     ""
                 };

@@ -38,6 +38,8 @@ pub struct Crossing {
     /// three times as large as at its minimum (or as near to that as the path
     /// goes). Two straight levels exchange 8/9 there.
     pub exchange: Option<f64>,
+    /// The two places between which the exchange was measured.
+    pub exchanged_between: Option<(f64, f64)>,
     /// Whether the ground configuration is another one behind it.
     pub changes_configuration: bool,
 }
@@ -154,11 +156,12 @@ impl Sweep {
                 energy: meeting.energy,
                 gap: None,
                 exchange: None,
+                exchanged_between: None,
                 changes_configuration: false,
             };
             match meeting.kind {
                 MeetingKind::Avoided => {
-                    let exchange = exchange(
+                    let (exchange, between) = exchange(
                         &model,
                         &mut room,
                         &meeting,
@@ -171,6 +174,12 @@ impl Sweep {
                     }
                     crossing.gap = Some(meeting.gap);
                     crossing.exchange = Some(exchange);
+                    crossing.exchanged_between =
+                        Some(if axis.values.first() <= axis.values.last() {
+                            between
+                        } else {
+                            (between.1, between.0)
+                        });
                 }
                 MeetingKind::Crossing => {
                     crossing.changes_configuration =
@@ -184,7 +193,8 @@ impl Sweep {
     }
 }
 
-/// Character exchanged on both sides of a minimum of the gap.
+/// Character exchanged on both sides of a minimum of the gap, and those two
+/// places, the lower first.
 fn exchange(
     model: &PathModel<'_>,
     room: &mut Workspace,
@@ -192,7 +202,7 @@ fn exchange(
     lines: (usize, usize),
     limits: (f64, f64),
     spacing: f64,
-) -> Result<f64, ScanError> {
+) -> Result<(f64, (f64, f64)), ScanError> {
     let (a, b) = meeting.columns;
     let columns = model.classes.len();
     let mut side = |direction: f64| -> Result<f64, ScanError> {
@@ -214,9 +224,10 @@ fn exchange(
         }
     };
     let (before, after) = (side(-1.0)?, side(1.0)?);
-    let before = Character::new(model.plan, &[before])?;
-    let after = Character::new(model.plan, &[after])?;
-    Ok(share(before.of(lines.0), after.of(lines.1)))
+    let first = Character::new(model.plan, &[before])?;
+    let last = Character::new(model.plan, &[after])?;
+    let exchanged = share(first.of(lines.0), last.of(lines.1));
+    Ok((exchanged, (before, after)))
 }
 
 /// Whether electrons move from the one set to the other.

@@ -76,24 +76,7 @@ pub struct HandOff {
     pub spaces: Vec<ActiveSpace>,
     /// What every line is made of at the first and at the last point.
     pub makeups: [Vec<Makeup>; 2],
-    /// The coordinate along which the motion of a verdict is drawn as a diagram: the angle from 80° to
-/// 180° in steps of 2°, or the pyramid from 90° to 120° in steps of 1°; none for other motions.
-pub fn usual_path(centre: &Centre, motion: Motion) -> Option<Coordinate> {
-    let (kind, atoms, from, to, step) = match (motion.kind, centre.ligands.as_slice()) {
-        (MotionKind::Bend, [first, second, ..]) => (
-            CoordinateKind::Bend,
-            vec![*first, centre.atom, *second],
-            80.0,
-            180.0,
-            2.0,
-        ),
-        (MotionKind::Pyramid, _) => (CoordinateKind::Pyramid, vec![centre.atom], 90.0, 120.0, 1.0),
-        _ => return None,
-    };
-    Coordinate::new(kind, atoms, Range { from, to, step }, false).ok()
-}
-
-/// Whether the path is the motion of the verdicts.
+    /// Whether the path is the motion of the verdicts.
     pub verdict_path: bool,
 }
 
@@ -174,6 +157,23 @@ impl HandOff {
         }
         Ok(all)
     }
+}
+
+/// The coordinate along which the motion of a verdict is drawn as a diagram: the angle from 80° to
+/// 180° in steps of 2°, or the pyramid from 90° to 120° in steps of 1°; none for other motions.
+pub fn usual_path(centre: &Centre, motion: Motion) -> Option<Coordinate> {
+    let (kind, atoms, from, to, step) = match (motion.kind, centre.ligands.as_slice()) {
+        (MotionKind::Bend, [first, second, ..]) => (
+            CoordinateKind::Bend,
+            vec![*first, centre.atom, *second],
+            80.0,
+            180.0,
+            2.0,
+        ),
+        (MotionKind::Pyramid, _) => (CoordinateKind::Pyramid, vec![centre.atom], 90.0, 120.0, 1.0),
+        _ => return None,
+    };
+    Coordinate::new(kind, atoms, Range { from, to, step }, false).ok()
 }
 
 /// `104°` or `1.5 Å`, for words.

@@ -1,6 +1,6 @@
 //! Turning and shifting one geometry onto another.
 
-use super::motion::{Matrix, transform};
+use super::motion::transform;
 use crate::vector::{Vector, add, scale, subtract};
 use nalgebra::{Matrix4, SymmetricEigen};
 
@@ -38,17 +38,38 @@ pub fn align(moved: &[[f64; 3]], target: &[[f64; 3]]) -> Option<Alignment> {
     let (from, to) = (centroid(moved), centroid(target));
     // m[i][j] = Σ moved_i target_j
     let mut m = [[0.0; 3]; 3];
-    let mut size = 0.0;
     for (&a, &b) in moved.iter().zip(target) {
         let (a, b) = (subtract(a, from), subtract(b, to));
         for i in 0..3 {
             for j in 0..3 {
                 m[i][j] += a[i] * b[j];
             }
-            size += a[i] * a[i] + b[i] * b[i];
         }
     }
-    let [[xx, xy, xz], [yx, yy, yz], [zx, zy, zz]] = m;
+    let rotation = rotation_of_form(&m)?;
+    let alignment = Alignment {
+        rotation,
+        from,
+        to,
+        deviation: 0.0,
+    };
+    let count = moved.len() as f64;
+    let mut squares = 0.0;
+    for (&a, &b) in moved.iter().zip(target) {
+        let off = subtract(alignment.apply(a), b);
+        squares += crate::vector::dot(off, off);
+    }
+    Some(Alignment {
+        deviation: (squares / count).sqrt(),
+        ..alignment
+    })
+}
+
+/// The proper rotation R for which Σ R a·b is largest, from m = Σ a bᵀ (rows a): the eigenvector of
+/// the largest eigenvalue of the quaternion form (Horn, J. Opt. Soc. Am. A 4, 629 (1987)). `None`
+/// where the eigenproblem does not converge.
+pub fn rotation_of_form(m: &[[f64; 3]; 3]) -> Option<[[f64; 3]; 3]> {
+    let [[xx, xy, xz], [yx, yy, yz], [zx, zy, zz]] = *m;
     let form = Matrix4::new(
         xx + yy + zz,
         yz - zy,
@@ -75,46 +96,25 @@ pub fn align(moved: &[[f64; 3]], target: &[[f64; 3]]) -> Option<Alignment> {
         }
     }
     let q = eigen.eigenvectors.column(best);
-    let rotation = rotation_of([q[0], q[1], q[2], q[3]]);
-    let alignment = Alignment {
-        rotation,
-        from,
-        to,
-        deviation: 0.0,
-    };
-    let count = moved.len() as f64;
-    let mut squares = 0.0;
-    for (&a, &b) in moved.iter().zip(target) {
-        let off = subtract(alignment.apply(a), b);
-        squares += crate::vector::dot(off, off);
-    }
-    debug_assert!(size >= 0.0);
-    Some(Alignment {
-        deviation: (squares / count).sqrt(),
-        ..alignment
-    })
-}
-
-fn rotation_of([w, x, y, z]: [f64; 4]) -> Matrix {
-    let n = w * w + x * x + y * y + z * z;
-    let s = 2.0 / n;
-    [
+    let length = q.norm();
+    let (w, x, y, z) = (q[0] / length, q[1] / length, q[2] / length, q[3] / length);
+    Some([
         [
-            1.0 - s * (y * y + z * z),
-            s * (x * y - w * z),
-            s * (x * z + w * y),
+            w * w + x * x - y * y - z * z,
+            2.0 * (x * y - w * z),
+            2.0 * (x * z + w * y),
         ],
         [
-            s * (x * y + w * z),
-            1.0 - s * (x * x + z * z),
-            s * (y * z - w * x),
+            2.0 * (x * y + w * z),
+            w * w - x * x + y * y - z * z,
+            2.0 * (y * z - w * x),
         ],
         [
-            s * (x * z - w * y),
-            s * (y * z + w * x),
-            1.0 - s * (x * x + y * y),
+            2.0 * (x * z - w * y),
+            2.0 * (y * z + w * x),
+            w * w - x * x - y * y + z * z,
         ],
-    ]
+    ])
 }
 
 pub(crate) fn centroid(points: &[Vector]) -> Vector {

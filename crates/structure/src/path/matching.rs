@@ -67,6 +67,37 @@ pub(crate) fn match_atoms(from: &Molecule, to: &Molecule) -> Option<Matching> {
     }
 }
 
+/// Other mappings that change as many bonds as `mapping`: those that follow from
+/// it by an exchange of atoms that keeps all bonds of the second geometry, the
+/// one with the smallest change of distances first.
+pub(crate) fn alternatives(from: &Molecule, to: &Molecule, mapping: &[usize]) -> Vec<Matching> {
+    let search = Search {
+        from: to,
+        to,
+        bonds_from: BondGraph::new(to),
+        bonds_to: BondGraph::new(to),
+    };
+    let exchanges = search.bond_keeping();
+    let search = Search {
+        from,
+        to,
+        bonds_from: BondGraph::new(from),
+        bonds_to: search.bonds_to,
+    };
+    let mut rated: Vec<Rated> = exchanges
+        .iter()
+        .map(|exchange| search.rate(mapping.iter().map(|&atom| exchange[atom]).collect()))
+        .collect();
+    rated.sort_by(|a, b| {
+        let rank = |x: f64| (x * 1e9).round();
+        a.0.cmp(&b.0)
+            .then(rank(a.1).total_cmp(&rank(b.1)))
+            .then(rank(a.2).total_cmp(&rank(b.2)))
+            .then(a.3.cmp(&b.3))
+    });
+    rated.into_iter().map(Into::into).collect()
+}
+
 /// Changed bonds, weighted change of distances, root mean square distance.
 #[derive(Clone, Debug)]
 struct Rated(usize, f64, f64, Vec<usize>);

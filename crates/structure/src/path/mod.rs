@@ -15,7 +15,7 @@ mod toward;
 #[cfg(test)]
 mod toward_tests;
 
-pub use align::{Alignment, align};
+pub use align::{Alignment, align, rotation_of_form};
 pub use error::PathError;
 pub use frames::FrameValues;
 pub use toward::TowardReport;

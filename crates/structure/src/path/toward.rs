@@ -3,7 +3,7 @@
 use super::align::align;
 use super::error::PathError;
 use super::frames::{FramePath, check_between};
-use super::matching::{Matching, match_atoms};
+use super::matching::{Matching, alternatives, match_atoms};
 use super::{Axis, PathPlan};
 use crate::molecule::Molecule;
 use crate::range::{LARGEST_POINT_COUNT, Range};
@@ -115,6 +115,24 @@ impl PathPlan {
         let described = report.describe(from);
         let path = FramePath::smooth(values, nodes);
         Ok((Self::through(from.clone(), axis, path, described), report))
+    }
+
+    /// The mapping that [`PathPlan::toward`] takes by itself, and after it every
+    /// other one that changes as many bonds (up to 2000), the one with the
+    /// smallest change of distances first. Each lists for every atom of the
+    /// first geometry the atom of the second. Empty for different atoms.
+    pub fn mappings(from: &Molecule, to: &Molecule) -> Vec<Vec<usize>> {
+        let Some(own) = match_atoms(from, to) else {
+            return Vec::new();
+        };
+        let others = alternatives(from, to, &own.mapping);
+        let mut mappings = vec![own.mapping];
+        for other in others {
+            if other.mapping != mappings[0] {
+                mappings.push(other.mapping);
+            }
+        }
+        mappings
     }
 
     /// A straight path along a displacement vector per atom (Å), its parameter
