@@ -59,7 +59,6 @@ pub(crate) struct LevelsArguments {
     pub(crate) model: ModelArguments,
     #[command(flatten)]
     pub(crate) output: OutputArguments,
-<<<<<<< HEAD
     /// Which vibrations the geometry gives in to, each tried by a short sweep
     #[arg(long)]
     pub(crate) distortions: bool,
@@ -67,10 +66,8 @@ pub(crate) struct LevelsArguments {
     /// the interaction diagram then
     #[arg(long, value_name = "FRAGMENTS")]
     pub(crate) fragments: Option<String>,
-=======
     #[command(flatten)]
     pub(crate) surface: SurfaceArguments,
->>>>>>> main
     /// Threads; the output is the same bytes for every number
     #[arg(long, value_name = "N")]
     pub(crate) jobs: Option<usize>,

@@ -47,13 +47,8 @@ pub use csv_table::{CsvError, CsvWriter, levels_csv, sweep_csv};
 pub use document::*;
 pub use export::{ImageError, figure_pdf, figure_png, outline_text};
 pub use figure::{
-<<<<<<< HEAD
-    ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Numbering,
-    OrbitalPicture, Support, Theme, interaction_figure, levels_figure, shape_figure, sweep_figure,
-=======
     ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Follow,
-    Numbering, OrbitalPicture, Support, Theme, levels_figure, shape_figure, sweep_figure,
->>>>>>> main
+    Numbering, OrbitalPicture, Support, Theme, interaction_figure, levels_figure, shape_figure, sweep_figure,
 };
 pub use from_distortion::distortions_record;
 pub use from_fragments::fragments_record;
@@ -67,13 +62,8 @@ pub use from_scan_surfaces::{SurfaceChoiceError, named_surfaces};
 pub use from_scan_why::why_record;
 pub use from_shape::shape_document;
 pub use page::{PageError, sweep_page};
-<<<<<<< HEAD
-pub use text::{
-    TextOptions, levels_text, params_text, passport_text, plan_markdown, plan_text, shape_text,
-    sweep_fragments_text, sweep_text,
-=======
 pub use scene::{PhaseMesh, SceneError, SurfaceRecord, surfaces_glb};
 pub use text::{
-    TextOptions, levels_text, params_text, passport_text, shape_text, surfaces_text, sweep_text,
->>>>>>> main
+    TextOptions, levels_text, params_text, passport_text, plan_markdown, plan_text, shape_text,
+    sweep_fragments_text, surfaces_text, sweep_text,
 };

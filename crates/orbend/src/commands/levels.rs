@@ -1,13 +1,9 @@
 //! `orbend levels`: one geometry.
 
 use orbend_report::{
-<<<<<<< HEAD
-    FigureOptions, distortions_record, fragments_record, interaction_figure, levels_csv,
-    levels_document, levels_figure, levels_text, to_json,
-=======
-    FigureOptions, SurfaceChoiceError, levels_csv, levels_document, levels_figure, levels_text,
-    named_surfaces, surfaces_glb, surfaces_text, to_json,
->>>>>>> main
+    FigureOptions, SurfaceChoiceError, distortions_record, fragments_record, interaction_figure,
+    levels_csv, levels_document, levels_figure, levels_text, named_surfaces, surfaces_glb,
+    surfaces_text, to_json,
 };
 use orbend_scan::SURFACE_SHARES;
 
@@ -40,7 +36,6 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
     let mut document = levels_document(&sweep, &provenance(&resolved.geometry, output.numbering))
         .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
-<<<<<<< HEAD
     if arguments.distortions {
         let distortions = in_pool(arguments.jobs, || Distortions::new(&resolved.request))?
             .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
@@ -53,7 +48,6 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
         document.fragments =
             Some(fragments_record(sweep.plan(), &analysis).map_err(Failure::document)?);
     }
-=======
     let surfaces = in_pool(arguments.jobs, || {
         named_surfaces(
             &sweep,
@@ -66,7 +60,6 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
         SurfaceChoiceError::Scan(error) => Failure::scan(&error),
         other => Failure::from_library(other),
     })?;
->>>>>>> main
     outputs.write(|ending| {
         Ok(match ending {
             "json" => to_json(&document).map_err(Failure::document)?.into_bytes(),
