@@ -48,7 +48,8 @@ pub use document::*;
 pub use export::{ImageError, figure_pdf, figure_png, outline_text};
 pub use figure::{
     ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Follow,
-    Numbering, OrbitalPicture, Support, Theme, interaction_figure, levels_figure, shape_figure, sweep_figure,
+    Numbering, OrbitalPicture, Support, Theme, interaction_figure, levels_figure, shape_figure,
+    sweep_figure,
 };
 pub use from_distortion::distortions_record;
 pub use from_fragments::fragments_record;
@@ -65,5 +66,5 @@ pub use page::{PageError, sweep_page};
 pub use scene::{PhaseMesh, SceneError, SurfaceRecord, surfaces_glb};
 pub use text::{
     TextOptions, levels_text, params_text, passport_text, plan_markdown, plan_text, shape_text,
-    sweep_fragments_text, surfaces_text, sweep_text,
+    surfaces_text, sweep_fragments_text, sweep_text,
 };

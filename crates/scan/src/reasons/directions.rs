@@ -133,10 +133,12 @@ pub(crate) fn displaced(
         for (&(a, b), length) in bonds.iter().zip(&wanted) {
             let now = distance(&positions, a, b);
             worst = worst.max((now - length).abs());
-            for k in 0..3 {
-                let half = 0.5 * (1.0 - length / now) * (positions[b][k] - positions[a][k]);
-                positions[a][k] += half;
-                positions[b][k] -= half;
+            let share = 0.5 * (1.0 - length / now);
+            let between: [f64; 3] = std::array::from_fn(|k| positions[b][k] - positions[a][k]);
+            for (atom, sign) in [(a, share), (b, -share)] {
+                for (at, step) in positions[atom].iter_mut().zip(between) {
+                    *at += sign * step;
+                }
             }
         }
         if worst < 1e-10 {

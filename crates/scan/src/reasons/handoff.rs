@@ -199,7 +199,9 @@ fn same_motion(sweep: &Sweep, verdict: &ShapeVerdict) -> bool {
     };
     match (coordinate.kind, verdict.motion.kind) {
         (CoordinateKind::Bend, MotionKind::Bend) => coordinate.atoms[1] == verdict.centre.atom,
-        (CoordinateKind::Pyramid, MotionKind::Pyramid) => coordinate.atoms[0] == verdict.centre.atom,
+        (CoordinateKind::Pyramid, MotionKind::Pyramid) => {
+            coordinate.atoms[0] == verdict.centre.atom
+        }
         _ => false,
     }
 }
