@@ -153,6 +153,7 @@ fn every_form_is_valid_and_reads_back_to_the_same_bytes() {
             orbend_report::Document::Sweep(document) => to_json(document.as_ref()),
             orbend_report::Document::Shape(document) => to_json(document.as_ref()),
             orbend_report::Document::Params(document) => to_json(document.as_ref()),
+            orbend_report::Document::Plan(document) => to_json(document.as_ref()),
         };
         assert!(
             again.expect("written") == text,

@@ -160,15 +160,15 @@ fn the_sum_has_its_gradient() {
     };
     let h = 1e-3;
     let start = plan.molecule().clone();
-    for atom in 0..4 {
-        for axis in 0..3 {
+    for (atom, slopes) in gradient.iter().enumerate() {
+        for (axis, slope) in slopes.iter().enumerate() {
             let at = |shift: f64| {
                 let mut moved = start.clone();
                 moved.positions[atom][axis] += shift;
                 sum(&moved)
             };
             let found = (8.0 * (at(h) - at(-h)) - (at(2.0 * h) - at(-2.0 * h))) / (12.0 * h);
-            let off = (found - gradient[atom][axis]).abs();
+            let off = (found - slope).abs();
             assert!(off < 1e-8, "atom {atom} axis {axis}: {off:e}");
         }
     }

@@ -10,6 +10,7 @@ Examples:
   orbend sweep SiF2 --bend 2-1-3=80..180:2 --out sif2.svg
   orbend shape SiF2 CF2 NF2
   orbend levels PF3
+  orbend plan NF2 --out nf2.md
   orbend params Si F
 
 ";
@@ -37,6 +38,8 @@ pub(crate) enum Command {
     Sweep(Box<SweepArguments>),
     /// The shape of a molecule, or of a series, with its reasons and its doubts
     Shape(ShapeArguments),
+    /// What to compute next: start geometries, states, changes of roots, an active space
+    Plan(Box<PlanArguments>),
     /// The parameter values in use, each with its source
     Params(ParamsArguments),
     /// Print a completion script for a shell
@@ -56,6 +59,13 @@ pub(crate) struct LevelsArguments {
     pub(crate) model: ModelArguments,
     #[command(flatten)]
     pub(crate) output: OutputArguments,
+    /// Which vibrations the geometry gives in to, each tried by a short sweep
+    #[arg(long)]
+    pub(crate) distortions: bool,
+    /// The molecule as fragments: "1,2,3 | 4-9 (-1)" (atoms from 1, charges in brackets); a figure is
+    /// the interaction diagram then
+    #[arg(long, value_name = "FRAGMENTS")]
+    pub(crate) fragments: Option<String>,
     #[command(flatten)]
     pub(crate) surface: SurfaceArguments,
     /// Threads; the output is the same bytes for every number
@@ -91,6 +101,9 @@ pub(crate) struct SweepArguments {
     pub(crate) output: OutputArguments,
     #[command(flatten)]
     pub(crate) figure: FigureArguments,
+    /// The molecule as fragments along the path: "1,2,3 | 4-9 (-1)"
+    #[arg(long, value_name = "FRAGMENTS")]
+    pub(crate) fragments: Option<String>,
     /// Why a line moves, term by term: 5a1, homo, or between two values 5a1@92..180 (may be repeated)
     #[arg(long, value_name = "LINE[@FROM..TO]", allow_hyphen_values = true)]
     pub(crate) why: Vec<String>,
@@ -103,6 +116,37 @@ pub(crate) struct SweepArguments {
     /// Threads; the output is the same bytes for every number
     #[arg(long, value_name = "N")]
     pub(crate) jobs: Option<usize>,
+}
+
+#[derive(Debug, Args)]
+pub(crate) struct PlanArguments {
+    /// A file (XYZ, extended XYZ), `-` for standard input, or a formula; without a coordinate the path
+    /// is the bend or the pyramid that `orbend shape` looks at
+    pub(crate) geometry: String,
+    #[command(flatten)]
+    pub(crate) coordinates: CoordinateArguments,
+    #[command(flatten)]
+    pub(crate) model: ModelArguments,
+    #[command(flatten)]
+    pub(crate) output: PlanOutputArguments,
+    /// Threads; the output is the same bytes for every number
+    #[arg(long, value_name = "N")]
+    pub(crate) jobs: Option<usize>,
+}
+
+#[derive(Debug, Args)]
+#[command(next_help_heading = "Output")]
+pub(crate) struct PlanOutputArguments {
+    /// The result document on standard output, alone
+    #[arg(long)]
+    pub(crate) json: bool,
+    /// Write a file; the ending chooses .json, .md (one page for a notebook), .xyz (all start geometries
+    /// with charge and unpaired electrons) or .qcschema.json (the first one as QCSchema molecule)
+    #[arg(long, value_name = "FILE")]
+    pub(crate) out: Vec<PathBuf>,
+    /// Which numbering labels show first; the document always has both
+    #[arg(long, value_enum, default_value_t = NumberingChoice::Core)]
+    pub(crate) numbering: NumberingChoice,
 }
 
 #[derive(Debug, Args)]

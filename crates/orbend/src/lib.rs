@@ -37,10 +37,12 @@
 pub use orbend_hamiltonian::{Coupling, Method, ParameterError, ParameterSet};
 pub use orbend_report::{
     CsvError, Document, DocumentError, FigureError, FigureOptions, FigureWidth, FromScanError,
-    LevelsDocument, ParamsDocument, Provenance, ShapeDocument, SweepDocument, TextOptions, Theme,
-    levels_csv, levels_document, levels_figure, levels_text, params_document, params_text,
-    read_document, schemas, sweep_csv, sweep_document, sweep_figure, sweep_text, to_json,
+    LevelsDocument, ParamsDocument, PlanDocument, Provenance, ShapeDocument, SweepDocument,
+    TextOptions, Theme, levels_csv, levels_document, levels_figure, levels_text, params_document,
+    params_text, plan_document, plan_markdown, plan_text, read_document, schemas, sweep_csv,
+    sweep_document, sweep_figure, sweep_text, to_json,
 };
+pub use orbend_scan::reasons::{Distortions, HandOff};
 pub use orbend_scan::{
     Configuration, Electrons, Filling, FillingError, Level, LineHead, Name, Numbering, Orbitals,
     Point, Populations, Request, ScanError, Sweep, SweepPlan,

@@ -58,6 +58,7 @@ fn run(arguments: &Arguments) -> Result<(), Failure> {
         Command::Levels(arguments) => commands::levels::run(arguments),
         Command::Sweep(arguments) => commands::sweep::run(arguments),
         Command::Shape(arguments) => commands::shape::run(arguments),
+        Command::Plan(arguments) => commands::plan::run(arguments),
         Command::Params(arguments) => commands::params::run(arguments),
         Command::Completions { shell } => {
             let mut script = Vec::new();

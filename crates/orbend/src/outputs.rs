@@ -15,11 +15,16 @@ impl<'a> Outputs<'a> {
     pub(crate) fn check(files: &'a [PathBuf], endings: &[&str]) -> Result<Self, Failure> {
         let mut checked: Vec<(&Path, String)> = Vec::new();
         for file in files {
-            let ending = file
-                .extension()
-                .map(|ending| ending.to_string_lossy().to_ascii_lowercase())
+            let name = file
+                .file_name()
+                .map(|name| name.to_string_lossy().to_ascii_lowercase())
                 .unwrap_or_default();
-            if !endings.contains(&ending.as_str()) {
+            // The longest ending that fits: `.qcschema.json` before `.json`.
+            let ending = endings
+                .iter()
+                .filter(|ending| name.ends_with(&format!(".{ending}")))
+                .max_by_key(|ending| ending.len());
+            let Some(ending) = ending else {
                 let known: Vec<String> =
                     endings.iter().map(|ending| format!(".{ending}")).collect();
                 return Err(Failure::request(format!(
@@ -27,7 +32,7 @@ impl<'a> Outputs<'a> {
                     file.display()
                 ))
                 .fix(format!("end the name in {}", known.join(", "))));
-            }
+            };
             if checked.iter().any(|(seen, _)| *seen == file.as_path()) {
                 return Err(
                     Failure::request(format!("--out {}: named twice", file.display()))
@@ -47,7 +52,7 @@ impl<'a> Outputs<'a> {
                 ))
                 .fix("make the folder first or name another"));
             }
-            checked.push((file, ending));
+            checked.push((file, (*ending).to_owned()));
         }
         Ok(Self { files: checked })
     }

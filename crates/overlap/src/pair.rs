@@ -296,6 +296,7 @@ impl Part {
         } else {
             self.degree
         };
+        // Pairs of s functions alone read no harmonic, their gradient reads the first one.
         if degree > 0 || DERIVATIVE {
             solid_harmonics(&unit, degree, &mut harmonics);
         }
@@ -412,6 +413,23 @@ mod tests {
                     assert!(one.is_finite());
                 }
             }
+        }
+    }
+
+    #[test]
+    fn s_functions_alone_have_a_slope() {
+        // 1s with 1s: S = e^(−p)(1 + p + p²/3), dS/dR = −ζ e^(−p)(p + p²)/3, p = ζR (Mulliken et al.,
+        // J. Chem. Phys. 17, 1248 (1949)).
+        let hydrogen = vec![Shell::single(1, 0, 1.3)];
+        let kernel = PairKernel::new(&hydrogen, &hydrogen).unwrap();
+        let place = [0.6, -1.2, 1.9];
+        let r = place.iter().map(|x| x * x).sum::<f64>().sqrt();
+        let p: f64 = 1.3 * r;
+        let slope = -1.3 * (-p).exp() * (p + p * p) / 3.0;
+        let (mut value, mut gradient) = ([0.0; 1], [0.0; 3]);
+        kernel.gradient(place, &mut value, &mut gradient);
+        for (found, x) in gradient.iter().zip(place) {
+            assert!((found - slope * x / r).abs() < 1e-14, "{gradient:?}");
         }
     }
 

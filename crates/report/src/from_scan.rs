@@ -102,6 +102,7 @@ pub fn sweep_document(
             None
         },
         crossing_search: if single { crossing_search(plan)? } else { None },
+        fragments: None,
         why: None,
         warnings: warnings(plan, provenance),
         missing,
@@ -131,6 +132,8 @@ pub fn levels_document(
         symmetry: symmetry_record(plan)?,
         basis: Some(basis_functions(plan)),
         points: vec![point],
+        distortions: None,
+        fragments: None,
         warnings: warnings(plan, provenance),
         missing,
     })
@@ -304,7 +307,7 @@ fn numbers(atoms: &[usize]) -> Vec<u32> {
     atoms.iter().map(|&atom| atom as u32 + 1).collect()
 }
 
-fn symmetry_record(plan: &SweepPlan) -> Result<SymmetryRecord, NotFinite> {
+pub(crate) fn symmetry_record(plan: &SweepPlan) -> Result<SymmetryRecord, NotFinite> {
     let group = plan.path_group();
     Ok(SymmetryRecord {
         path_group: group.name.clone(),

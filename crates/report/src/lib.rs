@@ -21,6 +21,9 @@ mod document;
 mod draw;
 mod export;
 mod figure;
+mod from_distortion;
+mod from_fragments;
+mod from_handoff;
 mod from_parameters;
 mod from_scan;
 mod from_scan_bonds;
@@ -45,8 +48,12 @@ pub use document::*;
 pub use export::{ImageError, figure_pdf, figure_png, outline_text};
 pub use figure::{
     ElectronMarks, EndPictures, EnergyUnit, FigureError, FigureOptions, FigureWidth, Follow,
-    Numbering, OrbitalPicture, Support, Theme, levels_figure, shape_figure, sweep_figure,
+    Numbering, OrbitalPicture, Support, Theme, interaction_figure, levels_figure, shape_figure,
+    sweep_figure,
 };
+pub use from_distortion::distortions_record;
+pub use from_fragments::fragments_record;
+pub use from_handoff::{plan_document, qcschema_molecule};
 pub use from_parameters::params_document;
 pub use from_scan::{FromScanError, Provenance, levels_document, sweep_document};
 pub use from_scan_bonds::add_populations;
@@ -58,5 +65,6 @@ pub use from_shape::shape_document;
 pub use page::{PageError, sweep_page};
 pub use scene::{PhaseMesh, SceneError, SurfaceRecord, surfaces_glb};
 pub use text::{
-    TextOptions, levels_text, params_text, passport_text, shape_text, surfaces_text, sweep_text,
+    TextOptions, levels_text, params_text, passport_text, plan_markdown, plan_text, shape_text,
+    surfaces_text, sweep_fragments_text, sweep_text,
 };

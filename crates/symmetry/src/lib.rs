@@ -34,10 +34,12 @@ mod names;
 mod nucleus;
 mod numbering;
 mod path;
+mod products;
 mod representation;
 mod screen;
 mod search;
 mod shells;
+mod vibration;
 
 pub use adapt::AdaptedBasis;
 pub use axes::Frame;
@@ -53,3 +55,4 @@ pub use numbering::Numbering;
 pub use path::{PathGroup, path_group};
 pub use screen::GroupScreen;
 pub use shells::OrbitalShell;
+pub use vibration::SymmetryDisplacements;

@@ -1,12 +1,16 @@
 //! `orbend levels`: one geometry.
 
 use orbend_report::{
-    FigureOptions, SurfaceChoiceError, levels_csv, levels_document, levels_figure, levels_text,
-    named_surfaces, surfaces_glb, surfaces_text, to_json,
+    FigureOptions, SurfaceChoiceError, distortions_record, fragments_record, interaction_figure,
+    levels_csv, levels_document, levels_figure, levels_text, named_surfaces, surfaces_glb,
+    surfaces_text, to_json,
 };
 use orbend_scan::SURFACE_SHARES;
 
+use orbend_scan::reasons::{Distortions, FragmentAnalysis};
+
 use super::figure::{self, Rendering};
+use super::fragments::{fragment_failure, fragments};
 use super::geometry_text::geometry_text;
 use super::sweep::in_pool;
 use super::{csv, provenance, resolve, text_options};
@@ -30,8 +34,20 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
     )?;
     let sweep = in_pool(arguments.jobs, || resolved.request.run())?
         .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
-    let document = levels_document(&sweep, &provenance(&resolved.geometry, output.numbering))
+    let mut document = levels_document(&sweep, &provenance(&resolved.geometry, output.numbering))
         .map_err(|error| Failure::result(&error).within(&arguments.geometry))?;
+    if arguments.distortions {
+        let distortions = in_pool(arguments.jobs, || Distortions::new(&resolved.request))?
+            .map_err(|error| Failure::scan(&error).within(&arguments.geometry))?;
+        document.distortions =
+            Some(distortions_record(&distortions, None).map_err(Failure::document)?);
+    }
+    if let Some(text) = &arguments.fragments {
+        let fragments = fragments(text, resolved.request.molecule.len())?;
+        let analysis = FragmentAnalysis::new(&sweep, 0, &fragments).map_err(fragment_failure)?;
+        document.fragments =
+            Some(fragments_record(sweep.plan(), &analysis).map_err(Failure::document)?);
+    }
     let surfaces = in_pool(arguments.jobs, || {
         named_surfaces(
             &sweep,
@@ -55,7 +71,12 @@ pub(crate) fn run(arguments: &LevelsArguments) -> Result<(), Failure> {
                     numbering: figure::numbering(output.numbering),
                     ..FigureOptions::default()
                 };
-                Rendering::default().bytes(levels_figure(&document, &options), ending)?
+                let figure = if document.fragments.is_some() {
+                    interaction_figure(&document, &options)
+                } else {
+                    levels_figure(&document, &options)
+                };
+                Rendering::default().bytes(figure, ending)?
             }
         })
     })?;

@@ -1,9 +1,11 @@
 //! One file per command; what several need stands here.
 
 pub(crate) mod figure;
+mod fragments;
 mod geometry_text;
 pub(crate) mod levels;
 pub(crate) mod params;
+pub(crate) mod plan;
 mod route;
 pub(crate) mod shape;
 pub(crate) mod sweep;

@@ -73,6 +73,19 @@ pub(crate) fn movement(arguments: &CoordinateArguments) -> Result<Movement, Fail
     })
 }
 
+/// Whether nothing says how the atoms move.
+pub(crate) fn is_still(
+    movement: &Movement,
+    arguments: &CoordinateArguments,
+    geometry: &Geometry,
+) -> bool {
+    movement.route.is_none()
+        && movement.coordinates.is_empty()
+        && arguments.toward.is_none()
+        && arguments.along_mode.is_none()
+        && geometry.frames.len() <= 1
+}
+
 /// The route that the geometry's file and the arguments make together.
 pub(crate) fn route(
     movement: &Movement,

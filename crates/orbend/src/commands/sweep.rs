@@ -5,12 +5,13 @@
 
 use orbend_report::{
     FigureError, FigureOptions, Support, add_populations, end_pictures, passport_text, stream_csv,
-    sweep_csv, sweep_document, sweep_document_with_orbitals, sweep_figure, sweep_page, sweep_text,
-    to_json,
+    sweep_csv, sweep_document, sweep_document_with_orbitals, sweep_figure, sweep_fragments_text,
+    sweep_page, sweep_text, to_json,
 };
 use orbend_scan::Sweep;
 
 use super::figure::{self, Rendering};
+use super::fragments::{along, fragments};
 use super::geometry_text::geometry_text;
 use super::route::{movement, route};
 use super::{csv, provenance, resolve, text_options};
@@ -78,6 +79,10 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
         add_populations(&sweep, &mut document)
             .map_err(|error| Failure::from_library(error.to_string()))?;
     }
+    if let Some(text) = &arguments.fragments {
+        let fragments = fragments(text, resolved.request.molecule.len())?;
+        document.fragments = Some(along(&sweep, &fragments)?);
+    }
     if !asked.is_empty() {
         document.why = Some(super::why::records(&sweep, &asked)?);
     }
@@ -108,7 +113,12 @@ pub(crate) fn run(arguments: &SweepArguments) -> Result<(), Failure> {
         let mut options = text_options(output.numbering);
         options.points = Some(points);
         let start = geometry_text(&resolved.geometry, options.width);
-        write_stdout((start + &sweep_text(&document, &options)).as_bytes())
+        let mut text = start + &sweep_text(&document, &options);
+        if let Some(records) = &document.fragments {
+            text.push('\n');
+            text.push_str(&sweep_fragments_text(records, &options));
+        }
+        write_stdout(text.as_bytes())
     }
 }
 

@@ -4,6 +4,8 @@ use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
 use super::common::{BasisFunction, Method, Missing, MoleculeRecord, Program, Units, Warning};
+use super::distortion::DistortionsRecord;
+use super::fragments::FragmentsRecord;
 use super::number::Number;
 use super::schema::LevelsSchema;
 
@@ -27,6 +29,12 @@ pub struct LevelsDocument {
     pub basis: Option<Vec<BasisFunction>>,
     /// Exactly one point; its `at` is empty.
     pub points: Vec<Point>,
+    /// Which vibrations the geometry gives in to; left out unless asked for.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub distortions: Option<DistortionsRecord>,
+    /// The molecule as fragments; left out unless asked for.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub fragments: Option<FragmentsRecord>,
     /// What the reader ought to know.
     pub warnings: Vec<Warning>,
     /// Why a value is `null`.

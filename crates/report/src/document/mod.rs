@@ -1,9 +1,13 @@
 //! The result documents and how they are written, read and described.
 
 mod common;
+mod distortion;
+mod fragments;
 mod levels;
 mod number;
 mod params;
+mod plan;
+mod qcschema;
 mod read;
 mod schema;
 mod shape;
@@ -17,14 +21,23 @@ pub use common::{
     AtomPosition, BasisFunction, BondLength, Checked, Geometry, Method, Missing, MoleculeRecord,
     Program, ShellValues, Units, Warning,
 };
+pub use distortion::{DistortionsRecord, HintRecord, TrialRecord};
+pub use fragments::{
+    FragmentLevelRecord, FragmentOrbitalRecord, FragmentPairRecord, FragmentRecord, FragmentsRecord,
+};
 pub use levels::{
     AtomCharge, LevelRecord, LevelsDocument, NearMiss, OverlapPopulation, Point, ShellPopulation,
     SymmetryRecord,
 };
 pub use number::{NotFinite, Number};
 pub use params::{ParamsDocument, Variant};
+pub use plan::{
+    ActiveLine, ActiveSpace, ChargeRecord, IrrepCount, PlanDocument, RootFlip, SpaceStop,
+    StartGeometry, StateRecord,
+};
+pub use qcschema::{QcMolecule, QcProvenance};
 pub use read::{Document, DocumentError, read_document};
-pub use schema::{LevelsSchema, ParamsSchema, ShapeSchema, SweepSchema, schemas};
+pub use schema::{LevelsSchema, ParamsSchema, PlanSchema, ShapeSchema, SweepSchema, schemas};
 pub use shape::{Argument, Case, Curve, Ensemble, Flip, ShapeDocument};
 pub use sweep::{
     Certificate, CertificateInterval, CertificateKind, CoordinateRecord, CoordinateUnit,

@@ -2,8 +2,8 @@
 
 use serde::de::DeserializeOwned;
 
-use super::schema::{LevelsSchema, ParamsSchema, ShapeSchema, SweepSchema};
-use super::{LevelsDocument, ParamsDocument, Point, ShapeDocument, SweepDocument};
+use super::schema::{LevelsSchema, ParamsSchema, PlanSchema, ShapeSchema, SweepSchema};
+use super::{LevelsDocument, ParamsDocument, PlanDocument, Point, ShapeDocument, SweepDocument};
 
 /// A document of any form.
 #[derive(Clone, Debug, PartialEq)]
@@ -16,6 +16,8 @@ pub enum Document {
     Shape(Box<ShapeDocument>),
     /// Parameter values.
     Params(Box<ParamsDocument>),
+    /// A hand-off.
+    Plan(Box<PlanDocument>),
 }
 
 /// Why a document cannot be read, written or used.
@@ -33,7 +35,9 @@ pub enum DocumentError {
         cause: String,
     },
     /// The text has no `schema` that this version knows.
-    #[error("unknown schema \"{0}\": this version reads orbend/{{levels,sweep,shape,params}}/1")]
+    #[error(
+        "unknown schema \"{0}\": this version reads orbend/{{levels,sweep,shape,params,plan}}/1"
+    )]
     UnknownSchema(String),
     /// Parts of the document contradict each other.
     #[error("{place}: {cause}")]
@@ -77,12 +81,44 @@ pub fn read_document(text: &str) -> Result<Document, DocumentError> {
         SweepSchema::NAME => SweepDocument::from_json(text).map(|d| Document::Sweep(d.into())),
         ShapeSchema::NAME => ShapeDocument::from_json(text).map(|d| Document::Shape(d.into())),
         ParamsSchema::NAME => ParamsDocument::from_json(text).map(|d| Document::Params(d.into())),
+        PlanSchema::NAME => PlanDocument::from_json(text).map(|d| Document::Plan(d.into())),
         _ => Err(DocumentError::UnknownSchema(head.schema)),
     }
 }
 
 fn parse<D: DeserializeOwned>(text: &str) -> Result<D, DocumentError> {
     serde_json::from_str(text).map_err(DocumentError::from_serde)
+}
+
+impl PlanDocument {
+    /// Reads and checks a document of this form.
+    pub fn from_json(text: &str) -> Result<Self, DocumentError> {
+        let document: Self = parse(text)?;
+        document.check()?;
+        Ok(document)
+    }
+
+    /// Checks that every state and every line of a space names something that exists.
+    pub fn check(&self) -> Result<(), DocumentError> {
+        for (index, state) in self.states.iter().enumerate() {
+            if state.start as usize >= self.starts.len() {
+                let place = format!("/states/{index}/start");
+                let cause = format!("there are {} start geometries", self.starts.len());
+                return Err(DocumentError::at(place, cause));
+            }
+        }
+        for (index, space) in self.active_spaces.iter().enumerate() {
+            if space.orbitals as usize != space.lines.len() {
+                let cause = format!(
+                    "{} lines for {} orbitals",
+                    space.lines.len(),
+                    space.orbitals
+                );
+                return Err(DocumentError::at(format!("/active_spaces/{index}"), cause));
+            }
+        }
+        Ok(())
+    }
 }
 
 impl LevelsDocument {

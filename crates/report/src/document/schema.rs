@@ -6,7 +6,7 @@ use schemars::{JsonSchema, Schema, SchemaGenerator, json_schema, schema_for};
 use serde::{Deserialize, Deserializer, Serialize, Serializer};
 use serde_json::Value;
 
-use super::{LevelsDocument, ParamsDocument, ShapeDocument, SweepDocument};
+use super::{LevelsDocument, ParamsDocument, PlanDocument, ShapeDocument, SweepDocument};
 
 /// A document's form as a type: it is written as its name and reads nothing else.
 macro_rules! form {
@@ -57,14 +57,16 @@ form!(LevelsSchema, "orbend/levels/1");
 form!(SweepSchema, "orbend/sweep/1");
 form!(ShapeSchema, "orbend/shape/1");
 form!(ParamsSchema, "orbend/params/1");
+form!(PlanSchema, "orbend/plan/1");
 
 /// The JSON Schema (draft 2020-12) of every document with the short name of its form.
 #[must_use]
-pub fn schemas() -> [(&'static str, Value); 4] {
+pub fn schemas() -> [(&'static str, Value); 5] {
     [
         ("levels", schema_for!(LevelsDocument).to_value()),
         ("sweep", schema_for!(SweepDocument).to_value()),
         ("shape", schema_for!(ShapeDocument).to_value()),
         ("params", schema_for!(ParamsDocument).to_value()),
+        ("plan", schema_for!(PlanDocument).to_value()),
     ]
 }

@@ -4,6 +4,7 @@ use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
 use super::common::{BasisFunction, Method, Missing, MoleculeRecord, Program, Units, Warning};
+use super::fragments::FragmentsRecord;
 use super::levels::{Point, SymmetryRecord};
 use super::number::Number;
 use super::schema::SweepSchema;
@@ -48,6 +49,9 @@ pub struct SweepDocument {
     /// The lowest sum, found by the calculation itself; left out where it was not asked for.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub minimum: Option<SumMinimum>,
+    /// The molecule as fragments at every point; left out unless asked for.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub fragments: Option<Vec<FragmentsRecord>>,
     /// Why lines move, for the lines that were asked about.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub why: Option<Vec<WhyRecord>>,

@@ -218,6 +218,7 @@ fn reading_back_gives_the_same_document_and_bytes() {
             Document::Sweep(document) => to_json(&*document),
             Document::Shape(document) => to_json(&*document),
             Document::Params(document) => to_json(&*document),
+            Document::Plan(document) => to_json(&*document),
         };
         assert!(again.unwrap() == text, "{form}");
     }

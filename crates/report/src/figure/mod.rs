@@ -4,6 +4,7 @@ mod axes;
 pub(crate) mod canvas;
 mod electrons;
 mod gallery;
+mod interaction;
 mod key;
 mod labels;
 mod ladder;
@@ -24,6 +25,7 @@ mod tests;
 pub(crate) mod theme;
 pub(crate) mod xml;
 
+pub use interaction::interaction_figure;
 pub use ladder::levels_figure;
 pub use options::{
     ElectronMarks, EnergyUnit, FigureError, FigureOptions, FigureWidth, Follow, Numbering, Theme,

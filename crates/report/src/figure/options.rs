@@ -195,6 +195,14 @@ pub enum FigureError {
         /// Upper end asked for, in eV.
         to: f64,
     },
+    /// An interaction diagram has two sides.
+    #[error(
+        "{fragments} fragments: an interaction diagram has two sides; name two fragments, or ask for --out FILE.json"
+    )]
+    NotTwoFragments {
+        /// Fragments in the document.
+        fragments: usize,
+    },
     /// A grid has no lines.
     #[error("a grid over two coordinates has no lines to draw: sweep one coordinate for a figure")]
     Grid,

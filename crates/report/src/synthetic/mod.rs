@@ -163,6 +163,7 @@ pub(crate) fn sweep(frame: &Frame<'_>, xs: &[f64], sketches: &[Sketch]) -> Sweep
         crossing_search: None,
         followed: None,
         minimum: None,
+        fragments: None,
         why: None,
         warnings: vec![],
         missing: vec![],
@@ -303,6 +304,8 @@ pub(crate) fn levels_of(sweep: &SweepDocument, point: usize) -> LevelsDocument {
         symmetry: sweep.symmetry.clone(),
         basis: None,
         points: vec![one],
+        distortions: None,
+        fragments: None,
         warnings: vec![],
         missing: vec![],
     }

@@ -28,6 +28,16 @@ pub fn levels_text(document: &LevelsDocument, options: &TextOptions) -> String {
         characters(&mut out, point, options);
         totals(&mut out, point, options);
     }
+    if let Some(record) = &document.fragments {
+        out.push('\n');
+        super::fragments::fragments(&mut out, record, options);
+    }
+    if let Some(distortions) = &document.distortions {
+        out.push('\n');
+        for words in super::distortion::distortion_words(distortions, options) {
+            options.paragraph(&mut out, &words);
+        }
+    }
     warnings(&mut out, options, &document.warnings);
     out
 }

@@ -1,18 +1,23 @@
 //! Text for a person at a terminal, within a given number of columns.
 
 mod diagram;
+mod distortion;
+mod fragments;
 mod levels;
 mod params;
 mod passport;
+mod plan;
 mod shape;
 mod surfaces;
 mod sweep;
 mod table;
 mod why;
 
+pub use fragments::sweep_fragments_text;
 pub use levels::levels_text;
 pub use params::params_text;
 pub use passport::passport_text;
+pub use plan::{plan_markdown, plan_text};
 pub use shape::shape_text;
 pub use surfaces::surfaces_text;
 pub use sweep::sweep_text;

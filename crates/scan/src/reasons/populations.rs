@@ -187,24 +187,26 @@ impl SweepPlan {
             harmonics::rotation(lb, frame),
         );
         let (na, nb) = (2 * usize::from(la) + 1, 2 * usize::from(lb) + 1);
-        for i in 0..na {
-            for j in 0..nb {
-                let m = harmonics::order(i);
-                if m != harmonics::order(j) {
-                    continue;
-                }
-                let (mut left, mut right, mut s) = (0.0, 0.0, 0.0);
-                for p in 0..na {
-                    left += da[p][i] * c[first + p];
-                    for q in 0..nb {
-                        s += da[p][i] * overlap[[first + p, second + q]] * db[q][j];
-                    }
-                }
-                for q in 0..nb {
-                    right += db[q][j] * c[second + q];
-                }
-                kinds[m.unsigned_abs() as usize] += 2.0 * left * s * right;
+        let column = |d: &[[f64; 7]; 7], length: usize, index: usize| -> Vec<f64> {
+            d[..length].iter().map(|row| row[index]).collect()
+        };
+        for (i, j) in (0..na).flat_map(|i| (0..nb).map(move |j| (i, j))) {
+            let m = harmonics::order(i);
+            if m != harmonics::order(j) {
+                continue;
             }
+            let (of_a, of_b) = (column(&da, na, i), column(&db, nb, j));
+            let (mut left, mut right, mut s) = (0.0, 0.0, 0.0);
+            for (p, a) in of_a.iter().enumerate() {
+                left += a * c[first + p];
+                for (q, b) in of_b.iter().enumerate() {
+                    s += a * overlap[[first + p, second + q]] * b;
+                }
+            }
+            for (q, b) in of_b.iter().enumerate() {
+                right += b * c[second + q];
+            }
+            kinds[m.unsigned_abs() as usize] += 2.0 * left * s * right;
         }
     }
 

@@ -77,7 +77,7 @@ impl Mesh {
             }
         }
         edges.sort_unstable();
-        edges.len() % 2 == 0
+        edges.len().is_multiple_of(2)
             && edges.chunks_exact(2).all(|pair| {
                 pair[0].0 == pair[1].0 && pair[0].1 == pair[1].1 && pair[0].2 != pair[1].2
             })

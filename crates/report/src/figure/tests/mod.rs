@@ -97,7 +97,7 @@ fn pictures_of(document: &SweepDocument, seed: u64) -> EndPictures {
             .map(|k| {
                 let place = |k: usize| k as f64 * 2.0 * half / (points - 1) as f64 - half;
                 let (x, y) = (place(k % points), -place(k / points));
-                let sign = if number % 3 == 0 { 1.0 } else { x };
+                let sign = if number.is_multiple_of(3) { 1.0 } else { x };
                 0.3 * sign * (-(x * x + 2.0 * y * y) / (size * size)).exp()
             })
             .collect();
