@@ -303,7 +303,7 @@
   function wear(dark) { worn = dark; dress(dark); later(); }
   $('theme').addEventListener('click', () => { ownTheme = true; wear(!worn); });
   wish.addEventListener('change', () => { if (!ownTheme) wear(wish.matches); });
-  window.addEventListener('beforeprint', () => { printing = true; dress(false); draw(); });
+  window.addEventListener('beforeprint', () => { printing = true; dress(false); draw(); drawPicture(720); });
   window.addEventListener('afterprint', () => { printing = false; dress(worn); draw(); });
   $('print').addEventListener('click', () => window.print());
   document.addEventListener('keydown', (event) => { if (event.key === 'Escape') pin(null); });
