@@ -1,7 +1,7 @@
 //! Fragments: the frontier sets of metal fragments as published, sums and invariances.
 //!
-//! Elian & Hoffmann, Inorg. Chem. 14, 1058 (1975); Hoffmann, Angew. Chem. Int. Ed. 21, 711 (1982),
-//! the Nobel lecture (orders from memory; axes as printed here).
+//! Elian & Hoffmann, Inorg. Chem. 14, 1058 (1975); Hoffmann, Angew. Chem. Int. Ed. 21, 711 (1982)
+//! (orders from memory; axes as printed here).
 
 use orbend_checks::{moved, named, random_motion};
 use orbend_scan::reasons::{Fragment, FragmentAnalysis};
