@@ -41,14 +41,19 @@ fn hint_words(record: &DistortionsRecord, hint: &HintRecord, options: &TextOptio
         hint.irrep.clone()
     };
     let electrons = super::electrons(hint.electrons.get());
+    let noun = if electrons == "1" {
+        "electron"
+    } else {
+        "electrons"
+    };
     let coupling = ascii_number(hint.coupling.get(), 2);
     let cause = match (hint.order.as_str(), hint.gap, hint.strength) {
         ("first", ..) => format!(
-            "first order: {} holds {electrons} electrons and splits along {irrep}, slope {coupling} eV/Å",
+            "first order: {} holds {electrons} {noun} and splits along {irrep}, slope {coupling} eV/Å",
             label(0)
         ),
         ("linear-splitting", ..) => format!(
-            "linear: {} holds {electrons} electrons and splits on bending ({irrep}) in second order",
+            "linear: {} holds {electrons} {noun} and splits on bending ({irrep}) in second order",
             label(0)
         ),
         (_, Some(gap), Some(strength)) => format!(
